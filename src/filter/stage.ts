@@ -61,3 +61,26 @@ export type StageSpec = { enabled?: boolean; inData?: boolean } & (
   | NotchSpec
   | MovingAverageSpec
 )
+
+/**
+ * One designed stage.
+ *
+ * - `sections` and `analogue` describe the same recursive filter, row by row (a FIR stage has null for both).
+ *   `sections`: rows b0 b1 b2 a0 a1 a2 of ONE pass, a0 = 1, in the order and with the gain where SciPy's
+ *   `butter(..., output='sos')` has them. `analogue`: rows c2 c1 c0 d2 d1 d0 of
+ *   (c2·σ² + c1·σ + c0) / (d2·σ² + d1·σ + d0) in the bilinear variable σ = (1 − z⁻¹)/(1 + z⁻¹), on the unit
+ *   circle σ = j·tan(πf/fs); d2 = 1, or d2 = 0 and d1 = 1 for a first-order row. Poles near z = 1 keep their full precision here,
+ *   so responses and low-cutoff filtering use this form.
+ * - `taps`: the kernel of a FIR stage (null for a recursive one), and `leadSamples` how many samples it is moved
+ *   earlier: y[n] = Σ taps[k]·x[n + leadSamples − k]. (taps − 1)/2 when the delay is compensated, else 0.
+ * - `passes`: 2 when it runs forward and backward, else 1. FIR stages always have 1.
+ */
+export interface Stage {
+  readonly spec: StageSpec
+  readonly samplingRateHz: number
+  readonly sections: Float64Array | null
+  readonly analogue: Float64Array | null
+  readonly taps: Float64Array | null
+  readonly leadSamples: number
+  readonly passes: 1 | 2
+}
