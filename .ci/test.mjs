@@ -82,7 +82,9 @@ function journeys() {
     SIDELOBE_BROWSER: browser,
     PLAYWRIGHT_JSON_OUTPUT_FILE: join(scratch, 'journeys.json'),
   })
-  return countPlaywright(report('journeys.json'), ok)
+  const written = report('journeys.json')
+  if (written?.stats.flaky > 0) console.log(`passed only when repeated: ${written.stats.flaky}`)
+  return countPlaywright(written, ok)
 }
 
 let built = false
