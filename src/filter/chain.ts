@@ -1,7 +1,44 @@
-import type { Stage } from './stage.ts'
+import { checkSamplingRate, type SpecFault, specError } from './spec-error.ts'
+import { designStage, type Stage, type StageSpec } from './stage.ts'
 
 /** Enabled stages in order, amplifier stages first; those that are in the data (`spec.inData`) included. */
 export interface Chain {
   readonly samplingRateHz: number
   readonly stages: readonly Stage[]
+}
+
+/**
+ * Designs a chain: its enabled stages in order. A stage that is switched off is left out, whatever it holds.
+ *
+ * @param specs           stages in the order in which they act; amplifier stages come first.
+ * @param samplingRateHz  samples per second, positive.
+ * @throws RangeError     whose message begins `stage n: ` (n from 1) and which carries `stageIndex` (from 0) and, where one
+ *                        property is at fault, its name in `field`.
+ */
+export function designChain(specs: readonly StageSpec[], samplingRateHz: number): Chain {
+  checkSamplingRate(samplingRateHz)
+  const stages: Stage[] = []
+  let offline = -1
+  for (let index = 0; index < specs.length; index++) {
+    const spec = specs[index]
+    if (spec?.enabled === false) continue
+    if (spec?.design === 'amplifier' && offline >= 0) {
+      throw stageError(
+        index,
+        specError('design', `an amplifier stage must come before all offline stages, but follows stage ${offline + 1}`),
+      )
+    }
+    try {
+      stages.push(designStage(spec, samplingRateHz))
+    } catch (error) {
+      throw error instanceof RangeError ? stageError(index, error) : error
+    }
+    if (spec.design !== 'amplifier') offline = index
+  }
+  return { samplingRateHz, stages }
+}
+
+function stageError(stageIndex: number, error: RangeError & SpecFault): RangeError & SpecFault {
+  const located = new RangeError(`stage ${stageIndex + 1}: ${error.message}`)
+  return Object.assign(located, error.field === undefined ? { stageIndex } : { stageIndex, field: error.field })
 }

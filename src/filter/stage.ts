@@ -1,3 +1,13 @@
+import { amplifierSections, checkAmplifier } from './amplifier.ts'
+import { butterworthSections, checkButterworth } from './butterworth.ts'
+import { butterworthDesignEdges } from './cutoff-meaning.ts'
+import { checkMovingAverage, movingAverageTaps } from './moving-average.ts'
+import { checkNotch, notchSections } from './notch.ts'
+import type { Sections } from './second-order-sections.ts'
+import { checkChoice, checkSamplingRate, said } from './spec-error.ts'
+import { passesOf } from './warped-axis.ts'
+import { checkWindowedSinc, windowedSincTaps } from './windowed-sinc.ts'
+
 /**
  * A stage is one filter of a chain: what the user says about it (`StageSpec`) and what follows for one sampling
  * rate (`Stage`). Conventions of this room: frequencies in Hz, the sampling rate is always an argument, `order` is the
@@ -83,4 +93,58 @@ export interface Stage {
   readonly taps: Float64Array | null
   readonly leadSamples: number
   readonly passes: 1 | 2
+}
+
+/**
+ * Designs one stage.
+ *
+ * @param spec            what the user says about it; not changed, and kept in the stage as it is.
+ * @param samplingRateHz  samples per second, positive.
+ * @throws RangeError     with what, rule and value, and the faulty property's name in `field`, for anything that cannot
+ *                        be designed.
+ */
+export function designStage(spec: StageSpec, samplingRateHz: number): Stage {
+  checkSamplingRate(samplingRateHz)
+  if (spec === null || typeof spec !== 'object') throw new RangeError(`a stage must be an object, was ${said(spec)}`)
+  switch (spec.design) {
+    case 'butterworth': {
+      checkButterworth(spec, samplingRateHz)
+      const edges = butterworthDesignEdges(spec, samplingRateHz)
+      const sections = butterworthSections(spec.pass, spec.order, edges)
+      return recursive(spec, samplingRateHz, sections, passesOf(spec.direction))
+    }
+    case 'amplifier':
+      checkAmplifier(spec, samplingRateHz)
+      return recursive(spec, samplingRateHz, amplifierSections(spec, samplingRateHz), 1)
+    case 'notch':
+      checkNotch(spec, samplingRateHz)
+      return recursive(spec, samplingRateHz, notchSections(spec, samplingRateHz), passesOf(spec.direction))
+    case 'windowed-sinc': {
+      checkWindowedSinc(spec, samplingRateHz)
+      const taps = windowedSincTaps(spec, samplingRateHz)
+      return finite(spec, samplingRateHz, taps, spec.delay === 'compensated')
+    }
+    case 'moving-average': {
+      checkMovingAverage(spec, samplingRateHz)
+      return finite(spec, samplingRateHz, movingAverageTaps(spec, samplingRateHz), spec.delay === 'compensated')
+    }
+    default:
+      checkChoice('design', (spec as { design: unknown }).design, [
+        'butterworth',
+        'windowed-sinc',
+        'amplifier',
+        'notch',
+        'moving-average',
+      ])
+      throw new RangeError('unreachable')
+  }
+}
+
+function recursive(spec: StageSpec, samplingRateHz: number, designed: Sections, passes: 1 | 2): Stage {
+  return { spec, samplingRateHz, ...designed, taps: null, leadSamples: 0, passes }
+}
+
+function finite(spec: StageSpec, samplingRateHz: number, taps: Float64Array, compensated: boolean): Stage {
+  const leadSamples = compensated ? (taps.length - 1) / 2 : 0
+  return { spec, samplingRateHz, sections: null, analogue: null, taps, leadSamples, passes: 1 }
 }
