@@ -34,7 +34,7 @@ export async function bundle(entries) {
     await build({
       root,
       configFile: false,
-      logLevel: 'error',
+      logLevel: 'silent', // what goes wrong is thrown
       plugins: [keepSourceLocation()],
       ssr: { noExternal: true },
       build: {

@@ -18,7 +18,8 @@ const { values } = parseArgs({
 })
 const port = Number(values.port)
 if (!Number.isInteger(port) || port < 1 || port > 65_535) {
-  throw new RangeError(`--port must be an integer from 1 to 65535, was ${values.port}`)
+  console.error(`--port must be an integer from 1 to 65535, was ${values.port}`)
+  process.exit(2)
 }
 
 await build({ root, logLevel: 'warn' })
@@ -26,7 +27,17 @@ const server = await preview({ root, preview: { host: '127.0.0.1', port, strictP
 const address = `http://localhost:${server.httpServer.address().port}/`
 console.log(`Sidelobe is at ${address}\nCtrl-C stops it.`)
 for (const signal of ['SIGINT', 'SIGTERM']) process.on(signal, () => process.exit(0))
+stopWithNpm()
 if (!values['no-open']) open(address)
+
+/** The shell between npm and this program does not hand on a signal that ends npm: without a parent the server ends too. */
+function stopWithNpm() {
+  if (!process.env.npm_lifecycle_event || process.platform === 'win32') return
+  const parent = process.ppid
+  setInterval(() => {
+    if (process.ppid !== parent) process.exit(0)
+  }, 500).unref()
+}
 
 /** Opens the address in the user's browser; not in a pipeline or without a display. A failure is no failure. */
 function open(url) {
