@@ -3,7 +3,7 @@
  *
  *   npm run reference -- [part of a script's name]
  *
- * Every `make*.py` there writes its own JSON beside itself; `git diff` then shows what changed.
+ * Every `make_*.py` there writes its own JSON beside itself; `git diff` then shows what changed.
  */
 import { spawnSync } from 'node:child_process'
 import { existsSync, readdirSync } from 'node:fs'
@@ -17,20 +17,20 @@ const wanted = process.argv[2] ?? ''
 
 const scripts = (existsSync(folder) ? readdirSync(folder, { recursive: true }) : [])
   .map(String)
-  .filter((path) => /^make.*\.py$/.test(basename(path)) && path.includes(wanted))
+  .filter((path) => /^make_.*\.py$/.test(basename(path)) && basename(path) !== 'make_all.py' && path.includes(wanted))
   .sort()
 const python = findPython()
 if (!python) {
   console.log(`nothing recomputed: ${NO_SCIPY}`)
 } else if (scripts.length === 0) {
-  console.log(`nothing recomputed: no script make*.py${wanted && ` with "${wanted}" in its name`} in test/reference`)
+  console.log(`nothing recomputed: no script make_*.py${wanted && ` with "${wanted}" in its name`} in test/reference`)
   process.exitCode = 1
 } else {
   console.log(`${python.path} with SciPy ${python.version}`)
   let failed = 0
   for (const script of scripts) {
     const began = performance.now()
-    const { status } = spawnSync(python.path, [join(folder, script)], { cwd: folder, stdio: 'inherit' })
+    const { status } = spawnSync(python.path, ['-B', join(folder, script)], { cwd: folder, stdio: 'inherit' })
     if (status !== 0) failed++
     console.log(
       `${status === 0 ? 'made' : 'FAILED'}  test/reference/${script} (${((performance.now() - began) / 1000).toFixed(1)} s)`,
