@@ -1,0 +1,116 @@
+/**
+ * What follows from a workspace: every number and curve on the page, as plain data that survives being sent to and from a worker.
+ * `evaluate.ts` makes it; the page only draws it.
+ */
+import type { Chain } from '../filter/chain.ts'
+import type { FidelityRow } from '../evidence/fidelity.ts'
+
+/** Something the user said that cannot be computed, in words, at the token that says it. */
+export interface Problem {
+  /** Id of the token, or its beginning: `stage:1`, `stage:1:cutoff`, `score-window`, `baseline`, `waveform` … */
+  at: string
+  message: string
+}
+
+/** One condition (or the difference wave) on the epoch's samples, each curve minus its own baseline mean, in µV. */
+export interface Curves {
+  name: string
+  before: Float64Array
+  after: Float64Array
+  takenOut: Float64Array
+}
+
+export interface WindowFigure {
+  /** Sample i lies at (fromIndex + i) samples from the epoch's first; its time is `firstMs + (fromIndex + i)·stepMs`. */
+  fromIndex: number
+  /** Weights of the score on the unfiltered waveform without and with the chain; same length, per sample. */
+  unfiltered: Float64Array
+  filtered: Float64Array
+  /** Share of the filtered window's absolute weight that lies outside the epoch, 0 to 1. */
+  shareOutside: number
+  /** Why the window stands for one moment only ("for the peak at 398 ms, held fixed"), or null. */
+  heldFixed: string | null
+}
+
+export interface FrequencyFigure {
+  hz: Float64Array
+  /** Gains as applied, one row per enabled stage; `index` is the stage's place in the workspace's chain. */
+  stages: { index: number; inData: boolean; gain: Float64Array }[]
+  /** The stages applied here, together. */
+  gain: Float64Array
+  phaseRad: Float64Array
+  groupDelayMs: Float64Array
+  /** Amplitude spectra (µV·s) of the chosen condition, and the noise's amplitude density (µV/√Hz). */
+  before: Float64Array
+  after: Float64Array
+  noise: Float64Array
+  halfAmplitudeHz: number[]
+  halfPowerHz: number[]
+}
+
+export interface KernelFigure {
+  stepMs: number
+  /** Sample i lies at lag (fromIndex + i)·stepMs. */
+  fromIndex: number
+  /** Impulse response per second; step response (both of the stages applied here). */
+  impulse: Float64Array
+  step: Float64Array
+}
+
+export interface ChainRow {
+  /** Place in the workspace's chain. */
+  index: number
+  name: string
+  inData: boolean
+  halfAmplitude: string
+  halfPower: string
+  rollOff: string
+  /** A remark on a model's limit, for instance an amplifier's delay near half the sampling rate; or null. */
+  remark: string | null
+}
+
+export interface ReachMs {
+  beforeMs: number
+  afterMs: number
+}
+
+/** The noise row of the readout: standard deviations of the score in µV. */
+export interface Precision {
+  before: number
+  after: number
+  precisionFactor: number
+  /** Null where the score has no effect to tell from noise. */
+  equalTrialsFactor: number | null
+}
+
+export interface Evaluation {
+  samplingRateHz: number
+  /** Sample times of the epoch. */
+  timesMs: Float64Array
+  chain: Chain
+  /** Conditions drawn, the chosen one among them. */
+  curves: Curves[]
+  /** Index into `curves`. */
+  chosen: number
+  /** An applied stage is causal: before − after then contains its delay. */
+  delayIncluded: boolean
+  /** For epochs: share of each output sample's absolute kernel weight on samples that are not in the data. Null when continuous. */
+  unseenBySample: Float64Array | null
+  /** Null for a score that is no weighted sum (a latency). */
+  window: WindowFigure | null
+  frequency: FrequencyFigure
+  kernel: KernelFigure
+  table: ChainRow[]
+  /** Reach of the offline stages applied here, and of the amplifier stages (null without any). */
+  reach: ReachMs
+  amplifierReach: ReachMs | null
+  /** Of the score, 0 to 1; null for a latency. */
+  unseenShare: number | null
+  rows: FidelityRow[]
+  /** Null for a score that is no weighted sum. */
+  precision: Precision | null
+  /** Numbers for the remark under the figure. */
+  remark: string
+}
+
+export type Outcome = { ok: true; evaluation: Evaluation } | { ok: false; problems: Problem[] }

@@ -1,0 +1,60 @@
+/**
+ * One store: the workspace and its history. `say` is the only way to change it. Changes that share a group and follow one another (a
+ * drag, typing in one field, repeated arrow keys) are one step of undo, until `endGesture` or a pause.
+ */
+import { temporal } from 'zundo'
+import { createStore } from 'zustand/vanilla'
+import { startWorkspace, type Workspace } from './workspace.ts'
+
+export const HISTORY_STEPS = 400
+/** Changes of one group that are further apart than this are two steps, as for two separate presses of an arrow key. */
+const GROUP_PAUSE_MS = 1500
+
+interface WorkspaceState {
+  workspace: Workspace
+}
+
+let open: { group: string; at: number } | null = null
+let asked: string | undefined
+
+function continuesGesture(): boolean {
+  const now = Date.now()
+  const continues = asked !== undefined && open?.group === asked && now - open.at < GROUP_PAUSE_MS
+  open = asked === undefined ? null : { group: asked, at: now }
+  return continues
+}
+
+export const workspaceStore = createStore<WorkspaceState>()(
+  temporal(() => ({ workspace: startWorkspace() }), {
+    limit: HISTORY_STEPS,
+    equality: (past, present) => past.workspace === present.workspace,
+    handleSet: (record) => (past, replace, current, delta) => {
+      // The library's types give `record` two parameters; what it hands over takes the four that it is called with.
+      if (!continuesGesture()) (record as (...step: unknown[]) => void)(past, replace, current, delta)
+    },
+  }),
+)
+
+/** Changes the workspace. With a `group`, consecutive changes of that group are one step of undo. */
+export function say(change: (workspace: Workspace) => Workspace, group?: string): void {
+  const { workspace } = workspaceStore.getState()
+  const next = change(workspace)
+  if (next === workspace) return
+  asked = group
+  workspaceStore.setState({ workspace: next })
+}
+
+/** Ends a drag or a burst of typing: the next change is a step of its own. */
+export function endGesture(): void {
+  open = null
+}
+
+export function undo(): void {
+  endGesture()
+  workspaceStore.temporal.getState().undo()
+}
+
+export function redo(): void {
+  endGesture()
+  workspaceStore.temporal.getState().redo()
+}

@@ -1,0 +1,232 @@
+/**
+ * The workspace: everything that the user has said, as one plain JSON object. Its types come from its schema; undo, autosave, the
+ * link and the workspace file are all this object. What follows from it is in `evaluate.ts`; how it is looked at (theme, scales, which figure
+ * shows what) is in `view.ts`.
+ */
+import * as v from 'valibot'
+import type { NoiseSpec } from '../erp/noise.ts'
+import { SCENARIOS, type Scenario } from '../erp/scenarios.ts'
+
+const finite = v.pipe(v.number(), v.finite())
+const positive = v.pipe(finite, v.gtValue(0))
+const text = v.pipe(v.string(), v.maxLength(400))
+
+const stageFlags = { enabled: v.optional(v.boolean()), inData: v.optional(v.boolean()) }
+const passSchema = v.picklist(['low', 'high', 'band', 'stop'])
+const directionSchema = v.picklist(['forward', 'both'])
+const meaningSchema = v.picklist(['half-amplitude', 'half-power', 'design'])
+const windowSchema = v.union([
+  v.object({ name: v.picklist(['rectangular', 'hann', 'hamming', 'blackman']) }),
+  v.object({ name: v.literal('kaiser'), attenuationDb: finite }),
+])
+
+/** Field types only: whether a filter can be designed is the filter room's own judgement, shown at the token. */
+export const stageSchema = v.variant('design', [
+  v.object({
+    ...stageFlags,
+    design: v.literal('butterworth'),
+    pass: passSchema,
+    order: finite,
+    cutoffsHz: v.pipe(v.array(finite), v.maxLength(2)),
+    meaning: meaningSchema,
+    direction: directionSchema,
+  }),
+  v.object({
+    ...stageFlags,
+    design: v.literal('windowed-sinc'),
+    pass: passSchema,
+    cutoffsHz: v.pipe(v.array(finite), v.maxLength(2)),
+    meaning: meaningSchema,
+    transitionHz: finite,
+    window: windowSchema,
+    delay: v.picklist(['compensated', 'causal', 'minimum-phase']),
+  }),
+  v.object({
+    ...stageFlags,
+    design: v.literal('amplifier'),
+    pass: v.picklist(['low', 'high']),
+    order: finite,
+    cutoffHz: finite,
+  }),
+  v.object({
+    ...stageFlags,
+    design: v.literal('notch'),
+    frequencyHz: finite,
+    bandwidthHz: finite,
+    harmonics: finite,
+    direction: directionSchema,
+  }),
+  v.object({
+    ...stageFlags,
+    design: v.literal('moving-average'),
+    durationMs: finite,
+    delay: v.picklist(['compensated', 'causal']),
+  }),
+])
+
+const windowLimits = v.object({ fromMs: finite, toMs: finite })
+
+const named = { name: text, amplitudeUv: finite }
+const transient = { ...named, latencyMs: finite, widthMs: finite }
+export const componentSchema = v.variant('shape', [
+  v.object({ ...transient, shape: v.literal('gaussian') }),
+  v.object({ ...transient, shape: v.literal('asymmetric'), riseShare: finite }),
+  v.object({ ...transient, shape: v.literal('slow-wave'), edgeMs: finite }),
+  v.object({ ...transient, shape: v.literal('ramp'), riseShare: finite }),
+  v.object({ ...transient, shape: v.literal('damped-oscillation'), frequencyHz: finite, riseShare: finite }),
+  v.object({ ...named, shape: v.literal('tone'), frequencyHz: finite, phaseRad: finite }),
+])
+
+const scoreSchema = v.object({
+  kind: v.picklist(['mean', 'area', 'peak-amplitude', 'peak-latency', 'area-latency', 'onset-latency', 'moment']),
+  fromMs: finite,
+  toMs: finite,
+  polarity: v.picklist(['positive', 'negative']),
+  fraction: v.optional(finite),
+})
+
+const noiseSchema = v.object({
+  kind: v.literal('model'),
+  exponent: finite,
+  levelAt1HzUv2PerHz: finite,
+  flatBelowHz: finite,
+  whiteUv2PerHz: finite,
+  alpha: v.optional(v.object({ centreHz: finite, sdHz: finite, peakUv2PerHz: finite })),
+  driftAt1HzUv2PerHz: v.optional(finite),
+  lines: v.array(
+    v.object({ hz: finite, amplitudeUv: finite, locked: v.boolean(), phaseRad: v.optional(finite) }),
+  ),
+})
+
+/** How a table is read where its header leaves it open; each is what the user confirmed or chose. */
+const readingSchema = v.object({
+  layout: v.optional(v.picklist(['wide', 'long'])),
+  timeUnit: v.optional(v.picklist(['s', 'ms'])),
+  amplitudeUnit: v.optional(v.picklist(['V', 'mV', 'µV', 'nV'])),
+  columnsAre: v.optional(v.picklist(['channels', 'conditions'])),
+  trial: v.optional(text),
+  participant: v.optional(text),
+})
+
+const sourceSchema = v.variant('kind', [
+  v.object({
+    kind: v.literal('built'),
+    samplingRateHz: finite,
+    epoch: windowLimits,
+    conditions: v.pipe(
+      v.array(v.object({ name: text, components: v.pipe(v.array(componentSchema), v.maxLength(200)) })),
+      v.minLength(1),
+      v.maxLength(40),
+    ),
+  }),
+  v.object({
+    kind: v.literal('recorded'),
+    fileName: text,
+    /** SHA-256 of the file's text: the data themselves stay outside the workspace. */
+    fileId: text,
+    reading: readingSchema,
+  }),
+])
+
+const limitSchema = v.object({ value: positive, unit: v.picklist(['µV', 'ms', 'µV·s', '%']) })
+
+export const workspaceSchema = v.object({
+  version: v.literal(1),
+  title: text,
+  /** One plain sentence of what to look at; empty for the user's own work. */
+  remark: v.pipe(v.string(), v.maxLength(1000)),
+  source: sourceSchema,
+  /** Conditions drawn; the one that the readout and the score are about; a difference of two conditions; the channel. */
+  shown: v.object({
+    conditions: v.array(text),
+    difference: v.nullable(v.object({ first: text, second: text })),
+    chosen: text,
+    channel: v.nullable(text),
+  }),
+  chain: v.pipe(v.array(stageSchema), v.maxLength(60)),
+  extent: v.picklist(['continuous', 'epochs']),
+  baseline: v.union([v.literal('none'), windowLimits]),
+  trials: finite,
+  score: scoreSchema,
+  /** Windows of the readout's own rows. */
+  measure: v.object({
+    mean: windowLimits,
+    peak: windowLimits,
+    polarity: v.picklist(['positive', 'negative']),
+  }),
+  limits: v.partial(
+    v.object({
+      score: limitSchema,
+      'mean-amplitude': limitSchema,
+      'peak-amplitude': limitSchema,
+      'signed-area': limitSchema,
+      'peak-latency': limitSchema,
+      'area-latency': limitSchema,
+      'onset-latency': limitSchema,
+      'false-deflection': limitSchema,
+    }),
+  ),
+  noise: noiseSchema,
+  /** Onset of a recorded waveform as the user states it; a built one's follows from its components. */
+  onsetMs: v.nullable(finite),
+})
+
+export type Workspace = v.InferOutput<typeof workspaceSchema>
+export type Source = Workspace['source']
+export type BuiltSource = Extract<Source, { kind: 'built' }>
+export type RecordedSource = Extract<Source, { kind: 'recorded' }>
+export type Reading = v.InferOutput<typeof readingSchema>
+
+/** The name under which the difference wave is chosen. */
+export const DIFFERENCE = 'difference wave'
+
+/** A scenario as a workspace of its own. */
+export function workspaceOf(scenario: Scenario): Workspace {
+  const { conditions, samplingRateHz, epoch } = scenario.waveform
+  return structuredClone({
+    version: 1 as const,
+    title: scenario.title,
+    remark: scenario.sentence,
+    source: { kind: 'built', samplingRateHz, epoch, conditions },
+    shown: {
+      conditions: [scenario.condition],
+      difference: null,
+      chosen: scenario.condition,
+      channel: scenario.channel,
+    },
+    chain: scenario.chain,
+    extent: scenario.extent,
+    baseline: scenario.baseline,
+    trials: scenario.trials,
+    score: scenario.score,
+    measure: scenario.measure,
+    limits: scenario.limits,
+    noise: modelNoise(scenario.noise),
+    onsetMs: null,
+  } satisfies Workspace)
+}
+
+function modelNoise(noise: NoiseSpec): Workspace['noise'] {
+  if (noise.kind !== 'model') throw new RangeError('a scenario comes with a noise model')
+  return noise
+}
+
+export const startWorkspace = (): Workspace => workspaceOf(SCENARIOS[0])
+
+/**
+ * What a workspace file, a link or the browser's storage holds, checked field by field.
+ *
+ * @returns the workspace, or a sentence that names the first field that is wrong.
+ */
+export function readWorkspace(value: unknown): { ok: true; workspace: Workspace } | { ok: false; reason: string } {
+  if (typeof value === 'object' && value !== null && 'version' in value) {
+    const { version } = value
+    if (typeof version === 'number' && version > 1)
+      return { ok: false, reason: `this workspace has version ${version}, newer than this page can read (1)` }
+  }
+  const result = v.safeParse(workspaceSchema, value)
+  if (result.success) return { ok: true, workspace: result.output }
+  const issue = result.issues[0]
+  const field = v.getDotPath(issue) ?? 'the whole file'
+  return { ok: false, reason: `this is no workspace that the page can read: ${field}: ${issue.message}` }
+}

@@ -1,0 +1,46 @@
+/**
+ * Numbers as the page prints them: a true minus sign (U+2212), no exponent, no grouping. The unit is written by the caller.
+ */
+
+const MINUS = '\u2212'
+
+/** A number with a fixed count of decimals; a rounded zero carries no sign. */
+export function fixed(value: number, decimals: number): string {
+  if (!Number.isFinite(value)) return '\u2013'
+  const text = Math.abs(value).toFixed(decimals)
+  return value < 0 && Number(text) !== 0 ? MINUS + text : text
+}
+
+/** A change: like `fixed`, with a plus sign before what is positive after rounding. */
+export function signed(value: number, decimals: number): string {
+  const text = fixed(value, decimals)
+  return value > 0 && Number(text) !== 0 ? `+${text}` : text
+}
+
+/** A number with at most `digits` significant digits and no trailing zeros: 0.016, 29.1, 1, 500. */
+export function brief(value: number, digits = 3): string {
+  if (!Number.isFinite(value)) return '\u2013'
+  if (value === 0) return '0'
+  const rounded = Number(value.toPrecision(digits))
+  const decimals = Math.max(0, Math.min(12, digits - 1 - Math.floor(Math.log10(Math.abs(rounded)))))
+  const text = Math.abs(rounded).toFixed(decimals)
+  const trimmed = text.includes('.') ? text.replace(/\.?0+$/, '') : text
+  return rounded < 0 ? MINUS + trimmed : trimmed
+}
+
+/** A number as the user typed it: every digit that matters, up to twelve. */
+export function exact(value: number): string {
+  return brief(value, 12)
+}
+
+/** What a person types for a number: a true or a plain minus, a decimal point or comma. NaN for anything else. */
+export function parseNumber(text: string): number {
+  const plain = text.trim().replace(MINUS, '-').replace(',', '.')
+  return /^[+-]?(\d+\.?\d*|\.\d+)(e[+-]?\d+)?$/i.test(plain) ? Number(plain) : Number.NaN
+}
+
+/** "a, b and c" */
+export function list(items: readonly string[]): string {
+  if (items.length < 2) return items.join('')
+  return `${items.slice(0, -1).join(', ')} and ${items[items.length - 1]}`
+}
