@@ -1,6 +1,6 @@
 import AxeBuilder from '@axe-core/playwright'
 import { test as base, expect, type Page } from '@playwright/test'
-import { Workbench } from './page-models/workbench.ts'
+import { type Theme, Workbench } from './page-models/workbench.ts'
 
 export { expect }
 
@@ -47,21 +47,15 @@ export const test = base.extend<Fixtures>({
   },
 })
 
-export type Theme = 'light' | 'dark'
-
-/**
- * Runs something in the light and in the dark theme, as the system's preference sets them, and proves that the page
- * really has changed its paper.
- */
-export async function inBothThemes(page: Page, look: (theme: Theme) => Promise<void>): Promise<void> {
-  const papers: number[] = []
+/** Runs something in the light and in the dark theme, and proves that the page really has changed its paper. */
+export async function inBothThemes(workbench: Workbench, look: (theme: Theme) => Promise<void>): Promise<void> {
   for (const theme of ['light', 'dark'] as const) {
-    await page.emulateMedia({ colorScheme: theme, reducedMotion: 'reduce' })
-    papers.push(await paperLightness(page))
+    await workbench.chooseTheme(theme)
+    const lightness = await paperLightness(workbench.page)
+    if (theme === 'light') expect(lightness, 'lightness of the light paper').toBeGreaterThan(0.7)
+    else expect(lightness, 'lightness of the dark paper').toBeLessThan(0.3)
     await look(theme)
   }
-  expect(papers[0], 'lightness of the light paper').toBeGreaterThan(0.7)
-  expect(papers[1], 'lightness of the dark paper').toBeLessThan(0.3)
 }
 
 /** Mean of the three channels of the page's background, 0 to 1. */
@@ -79,9 +73,9 @@ function paperLightness(page: Page): Promise<number> {
 }
 
 /** axe finds no violation in either theme. */
-export async function expectAccessible(page: Page): Promise<void> {
-  await inBothThemes(page, async (theme) => {
-    const { violations } = await new AxeBuilder({ page }).analyze()
+export async function expectAccessible(workbench: Workbench): Promise<void> {
+  await inBothThemes(workbench, async (theme) => {
+    const { violations } = await new AxeBuilder({ page: workbench.page }).analyze()
     const found = violations.flatMap(({ id, help, nodes }) =>
       nodes.map(({ target, failureSummary }) => `${id} (${help}) at ${target.join(' ')}: ${failureSummary}`),
     )
