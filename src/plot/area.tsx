@@ -14,7 +14,9 @@ export type FillProps = {
 
 /** A filled path whose data were made before, by areaPath or stepPath. */
 export function PathArea({ d, tone, opacity = 0.12, className }: FillProps & { d: string }) {
-  return <path className={className} d={d} fill={toneColor(tone)} fillOpacity={opacity} stroke="none" pointerEvents="none" />
+  return (
+    <path className={className} d={d} fill={toneColor(tone)} fillOpacity={opacity} stroke="none" pointerEvents="none" />
+  )
 }
 
 export type AreaProps = FillProps & {
@@ -31,6 +33,9 @@ export function Area({ xs, ys, x, y, base = 0, ...fill }: AreaProps) {
   const start = 'step' in xs ? xs.start : Number.NaN
   const step = 'step' in xs ? xs.step : Number.NaN
   const positions = 'step' in xs ? null : xs
-  const d = useMemo(() => areaPath(positions ?? { start, step }, ys, x, y, base), [positions, start, step, ys, x, y, base])
+  const d = useMemo(
+    () => areaPath(positions ?? { start, step }, ys, x, y, base),
+    [positions, start, step, ys, x, y, base],
+  )
   return <PathArea d={d} {...fill} />
 }

@@ -5,7 +5,12 @@ export function textWidth(text: string, sizePx = 13): number {
   return text.length * sizePx * 0.52
 }
 
-export type PlacedText = { readonly text: string; readonly x: number; readonly y: number; readonly anchor: 'start' | 'middle' | 'end' }
+export type PlacedText = {
+  readonly text: string
+  readonly x: number
+  readonly y: number
+  readonly anchor: 'start' | 'middle' | 'end'
+}
 
 export type AxisLayout = { readonly labels: readonly PlacedText[]; readonly title: PlacedText | null }
 
@@ -18,7 +23,12 @@ const TITLE_GAP = 10
  *
  * @param y  pixel of the plot area's bottom.
  */
-export function layoutBottomAxis(ticks: readonly Tick[], range: readonly [number, number], y: number, title?: string): AxisLayout {
+export function layoutBottomAxis(
+  ticks: readonly Tick[],
+  range: readonly [number, number],
+  y: number,
+  title?: string,
+): AxisLayout {
   const left = Math.min(range[0], range[1])
   const right = Math.max(range[0], range[1])
   const baseline = y + LABEL_DROP
@@ -49,7 +59,12 @@ export function layoutBottomAxis(ticks: readonly Tick[], range: readonly [number
  *
  * @param x  pixel of the plot area's left edge.
  */
-export function layoutLeftAxis(ticks: readonly Tick[], range: readonly [number, number], x: number, title?: string): AxisLayout {
+export function layoutLeftAxis(
+  ticks: readonly Tick[],
+  range: readonly [number, number],
+  x: number,
+  title?: string,
+): AxisLayout {
   const top = Math.min(range[0], range[1])
   const end = x - 8
   const labels = ticks.map(({ label, pixel }): PlacedText => ({ text: label, x: end, y: pixel + 4.5, anchor: 'end' }))

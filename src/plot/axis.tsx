@@ -26,7 +26,12 @@ export function Axis({ side, scale, at, ticks, title }: AxisProps) {
         </text>
       ))}
       {layout.title && (
-        <text className="plot-axis-title" x={px(layout.title.x)} y={px(layout.title.y)} textAnchor={layout.title.anchor}>
+        <text
+          className="plot-axis-title"
+          x={px(layout.title.x)}
+          y={px(layout.title.y)}
+          textAnchor={layout.title.anchor}
+        >
           {layout.title.text}
         </text>
       )}

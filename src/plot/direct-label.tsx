@@ -20,7 +20,10 @@ export type DirectLabelProps = {
 /** Text that names a curve where it runs, with a halo in the colour of the ground, so that it can stand on lines. */
 export function DirectLabel(props: DirectLabelProps) {
   const { x, y, tone, anchor = 'start', strong = false, ground = 'sheet', className, children } = props
-  const halo = ground === 'none' ? {} : { stroke: toneColor(ground), strokeWidth: 3.5, strokeLinejoin: 'round' as const, paintOrder: 'stroke' }
+  const halo =
+    ground === 'none'
+      ? {}
+      : { stroke: toneColor(ground), strokeWidth: 3.5, strokeLinejoin: 'round' as const, paintOrder: 'stroke' }
   return (
     <text
       className={['plot-text', 'plot-number', strong && 'plot-strong', className].filter(Boolean).join(' ')}

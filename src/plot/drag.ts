@@ -117,7 +117,12 @@ export function createDrag(read: () => DragCallbacks, keys: () => KeyTarget): Dr
 export function useDrag(callbacks: DragCallbacks): DragHandlers & { style: { touchAction: 'none' } } {
   const latest = useRef(callbacks)
   latest.current = callbacks
-  const [{ stop, ...handlers }] = useState(() => createDrag(() => latest.current, () => window))
+  const [{ stop, ...handlers }] = useState(() =>
+    createDrag(
+      () => latest.current,
+      () => window,
+    ),
+  )
   useEffect(() => stop, [stop])
   return { ...handlers, style: { touchAction: 'none' } }
 }

@@ -31,7 +31,19 @@ export type HandleProps = ChangeHandlers<number> & {
 
 /** A circle dragged along the x axis, with the keyboard of a slider. */
 export function Handle(props: HandleProps) {
-  const { scale, value, y, min, max, stepBy, snap = threeDigits, label, valueText, tone = 'after', radius = 5.5 } = props
+  const {
+    scale,
+    value,
+    y,
+    min,
+    max,
+    stepBy,
+    snap = threeDigits,
+    label,
+    valueText,
+    tone = 'after',
+    radius = 5.5,
+  } = props
   const within = (v: number) => Math.max(min, Math.min(max, v))
   const gesture = useGesture<number>({
     value,
@@ -62,7 +74,15 @@ export function Handle(props: HandleProps) {
     >
       <circle className="plot-hit" cx={cx} cy={cy} r={Math.max(13, radius + 6)} fill="none" pointerEvents="all" />
       <circle className="plot-focus-ring" cx={cx} cy={cy} r={radius + 4} fill="none" pointerEvents="none" />
-      <circle cx={cx} cy={cy} r={radius} fill="var(--sheet)" stroke={toneColor(tone)} strokeWidth={2} pointerEvents="none" />
+      <circle
+        cx={cx}
+        cy={cy}
+        r={radius}
+        fill="var(--sheet)"
+        stroke={toneColor(tone)}
+        strokeWidth={2}
+        pointerEvents="none"
+      />
     </g>
   )
 }

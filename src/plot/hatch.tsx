@@ -12,10 +12,22 @@ export function hatchId(frame: Pick<Frame, 'id'>, kind: HatchKind): string {
 export function HatchPatterns({ frame }: { frame: Pick<Frame, 'id'> }) {
   return (
     <>
-      <pattern id={hatchId(frame, 'unseen')} width={5} height={5} patternUnits="userSpaceOnUse" patternTransform="rotate(-45)">
+      <pattern
+        id={hatchId(frame, 'unseen')}
+        width={5}
+        height={5}
+        patternUnits="userSpaceOnUse"
+        patternTransform="rotate(-45)"
+      >
         <path d="M0,2.5H5" fill="none" stroke="var(--quiet)" strokeWidth={1} strokeOpacity={0.55} />
       </pattern>
-      <pattern id={hatchId(frame, 'outside')} width={7} height={7} patternUnits="userSpaceOnUse" patternTransform="rotate(45)">
+      <pattern
+        id={hatchId(frame, 'outside')}
+        width={7}
+        height={7}
+        patternUnits="userSpaceOnUse"
+        patternTransform="rotate(45)"
+      >
         <path d="M3.5,0V7" fill="none" stroke="var(--rule)" strokeWidth={1} />
       </pattern>
     </>

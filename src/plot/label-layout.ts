@@ -42,7 +42,10 @@ export function layoutLabels(labels: readonly WantedLabel[], limits: LabelLimits
   const centres = new Array<number>(labels.length)
   for (const group of sharingWidth(labels)) {
     const order = [...group].sort((a, b) => labels[a].wanted - labels[b].wanted || a - b)
-    const placed = stack(order.map((i) => labels[i]), limits)
+    const placed = stack(
+      order.map((i) => labels[i]),
+      limits,
+    )
     order.forEach((i, k) => {
       centres[i] = placed[k]
     })

@@ -18,7 +18,12 @@ export type StrokeProps = {
 }
 
 const WIDTH_PX: Record<Weight, number> = { hair: 1, thin: 1.5, thick: 2.8 }
-const DASHES: Record<Dash, string | undefined> = { solid: undefined, dashed: '6 3', dotted: '1.5 3', 'dash-dot': '7 3 1.5 3' }
+const DASHES: Record<Dash, string | undefined> = {
+  solid: undefined,
+  dashed: '6 3',
+  dotted: '1.5 3',
+  'dash-dot': '7 3 1.5 3',
+}
 
 /** A stroked path whose data were made before, by linePath or stepPath. */
 export function PathLine({ d, tone, weight, dash, className }: StrokeProps & { d: string }) {

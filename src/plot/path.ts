@@ -32,7 +32,13 @@ export function linePath(xs: Xs, ys: ArrayLike<number>, x: Scale, y: Scale): str
  * @returns  closed path data for fill; a hole where either curve has no pixel.
  * @throws RangeError if lengths differ, or if the level has no place on the y scale.
  */
-export function areaPath(xs: Xs, ys: ArrayLike<number>, x: Scale, y: Scale, base: number | ArrayLike<number> = 0): string {
+export function areaPath(
+  xs: Xs,
+  ys: ArrayLike<number>,
+  x: Scale,
+  y: Scale,
+  base: number | ArrayLike<number> = 0,
+): string {
   let d = ''
   if (typeof base === 'number') {
     const level = y.toPixel(base)
@@ -90,7 +96,8 @@ type Run = { points: number[][] }
 /** The decimated runs in which all curves have pixels. Exported for tests and for other shapes than lines. */
 export function decimatedRuns(xs: Xs, curves: readonly ArrayLike<number>[], x: Scale, y: Scale): Run[] {
   const n = curves[0].length
-  for (const ys of curves) if (ys.length !== n) throw new RangeError(`curves must have ${n} samples each, one has ${ys.length}`)
+  for (const ys of curves)
+    if (ys.length !== n) throw new RangeError(`curves must have ${n} samples each, one has ${ys.length}`)
   const regular = 'step' in xs
   if (regular && !(xs.step > 0)) throw new RangeError(`step must lie above 0, was ${xs.step}`)
   if (!regular && xs.length !== n) throw new RangeError(`xs must have as many samples as ys (${n}), has ${xs.length}`)

@@ -58,14 +58,21 @@ export type SavedText = {
  * @returns  the file's text; handles, focus rings and hit areas are left out (data-save="omit" leaves out any other element).
  */
 export function figureToSvg(svg: SVGSVGElement, text: SavedText): string {
-  return serializeFigure(svg as unknown as ReadElement, text, (element) => getComputedStyle(element as unknown as Element))
+  return serializeFigure(svg as unknown as ReadElement, text, (element) =>
+    getComputedStyle(element as unknown as Element),
+  )
 }
 
 /** figureToSvg with the reading of styles handed in. */
-export function serializeFigure(svg: ReadElement, text: SavedText, styleOf: (element: ReadElement) => ReadStyle): string {
+export function serializeFigure(
+  svg: ReadElement,
+  text: SavedText,
+  styleOf: (element: ReadElement) => ReadStyle,
+): string {
   const width = Number(attribute(svg, 'width'))
   const height = Number(attribute(svg, 'height'))
-  if (!(width > 0 && height > 0)) throw new RangeError(`the figure must have a width and a height above 0, has ${width} × ${height}`)
+  if (!(width > 0 && height > 0))
+    throw new RangeError(`the figure must have a width and a height above 0, has ${width} × ${height}`)
   const root = styleOf(svg)
   const paper = root.getPropertyValue('--paper').trim()
   const ink = root.getPropertyValue('--ink').trim()
@@ -122,16 +129,13 @@ export function wrapText(text: string, columns: number): string[] {
 
 /** Text made safe for XML 1.0, in content and in attributes; control characters, which XML cannot hold, become U+FFFD. */
 export function escapeXml(text: string): string {
-  return (
-    text
-      // biome-ignore lint/suspicious/noControlCharactersInRegex: these are the characters to be kept out
-      .replace(/[\u0000-\u0008\u000b\u000c\u000e-\u001f\ufffe\uffff]/g, '\ufffd')
-      .replaceAll('&', '&amp;')
-      .replaceAll('<', '&lt;')
-      .replaceAll('>', '&gt;')
-      .replaceAll('"', '&quot;')
-      .replaceAll("'", '&#39;')
-  )
+  return text
+    .replace(/[\u0000-\u0008\u000b\u000c\u000e-\u001f\ufffe\uffff]/g, '\ufffd')
+    .replaceAll('&', '&amp;')
+    .replaceAll('<', '&lt;')
+    .replaceAll('>', '&gt;')
+    .replaceAll('"', '&quot;')
+    .replaceAll("'", '&#39;')
 }
 
 function serialize(
@@ -198,7 +202,10 @@ export async function figureToPng(svgText: string, scale = 2): Promise<Blob> {
     if (context === null) throw new Error('This browser gave no canvas to draw the figure on.')
     context.drawImage(image, 0, 0, canvas.width, canvas.height)
     return await new Promise<Blob>((resolve, reject) => {
-      canvas.toBlob((blob) => (blob === null ? reject(new Error('The browser could not write the PNG.')) : resolve(blob)), 'image/png')
+      canvas.toBlob(
+        (blob) => (blob === null ? reject(new Error('The browser could not write the PNG.')) : resolve(blob)),
+        'image/png',
+      )
     })
   } finally {
     URL.revokeObjectURL(address)
@@ -243,7 +250,12 @@ export async function fontFaceCss(): Promise<string> {
     for (const rule of cssRules) {
       if (!(rule instanceof CSSFontFaceRule)) continue
       const get = (name: string) => rule.style.getPropertyValue(name)
-      const id = key(get('font-family'), get('font-weight') || 'normal', get('font-style') || 'normal', get('unicode-range') || 'U+0-10FFFF')
+      const id = key(
+        get('font-family'),
+        get('font-weight') || 'normal',
+        get('font-style') || 'normal',
+        get('unicode-range') || 'U+0-10FFFF',
+      )
       const address = /url\(["']?([^"')]+)["']?\)/.exec(get('src'))?.[1]
       if (address === undefined || !used.has(id)) continue
       try {

@@ -83,7 +83,10 @@ function makeScale(
   back: (t: number) => number,
   linearWidth?: number,
 ): Scale {
-  for (const [name, pair] of [['domain', domain], ['range', range]] as const) {
+  for (const [name, pair] of [
+    ['domain', domain],
+    ['range', range],
+  ] as const) {
     if (!(Number.isFinite(pair[0]) && Number.isFinite(pair[1]) && pair[0] !== pair[1])) {
       throw new RangeError(`${name} must be two different finite numbers, was ${pair[0]} to ${pair[1]}`)
     }

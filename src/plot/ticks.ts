@@ -81,7 +81,10 @@ function compressedTicks(scale: Scale, count: number, minGapPx: number): Tick[] 
     if (before === undefined || apart(before, next) >= minGapPx) magnitudes.push(next)
   }
   const values = [0]
-  for (const [sign, reach] of [[1, high], [-1, -low]] as const) {
+  for (const [sign, reach] of [
+    [1, high],
+    [-1, -low],
+  ] as const) {
     const fitting = magnitudes.filter((m) => m <= reach)
     if (fitting.length === 0 && reach > 0) fitting.push(neatBelow(reach))
     for (const m of fitting) if (apart(sign * m, 0) >= minGapPx) values.push(sign * m)
@@ -111,7 +114,10 @@ function tenth(v: number): number {
 /** Every n-th tick, n the smallest number that leaves all gaps wide enough; zero or the first one stays. */
 function thinned(all: Tick[], minGapPx: number): Tick[] {
   if (all.length < 2) return all
-  const anchor = Math.max(0, all.findIndex((t) => t.value === 0))
+  const anchor = Math.max(
+    0,
+    all.findIndex((t) => t.value === 0),
+  )
   for (let n = 1; n < all.length; n++) {
     const kept = all.filter((_, i) => (i - anchor) % n === 0)
     if (smallestGap(kept) >= minGapPx) return kept
