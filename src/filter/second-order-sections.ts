@@ -90,7 +90,7 @@ function takeWorst(roots: Root[], realOnly: boolean): Root {
   let bestDistance = Infinity
   for (let i = 0; i < roots.length; i++) {
     if (realOnly && roots[i].zIm !== 0) continue
-    const distance = Math.abs(1 - Math.hypot(roots[i].zRe, roots[i].zIm))
+    const distance = Math.abs(1 - Math.sqrt(roots[i].zRe ** 2 + roots[i].zIm ** 2))
     if (best < 0 || distance < bestDistance) {
       best = i
       bestDistance = distance
@@ -104,7 +104,7 @@ function takeNearest(roots: Root[], to: Root, realOnly: boolean): Root {
   let bestDistance = Infinity
   for (let i = 0; i < roots.length; i++) {
     if (realOnly && roots[i].zIm !== 0) continue
-    const distance = Math.hypot(roots[i].zRe - to.zRe, roots[i].zIm - to.zIm)
+    const distance = (roots[i].zRe - to.zRe) ** 2 + (roots[i].zIm - to.zIm) ** 2
     if (best < 0 || distance < bestDistance) {
       best = i
       bestDistance = distance

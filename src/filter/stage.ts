@@ -1,6 +1,7 @@
 import { amplifierSections, checkAmplifier } from './amplifier.ts'
 import { butterworthSections, checkButterworth } from './butterworth.ts'
 import { butterworthDesignEdges } from './cutoff-meaning.ts'
+import { minimumPhase } from './minimum-phase.ts'
 import { checkMovingAverage, movingAverageTaps } from './moving-average.ts'
 import { checkNotch, notchSections } from './notch.ts'
 import type { Sections } from './second-order-sections.ts'
@@ -121,7 +122,9 @@ export function designStage(spec: StageSpec, samplingRateHz: number): Stage {
       return recursive(spec, samplingRateHz, notchSections(spec, samplingRateHz), passesOf(spec.direction))
     case 'windowed-sinc': {
       checkWindowedSinc(spec, samplingRateHz)
-      const taps = windowedSincTaps(spec, samplingRateHz)
+      const symmetric = windowedSincTaps(spec, samplingRateHz)
+      const zeroAtDc = spec.pass === 'high' || spec.pass === 'band'
+      const taps = spec.delay === 'minimum-phase' ? minimumPhase(symmetric, zeroAtDc) : symmetric
       return finite(spec, samplingRateHz, taps, spec.delay === 'compensated')
     }
     case 'moving-average': {

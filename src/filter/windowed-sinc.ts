@@ -30,8 +30,8 @@ function checkTransition(centresHz: readonly number[], transitionHz: number, sam
     const limit = from > 0 ? `below ${half} Hz (half the sampling rate)` : 'above 0 Hz'
     throw specError(
       'transitionHz',
-      `transitionHz must keep the transition ${limit}: ${transitionHz} around ${short(centre)} Hz reaches from ` +
-        `${short(from)} to ${short(to)} Hz`,
+      `transitionHz must keep the transition ${limit}: ${transitionHz} about its centre at ${short(centre)} Hz ` +
+        `reaches from ${short(from)} to ${short(to)} Hz`,
     )
   }
 }
