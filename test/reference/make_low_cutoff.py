@@ -2,6 +2,7 @@
 
 import os
 import random
+import sys
 
 import numpy as np
 
@@ -37,7 +38,8 @@ def specifications(seed):
 def main():
     options = arguments(__doc__, 977)
     if not extended_precision.precise_enough():
-        raise SystemExit("this machine has no extended precision")
+        print("long double is no wider than double here: low-cutoff.json is left as it is", file=sys.stderr)
+        return
     cases = []
     for index, (rate, spec) in enumerate(specifications(options.seed)):
         if index % options.every != options.seed % options.every:

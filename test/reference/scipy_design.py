@@ -152,26 +152,30 @@ def passes_of(spec):
     return 2 if spec.get("direction") == "both" else 1
 
 
+def convolve(x, taps, mode):
+    """np.convolve along the last axis."""
+    return np.apply_along_axis(lambda row: np.convolve(row, taps, mode=mode), -1, x)
+
+
 def apply_epochs(stages, rate, x):
-    """A chain applied to one epoch: stage after stage, each padded and started as its kind asks."""
+    """A chain applied to one epoch (last axis): stage after stage, each padded and started as its kind asks."""
     y = np.array(x, dtype=float)
     for spec in stages:
         sections = sections_of(spec, rate)
         if sections is None:
             taps, lead = taps_of(spec, rate)
             before = len(taps) - 1 - lead
-            padded = y
-            if before:
-                padded = np.concatenate([2 * y[0] - y[before:0:-1], padded])
-            if lead:
-                padded = np.concatenate([padded, 2 * y[-1] - y[-2:-lead - 2:-1]])
-            y = np.convolve(padded, taps, mode="valid")
+            first, last = y[..., :1], y[..., -1:]
+            left = 2 * first - y[..., before:0:-1] if before else y[..., :0]
+            right = 2 * last - y[..., -2:-lead - 2:-1] if lead else y[..., :0]
+            y = convolve(np.concatenate([left, y, right], axis=-1), taps, "valid")
         elif spec["design"] == "amplifier":
             y = signal.sosfilt(sections, y)
         elif passes_of(spec) == 2:
             y = signal.sosfiltfilt(sections, y)
         else:
-            y, _ = signal.sosfilt(sections, y, zi=signal.sosfilt_zi(sections) * y[0])
+            steady = signal.sosfilt_zi(sections).reshape((len(sections),) + (1,) * (y.ndim - 1) + (2,))
+            y, _ = signal.sosfilt(sections, y, zi=steady * y[..., :1])
     return y
 
 
@@ -182,19 +186,20 @@ def settling_samples(sections, smallest=1e-17):
 
 
 def apply_stand_alone(stages, rate, x):
-    """A chain applied to a waveform that stands alone, by padding it with zeros until every kernel has died."""
+    """A chain applied to a waveform that stands alone, last axis, by padding it with zeros until every kernel has died."""
     pad = 0
     for spec in stages:
         sections = sections_of(spec, rate)
         pad += len(taps_of(spec, rate)[0]) if sections is None else settling_samples(sections)
-    y = np.concatenate([np.zeros(pad), x, np.zeros(pad)])
+    zeros = np.zeros(np.shape(x)[:-1] + (pad,))
+    y = np.concatenate([zeros, x, zeros], axis=-1)
     for spec in stages:
         sections = sections_of(spec, rate)
         if sections is None:
             taps, lead = taps_of(spec, rate)
-            y = np.convolve(y, taps)[lead:lead + len(y)]
+            y = convolve(y, taps, "full")[..., lead:lead + y.shape[-1]]
         else:
             y = signal.sosfilt(sections, y)
             if passes_of(spec) == 2:
-                y = signal.sosfilt(sections, y[::-1])[::-1]
-    return y[pad:pad + len(x)]
+                y = signal.sosfilt(sections, y[..., ::-1])[..., ::-1]
+    return y[..., pad:pad + np.shape(x)[-1]]
