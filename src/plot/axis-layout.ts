@@ -1,8 +1,21 @@
 import type { Tick } from './ticks.ts'
 
-/** Width that a text of the axis' size takes, px; digits of the page's sans face are about half their size wide. */
+/**
+ * About how wide a text is in the page's sans face, px: enough to keep labels apart without asking a browser, and rather too wide
+ * than too narrow. Digits are tabular, half their size wide.
+ *
+ * @param sizePx  size of the type, default 13.
+ */
 export function textWidth(text: string, sizePx = 13): number {
-  return text.length * sizePx * 0.52
+  let ems = 0
+  for (const letter of text)
+    ems += /[ .,:;!|'ijlI]/.test(letter) ? 0.26 : /[frt()/-]/.test(letter) ? 0.35 : wide(letter)
+  return ems * sizePx
+}
+
+function wide(letter: string): number {
+  if (/[mwMW%]/.test(letter)) return 0.83
+  return /[A-Z]/.test(letter) ? 0.6 : /[0-9\u2212+]/.test(letter) ? 0.5 : 0.53
 }
 
 export type PlacedText = {
@@ -15,7 +28,7 @@ export type PlacedText = {
 export type AxisLayout = { readonly labels: readonly PlacedText[]; readonly title: PlacedText | null }
 
 const LABEL_DROP = 17
-const TITLE_GAP = 10
+const TITLE_GAP = 8
 
 /**
  * A bottom axis: labels centred under their ticks, moved inwards at the ends of the range; the title between the labels, in the last

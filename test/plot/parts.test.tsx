@@ -21,6 +21,7 @@ import {
   PathLine,
   sampleAt,
   StaticCursor,
+  textWidth,
   ticksAt,
   ZeroLine,
 } from '../../src/plot/index.ts'
@@ -134,6 +135,14 @@ describe('Axis', () => {
     const title = /<text class="plot-axis-title" x="([\d.]+)" y="187" text-anchor="end">/.exec(html)!
     expect(Number(title[1])).toBeLessThan(813 - 5)
     expect(Number(title[1]) - 55).toBeGreaterThan(720)
+  })
+
+  test('the title of four decades stands between 1 and 10', () => {
+    const log = logScale([0.01, 100], [40, 472])
+    const html = markup(<Axis side="bottom" scale={log} at={170} title="Frequency, Hz" />)
+    const end = Number(/class="plot-axis-title" x="([\d.]+)" y="187"/.exec(html)![1])
+    expect(end).toBeLessThan(log.toPixel(10) - 6)
+    expect(end - textWidth('Frequency, Hz')).toBeGreaterThan(log.toPixel(1) + 3)
   })
 
   test('a title with no gap goes into a line below', () => {
