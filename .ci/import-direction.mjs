@@ -28,7 +28,7 @@ export const ROOMS = {
   jobs: { rooms: ['filter', 'erp', 'evidence', 'words', 'files'], packages: ['comlink'] },
   state: {
     rooms: ['filter', 'erp', 'evidence', 'words', 'files', 'jobs'],
-    packages: ['zustand', 'zundo', 'valibot', 'idb-keyval', 'fflate'],
+    packages: ['zustand', 'zundo', 'valibot', 'idb-keyval', 'fflate', 'comlink'],
   },
   plot: { rooms: [], packages: ['d3', 'react'] },
   page: {
