@@ -1,5 +1,7 @@
+import type { Complex } from './fourier.ts'
 import { checkSamplingRate, type SpecFault, specError } from './spec-error.ts'
 import { designStage, type Stage, type StageSpec } from './stage.ts'
+import { stagesResponse } from './stage-response.ts'
 
 /** Enabled stages in order, amplifier stages first; those that are in the data (`spec.inData`) included. */
 export interface Chain {
@@ -37,6 +39,23 @@ export function designChain(specs: readonly StageSpec[], samplingRateHz: number)
   }
   return { samplingRateHz, stages }
 }
+
+/** The stages of a chain that are applied here: those that are not in the data already. */
+export function appliedStages(chain: Chain): readonly Stage[] {
+  return chain.stages.filter((stage) => stage.spec.inData !== true)
+}
+
+/**
+ * Frequency response of a chain as applied, stages that are in the data left out.
+ *
+ * @param frequenciesHz  any finite frequencies.
+ * @returns  real and imaginary parts, one value a frequency; 1 for an empty chain.
+ */
+export function chainResponse(chain: Chain, frequenciesHz: Float64Array): Complex {
+  return stagesResponse(appliedStages(chain), frequenciesHz)
+}
+
+export { stagesResponse }
 
 function stageError(stageIndex: number, error: RangeError & SpecFault): RangeError & SpecFault {
   const located = new RangeError(`stage ${stageIndex + 1}: ${error.message}`)

@@ -1,6 +1,6 @@
-import { notchDesignBandwidthHz } from './notch.ts'
+import { notchWarpedEdges } from './notch.ts'
 import type { ButterworthSpec, CutoffMeaning, StageSpec } from './stage.ts'
-import { edgesHz, passesOf, scaleEdges, type WarpedEdges, warp, warpedEdges, warpedRatio } from './warped-axis.ts'
+import { edgesHz, passesOf, scaleEdges, type WarpedEdges, warpedEdges, warpedRatio } from './warped-axis.ts'
 import { nominalCutoffsHz } from './windowed-sinc.ts'
 
 /** Gain that a cutoff stands for; null for a design cutoff, which needs no correction. */
@@ -34,11 +34,8 @@ export function designCutoffsHz(spec: StageSpec, samplingRateHz: number): number
       return nominalCutoffsHz(spec, samplingRateHz)
     case 'amplifier':
       return [spec.cutoffHz]
-    case 'notch': {
-      const centre = warp(spec.frequencyHz, samplingRateHz)
-      const width = warp(notchDesignBandwidthHz(spec, samplingRateHz), samplingRateHz) * (1 + centre * centre)
-      return edgesHz('stop', { centre, width }, samplingRateHz)
-    }
+    case 'notch':
+      return edgesHz('stop', notchWarpedEdges(spec, 0, samplingRateHz), samplingRateHz)
     case 'moving-average':
       return []
   }

@@ -1,7 +1,7 @@
 import type { Sections } from './second-order-sections.ts'
 import { checkChoice, checkFrequency, checkWhole, specError } from './spec-error.ts'
 import type { NotchSpec } from './stage.ts'
-import { passesOf, unwarp, warp, warpedRatio } from './warped-axis.ts'
+import { passesOf, unwarp, type WarpedEdges, warp, warpedRatio } from './warped-axis.ts'
 
 /** Largest number of harmonics that a notch may have beside its own frequency. */
 export const MAX_HARMONICS = 100
@@ -39,6 +39,13 @@ export function notchDesignBandwidthHz(spec: NotchSpec, samplingRateHz: number):
   if (passes === 1) return spec.bandwidthHz
   const ratio = warpedRatio(Math.SQRT1_2, passes, 1)
   return unwarp(warp(spec.bandwidthHz, samplingRateHz) * ratio, samplingRateHz)
+}
+
+/** Warped single-pass −3 dB edges of the notch at a harmonic (0 for its own frequency). */
+export function notchWarpedEdges(spec: NotchSpec, harmonic: number, samplingRateHz: number): WarpedEdges {
+  const centre = warp(spec.frequencyHz * (harmonic + 1), samplingRateHz)
+  const width = warp(notchDesignBandwidthHz(spec, samplingRateHz), samplingRateHz) * (1 + centre * centre)
+  return { centre, width }
 }
 
 /**
