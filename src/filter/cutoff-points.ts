@@ -1,6 +1,5 @@
 import { appliedStages, type Chain } from './chain.ts'
 import { butterworthDesignEdges } from './cutoff-meaning.ts'
-import { nextPowerOfTwo, realTransform } from './fourier.ts'
 import { movingAverageSamples } from './moving-average.ts'
 import { notchWarpedEdges } from './notch.ts'
 import type { NotchSpec, Stage } from './stage.ts'
@@ -121,7 +120,8 @@ function crossingsOf(stages: readonly Stage[], grid: Float64Array, gains: Float6
 function searchGrid(stages: readonly Stage[]): Float64Array {
   const half = stages[0].samplingRateHz / 2
   const hz: number[] = [0, half]
-  for (let i = 1; i <= OCTAVES * PER_OCTAVE; i++) hz.push(half * 2 ** (-i / PER_OCTAVE))
+  // between several stages the gain may do anything; a stage alone moves at its landmarks
+  if (stages.length > 1) for (let i = 1; i <= OCTAVES * PER_OCTAVE; i++) hz.push(half * 2 ** (-i / PER_OCTAVE))
   for (const stage of stages) hz.push(...landmarks(stage))
   return Float64Array.from(new Set(hz.filter((f) => f >= 0 && f <= half))).sort()
 }
@@ -139,10 +139,17 @@ function landmarks(stage: Stage): number[] {
     case 'notch':
       return aroundNotches(spec, samplingRateHz, passes)
     case 'windowed-sinc':
-    case 'moving-average':
-      return stage.taps ? aroundSteps(stage.taps, samplingRateHz) : []
+      return spec.cutoffsHz.flatMap((f) => TRANSITION_STEPS.map((step) => f + step * spec.transitionHz))
+    case 'moving-average': {
+      // the main lobe; the others stay below 0.22
+      const nullHz = samplingRateHz / movingAverageSamples(spec.durationMs, samplingRateHz)
+      return LEVELS.map((part) => part * nullHz)
+    }
   }
 }
+
+/** Where a transition is looked at, in transition widths from its cutoff. */
+const TRANSITION_STEPS = Array.from({ length: 31 }, (_, i) => (i - 15) / 10)
 
 /** Gains at which a stage is looked at on either side of its edge. */
 const LEVELS = [0.02, 0.1, 0.2, 0.3, 0.4, 0.5, 0.6, 0.7, 0.8, 0.9, 0.95, 0.98, 0.995]
@@ -167,24 +174,6 @@ function aroundNotches(spec: NotchSpec, samplingRateHz: number, passes: number):
     hz.push(...aroundEdges('stop', notchWarpedEdges(spec, harmonic, samplingRateHz), 1, passes, samplingRateHz))
   }
   return hz
-}
-
-/** Bins of a padded transform where a kernel's gain moves through one of the levels, with their neighbours. */
-function aroundSteps(taps: Float64Array, samplingRateHz: number): number[] {
-  const size = nextPowerOfTwo(8 * taps.length)
-  const { re, im } = realTransform(taps, size)
-  const hz = new Set<number>()
-  const gain = (k: number) => Math.sqrt(re[k] * re[k] + im[k] * im[k])
-  let before = gain(0)
-  for (let k = 1; k < re.length; k++) {
-    const here = gain(k)
-    if (Math.max(here, before) > 0.2 && Math.min(here, before) < 0.9 && Math.abs(here - before) > 1e-6) {
-      hz.add(((k - 1) * samplingRateHz) / size)
-      hz.add((k * samplingRateHz) / size)
-    }
-    before = here
-  }
-  return [...hz]
 }
 
 /**

@@ -1,4 +1,4 @@
-import { isSymmetric, kernelSums } from './kernel-response.ts'
+import { isPalindrome, trigonometricSums } from './kernel-response.ts'
 import { sectionsGroupDelaySeconds } from './section-response.ts'
 import type { Stage } from './stage.ts'
 
@@ -24,14 +24,19 @@ export function stageGroupDelaySeconds(stage: Stage, frequenciesHz: Float64Array
   }
   const taps = stage.taps
   if (!taps) return delays
-  if (isSymmetric(taps)) return delays.fill(((taps.length - 1) / 2 - stage.leadSamples) / samplingRateHz)
+  if (isPalindrome(taps)) return delays.fill(((taps.length - 1) / 2 - stage.leadSamples) / samplingRateHz)
   let absolute = 0
   for (const tap of taps) absolute += Math.abs(tap)
+  const plain = trigonometricSums(taps, frequenciesHz, samplingRateHz)
+  const weighted = trigonometricSums(
+    taps.map((tap, k) => k * tap),
+    frequenciesHz,
+    samplingRateHz,
+  )
   for (let i = 0; i < delays.length; i++) {
-    const { re, im, weightedRe, weightedIm } = kernelSums(taps, frequenciesHz[i], samplingRateHz)
-    const power = re * re + im * im
-    const samples = (weightedRe * re + weightedIm * im) / power - stage.leadSamples
-    delays[i] = power > (NO_GAIN * absolute) ** 2 ? samples / samplingRateHz : NaN
+    const power = plain.cosine[i] ** 2 + plain.sine[i] ** 2
+    const dot = weighted.cosine[i] * plain.cosine[i] + weighted.sine[i] * plain.sine[i]
+    delays[i] = power > (NO_GAIN * absolute) ** 2 ? (dot / power - stage.leadSamples) / samplingRateHz : NaN
   }
   return delays
 }

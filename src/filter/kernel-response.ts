@@ -6,7 +6,11 @@
 
 /** Whether a kernel is equal to its reverse, tap by tap, and has a middle tap. */
 export function isSymmetric(taps: Float64Array): boolean {
-  if (taps.length % 2 === 0) return false
+  return taps.length % 2 === 1 && isPalindrome(taps)
+}
+
+/** Whether a kernel is equal to its reverse, so that it delays all frequencies equally. */
+export function isPalindrome(taps: Float64Array): boolean {
   for (let i = 0, j = taps.length - 1; i < j; i++, j--) if (taps[i] !== taps[j]) return false
   return true
 }
@@ -22,94 +26,138 @@ export function symmetricAmplitude(
   samplingRateHz: number,
 ): Float64Array {
   const middle = (taps.length - 1) / 2
-  const amplitude = new Float64Array(frequenciesHz.length)
-  const scale = Math.PI / samplingRateHz
-  // four frequencies at a time: one recurrence waits for its own last step
-  const groups = frequenciesHz.length - (frequenciesHz.length % 4)
-  const sign = new Float64Array(4)
-  const delta = new Float64Array(4)
-  for (let i = 0; i < groups; i += 4) {
-    for (let l = 0; l < 4; l++) {
-      const half = frequenciesHz[i + l] * scale
-      const sine = Math.sin(half)
-      const cosine = Math.cos(half)
-      sign[l] = sine * sine <= cosine * cosine ? 1 : -1
-      delta[l] = sign[l] > 0 ? -4 * sine * sine : 4 * cosine * cosine
-    }
-    const [s0, s1, s2, s3] = sign
-    const [q0, q1, q2, q3] = delta
-    let d0 = 0
-    let d1 = 0
-    let d2 = 0
-    let d3 = 0
-    let u0 = 0
-    let u1 = 0
-    let u2 = 0
-    let u3 = 0
-    for (let k = 2 * middle; k > middle; k--) {
-      const tap = taps[k]
-      d0 = tap + q0 * u0 + s0 * d0
-      d1 = tap + q1 * u1 + s1 * d1
-      d2 = tap + q2 * u2 + s2 * d2
-      d3 = tap + q3 * u3 + s3 * d3
-      u0 = d0 + s0 * u0
-      u1 = d1 + s1 * u1
-      u2 = d2 + s2 * u2
-      u3 = d3 + s3 * u3
-    }
-    const centre = taps[middle] / 2
-    amplitude[i] = 2 * (centre + q0 * u0 + s0 * d0 - (q0 / 2) * u0)
-    amplitude[i + 1] = 2 * (centre + q1 * u1 + s1 * d1 - (q1 / 2) * u1)
-    amplitude[i + 2] = 2 * (centre + q2 * u2 + s2 * d2 - (q2 / 2) * u2)
-    amplitude[i + 3] = 2 * (centre + q3 * u3 + s3 * d3 - (q3 / 2) * u3)
-  }
-  for (let i = groups; i < frequenciesHz.length; i++) {
-    const half = frequenciesHz[i] * scale
-    const sine = Math.sin(half)
-    const cosine = Math.cos(half)
-    const s = sine * sine <= cosine * cosine ? 1 : -1
-    const q = s > 0 ? -4 * sine * sine : 4 * cosine * cosine
-    let d = 0
-    let u = 0
-    for (let k = 2 * middle; k > middle; k--) {
-      d = taps[k] + q * u + s * d
-      u = d + s * u
-    }
-    amplitude[i] = 2 * (taps[middle] / 2 + (q / 2) * u + s * d)
-  }
+  const amplitude = trigonometricSums(taps.subarray(middle), frequenciesHz, samplingRateHz).cosine
+  for (let i = 0; i < amplitude.length; i++) amplitude[i] = 2 * amplitude[i] - taps[middle]
   return amplitude
 }
 
-/** Σ taps[k]·e^(−j2πkf/fs) at one frequency, and the same sum with k·taps[k] (for the group delay). */
-export interface KernelSums {
-  readonly re: number
-  readonly im: number
-  readonly weightedRe: number
-  readonly weightedIm: number
+/** Cosine and sine sums, one value a frequency. */
+export interface TrigonometricSums {
+  readonly cosine: Float64Array
+  readonly sine: Float64Array
 }
 
-/** Sums of any kernel at one frequency. */
-export function kernelSums(taps: Float64Array, frequencyHz: number, samplingRateHz: number): KernelSums {
-  const half = (frequencyHz * Math.PI) / samplingRateHz
-  const sine = Math.sin(half)
-  const cosine = Math.cos(half)
-  const s = sine * sine <= cosine * cosine ? 1 : -1
-  const q = s > 0 ? -4 * sine * sine : 4 * cosine * cosine
+/** Σ taps[k]·cos(2πkf/fs) and Σ taps[k]·sin(2πkf/fs), k from 0, at each frequency. */
+export function trigonometricSums(
+  taps: Float64Array,
+  frequenciesHz: Float64Array,
+  samplingRateHz: number,
+): TrigonometricSums {
+  const count = frequenciesHz.length
+  const scale = Math.PI / samplingRateHz
+  const cosine = new Float64Array(count)
+  const sine = new Float64Array(count)
+  // 4·sin² of the half angle, negative, in the lower half of the band; 4·cos² in the upper half
+  const shifts = new Float64Array(count)
+  for (let i = 0; i < count; i++) {
+    const half = frequenciesHz[i] * scale
+    const s = Math.sin(half)
+    const c = Math.cos(half)
+    shifts[i] = s * s <= c * c ? -4 * s * s : 4 * c * c
+    sine[i] = 2 * s * c
+  }
+  const ends = new Float64Array(8)
+  for (let i = 0; i < count; ) {
+    const lower = shifts[i] <= 0
+    // four frequencies of one half at a time, since one recurrence waits for its own last step
+    const width = i + 3 < count && [1, 2, 3].every((l) => shifts[i + l] <= 0 === lower) ? 4 : 1
+    if (width === 1) recurOne(taps, shifts[i], lower, ends)
+    else {
+      const recur = lower ? recurLower : recurUpper
+      recur(taps, shifts[i], shifts[i + 1], shifts[i + 2], shifts[i + 3], ends)
+    }
+    for (let l = 0; l < width; l++) {
+      const difference = ends[2 * l]
+      const sum = ends[2 * l + 1]
+      cosine[i + l] = taps[0] + (shifts[i + l] / 2) * sum + (lower ? difference : -difference)
+      sine[i + l] *= sum
+    }
+    i += width
+  }
+  return { cosine, sine }
+}
+
+function recurOne(taps: Float64Array, shift: number, lower: boolean, ends: Float64Array): void {
   let d = 0
   let u = 0
-  let weightedD = 0
-  let weightedU = 0
+  if (lower) {
+    for (let k = taps.length - 1; k > 0; k--) {
+      d = taps[k] + d + shift * u
+      u = d + u
+    }
+  } else {
+    for (let k = taps.length - 1; k > 0; k--) {
+      d = taps[k] - d + shift * u
+      u = d - u
+    }
+  }
+  ends[0] = d
+  ends[1] = u
+}
+
+function recurLower(taps: Float64Array, q0: number, q1: number, q2: number, q3: number, ends: Float64Array): void {
+  let d0 = 0
+  let d1 = 0
+  let d2 = 0
+  let d3 = 0
+  let u0 = 0
+  let u1 = 0
+  let u2 = 0
+  let u3 = 0
   for (let k = taps.length - 1; k > 0; k--) {
-    d = taps[k] + q * u + s * d
-    u = d + s * u
-    weightedD = k * taps[k] + q * weightedU + s * weightedD
-    weightedU = weightedD + s * weightedU
+    const tap = taps[k]
+    d0 = tap + d0 + q0 * u0
+    d1 = tap + d1 + q1 * u1
+    d2 = tap + d2 + q2 * u2
+    d3 = tap + d3 + q3 * u3
+    u0 = d0 + u0
+    u1 = d1 + u1
+    u2 = d2 + u2
+    u3 = d3 + u3
   }
-  const sineOfAngle = 2 * sine * cosine
-  return {
-    re: taps[0] + (q / 2) * u + s * d,
-    im: -u * sineOfAngle,
-    weightedRe: (q / 2) * weightedU + s * weightedD,
-    weightedIm: -weightedU * sineOfAngle,
+  writeEnds(ends, d0, d1, d2, d3, u0, u1, u2, u3)
+}
+
+function recurUpper(taps: Float64Array, q0: number, q1: number, q2: number, q3: number, ends: Float64Array): void {
+  let d0 = 0
+  let d1 = 0
+  let d2 = 0
+  let d3 = 0
+  let u0 = 0
+  let u1 = 0
+  let u2 = 0
+  let u3 = 0
+  for (let k = taps.length - 1; k > 0; k--) {
+    const tap = taps[k]
+    d0 = tap - d0 + q0 * u0
+    d1 = tap - d1 + q1 * u1
+    d2 = tap - d2 + q2 * u2
+    d3 = tap - d3 + q3 * u3
+    u0 = d0 - u0
+    u1 = d1 - u1
+    u2 = d2 - u2
+    u3 = d3 - u3
   }
+  writeEnds(ends, d0, d1, d2, d3, u0, u1, u2, u3)
+}
+
+function writeEnds(
+  ends: Float64Array,
+  d0: number,
+  d1: number,
+  d2: number,
+  d3: number,
+  u0: number,
+  u1: number,
+  u2: number,
+  u3: number,
+): void {
+  ends[0] = d0
+  ends[1] = u0
+  ends[2] = d1
+  ends[3] = u1
+  ends[4] = d2
+  ends[5] = u2
+  ends[6] = d3
+  ends[7] = u3
 }

@@ -1,5 +1,5 @@
 import { stageGroupDelaySeconds } from './group-delay.ts'
-import { isSymmetric, kernelSums, symmetricAmplitude } from './kernel-response.ts'
+import { isSymmetric, symmetricAmplitude, trigonometricSums } from './kernel-response.ts'
 import { sectionsPhaseRad } from './section-response.ts'
 import type { Stage } from './stage.ts'
 
@@ -32,9 +32,9 @@ export function stagePhaseRad(stage: Stage, frequenciesHz: Float64Array): Float6
     return phase
   }
   const delays = stageGroupDelaySeconds(stage, frequenciesHz)
+  const { cosine, sine } = trigonometricSums(taps, frequenciesHz, samplingRateHz)
   for (let i = 0; i < phase.length; i++) {
-    const { re, im } = kernelSums(taps, frequenciesHz[i], samplingRateHz)
-    const wrapped = Math.atan2(im, re) + stage.leadSamples * perHz * frequenciesHz[i]
+    const wrapped = Math.atan2(-sine[i], cosine[i]) + stage.leadSamples * perHz * frequenciesHz[i]
     if (i === 0) {
       phase[0] = wrapped
       continue

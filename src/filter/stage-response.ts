@@ -1,5 +1,5 @@
 import type { Complex } from './fourier.ts'
-import { isSymmetric, kernelSums, symmetricAmplitude } from './kernel-response.ts'
+import { isSymmetric, symmetricAmplitude, trigonometricSums } from './kernel-response.ts'
 import { multiplyBySections } from './section-response.ts'
 import type { Stage } from './stage.ts'
 
@@ -52,12 +52,12 @@ function multiplyByKernel(
     }
     return
   }
+  const { cosine, sine } = trigonometricSums(taps, frequenciesHz, stage.samplingRateHz)
   for (let i = 0; i < re.length; i++) {
-    const sums = kernelSums(taps, frequenciesHz[i], stage.samplingRateHz)
     const angle = stage.leadSamples * perHz * frequenciesHz[i]
     const turnRe = Math.cos(angle)
     const turnIm = Math.sin(angle)
-    multiply(re, im, i, sums.re * turnRe - sums.im * turnIm, sums.re * turnIm + sums.im * turnRe)
+    multiply(re, im, i, cosine[i] * turnRe + sine[i] * turnIm, cosine[i] * turnIm - sine[i] * turnRe)
   }
 }
 
