@@ -1,4 +1,5 @@
-import { applyChain, designChain } from '../../src/filter/index.ts'
+import { applyChain } from '../../src/filter/apply-chain.ts'
+import { designChain } from '../../src/filter/index.ts'
 import type { StageSpec } from '../../src/filter/index.ts'
 import { againstReference, Worst } from './against-reference.ts'
 import { randomSignal } from './random-signal.ts'
@@ -22,7 +23,9 @@ againstReference<AppliedCase>('applied.json', 'make_applied.py', 5, {
     const worst = new Worst()
     for (const c of cases) {
       const y = applyChain(designChain(c.stages, c.samplingRateHz), randomSignal(c.signal), 'epochs')
-      const bound = c.cutoffRatio >= 1e-3 ? 1e-11 : 1e-10
+      const goal = c.cutoffRatio >= 1e-3 ? 1e-11 : 1e-10
+      // Some wide band-stops of high order lose more than that in any double-precision cascade, SciPy's included.
+      const bound = c.judge === 'scipy' ? goal : Math.max(goal, c.scipyError!)
       const named = (what: string) => () =>
         `${what} of ${c.samplingRateHz} Hz, ${JSON.stringify(c.stages)} (${c.judge})`
       c.at.forEach((i, n) => worst.see(Math.abs(y[i]! - c.y[n]!), bound * c.largestInput, named(`sample ${i}`)))

@@ -28,7 +28,7 @@ CHAINS = [
     (250, [butterworth("band", 3, [1, 25], "both")]),
     (128, [butterworth("stop", 2, [8, 12], "both")]),
     (250, [sinc("low", [20], 10, "compensated")]),
-    (250, [sinc("high", [2], 4, "compensated")]),
+    (250, [sinc("high", [3], 4, "compensated")]),
     (250, [sinc("band", [3, 25], 5, "causal")]),
     (500, [{"design": "notch", "frequencyHz": 50, "bandwidthHz": 4, "harmonics": 1, "direction": "both"}]),
     (250, [{"design": "moving-average", "durationMs": 40, "delay": "compensated"}]),

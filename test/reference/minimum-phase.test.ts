@@ -30,7 +30,7 @@ function zerosOutside(taps: Float64Array, radius: number): number {
     }
     last = angle
   }
-  return Math.round(turns)
+  return Math.abs(Math.round(turns))
 }
 
 againstReference<MinimumPhaseCase>('minimum-phase.json', 'make_minimum_phase.py', 3, {

@@ -96,7 +96,7 @@ def nominal_cutoffs(spec, rate, count, window):
         return list(wanted)
     gain = HALF[spec["meaning"]]
     nominal = list(wanted)
-    reach = 0.7 * spec["transitionHz"]
+    reach = 0.8 * spec["transitionHz"]
     for _ in range(60):
         before = list(nominal)
         for i, frequency in enumerate(wanted):

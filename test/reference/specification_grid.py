@@ -68,8 +68,11 @@ def windowed_sinc(draw):
                 factor = WIDTH_FACTOR.get(window["name"]) or kaiser_factor(window_spec["attenuationDb"])
                 longest = 1201 if delay == "minimum-phase" else 3301
                 transition = log_uniform(draw, factor * rate / longest, factor * rate / 25)
-                transition = min(transition, rounded(rate / 12))
-                low, high = 0.7 * transition, min(0.45 * rate, rate / 2 - 0.7 * transition)
+                transition = min(transition, rounded(rate / 16))
+                # The ripple of a rectangular (or nearly so) window is so large that edges near 0 Hz may have no half-power point.
+                rippled = window["name"] == "rectangular" or window_spec.get("attenuationDb", 100) < 40
+                room = (1.3 if rippled else 0.7) * transition
+                low, high = room, min(0.45 * rate, rate / 2 - room)
                 cutoffs = [log_uniform(draw, low, high)]
                 if band_pass in ("band", "stop"):
                     # The pass between (or beside) the edges is wider than the two half transitions.

@@ -1,4 +1,5 @@
-import { applyChain, designChain } from '../../src/filter/index.ts'
+import { applyChain } from '../../src/filter/apply-chain.ts'
+import { designChain } from '../../src/filter/index.ts'
 import type { StageSpec } from '../../src/filter/index.ts'
 import { againstReference, Worst } from './against-reference.ts'
 import { randomSignal } from './random-signal.ts'
@@ -10,6 +11,8 @@ interface StandAloneCase {
   signal: SignalRecipe
   largestInput: number
   judge: 'scipy' | 'extended precision'
+  /** Largest difference between SciPy and the closed form, over the largest input. */
+  difference?: number
   at: number[]
   y: number[]
 }
@@ -19,9 +22,11 @@ againstReference<StandAloneCase>('stand-alone.json', 'make_stand_alone.py', 4, {
     const worst = new Worst()
     for (const c of cases) {
       const y = applyChain(designChain(c.stages, c.samplingRateHz), randomSignal(c.signal), 'continuous')
+      // Some wide band-stops of high order lose more than that in any double-precision cascade, SciPy's included.
+      const bound = c.judge === 'scipy' ? 1e-11 : Math.max(1e-11, c.difference ?? 0)
       c.at.forEach((i, n) => {
         const what = () => `sample ${i} of ${c.samplingRateHz} Hz, ${JSON.stringify(c.stages)} (${c.judge})`
-        worst.see(Math.abs(y[i]! - c.y[n]!), 1e-11 * c.largestInput, what)
+        worst.see(Math.abs(y[i]! - c.y[n]!), bound * c.largestInput, what)
       })
     }
     worst.expectWithinBounds()

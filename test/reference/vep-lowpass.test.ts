@@ -1,6 +1,7 @@
 import { describe, test } from 'vitest'
 import { scoreOf } from '../../src/erp/index.ts'
-import { applyChain, designChain } from '../../src/filter/index.ts'
+import { applyChain } from '../../src/filter/apply-chain.ts'
+import { designChain } from '../../src/filter/index.ts'
 import type { StageSpec } from '../../src/filter/index.ts'
 import { readReference, Worst } from './against-reference.ts'
 
