@@ -29,6 +29,7 @@ export {
   checkNoise,
   defaultNoise,
   noiseDensity,
+  noiseDensityAt,
   noiseKinksHz,
   noiseLines,
   type NoiseLine,

@@ -104,25 +104,25 @@ function checkTable({ hz, uv2PerHz }: NoiseTable): void {
  * @throws RangeError for a noise that `checkNoise` refuses.
  */
 export function noiseDensity(noise: NoiseSpec, frequenciesHz: Float64Array): Float64Array {
+  return frequenciesHz.map(noiseDensityAt(noise))
+}
+
+/** The same as a function of one frequency, for sums that ask piece by piece: the noise is checked once. Throws as `noiseDensity`. */
+export function noiseDensityAt(noise: NoiseSpec): (hz: number) => number {
   checkNoise(noise)
-  const density = new Float64Array(frequenciesHz.length)
-  if (noise.kind === 'table') {
-    for (let i = 0; i < density.length; i++) density[i] = tableDensity(noise, frequenciesHz[i])
-    return density
-  }
+  if (noise.kind === 'table') return (hz) => tableDensity(noise, hz)
   const { exponent, levelAt1HzUv2PerHz: level, flatBelowHz, whiteUv2PerHz: white, alpha } = noise
   const drift = noise.driftAt1HzUv2PerHz ?? 0
-  for (let i = 0; i < density.length; i++) {
-    const f = Math.max(frequenciesHz[i], flatBelowHz)
-    let s = white + drift / (f * f)
-    if (level > 0) s += level * Math.exp(-exponent * Math.log(f))
+  return (hz) => {
+    const f = Math.max(hz, flatBelowHz)
+    let density = white + drift / (f * f)
+    if (level > 0) density += level * Math.exp(-exponent * Math.log(f))
     if (alpha) {
-      const z = (frequenciesHz[i] - alpha.centreHz) / alpha.sdHz
-      s += alpha.peakUv2PerHz * Math.exp(-0.5 * z * z)
+      const z = (hz - alpha.centreHz) / alpha.sdHz
+      density += alpha.peakUv2PerHz * Math.exp(-0.5 * z * z)
     }
-    density[i] = s
+    return density
   }
-  return density
 }
 
 function tableDensity({ hz, uv2PerHz }: NoiseTable, f: number): number {

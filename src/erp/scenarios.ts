@@ -211,7 +211,8 @@ const delayedPeak: Scenario = {
     'peak-latency': { value: 5, unit: 'ms' },
     'area-latency': { value: 5, unit: 'ms' },
     'onset-latency': { value: 5, unit: 'ms' },
-    'false-deflection': { value: 0.2, unit: 'µV' },
+    // the rise up to the onset, 5 % of the largest value, is what a delay takes away
+    'false-deflection': { value: 0.3, unit: 'µV' },
   },
   noise: defaultNoise(),
 }

@@ -1,0 +1,6 @@
+export { largestAbsolute, fidelityRows, judge, scoreReference } from './fidelity.ts'
+export type { FidelityInput, FidelityRow, FigureGroup, Judgement, NoValue } from './fidelity.ts'
+export { onsetOfBuilt } from './onset-of-built.ts'
+export { lockedLineContribution, scoreVariance, scoreVarianceOfResponse } from './score-noise.ts'
+export { responseBreaksHz } from './response-breaks.ts'
+export { equalTrialsFactor, noiseRow, precisionFactor, varianceOfDifference, type NoiseRow } from './precision.ts'
