@@ -1,6 +1,6 @@
 import { type LogPole, finiteInput, runPasses, standAlone } from './stand-alone.ts'
 import type { Stage } from './stage.ts'
-import { doubled, multiply, stepped } from './state-space.ts'
+import { doubled, multiply } from './state-space.ts'
 
 /**
  * Running sum of the absolute output of stages on the whole time axis, Σ|y[m]| over m < n for any n, of a waveform that
@@ -18,8 +18,10 @@ export interface AbsoluteSum {
   readonly total: number
 }
 
-/** A mode that has decayed by this factor since the waveform's end has no part any more. */
-const GONE = 1e-12
+/** A mode that has decayed by this factor since the waveform's end has no part any more, where 1e-3 is asked for … */
+const GONE = 1e-7
+/** … and where the last 1e-9 is. */
+const GONE_TO_THE_END = 1e-12
 /** Steps in a tail are so short that no living mode turns or decays by more than this, in radian or neper. */
 const STEP = 0.05
 /** Tails are run sample by sample until steps of this size may be taken. */
@@ -27,13 +29,17 @@ const WORTHWHILE_STEP = 16
 /** Most samples that a margin runs one by one. */
 const MOST_SINGLE_SAMPLES = 2 ** 22
 
-/** @param x  waveform that stands alone, x[0] at index 0. */
-export function absoluteSum(stages: readonly Stage[], x: Float64Array): AbsoluteSum {
+/**
+ * @param x         waveform that stands alone, x[0] at index 0.
+ * @param toTheEnd  follows the tails until less than 1e-9 of the sum is left, else until it no longer shows.
+ */
+export function absoluteSum(stages: readonly Stage[], x: Float64Array, toTheEnd = false): AbsoluteSum {
+  const lifetimes = Math.log(1 / (toTheEnd ? GONE_TO_THE_END : GONE))
   const system = standAlone(stages)
   const input = finiteInput(system, x)
   if (input.values.length === 0) return { at: Float64Array.of(0), before: Float64Array.of(0), total: 0 }
-  const marginBefore = singleSamples(system.backwardPoles)
-  const marginAfter = singleSamples(system.forwardPoles)
+  const marginBefore = singleSamples(system.backwardPoles, lifetimes)
+  const marginAfter = singleSamples(system.forwardPoles, lifetimes)
   const from = input.start - marginBefore
   const to = input.start + input.values.length + marginAfter
   const stretch = runPasses(system, input, from, to)
@@ -42,7 +48,7 @@ export function absoluteSum(stages: readonly Stage[], x: Float64Array): Absolute
   const right = { lags: [0], sums: [0] }
   if (system.backward.length > 0 && marginBefore > 0) {
     const { d, c, size } = system.spaces().backward
-    sumTail(left, d, c, size, stretch.backwardState, system.backwardPoles, marginBefore)
+    sumTail(left, d, c, size, stretch.backwardState, system.backwardPoles, marginBefore, lifetimes)
   }
   if (system.forward.length > 0 && marginAfter > 0) {
     const { forward, backward, start } = system.spaces()
@@ -53,7 +59,7 @@ export function absoluteSum(stages: readonly Stage[], x: Float64Array): Absolute
       const moved = multiply(ahead, forward.d, 1, forward.size)
       row = row.map((value, i) => ahead[i] + moved[i] + backward.through * value)
     }
-    sumTail(right, forward.d, row, forward.size, stretch.forwardState, system.forwardPoles, marginAfter)
+    sumTail(right, forward.d, row, forward.size, stretch.forwardState, system.forwardPoles, marginAfter, lifetimes)
   }
 
   const nodes = left.lags.length - 1 + stretch.values.length + right.lags.length
@@ -125,18 +131,14 @@ export function firstAfter(sum: AbsoluteSum, most: number): number {
   return at[low] + Math.max(Math.ceil(fraction * (at[high] - at[low])), 1)
 }
 
-function lifetime({ decay }: LogPole): number {
-  return Math.log(1 / GONE) / decay
-}
-
 function swiftness({ decay, angle }: LogPole): number {
   return Math.hypot(decay, angle)
 }
 
-function singleSamples(poles: readonly LogPole[]): number {
+function singleSamples(poles: readonly LogPole[], lifetimes: number): number {
   let most = 0
   for (const pole of poles) {
-    if (swiftness(pole) * WORTHWHILE_STEP > STEP) most = Math.max(most, Math.ceil(lifetime(pole)))
+    if (swiftness(pole) * WORTHWHILE_STEP > STEP) most = Math.max(most, Math.ceil(lifetimes / pole.decay))
   }
   // one sample at least, so that what a first-order section leaves in its last state is seen
   return poles.length === 0 ? 0 : Math.min(Math.max(most, 1), MOST_SINGLE_SAMPLES)
@@ -151,32 +153,49 @@ function sumTail(
   start: Float64Array,
   poles: readonly LogPole[],
   margin: number,
+  lifetimes: number,
 ): void {
-  let state = start
-  let value = Math.abs(multiply(c, state, 1, size)[0])
-  let signed = multiply(c, state, 1, size)[0]
+  const ends = poles.map((pole) => ({ at: lifetimes / pole.decay - margin, swiftness: swiftness(pole) }))
+  const state = start.slice()
+  const move = new Float64Array(size)
+  let value = 0
+  for (let i = 0; i < size; i++) value += c[i] * state[i]
   let power = d
   let step = 1
   let lag = 0
   let sum = 0
+  let change = 0
+  let fastest = 0
   for (;;) {
-    let fastest = 0
-    for (const pole of poles) if (lifetime(pole) > margin + lag) fastest = Math.max(fastest, swiftness(pole))
-    if (fastest === 0) return
-    while (2 * step * fastest <= STEP) {
-      power = doubled(power, size)
-      step *= 2
+    if (lag >= change) {
+      // some modes have ended: the others may allow longer steps
+      const living = ends.filter(({ at }) => at > lag)
+      if (living.length === 0) return
+      change = Math.min(...living.map(({ at }) => at))
+      fastest = Math.max(...living.map((mode) => mode.swiftness))
+      while (2 * step * fastest <= STEP) {
+        power = doubled(power, size)
+        step *= 2
+      }
     }
-    state = stepped(power, state)
-    const next = multiply(c, state, 1, size)[0]
-    const size_ = Math.abs(next)
-    // a straight line between the two, which may cross zero, and the ends' difference from sum to integral
-    const area = signed * next < 0 ? (value * value + size_ * size_) / (2 * (value + size_)) : (value + size_) / 2
-    sum += step === 1 ? value : step * area + (value - size_) / 2
+    for (let i = 0; i < size; i++) {
+      let total = 0
+      for (let j = 0; j < size; j++) total += power[i * size + j] * state[j]
+      move[i] = total
+    }
+    let next = 0
+    for (let i = 0; i < size; i++) {
+      state[i] += move[i]
+      next += c[i] * state[i]
+    }
+    const here = Math.abs(value)
+    const there = Math.abs(next)
+    // a straight line between the two, which may cross zero, and the ends' difference between sum and integral
+    const area = value * next < 0 ? (here * here + there * there) / (2 * (here + there)) : (here + there) / 2
+    sum += step === 1 ? here : step * area + (here - there) / 2
     lag += step
     tail.lags.push(lag)
     tail.sums.push(sum)
-    value = size_
-    signed = next
+    value = next
   }
 }

@@ -27,9 +27,8 @@ import { programGainAtZero, runStateVariable, stateVariableProgram } from './sta
  */
 export function applyEpochs(stages: readonly Stage[], x: Float64Array): Float64Array {
   requireFinite('x', x)
-  let y: Float64Array = x.slice()
-  for (const stage of stages) y = applyStage(stage, y)
-  return y
+  if (stages.length === 0) return x.slice()
+  return stages.reduce((y, stage) => applyStage(stage, y), x)
 }
 
 /** Samples by which a stage pads an epoch at its start, or at both ends if it is not causal. */
@@ -75,49 +74,62 @@ function nameOf(spec: StageSpec): string {
 function applyStage(stage: Stage, x: Float64Array): Float64Array {
   if (stage.spec.design === 'amplifier') return runContinuous([stage], x, 0, x.length)
   requireRoom(stage, x.length)
-  if (x.length === 0) return x
+  if (x.length === 0) return new Float64Array(0)
   if (stage.taps !== null) return applyFinite(stage.taps, stage.leadSamples, x)
+  return stage.passes === 2 ? applyBothWays(stage, x) : applyForward(stage, x)
+}
+
+function applyForward(stage: Stage, x: Float64Array): Float64Array {
   const { program, gainAtZero } = recursiveProgram(stage)
-  if (stage.passes === 1) {
-    const y = x.slice()
-    runFromSteadyState(program, gainAtZero, y, false)
-    return y
-  }
+  const y = x.slice()
+  runStateVariable(program, new Float64Array(program.length / 3), y, 0, y.length, false, x[0])
+  return addConstant(y, gainAtZero * x[0])
+}
+
+function applyBothWays(stage: Stage, x: Float64Array): Float64Array {
+  const { program, gainAtZero } = recursiveProgram(stage)
   const padding = epochPaddingSamples(stage)
-  const padded = reflectOddly(x, padding, padding)
-  runFromSteadyState(program, gainAtZero, padded, false)
-  runFromSteadyState(program, gainAtZero, padded, true)
-  return padded.slice(padding, padding + x.length)
+  const padded = reflectOddly(x, padding, padding, scratch(x.length + 2 * padding))
+  const last = padded.length - 1
+  const first = padded[0]
+  runStateVariable(program, new Float64Array(program.length / 3), padded, 0, padded.length, false, first)
+  // the forward pass still lacks gain·first, which the backward pass would subtract with its own first value
+  const turn = padded[last]
+  runStateVariable(program, new Float64Array(program.length / 3), padded, 0, padded.length, true, turn)
+  return addConstant(padded.slice(padding, padding + x.length), gainAtZero * (turn + gainAtZero * first))
+}
+
+function addConstant(values: Float64Array, constant: number): Float64Array {
+  if (constant !== 0) for (let i = 0; i < values.length; i++) values[i] += constant
+  return values
+}
+
+/** Room for one padded epoch at a time, kept because asking for megabytes anew costs as much as filtering them. */
+let room = new Float64Array(0)
+const LARGEST_ROOM = 2 ** 22
+
+function scratch(length: number): Float64Array {
+  if (length > LARGEST_ROOM) return new Float64Array(length)
+  if (room.length < length) room = new Float64Array(length)
+  return room.subarray(0, length)
 }
 
 function applyFinite(taps: Float64Array, leadSamples: number, x: Float64Array): Float64Array {
   const before = taps.length - 1 - leadSamples
   const offset = x[0]
-  const padded = reflectOddly(x, before, leadSamples)
+  const padded = reflectOddly(x, before, leadSamples, scratch(before + x.length + leadSamples))
   for (let i = 0; i < padded.length; i++) padded[i] -= offset
   const y = convolveTaps(padded, taps).slice(taps.length - 1, taps.length - 1 + x.length)
-  const rest = offset * sum(taps)
-  for (let i = 0; i < y.length; i++) y[i] += rest
-  return y
+  return addConstant(y, offset * sum(taps))
 }
 
 /** Odd reflection: 2·x[0] − x[k] before the start, 2·x[n − 1] − x[n − 1 − k] after the end. */
-function reflectOddly(x: Float64Array, before: number, after: number): Float64Array {
+function reflectOddly(x: Float64Array, before: number, after: number, padded: Float64Array): Float64Array {
   const last = x.length - 1
-  const padded = new Float64Array(before + x.length + after)
   padded.set(x, before)
   for (let k = 1; k <= before; k++) padded[before - k] = 2 * x[0] - x[k]
   for (let k = 1; k <= after; k++) padded[before + last + k] = 2 * x[last] - x[last - k]
   return padded
-}
-
-/** One pass in place, started in the steady state times its first sample (the last one if backward). */
-function runFromSteadyState(program: Float64Array, gainAtZero: number, values: Float64Array, backward: boolean): void {
-  const offset = values[backward ? values.length - 1 : 0]
-  if (offset !== 0) for (let i = 0; i < values.length; i++) values[i] -= offset
-  runStateVariable(program, new Float64Array(program.length / 3), values, 0, values.length, backward)
-  const rest = gainAtZero * offset
-  if (rest !== 0) for (let i = 0; i < values.length; i++) values[i] += rest
 }
 
 const programs = new WeakMap<Stage, { program: Float64Array; gainAtZero: number }>()

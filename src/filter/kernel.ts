@@ -25,7 +25,7 @@ export function chainKernel(chain: Chain): Located {
 
 /** Output of the stages for x on the range that leaves out at most 1e-9 of its absolute sum; holds x's own samples. */
 export function wholeResponse(stages: readonly Stage[], x: Float64Array): Located {
-  const sum = absoluteSum(stages, x)
+  const sum = absoluteSum(stages, x, true)
   const start = Math.min(0, lastBefore(sum, LEFT_OUT * sum.total))
   const end = Math.max(x.length, firstAfter(sum, LEFT_OUT * sum.total))
   return { values: runContinuous(stages, x, start, end), start }

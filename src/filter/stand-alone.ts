@@ -162,11 +162,13 @@ function prepare(stages: readonly Stage[]): StandAlone {
   const finite = stages.filter((stage) => stage.taps !== null)
   const recursive = stages.filter((stage) => stage.analogue !== null)
   const twice = recursive.filter((stage) => stage.passes === 2)
-  const rows = (some: readonly Stage[]) => concatenate(some.map((stage) => stage.analogue as Float64Array))
-  const forward = stateVariableProgram(rows(recursive))
-  const backward = stateVariableProgram(rows(twice))
-  const forwardPoles = logPoles(rows(recursive))
-  const backwardPoles = logPoles(rows(twice))
+  const programs = (some: readonly Stage[]) =>
+    concatenate(some.map((stage) => stateVariableProgram(stage.analogue as Float64Array)))
+  const poles = (some: readonly Stage[]) => some.flatMap((stage) => logPoles(stage.analogue as Float64Array))
+  const forward = programs(recursive)
+  const backward = programs(twice)
+  const forwardPoles = poles(recursive)
+  const backwardPoles = poles(twice)
   let spaces: ReturnType<StandAlone['spaces']> | null = null
   return {
     finite,

@@ -25,11 +25,16 @@ const PIECE = 8192
 /** Denormal numbers make processors slow; a state below this has no part in any result. */
 const NEGLIGIBLE = 1e-250
 
-/** @returns  K E F U S Q for each row c2 c1 c0 d2 d1 d0. */
+/**
+ * @param analogue  rows c2 c1 c0 d2 d1 d0 of one stage.
+ * @returns  K E F U S Q for each row.
+ */
 export function stateVariableProgram(analogue: Float64Array): Float64Array {
   const program = new Float64Array(analogue.length)
-  for (let at = 0; at < analogue.length; at += 6) {
-    const [c2, c1, c0, d2, d1, d0] = analogue.subarray(at, at + 6)
+  const order = balancedOrder(analogue)
+  for (let row = 0; row < order.length; row++) {
+    const at = 6 * row
+    const [c2, c1, c0, d2, d1, d0] = analogue.subarray(6 * order[row], 6 * order[row] + 6)
     if (d2 === 0) {
       const k = 2 / (1 + d0)
       program.set([k, 0, k * d0, (c1 + c0) / 2, 0, c0 / (k * d0)], at)
@@ -39,6 +44,19 @@ export function stateVariableProgram(analogue: Float64Array): Float64Array {
     }
   }
   return program
+}
+
+/**
+ * Order in which rows run. Those of a wide band-stop gain at 0 Hz what others have lost there, up to a factor of its edges'
+ * ratio each: in turns they keep the signal near its size, in their own order it sinks into rounding errors first.
+ */
+function balancedOrder(analogue: Float64Array): number[] {
+  const rows = Array.from({ length: analogue.length / 6 }, (_, row) => row)
+  const change = (row: number) => Math.abs(analogue[6 * row + 2] / (analogue[6 * row] * analogue[6 * row + 5]))
+  // only where both ends of the spectrum pass each row
+  if (rows.some((row) => !(change(row) > 0 && change(row) < Infinity))) return rows
+  const sorted = rows.slice().sort((a, b) => change(a) - change(b))
+  return rows.map((row) => (row % 2 === 0 ? sorted[row / 2] : sorted[rows.length - 1 - (row - 1) / 2]))
 }
 
 /** Gain of a program at 0 Hz: the product of c0/d0, exactly 0 for a high-pass. */
@@ -53,6 +71,7 @@ export function programGainAtZero(program: Float64Array): number {
  *
  * @param states  two numbers a section: read as the starting states and left as the final ones.
  * @param backward  runs from to − 1 down to from.
+ * @param offset  is subtracted from every value first.
  */
 export function runStateVariable(
   program: Float64Array,
@@ -61,6 +80,7 @@ export function runStateVariable(
   from: number,
   to: number,
   backward: boolean,
+  offset = 0,
 ): void {
   for (let done = 0; done < to - from; done += PIECE) {
     const count = Math.min(PIECE, to - from - done)
@@ -69,8 +89,10 @@ export function runStateVariable(
     const step = backward ? -1 : 1
     let section = 0
     const sections = program.length / SECTION_SIZE
-    for (; section + 1 < sections; section += 2) runPair(program, states, section, values, start, end, step)
-    if (section < sections) runSingle(program, states, section, values, start, end, step)
+    for (; section + 1 < sections; section += 2) {
+      runPair(program, states, section, values, start, end, step, section === 0 ? offset : 0)
+    }
+    if (section < sections) runSingle(program, states, section, values, start, end, step, section === 0 ? offset : 0)
     for (let i = 0; i < states.length; i++) if (Math.abs(states[i]) < NEGLIGIBLE) states[i] = 0
   }
 }
@@ -83,6 +105,7 @@ function runPair(
   start: number,
   end: number,
   step: number,
+  offset: number,
 ): void {
   // states in local variables: in an array they cost three times as much
   const at = section * SECTION_SIZE
@@ -103,7 +126,7 @@ function runPair(
   let a_ = states[2 * section + 2]
   let b_ = states[2 * section + 3]
   for (let i = start; i !== end; i += step) {
-    const move = k * values[i] - b
+    const move = k * (values[i] - offset) - b
     const middle = s * a + q * b + u * move
     b = b + e * a + f * move
     a += move
@@ -126,6 +149,7 @@ function runSingle(
   start: number,
   end: number,
   step: number,
+  offset: number,
 ): void {
   const at = section * SECTION_SIZE
   const k = program[at]
@@ -137,7 +161,7 @@ function runSingle(
   let a = states[2 * section]
   let b = states[2 * section + 1]
   for (let i = start; i !== end; i += step) {
-    const input = k * values[i]
+    const input = k * (values[i] - offset)
     values[i] = s * a + q * b + u * (input - b)
     const next = f * input + e * a + b - f * b
     a = a + input - b
