@@ -53,7 +53,7 @@ export function readTable(text: string, options: TableOptions = {}): Table | Tab
   if (foreign) return refuse(`this is no table: it looks like ${foreign.looksLike}`, foreign.todo)
   const dialect = recogniseDialect(text, options)
   if (!dialect.ok) return dialect
-  const roles = recogniseRoles(dialect.header, dialect.sample, dialect.headerLine, options)
+  const roles = recogniseRoles(dialect.header, dialect.sample, dialect.headerLine, dialect.units, options)
   if (!roles.ok) return roles
   const columns = readColumns(dialect, roles, options)
   if (!columns.ok) return columns

@@ -113,7 +113,7 @@ export function readColumns(dialect: Dialect, roles: TableRoles, options: TableO
 
   let line = 1
   let rows = 0
-  let headerPassed = dialect.headerInComment
+  let rowsBefore = dialect.rowsBefore
   let problem: TableRefusal | undefined
   const out = emptyNumber()
 
@@ -151,7 +151,7 @@ export function readColumns(dialect: Dialect, roles: TableRoles, options: TableO
         return refuse(
           `the line has ${row.length} ${row.length === 1 ? 'field' : 'fields'}, the header (line ${headerLine}) has ${width}`,
           delimiter === ',' && more
-            ? 'Where decimal or thousands commas meet commas between columns, save the table with semicolons or tabs between columns; a name with a comma needs quotes.'
+            ? 'Where decimal or thousands commas meet commas between columns, save the table with semicolons or tabs between columns; a name with a comma needs quotes, and a first column of row names a name.'
             : 'Give every line as many fields as the header; put # before lines that are no part of the table.',
           { line },
         )
@@ -227,8 +227,8 @@ export function readColumns(dialect: Dialect, roles: TableRoles, options: TableO
           break
         }
         if (!isBlankRow(row)) {
-          if (headerPassed) problem = readRow(row)
-          else headerPassed = true
+          if (rowsBefore === 0) problem = readRow(row)
+          else rowsBefore--
           if (problem) break
         }
         line += quotes ? linesOfRow(row) : 1

@@ -4,6 +4,7 @@
 
 import Papa from 'papaparse'
 import { type Delimiter, type Guess, refuse, type TableOptions, type TableRefusal } from './table.ts'
+import { unitOf } from './table-units.ts'
 
 export interface Dialect {
   ok: true
@@ -12,8 +13,10 @@ export interface Dialect {
   delimiter: Delimiter
   header: string[]
   headerLine: number
-  /** The header stands in a comment line, so that the first row of the body is data already. */
-  headerInComment: boolean
+  /** A unit for each column, from a line of units under the header; empty where there is none. */
+  units: string[]
+  /** Rows of the body before the data: the header (unless it stands in a comment line) and a line of units. */
+  rowsBefore: number
   /** The first data rows. */
   sample: string[][]
   guess: Guess
@@ -72,11 +75,17 @@ export function recogniseDialect(text: string, options: TableOptions): Dialect |
     }
     body = body.replace(/^[ \t]*#.*$/gm, '')
   }
+  // Some spreadsheet programs write the delimiter into a first line of its own.
+  const separatorLine = /^\s*"?sep=(.)"?[ ]*(?=\n)/i.exec(body)
+  if (separatorLine) body = body.slice(separatorLine[0].length)
   const firstContent = body.search(/\S/)
   if (firstContent < 0) {
     return refuse('the file is empty', 'Open a table with a line of column names and a line for each time.')
   }
-  if (body.length > longestLine && !body.slice(firstContent, firstContent + longestLine).includes('\n')) {
+  if (
+    body.length - firstContent > longestLine &&
+    !body.slice(firstContent, firstContent + longestLine).includes('\n')
+  ) {
     return refuse('a single line is longer than two million characters', 'Write a table with one line for each time.')
   }
   // Leading blank lines (comments are blank by now) do not belong to the sample, but they count as lines.
@@ -85,7 +94,9 @@ export function recogniseDialect(text: string, options: TableOptions): Dialect |
   let head = body.slice(lineStart, lineStart + longestLine)
   if (lineStart + head.length < body.length) head = head.slice(0, head.lastIndexOf('\n') + 1)
 
-  const candidates: Delimiter[] = options.delimiter ? [options.delimiter] : ['\t', ';', ',']
+  const known: Delimiter[] = ['\t', ';', ',']
+  const announced = known.filter((delimiter) => delimiter === separatorLine?.[1])
+  const candidates = options.delimiter ? [options.delimiter] : announced.length > 0 ? announced : known
   let fieldsBelow = 0
   let best: { delimiter: Delimiter; rows: string[][]; share: number; fields: number } | undefined
   for (const delimiter of candidates) {
@@ -132,7 +143,7 @@ export function recogniseDialect(text: string, options: TableOptions): Dialect |
   let first = 0
   while (isBlankRow(best.rows[first])) line += linesOfRow(best.rows[first++])
   let header = best.rows[first]
-  let headerInComment = false
+  let rowsBefore = 1
   if (header.every((field) => field.trim() === '' || looksNumeric(field))) {
     const names = Papa.parse<string[]>(lastComment, { delimiter, newline: '\n' }).data[0] ?? []
     const fits = names.length === header.length && names.some((name) => name.trim() !== '' && !looksNumeric(name))
@@ -144,17 +155,26 @@ export function recogniseDialect(text: string, options: TableOptions): Dialect |
       )
     }
     header = names
-    headerInComment = true
+    rowsBefore = 0
     line = lastCommentLine
   } else first++
   const sample = best.rows.slice(first).filter((row) => !isBlankRow(row))
+  let units: string[] = []
+  if (
+    sample.length > 1 &&
+    sample[0].every((field) => field.trim() === '' || unitOf(field.trim().replace(/^[([](.*)[)\]]$/, '$1')))
+  ) {
+    units = (sample.shift() as string[]).map((field) => field.trim().replace(/^[([](.*)[)\]]$/, '$1'))
+    rowsBefore++
+  }
   return {
     ok: true,
     body,
     delimiter,
     header,
     headerLine: line,
-    headerInComment,
+    units,
+    rowsBefore,
     sample: sample.slice(0, sampleRows),
     guess,
   }

@@ -5,7 +5,7 @@
 import { isElectrodeName } from './electrode-names.ts'
 import { emptyNumber, scanNumber } from './printed-number.ts'
 import { type Guess, refuse, type TableOptions, type TableRefusal } from './table.ts'
-import { type HeaderName, headerName } from './table-units.ts'
+import { type HeaderName, headerName, unitOf } from './table-units.ts'
 
 export type LabelRole = 'condition' | 'channel' | 'participant' | 'trial'
 export const labelRoles: readonly LabelRole[] = ['participant', 'trial', 'condition', 'channel']
@@ -32,7 +32,7 @@ const asSample =
   /^(samples?|sample ?(num|nr|no|number|index|idx|id|point)|frames?|points?|time ?points?|time ?(index|idx)|data ?points?)$/
 const asIndex = /^(|index|idx|rows?|row ?(names?|number|nr|no|id)|obs|unnamed: ?\d+)$/
 const asValue =
-  /^(values?|amplitudes?|amps?|voltages?|potentials?|signal|eeg|erp|(sensor|eeg|erp|mean|average|signal|channel|electrode) ?(values?|amplitudes?|voltages?|potentials?))$/
+  /^(values?|amplitudes?|amps?|voltages?|potentials?|signal|eeg|erp|means?|average|avg|(sensor|eeg|erp|mean|average|signal|channel|electrode) ?(values?|amplitudes?|voltages?|potentials?))$/
 const asLabel: Record<LabelRole, RegExp> = {
   condition:
     /^(conditions?|cond|(matching|stimulus|stim|experimental|trial|event) ?(condition|type|class|category|name|code|label)|stimulus|stim|event|task|class|category|type|marker)$/,
@@ -65,14 +65,20 @@ function isIncreasing(numbers: readonly number[]): boolean {
  * @param header one field per column
  * @param sample the first data rows
  * @param headerLine for messages
+ * @param units a unit for each column from a line under the header, or nothing
  */
 export function recogniseRoles(
   header: readonly string[],
   sample: readonly string[][],
   headerLine: number,
+  units: readonly string[],
   options: TableOptions,
 ): TableRoles | TableRefusal {
-  const columns = header.map(headerName)
+  const columns = header.map((field, i) => {
+    const column = headerName(field, i)
+    const below = units[i] ? unitOf(units[i]) : undefined
+    return below && column.time === undefined && column.amplitude === undefined ? { ...column, ...below } : column
+  })
   // Delimiters at the end of every line make columns without name or content.
   while (columns.length > 0) {
     const last = columns.length - 1
@@ -162,7 +168,7 @@ export function recogniseRoles(
       // Of two, the one that states its unit.
       time = candidates.find((i) => columns[i].time !== undefined) ?? candidates[0]
       for (const i of candidates) {
-        if (i === time || !free.has(i)) continue
+        if (i === time || !free.has(i) || !isIncreasing(sampleNumbers(sample, i))) continue
         free.delete(i)
         unused.push(i)
       }
@@ -271,6 +277,10 @@ export function recogniseRoles(
     layout = 'long'
     from = 'header'
     why = `the values are in "${columns[recognised[0]].raw}" and other columns say what they belong to`
+  } else if (labels.condition.length > 0 && labels.channel.length > 0) {
+    layout = 'long'
+    from = 'header'
+    why = 'condition and channel have columns of their own'
   } else if (keyed && others.filter(isWaveform).length === 1 && labels.channel.length > 0) {
     layout = 'long'
     why = 'one column holds values and others say what they belong to'
@@ -278,7 +288,18 @@ export function recogniseRoles(
   guesses.push({ what: 'layout', value: layout, from, why })
   let values: number[]
   if (layout === 'long') {
-    const chosen = valueColumn ?? recognised[0] ?? others.find(isWaveform)
+    const possible = others.filter(isWaveform)
+    if (valueColumn === undefined && recognised.length === 0 && possible.length > 1) {
+      return refuse(
+        `several columns may hold the values: ${possible
+          .map((i) => columns[i].raw)
+          .slice(0, 8)
+          .join(', ')}`,
+        'Say which column holds the values.',
+        at,
+      )
+    }
+    const chosen = valueColumn ?? recognised[0] ?? possible[0]
     if (chosen === undefined) {
       return refuse(
         'no column holds values',
@@ -310,6 +331,11 @@ export function recogniseRoles(
       at,
     )
   }
+  // A single 'V' or 's' at the end of a name is a unit only if all columns have it.
+  if (!values.every((i) => columns[i].weak && columns[i].amplitude === 'V')) {
+    for (const i of values) if (columns[i].weak) columns[i] = plainName(columns[i])
+  }
+  for (const i of values) if (columns[i].time !== undefined) columns[i] = plainName(columns[i])
   for (const i of values) {
     if (columns[i].name !== '' || columns[i].amplitude !== undefined) continue
     return refuse(`column ${i + 1} has values but no name`, 'Give the column a name, or remove it.', {
@@ -317,11 +343,6 @@ export function recogniseRoles(
       column: columns[i].raw,
     })
   }
-  // A single 'V' or 's' at the end of a name is a unit only if all columns have it.
-  if (!values.every((i) => columns[i].weak && columns[i].amplitude === 'V')) {
-    for (const i of values) if (columns[i].weak) columns[i] = plainName(columns[i])
-  }
-  for (const i of values) if (columns[i].time !== undefined) columns[i] = plainName(columns[i])
   const called = new Map<string, number>()
   for (const i of values) {
     const twin = called.get(columns[i].name)

@@ -58,7 +58,8 @@ const amplitudeUnits: Record<string, AmplitudeUnit> = {
   nanovolts: 'nV',
 }
 
-function unitOf(word: string): Pick<HeaderName, 'time' | 'amplitude' | 'damaged'> | undefined {
+/** The unit that a word names, if it names one. */
+export function unitOf(word: string): Pick<HeaderName, 'time' | 'amplitude' | 'damaged'> | undefined {
   // The micro sign and the Greek letter are two characters that look alike.
   const key = word.trim().replaceAll('µ', 'μ').toLowerCase()
   if (Object.hasOwn(timeUnits, key)) return { time: timeUnits[key], damaged: false }

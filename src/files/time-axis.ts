@@ -127,10 +127,7 @@ export function neatRateHz(
 ): { rateHz: number; rival?: number } | undefined {
   const exactRate = perSecond / fit.mean
   const nearWhole = Math.abs(exactRate - Math.round(exactRate)) < 1e-6 * exactRate
-  if (fit.exact && nearWhole) {
-    const rival = undefined
-    return { rateHz: Math.round(exactRate), rival }
-  }
+  if (fit.exact && nearWhole) return { rateHz: Math.round(exactRate) }
   const coarse = fit.printed > 0.1 * fit.mean
   const slack = 1e-9 * fit.mean
   const bestRate = perSecond / fit.best
@@ -169,6 +166,9 @@ export function firstLabel(labels: Float64Array, step: number, tolerance: number
   const to = low + 0.5 * tolerance + 1e-9 * step
   const fits = (value: number): boolean => value >= from && value <= to
   if (zero >= 0 && fits(-zero * step)) return zero === 0 ? 0 : -zero * step
+  // A time that was kept in single precision: -0.2, not -0.20000000298.
+  const single = Number(labels[0].toPrecision(7))
+  if (Math.abs(single - labels[0]) <= 6e-8 * Math.abs(labels[0]) && fits(single)) return single
   if (fits(labels[0])) return labels[0]
   return (low + high) / 2
 }

@@ -42,7 +42,7 @@ type Contents = typeof contents extends fc.Arbitrary<infer T> ? T : never
 type Print = typeof print extends fc.Arbitrary<infer T> ? T : never
 
 /** A value in µV for every place; a small generator, so that a table needs only its seed. */
-function valueOf(c: Contents, condition: number, channel: number, trial: number, i: number): number {
+function valueFor(c: Contents, condition: number, channel: number, trial: number, i: number): number {
   const x = Math.sin(c.seed + 12.9898 * i + 78.233 * channel + 37.719 * condition + 11.13 * trial) * 43758.5453
   return c.sizeUv * 2 * (x - Math.floor(x) - 0.5)
 }
@@ -77,7 +77,7 @@ function write(c: Contents, p: Print): string {
       for (let t = 0; t < trials; t++) {
         for (let i = 0; i < c.samples; i++) {
           const labels = [...(withCondition ? [condition] : []), ...(c.trials > 0 ? [String(t + 1)] : [])]
-          rows.push([...labels, time(i), ...c.channels.map((_, h) => value(valueOf(c, k, h, t, i)))])
+          rows.push([...labels, time(i), ...c.channels.map((_, h) => value(valueFor(c, k, h, t, i)))])
         }
       }
     })
@@ -88,7 +88,7 @@ function write(c: Contents, p: Print): string {
         c.channels.forEach((channel, h) => {
           for (let i = 0; i < c.samples; i++) {
             const label = c.trials > 0 ? [String(t + 1)] : []
-            rows.push([channel, time(i), ...label, value(valueOf(c, k, h, t, i)), condition])
+            rows.push([channel, time(i), ...label, value(valueFor(c, k, h, t, i)), condition])
           }
         })
       }
@@ -109,7 +109,9 @@ describe('any table', () => {
         if (!table.ok) throw new Error(`${table.reason} (line ${table.line})`)
         expect(table.samplingRateHz).toBe(c.rate)
         expect(table.timesMs.length).toBe(c.samples)
-        table.timesMs.forEach((t, i) => expect(t).toBeCloseTo(((c.firstSample + i) * 1000) / c.rate, 3))
+        table.timesMs.forEach((t, i) => {
+          expect(t).toBeCloseTo(((c.firstSample + i) * 1000) / c.rate, 3)
+        })
         expect(table.channels).toEqual(c.channels)
         const named = p.layout === 'long' || c.conditions.length > 1
         const decimals = Math.max(0, p.decimals + decimalShift[p.unit])
@@ -123,7 +125,7 @@ describe('any table', () => {
             for (let i = 0; i < c.samples; i++) {
               let mean = 0
               for (let t = 0; t < Math.max(1, c.trials); t++) {
-                const x = valueOf(c, k, h, t, i)
+                const x = valueFor(c, k, h, t, i)
                 mean += x / Math.max(1, c.trials)
                 if (c.trials > 0) expect(Math.abs(trials[t][i] - x)).toBeLessThanOrEqual(0.5001 * step + 1e-9)
               }

@@ -61,8 +61,12 @@ describe.skipIf(!existsSync(uci))('tables of the visual ERP of one subject', () 
       expect(trials.length).toBe(20)
       const ours = waveformOf(table, 'condition', channel).values
       const theirs = waveformOf(mean, 'condition', channel).values
-      ours.forEach((v, i) => expect(Math.abs(v - theirs[i])).toBeLessThanOrEqual(0.5e-4 + 1e-9))
-      ours.forEach((v, i) => expect(trials.reduce((sum, t) => sum + t[i], 0) / 20).toBeCloseTo(v, 12))
+      ours.forEach((v, i) => {
+        expect(Math.abs(v - theirs[i])).toBeLessThanOrEqual(0.5e-4 + 1e-9)
+      })
+      ours.forEach((v, i) => {
+        expect(trials.reduce((sum, t) => sum + t[i], 0) / 20).toBeCloseTo(v, 12)
+      })
     }
   })
 

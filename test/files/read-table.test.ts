@@ -126,7 +126,9 @@ describe('a wide table', () => {
       for (const name of [`Cz (${unit})`, `Cz [${unit}]`, `Cz_${unit}`]) {
         const table = read([`time_ms,${name}`, ...rows].join('\n'))
         expect(table.channels).toEqual(['Cz'])
-        waveformOf(table, 'condition', 'Cz').values.forEach((v, i) => expect(v).toBeCloseTo(expected[i], 6))
+        waveformOf(table, 'condition', 'Cz').values.forEach((v, i) => {
+          expect(v).toBeCloseTo(expected[i], 6)
+        })
       }
     }
     const volts = wideRows(1).map((r) => `${r.split(',')[0]},${(Number(r.split(',')[1]) * 1e-6).toFixed(8)}`)
@@ -157,13 +159,32 @@ describe('a wide table', () => {
     const rows = Array.from({ length: 60 }, (_, i) => `${(((i - 26) * 1000) / 256).toFixed(1)},${valueAt(i, 0)}`)
     const table = read(['time_ms,Cz', ...rows].join('\n'))
     expect(table.samplingRateHz).toBe(256)
-    table.timesMs.forEach((t, i) => expect(t).toBe(((i - 26) * 1000) / 256))
+    table.timesMs.forEach((t, i) => {
+      expect(t).toBe(((i - 26) * 1000) / 256)
+    })
     expect(guess(table, 'samplingRateHz')?.why).toContain('rounded to 0.1 ms')
   })
 
   test('a header in a comment line above the numbers is taken', () => {
     const table = read(['# time_ms Cz', '# time_ms,Cz,Pz', ...wideRows(2)].join('\n'))
     expect(table.channels).toEqual(['Cz', 'Pz'])
+  })
+
+  test('a line of units under the header and a line that names the delimiter are understood', () => {
+    const table = read(
+      [
+        'sep=;',
+        'time;Cz;Pz',
+        's;mV;mV',
+        ...wideRows(2, 20, ';').map((r) => r.replace(/^\d+/, (t) => String(Number(t) / 1000))),
+      ].join('\n'),
+    )
+    expect(table).toMatchObject({ samplingRateHz: 250, channels: ['Cz', 'Pz'], roundingUv: 10 })
+    expect(waveformOf(table, 'condition', 'Pz').values[3]).toBeCloseTo(1000 * valueAt(3, 1), 9)
+  })
+
+  test('a condition called T beside the time is no second time', () => {
+    expect(read(['time,T,S', ...wideRows(2)].join('\n')).conditions).toEqual(['T', 'S'])
   })
 
   test('a column without values is left out with a warning', () => {
@@ -243,6 +264,15 @@ describe('a long table', () => {
     expect(table.conditions).toEqual(['rare', 'frequent'])
     expect(guess(table, 'valueColumn')?.from).toBe('stated')
     expect(refusal(text, { valueColumn: 'nothing' })).toMatchObject({ line: 1, column: 'nothing' })
+  })
+
+  test('of several columns with numbers the one called mean is taken, and otherwise none', () => {
+    const text = longTable((lines) => {
+      for (const [i, line] of lines.entries()) lines[i] = i === 0 ? line.replace('value (µV)', 'mean,sd') : `${line},1`
+    })
+    expect(read(text).guesses.find((g) => g.what === 'valueColumn')?.value).toBe('mean')
+    expect(refusal(text.replace('mean,', 'm,')).reason).toBe('several columns may hold the values: m, sd')
+    expect(read(text.replace('mean,', 'm,'), { valueColumn: 'm' }).channels).toEqual(['Fz', 'Pz'])
   })
 
   test('participants weigh the same in the mean, or one is chosen', () => {

@@ -84,6 +84,13 @@ describe('rounded time labels', () => {
   })
 })
 
+test('a first time in single precision is the decimal that it stands for', () => {
+  const labels = Float64Array.from({ length: 100 }, (_, i) => Math.fround(i / 512 - 0.3))
+  const fitted = fitLabels(labels, 1e-18)
+  if (!fitted.ok) throw new Error('not fitted')
+  expect(firstLabel(labels, 1 / 512, fitted.fit.tolerance)).toBe(-0.3)
+})
+
 describe('times that are not regular', () => {
   const regular = (): number[] => Array.from({ length: 100 }, (_, i) => 4 * i)
   test('a missing sample is a gap, and it is told where', () => {
@@ -100,15 +107,14 @@ describe('times that are not regular', () => {
   })
 
   test('times that repeat, go back or jitter are each called so', () => {
-    const at = (change: (t: number[]) => void): string => {
-      const t = regular()
-      change(t)
-      const fitted = fitLabels(Float64Array.from(t), 1)
+    const kind = (times: number[]): string => {
+      const fitted = fitLabels(Float64Array.from(times), 1)
       return fitted.ok ? 'regular' : fitted.problem.kind
     }
-    expect(at((t) => (t[7] = t[6]))).toBe('duplicate')
-    expect(at((t) => (t[7] = t[5] - 1))).toBe('descending')
-    expect(at((t) => t.forEach((_, i) => (t[i] += i % 3 === 0 ? 2.5 : 0)))).toBe('uneven')
-    expect(at((t) => t.forEach((_, i) => (t[i] = i ** 1.5)))).toBe('uneven')
+    expect(kind(regular())).toBe('regular')
+    expect(kind(regular().with(7, 24))).toBe('duplicate')
+    expect(kind(regular().with(7, 19))).toBe('descending')
+    expect(kind(regular().map((t, i) => t + (i % 3 === 0 ? 2.5 : 0)))).toBe('uneven')
+    expect(kind(regular().map((_, i) => i ** 1.5))).toBe('uneven')
   })
 })
