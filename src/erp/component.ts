@@ -91,7 +91,8 @@ export function checkComponent(component: Component): void {
   between('amplitudeUv', component.amplitudeUv, -1e6, 1e6)
   if (component.shape === 'tone') {
     between('frequencyHz', component.frequencyHz, 0.001, 1e5)
-    if (!Number.isFinite(component.phaseRad)) throw new RangeError(`${who}: phaseRad must be finite, was ${component.phaseRad}`)
+    if (!Number.isFinite(component.phaseRad))
+      throw new RangeError(`${who}: phaseRad must be finite, was ${component.phaseRad}`)
     return
   }
   between('latencyMs', component.latencyMs, -1e6, 1e6)

@@ -39,9 +39,9 @@ export type NoiseSpec = NoiseModel | NoiseTable
 
 /**
  * A resting adult's scalp EEG, for a first estimate; invented within these ranges:
- * exponent 1 to 2 for adults at rest (E13: the form from Gerster et al. 2022; the range from memory, medium), single-trial
- * standard deviation 10 to 20 µV (E14: from memory, medium to high), alpha about 10 Hz (E12: lecture notes on signal
- * averaging by M. Aron, as reported). The drift is common practice. Its standard deviation at 500 Hz sampling is 15 µV.
+ * exponent 1 to 2 for adults at rest (the form from Gerster et al. 2022; the range from memory, medium), single-trial
+ * standard deviation 10 to 20 µV (from memory, medium to high), alpha about 10 Hz (lecture notes on signal
+ * averaging, notes.milesaron.com, as reported). Slow drift is common practice. Its standard deviation at 500 Hz sampling is 15 µV.
  */
 export function defaultNoise(): NoiseModel {
   return {
@@ -59,9 +59,11 @@ export function defaultNoise(): NoiseModel {
 /** @throws RangeError that names the field, the rule and the value. */
 export function checkNoise(noise: NoiseSpec): void {
   if (noise.kind === 'table') return checkTable(noise)
-  if (noise.kind !== 'model') throw new RangeError(`noise.kind must be model or table, was ${(noise as NoiseSpec).kind}`)
+  if (noise.kind !== 'model')
+    throw new RangeError(`noise.kind must be model or table, was ${(noise as NoiseSpec).kind}`)
   const between = (field: string, value: number, low: number, high: number) => {
-    if (!(value >= low && value <= high)) throw new RangeError(`noise.${field} must lie between ${low} and ${high}, was ${value}`)
+    if (!(value >= low && value <= high))
+      throw new RangeError(`noise.${field} must lie between ${low} and ${high}, was ${value}`)
   }
   between('exponent', noise.exponent, 0, 4)
   between('levelAt1HzUv2PerHz', noise.levelAt1HzUv2PerHz, 0, 1e9)
@@ -76,13 +78,16 @@ export function checkNoise(noise: NoiseSpec): void {
   noise.lines.forEach((line, i) => {
     between(`lines[${i}].hz`, line.hz, 1e-3, 1e5)
     between(`lines[${i}].amplitudeUv`, line.amplitudeUv, 0, 1e6)
-    if (!Number.isFinite(line.phaseRad ?? 0)) throw new RangeError(`noise.lines[${i}].phaseRad must be finite, was ${line.phaseRad}`)
+    if (!Number.isFinite(line.phaseRad ?? 0))
+      throw new RangeError(`noise.lines[${i}].phaseRad must be finite, was ${line.phaseRad}`)
   })
 }
 
 function checkTable({ hz, uv2PerHz }: NoiseTable): void {
   if (hz.length < 1 || hz.length !== uv2PerHz.length) {
-    throw new RangeError(`noise.hz and noise.uv2PerHz must be of one length of at least 1, were ${hz.length} and ${uv2PerHz.length}`)
+    throw new RangeError(
+      `noise.hz and noise.uv2PerHz must be of one length of at least 1, were ${hz.length} and ${uv2PerHz.length}`,
+    )
   }
   for (let i = 0; i < hz.length; i++) {
     if (!(hz[i] > (i === 0 ? 0 : hz[i - 1])) || !Number.isFinite(hz[i])) {

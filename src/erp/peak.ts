@@ -32,7 +32,12 @@ const EQUAL = 1e-12
  * @returns 'no peak' where no sample qualifies.
  * @throws RangeError as `samplesInWindow`.
  */
-export function findPeak(y: Float64Array, timesMs: Float64Array, window: TimeWindow, polarity: Polarity): Peak | 'no peak' {
+export function findPeak(
+  y: Float64Array,
+  timesMs: Float64Array,
+  window: TimeWindow,
+  polarity: Polarity,
+): Peak | 'no peak' {
   const step = stepMs(timesMs)
   const { first: from, last: to } = samplesInWindow(timesMs, window, 'score window')
   const n = y.length
@@ -76,7 +81,14 @@ export function findPeak(y: Float64Array, timesMs: Float64Array, window: TimeWin
   return refine(y, timesMs, best, bestLast, step)
 }
 
-function exceedsNeighbours(y: Float64Array, sign: number, first: number, last: number, reach: number, equal: number): boolean {
+function exceedsNeighbours(
+  y: Float64Array,
+  sign: number,
+  first: number,
+  last: number,
+  reach: number,
+  equal: number,
+): boolean {
   const rival = sign * y[first] - equal
   for (let k = Math.max(0, first - reach); k < first; k++) if (sign * y[k] >= rival) return false
   for (let k = Math.min(y.length - 1, last + reach); k > last; k--) if (sign * y[k] >= rival) return false
@@ -87,7 +99,14 @@ function refine(y: Float64Array, timesMs: Float64Array, first: number, last: num
   if (last - first >= 2) {
     const count = last - first + 1
     const weights = new Array<number>(count).fill(1 / count)
-    return { latencyMs: (timesMs[first] + timesMs[last]) / 2, amplitudeUv: weigh(y, first, weights), first, last, weightsFrom: first, weights }
+    return {
+      latencyMs: (timesMs[first] + timesMs[last]) / 2,
+      amplitudeUv: weigh(y, first, weights),
+      first,
+      last,
+      weightsFrom: first,
+      weights,
+    }
   }
   if (last - first === 1) {
     // each parabola has its vertex in the middle, an eighth of its outer fall above the two

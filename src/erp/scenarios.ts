@@ -101,14 +101,28 @@ const slowWave: Scenario = {
         name: 'four items',
         components: [
           { shape: 'gaussian', name: 'visual positivity', amplitudeUv: 2.4, latencyMs: 120, widthMs: 60 },
-          { shape: 'slow-wave', name: 'sustained negativity', amplitudeUv: -4.5, latencyMs: 900, widthMs: 1100, edgeMs: 300 },
+          {
+            shape: 'slow-wave',
+            name: 'sustained negativity',
+            amplitudeUv: -4.5,
+            latencyMs: 900,
+            widthMs: 1100,
+            edgeMs: 300,
+          },
         ],
       },
       {
         name: 'one item',
         components: [
           { shape: 'gaussian', name: 'visual positivity', amplitudeUv: 2.4, latencyMs: 120, widthMs: 60 },
-          { shape: 'slow-wave', name: 'sustained negativity', amplitudeUv: -1.5, latencyMs: 900, widthMs: 1100, edgeMs: 300 },
+          {
+            shape: 'slow-wave',
+            name: 'sustained negativity',
+            amplitudeUv: -1.5,
+            latencyMs: 900,
+            widthMs: 1100,
+            edgeMs: 300,
+          },
         ],
       },
     ],
@@ -146,17 +160,23 @@ const smearedOnset: Scenario = {
     conditions: [
       {
         name: 'pictures',
-        components: [{ shape: 'ramp', name: 'early negativity', amplitudeUv: -6, latencyMs: 172, widthMs: 70, riseShare: 0.3 }],
+        components: [
+          { shape: 'ramp', name: 'early negativity', amplitudeUv: -6, latencyMs: 172, widthMs: 70, riseShare: 0.3 },
+        ],
       },
       {
         name: 'scrambled pictures',
-        components: [{ shape: 'ramp', name: 'early negativity', amplitudeUv: -3.2, latencyMs: 172, widthMs: 70, riseShare: 0.3 }],
+        components: [
+          { shape: 'ramp', name: 'early negativity', amplitudeUv: -3.2, latencyMs: 172, widthMs: 70, riseShare: 0.3 },
+        ],
       },
     ],
   },
   condition: 'pictures',
   channel: 'P8',
-  chain: [{ design: 'butterworth', pass: 'low', order: 4, cutoffsHz: [6], meaning: 'half-amplitude', direction: 'both' }],
+  chain: [
+    { design: 'butterworth', pass: 'low', order: 4, cutoffsHz: [6], meaning: 'half-amplitude', direction: 'both' },
+  ],
   extent: 'continuous',
   baseline: { fromMs: -200, toMs: 0 },
   trials: 80,
@@ -188,7 +208,14 @@ const delayedPeak: Scenario = {
         components: [
           { shape: 'gaussian', name: 'first positivity', amplitudeUv: 1.8, latencyMs: 55, widthMs: 28 },
           { shape: 'gaussian', name: 'negativity', amplitudeUv: -5.2, latencyMs: 105, widthMs: 48 },
-          { shape: 'asymmetric', name: 'second positivity', amplitudeUv: 4.1, latencyMs: 190, widthMs: 90, riseShare: 0.4 },
+          {
+            shape: 'asymmetric',
+            name: 'second positivity',
+            amplitudeUv: 4.1,
+            latencyMs: 190,
+            widthMs: 90,
+            riseShare: 0.4,
+          },
         ],
       },
     ],

@@ -7,7 +7,14 @@ import { findPeak, type Polarity } from './peak.ts'
 import { signedArea, signedAreaWeights } from './signed-area.ts'
 import { checkValues } from './time-axis.ts'
 
-export type ScoreKind = 'mean' | 'area' | 'peak-amplitude' | 'peak-latency' | 'area-latency' | 'onset-latency' | 'moment'
+export type ScoreKind =
+  | 'mean'
+  | 'area'
+  | 'peak-amplitude'
+  | 'peak-latency'
+  | 'area-latency'
+  | 'onset-latency'
+  | 'moment'
 
 /** The one number that a study analyses. Peak-to-peak is two peak scores. */
 export interface Score {
@@ -110,7 +117,9 @@ function ownWeights(score: Score, baseline: Baseline, timesMs: Float64Array, y?:
       return weights
     }
     default:
-      throw new RangeError(`score.kind must be a weighted sum of samples (mean, moment, area or peak-amplitude), was ${score.kind}`)
+      throw new RangeError(
+        `score.kind must be a weighted sum of samples (mean, moment, area or peak-amplitude), was ${score.kind}`,
+      )
   }
 }
 

@@ -47,7 +47,9 @@ export function signedAreaWeights(
 function areaSamples(timesMs: Float64Array, window: TimeWindow): { first: number; last: number } {
   const samples = samplesInWindow(timesMs, window, 'score window')
   if (samples.last === samples.first) {
-    throw new RangeError(`an area needs at least 2 samples in its window, ${window.fromMs} to ${window.toMs} ms holds 1`)
+    throw new RangeError(
+      `an area needs at least 2 samples in its window, ${window.fromMs} to ${window.toMs} ms holds 1`,
+    )
   }
   return samples
 }

@@ -42,7 +42,11 @@ export function stepMs(timesMs: Float64Array): number {
  * @throws RangeError when a limit is not a number, the limits are in the wrong order, the window asks for moments that the
  *   axis does not have (a limit may lie less than one step outside: no sample is missing there), or no sample lies in it.
  */
-export function samplesInWindow(timesMs: Float64Array, window: TimeWindow, what: string): { first: number; last: number } {
+export function samplesInWindow(
+  timesMs: Float64Array,
+  window: TimeWindow,
+  what: string,
+): { first: number; last: number } {
   const step = stepMs(timesMs)
   const { fromMs, toMs } = window
   if (!Number.isFinite(fromMs) || !Number.isFinite(toMs)) {
@@ -58,7 +62,8 @@ export function samplesInWindow(timesMs: Float64Array, window: TimeWindow, what:
       `${what} must lie in the epoch (${round(start)} to ${round(timesMs[n - 1])} ms), was ${fromMs} to ${toMs} ms`,
     )
   }
-  if (last < first) throw new RangeError(`${what} must hold at least one sample (every ${round(step)} ms), was ${fromMs} to ${toMs} ms`)
+  if (last < first)
+    throw new RangeError(`${what} must hold at least one sample (every ${round(step)} ms), was ${fromMs} to ${toMs} ms`)
   // -0 from Math.ceil would be a strange index to hand out
   return { first: first + 0, last }
 }
@@ -69,7 +74,8 @@ export function checkValues(y: Float64Array, timesMs: Float64Array): void {
     throw new RangeError(`y must hold one value per time (${timesMs.length}), had ${y.length}`)
   }
   for (let i = 0; i < y.length; i++) {
-    if (!Number.isFinite(y[i])) throw new RangeError(`y must hold finite numbers, y[${i}] (at ${round(timesMs[i])} ms) was ${y[i]}`)
+    if (!Number.isFinite(y[i]))
+      throw new RangeError(`y must hold finite numbers, y[${i}] (at ${round(timesMs[i])} ms) was ${y[i]}`)
   }
 }
 

@@ -30,12 +30,15 @@ export function checkBuiltWaveform(waveform: BuiltWaveform): void {
   if (conditions.length === 0) throw new RangeError('a built waveform must have at least one condition')
   const names = new Set<string>()
   for (const condition of conditions) {
-    if (names.has(condition.name)) throw new RangeError(`conditions must have different names, "${condition.name}" came twice`)
+    if (names.has(condition.name))
+      throw new RangeError(`conditions must have different names, "${condition.name}" came twice`)
     names.add(condition.name)
     for (const component of condition.components) {
       checkComponent(component)
-      if ((component.shape === 'tone' || component.shape === 'damped-oscillation') &&
-        component.frequencyHz >= samplingRateHz / 2) {
+      if (
+        (component.shape === 'tone' || component.shape === 'damped-oscillation') &&
+        component.frequencyHz >= samplingRateHz / 2
+      ) {
         throw new RangeError(
           `component "${component.name}": frequencyHz must lie below ${samplingRateHz / 2} (half the sampling rate), was ${component.frequencyHz}`,
         )

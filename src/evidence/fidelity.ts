@@ -107,7 +107,11 @@ function scoreRow(input: FidelityInput, id: FigureId, group: FigureGroup, score:
       ...(fraction === undefined ? {} : { fraction }),
     },
     unit: scoreUnit(score.kind),
-    ...compare(scoreOf(input.before, timesMs, score), scoreOf(input.after, timesMs, score), scoreReference(score, largest)),
+    ...compare(
+      scoreOf(input.before, timesMs, score),
+      scoreOf(input.after, timesMs, score),
+      scoreReference(score, largest),
+    ),
   }
 }
 
@@ -134,7 +138,11 @@ function falseDeflectionRow(input: FidelityInput, largest: number): FidelityRow 
   if (!Number.isFinite(onsetMs)) throw new RangeError(`onsetMs must be a finite number, was ${onsetMs}`)
   // an onset at the first sample, or before it, leaves no sample that came before any activity
   if (onsetMs <= from) return missing('nothing before the onset', onsetMs)
-  const { first, last } = samplesInWindow(timesMs, { fromMs: from, toMs: Math.min(onsetMs, end) }, 'time before the onset')
+  const { first, last } = samplesInWindow(
+    timesMs,
+    { fromMs: from, toMs: Math.min(onsetMs, end) },
+    'time before the onset',
+  )
   let at = first
   for (let i = first; i <= last; i++) if (Math.abs(after[i] - before[i]) > Math.abs(after[at] - before[at])) at = i
   return {
@@ -174,7 +182,9 @@ export interface Judgement {
 export function judge(row: FidelityRow, limit: Limit): Judgement {
   if (!(limit.value >= 0)) throw new RangeError(`limit.value must be a number of at least 0, was ${limit.value}`)
   if (limit.unit !== row.unit && !(limit.unit === '%' && row.unit !== 'ms')) {
-    throw new RangeError(`limit.unit must be ${row.unit}${row.unit === 'ms' ? '' : ' or %'} for ${row.id}, was ${limit.unit}`)
+    throw new RangeError(
+      `limit.unit must be ${row.unit}${row.unit === 'ms' ? '' : ' or %'} for ${row.id}, was ${limit.unit}`,
+    )
   }
   if (typeof row.before === 'string') return { kept: null, multiples: null }
   if (typeof row.after === 'string') return { kept: false, multiples: null }

@@ -35,7 +35,9 @@ export function equalTrialsFactor(
 ): number | 'no effect in this window' {
   const precision = precisionFactor(varianceBefore, varianceAfter)
   if (!Number.isFinite(effect.before) || !Number.isFinite(effect.after) || !(largest >= 0)) {
-    throw new RangeError(`effect and largest must be finite numbers, were ${effect.before}, ${effect.after} and ${largest}`)
+    throw new RangeError(
+      `effect and largest must be finite numbers, were ${effect.before}, ${effect.after} and ${largest}`,
+    )
   }
   if (effect.before === 0 || Math.abs(effect.before) < EFFECT_SHARE * largest) return 'no effect in this window'
   return precision * (effect.after / effect.before) ** 2
@@ -87,7 +89,9 @@ export function noiseRow(
     after,
     change: after - before,
     precisionFactor: precisionFactor(varianceBefore, varianceAfter),
-    equalTrialsFactor: effect ? equalTrialsFactor(varianceBefore, varianceAfter, effect, largest) : 'no effect in this window',
+    equalTrialsFactor: effect
+      ? equalTrialsFactor(varianceBefore, varianceAfter, effect, largest)
+      : 'no effect in this window',
   }
 }
 

@@ -64,12 +64,19 @@ export function scoreVariance(window: Float64Array, noise: NoiseSpec, samplingRa
  * @param startMs time of window[0] from the event.
  * @throws RangeError for a window or line that is not finite.
  */
-export function lockedLineContribution(window: Float64Array, startMs: number, samplingRateHz: number, line: NoiseLine): number {
+export function lockedLineContribution(
+  window: Float64Array,
+  startMs: number,
+  samplingRateHz: number,
+  line: NoiseLine,
+): number {
   checkWindow(window)
   checkSampling(samplingRateHz)
   const phase = line.phaseRad ?? 0
   if (!Number.isFinite(line.hz + line.amplitudeUv + phase + startMs)) {
-    throw new RangeError(`a locked line must have finite numbers, was ${line.amplitudeUv} µV at ${line.hz} Hz, phase ${phase}, from ${startMs} ms`)
+    throw new RangeError(
+      `a locked line must have finite numbers, was ${line.amplitudeUv} µV at ${line.hz} Hz, phase ${phase}, from ${startMs} ms`,
+    )
   }
   const { re, im } = directTransform(window, line.hz / samplingRateHz)
   // Σ g·A·cos(θ + 2πf(t − start)) with θ the tone's phase at window[0], and re − j·(−im) = Σ g·e^(−j…)
@@ -136,7 +143,12 @@ interface Prepared {
 
 const prepared = new WeakMap<Float64Array, WeakMap<NoiseSpec, Map<number, Prepared>>>()
 
-function weightedNodes(weights: Float64Array, noise: NoiseSpec, samplingRateHz: number, breaksHz: readonly number[]): WeightedNodes {
+function weightedNodes(
+  weights: Float64Array,
+  noise: NoiseSpec,
+  samplingRateHz: number,
+  breaksHz: readonly number[],
+): WeightedNodes {
   const ready = prepare(weights, noise, samplingRateHz)
   const nyquist = samplingRateHz / 2
   const breaks = breaksHz.filter((hz) => hz > 0 && hz < nyquist).sort((a, b) => a - b)
@@ -179,7 +191,8 @@ function prepare(weights: Float64Array, noise: NoiseSpec, samplingRateHz: number
     const oscillationHz = samplingRateHz / Math.max(1, weights.length)
     const limits = responseLimits(noise, nyquist)
     const panels: WeightedNodes[] = []
-    for (let p = 0; p + 1 < limits.length; p++) panels.push(weighPanel(limits[p], limits[p + 1], power, density, oscillationHz))
+    for (let p = 0; p + 1 < limits.length; p++)
+      panels.push(weighPanel(limits[p], limits[p + 1], power, density, oscillationHz))
     ready = { power, density, oscillationHz, limits, panels, whole: join(panels), broken: null }
     byRate.set(samplingRateHz, ready)
   }
@@ -187,9 +200,17 @@ function prepare(weights: Float64Array, noise: NoiseSpec, samplingRateHz: number
 }
 
 /** Barycentric weights of the rule's nodes, for the Lagrange polynomials through them. */
-const NODE_WEIGHTS = RULE.nodes.map((x, i) => 1 / RULE.nodes.reduce((p, other, k) => (k === i ? p : p * (x - other)), 1))
+const NODE_WEIGHTS = RULE.nodes.map(
+  (x, i) => 1 / RULE.nodes.reduce((p, other, k) => (k === i ? p : p * (x - other)), 1),
+)
 
-function weighPanel(fromHz: number, toHz: number, power: WindowPower, density: (hz: number) => number, oscillationHz: number): WeightedNodes {
+function weighPanel(
+  fromHz: number,
+  toHz: number,
+  power: WindowPower,
+  density: (hz: number) => number,
+  oscillationHz: number,
+): WeightedNodes {
   const centre = (fromHz + toHz) / 2
   const half = (toHz - fromHz) / 2
   const count = RULE.nodes.length
@@ -297,7 +318,8 @@ function checkArguments(window: Float64Array, noise: NoiseSpec, samplingRateHz: 
 
 function checkWindow(window: Float64Array): void {
   for (let m = 0; m < window.length; m++) {
-    if (!Number.isFinite(window[m])) throw new RangeError(`window must hold finite numbers, window[${m}] was ${window[m]}`)
+    if (!Number.isFinite(window[m]))
+      throw new RangeError(`window must hold finite numbers, window[${m}] was ${window[m]}`)
   }
 }
 

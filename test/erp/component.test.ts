@@ -39,7 +39,9 @@ describe('componentAt', () => {
     fc.assert(
       fc.property(transient, fc.double({ min: -3, max: 3, noNaN: true }), (c, widths) => {
         expect(at(c, c.latencyMs)).toBeCloseTo(c.amplitudeUv, 12)
-        expect(Math.abs(at(c, c.latencyMs + widths * c.widthMs))).toBeLessThanOrEqual(Math.abs(c.amplitudeUv) * (1 + 1e-12))
+        expect(Math.abs(at(c, c.latencyMs + widths * c.widthMs))).toBeLessThanOrEqual(
+          Math.abs(c.amplitudeUv) * (1 + 1e-12),
+        )
       }),
     )
   })
@@ -71,29 +73,41 @@ describe('componentAt', () => {
       const { fromMs, toMs } = componentSupportMs(c) as { fromMs: number; toMs: number }
       const n = 200_000
       const h = (toMs - fromMs) / n
-      const x = componentAt(c, Float64Array.from({ length: n }, (_, i) => fromMs + (i + 0.5) * h))
+      const x = componentAt(
+        c,
+        Float64Array.from({ length: n }, (_, i) => fromMs + (i + 0.5) * h),
+      )
       return x.reduce((s, v) => s + v, 0) * h
     }
     const common = { name: 'c', amplitudeUv: 10, latencyMs: 400, widthMs: 120 }
-    // F11 (textbook, checked): a Gaussian's area is s·√(2π), with s = W/(2√(2 ln 2))
+    // Source: textbook, recomputed: a Gaussian's area is s·√(2π), with s = W/(2√(2 ln 2))
     expect(area({ ...common, shape: 'gaussian' })).toBeCloseTo(10 * 120 * Math.sqrt(Math.PI / (4 * Math.LN2)), 6)
-    expect(area({ ...common, shape: 'asymmetric', riseShare: 0.3 })).toBeCloseTo(10 * 120 * Math.sqrt(Math.PI / (4 * Math.LN2)), 4)
+    expect(area({ ...common, shape: 'asymmetric', riseShare: 0.3 })).toBeCloseTo(
+      10 * 120 * Math.sqrt(Math.PI / (4 * Math.LN2)),
+      4,
+    )
     expect(area({ ...common, shape: 'slow-wave', edgeMs: 40 })).toBeCloseTo(1200, 4)
     expect(area({ ...common, shape: 'ramp', riseShare: 0.25 })).toBeCloseTo(1200, 4)
   })
 
   test('a Gaussian of SD 80 ms and 10 µV has the area 2.00530 µV·s', () => {
-    // Source: A8 of the published check values (derived; checked)
+    // derived: A·s·√(2π) with s = 80 ms
     const sd = 80
     const widthMs = 2 * Math.sqrt(2 * Math.LN2) * sd
     expect((10 * widthMs * Math.sqrt(Math.PI / (4 * Math.LN2))) / 1000).toBeCloseTo(2.0053, 5)
-    expect(at({ shape: 'gaussian', name: 'c', amplitudeUv: 10, latencyMs: 400, widthMs }, 400 + sd)).toBeCloseTo(10 * Math.exp(-0.5), 12)
+    expect(at({ shape: 'gaussian', name: 'c', amplitudeUv: 10, latencyMs: 400, widthMs }, 400 + sd)).toBeCloseTo(
+      10 * Math.exp(-0.5),
+      12,
+    )
   })
 
   test('an asymmetric component with riseShare 0.5 is the Gaussian', () => {
     const common = { name: 'c', amplitudeUv: -3, latencyMs: 210, widthMs: 90 }
     for (const ms of [100, 190, 210, 240, 400]) {
-      expect(at({ ...common, shape: 'asymmetric', riseShare: 0.5 }, ms)).toBeCloseTo(at({ ...common, shape: 'gaussian' }, ms), 14)
+      expect(at({ ...common, shape: 'asymmetric', riseShare: 0.5 }, ms)).toBeCloseTo(
+        at({ ...common, shape: 'gaussian' }, ms),
+        14,
+      )
     }
   })
 
@@ -108,7 +122,14 @@ describe('componentAt', () => {
   })
 
   test('a slow wave is exactly flat on its top', () => {
-    const wave: Component = { shape: 'slow-wave', name: 's', amplitudeUv: -4, latencyMs: 500, widthMs: 400, edgeMs: 100 }
+    const wave: Component = {
+      shape: 'slow-wave',
+      name: 's',
+      amplitudeUv: -4,
+      latencyMs: 500,
+      widthMs: 400,
+      edgeMs: 100,
+    }
     for (const ms of [350, 400, 500, 650]) expect(at(wave, ms)).toBe(-4)
     expect(at(wave, 300)).toBeCloseTo(-2, 12)
     expect(at(wave, 700)).toBeCloseTo(-2, 12)
@@ -117,7 +138,15 @@ describe('componentAt', () => {
   })
 
   test('a damped oscillation starts at nothing, turns over every period and halves every D', () => {
-    const c: Component = { shape: 'damped-oscillation', name: 'd', amplitudeUv: 5, latencyMs: 100, widthMs: 100, riseShare: 0.2, frequencyHz: 20 }
+    const c: Component = {
+      shape: 'damped-oscillation',
+      name: 'd',
+      amplitudeUv: 5,
+      latencyMs: 100,
+      widthMs: 100,
+      riseShare: 0.2,
+      frequencyHz: 20,
+    }
     expect(at(c, 60)).toBe(0)
     expect(at(c, 100 + 25)).toBeCloseTo(-5 * 2 ** (-25 / 80), 12)
     expect(at(c, 100 + 50)).toBeCloseTo(5 * 2 ** (-50 / 80), 12)

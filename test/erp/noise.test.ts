@@ -1,8 +1,22 @@
 import { describe, expect, test } from 'vitest'
-import { checkNoise, defaultNoise, noiseDensity, noiseKinksHz, noiseLines, type NoiseModel } from '../../src/erp/noise.ts'
+import {
+  checkNoise,
+  defaultNoise,
+  noiseDensity,
+  noiseKinksHz,
+  noiseLines,
+  type NoiseModel,
+} from '../../src/erp/noise.ts'
 
 const density = (noise: Parameters<typeof noiseDensity>[0], hz: number) => noiseDensity(noise, Float64Array.of(hz))[0]
-const plain: NoiseModel = { kind: 'model', exponent: 1.5, levelAt1HzUv2PerHz: 8, flatBelowHz: 0.02, whiteUv2PerHz: 0, lines: [] }
+const plain: NoiseModel = {
+  kind: 'model',
+  exponent: 1.5,
+  levelAt1HzUv2PerHz: 8,
+  flatBelowHz: 0.02,
+  whiteUv2PerHz: 0,
+  lines: [],
+}
 
 describe('noiseDensity', () => {
   test('is a power law above its flat part and constant below it', () => {
@@ -13,7 +27,12 @@ describe('noiseDensity', () => {
   })
 
   test('adds drift (flattened too), white and an alpha peak that is Gaussian in power', () => {
-    const full: NoiseModel = { ...plain, driftAt1HzUv2PerHz: 2, whiteUv2PerHz: 0.3, alpha: { centreHz: 10, sdHz: 2, peakUv2PerHz: 5 } }
+    const full: NoiseModel = {
+      ...plain,
+      driftAt1HzUv2PerHz: 2,
+      whiteUv2PerHz: 0.3,
+      alpha: { centreHz: 10, sdHz: 2, peakUv2PerHz: 5 },
+    }
     expect(density(full, 12)).toBeCloseTo(8 * 12 ** -1.5 + 2 / 144 + 0.3 + 5 * Math.exp(-0.5), 12)
     expect(density(full, 0)).toBeCloseTo(8 * 0.02 ** -1.5 + 2 / 0.0004 + 0.3 + 5 * Math.exp(-12.5), 7)
   })
@@ -30,7 +49,7 @@ describe('noiseDensity', () => {
   })
 
   test('of the default is that of an adult at rest: standard deviation 10 to 20 µV, exponent 1 to 2', () => {
-    // Source: E14 and E13 (from memory, medium)
+    // Source: the form from Gerster et al. 2022; both ranges from memory, medium
     const noise = defaultNoise()
     expect(noise.exponent).toBeGreaterThanOrEqual(1)
     expect(noise.exponent).toBeLessThanOrEqual(2)
@@ -56,10 +75,26 @@ describe('checkNoise', () => {
     ['level', { ...plain, levelAt1HzUv2PerHz: -1 }, /levelAt1HzUv2PerHz .* was -1/],
     ['alpha', { ...plain, alpha: { centreHz: 10, sdHz: 0, peakUv2PerHz: 1 } }, /alpha.sdHz .* was 0/],
     ['line', { ...plain, lines: [{ hz: 0, amplitudeUv: 1, locked: false }] }, /lines\[0\].hz .* was 0/],
-    ['phase', { ...plain, lines: [{ hz: 50, amplitudeUv: 1, locked: true, phaseRad: NaN }] }, /lines\[0\].phaseRad must be finite/],
-    ['table order', { kind: 'table', hz: Float64Array.of(2, 1), uv2PerHz: Float64Array.of(1, 1) }, /must be positive and ascend, hz\[1\] was 1/],
-    ['table value', { kind: 'table', hz: Float64Array.of(1, 2), uv2PerHz: Float64Array.of(1, -1) }, /not negative, uv2PerHz\[1\] was -1/],
-    ['table length', { kind: 'table', hz: Float64Array.of(1, 2), uv2PerHz: Float64Array.of(1) }, /of one length .* were 2 and 1/],
+    [
+      'phase',
+      { ...plain, lines: [{ hz: 50, amplitudeUv: 1, locked: true, phaseRad: NaN }] },
+      /lines\[0\].phaseRad must be finite/,
+    ],
+    [
+      'table order',
+      { kind: 'table', hz: Float64Array.of(2, 1), uv2PerHz: Float64Array.of(1, 1) },
+      /must be positive and ascend, hz\[1\] was 1/,
+    ],
+    [
+      'table value',
+      { kind: 'table', hz: Float64Array.of(1, 2), uv2PerHz: Float64Array.of(1, -1) },
+      /not negative, uv2PerHz\[1\] was -1/,
+    ],
+    [
+      'table length',
+      { kind: 'table', hz: Float64Array.of(1, 2), uv2PerHz: Float64Array.of(1) },
+      /of one length .* were 2 and 1/,
+    ],
   ])('refuses a bad %s', (_, noise, message) => {
     expect(() => checkNoise(noise)).toThrow(RangeError)
     expect(() => noiseDensity(noise, Float64Array.of(1))).toThrow(message)

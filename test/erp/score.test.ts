@@ -16,16 +16,29 @@ const score = (kind: Score['kind'], fromMs: number, toMs: number, more: Partial<
   ...more,
 })
 const dot = (w: Float64Array, y: Float64Array) => w.reduce((s, v, i) => s + v * y[i], 0)
-const triangle = (peakMs: number, halfMs: number, a: number) => from((t) => a * Math.max(0, 1 - Math.abs(t - peakMs) / halfMs))
+const triangle = (peakMs: number, halfMs: number, a: number) =>
+  from((t) => a * Math.max(0, 1 - Math.abs(t - peakMs) / halfMs))
 const gaussian = (latencyMs: number, widthMs: number, amplitudeUv: number) =>
   waveformAt([{ shape: 'gaussian', name: 'g', amplitudeUv, latencyMs, widthMs }], times)
 /** A few random smooth bumps, so that peaks, areas and onsets exist. */
 const smooth = fc
-  .array(fc.record({ a: fc.integer({ min: -80, max: 80 }).map((a) => a / 10), l: fc.integer({ min: 50, max: 600 }), w: fc.integer({ min: 40, max: 200 }) }), {
-    minLength: 1,
-    maxLength: 4,
-  })
-  .map((bumps) => waveformAt(bumps.map((b) => ({ shape: 'gaussian' as const, name: 'b', amplitudeUv: b.a, latencyMs: b.l, widthMs: b.w })), times))
+  .array(
+    fc.record({
+      a: fc.integer({ min: -80, max: 80 }).map((a) => a / 10),
+      l: fc.integer({ min: 50, max: 600 }),
+      w: fc.integer({ min: 40, max: 200 }),
+    }),
+    {
+      minLength: 1,
+      maxLength: 4,
+    },
+  )
+  .map((bumps) =>
+    waveformAt(
+      bumps.map((b) => ({ shape: 'gaussian' as const, name: 'b', amplitudeUv: b.a, latencyMs: b.l, widthMs: b.w })),
+      times,
+    ),
+  )
 
 describe('correctBaseline', () => {
   test('subtracts the mean of the samples in the closed window', () => {
@@ -39,7 +52,11 @@ describe('correctBaseline', () => {
 
   test('leaves no trace of a 20 mV offset', () => {
     const y = gaussian(300, 100, 5)
-    const moved = correctBaseline(y.map((v) => v + 20_000), times, { fromMs: -200, toMs: 0 })
+    const moved = correctBaseline(
+      y.map((v) => v + 20_000),
+      times,
+      { fromMs: -200, toMs: 0 },
+    )
     const plain = correctBaseline(y, times, { fromMs: -200, toMs: 0 })
     moved.forEach((v, i) => expect(Math.abs(v - plain[i])).toBeLessThan(2e-11))
   })
@@ -69,11 +86,11 @@ describe('mean amplitude', () => {
 
 describe('signed area', () => {
   test('of a Gaussian is A·s·√(2π), in µV·s', () => {
-    // F11 (textbook, checked): s = 50 ms gives 0.125331 µV·s per µV
+    // Source: textbook, recomputed: s = 50 ms gives 0.125331 µV·s per µV
     const sd = 50
     const y = gaussian(300, 2 * Math.sqrt(2 * Math.LN2) * sd, 1)
     expect(scoreOf(y, times, score('area', -200, 800))).toBeCloseTo(0.125331, 6)
-    // A8 (derived; checked): 10 µV, SD 80 ms, over the whole axis it is 2.00530; ±4 SD hold erf(4/√2) of it
+    // derived from the same area: 10 µV, SD 80 ms, over the whole axis it is 2.00530; ±4 SD hold erf(4/√2) of it
     const wide = gaussian(400, 2 * Math.sqrt(2 * Math.LN2) * 80, 10)
     expect(scoreOf(wide, times, score('area', 80, 720))).toBeCloseTo(2.0053 * 0.9999366575, 5)
   })
@@ -110,7 +127,13 @@ describe('peak', () => {
     expect(scoreOf(y, times, score('peak-amplitude', 200, 280))).toBe('no peak')
     expect(scoreOf(y, times, score('peak-latency', 310, 400))).toBe('no peak')
     expect(scoreOf(y, times, score('onset-latency', 310, 400))).toBe('no peak')
-    expect(scoreOf(from((t) => t), times, score('peak-amplitude', -200, 800))).toBe('no peak')
+    expect(
+      scoreOf(
+        from((t) => t),
+        times,
+        score('peak-amplitude', -200, 800),
+      ),
+    ).toBe('no peak')
   })
 
   test('consults samples outside the window', () => {
@@ -133,13 +156,14 @@ describe('peak', () => {
   })
 
   test('of two is the larger, and of two equal ones the earlier', () => {
-    const two = (a: number, b: number) => waveformAt(
-      [
-        { shape: 'ramp', name: 'a', amplitudeUv: a, latencyMs: 200, widthMs: 50, riseShare: 0.5 },
-        { shape: 'ramp', name: 'b', amplitudeUv: b, latencyMs: 400, widthMs: 50, riseShare: 0.5 },
-      ],
-      times,
-    )
+    const two = (a: number, b: number) =>
+      waveformAt(
+        [
+          { shape: 'ramp', name: 'a', amplitudeUv: a, latencyMs: 200, widthMs: 50, riseShare: 0.5 },
+          { shape: 'ramp', name: 'b', amplitudeUv: b, latencyMs: 400, widthMs: 50, riseShare: 0.5 },
+        ],
+        times,
+      )
     const latency = (y: Float64Array) => findPeak(y, times, { fromMs: 100, toMs: 600 }, 'positive')
     expect((latency(two(3, 4)) as { first: number }).first).toBe(at(400))
     expect((latency(two(4, 3)) as { first: number }).first).toBe(at(200))
@@ -170,9 +194,27 @@ describe('peak', () => {
   })
 
   test('is not found in a constant, nor at the very ends of the epoch', () => {
-    expect(scoreOf(from(() => 3), times, score('peak-latency', -200, 800))).toBe('no peak')
-    expect(scoreOf(from((t) => (t === -200 ? 1 : t === 800 ? 2 : 0)), times, score('peak-latency', -200, 800))).toBe('no peak')
-    expect(scoreOf(from((t) => (t >= 700 ? 1 : 0)), times, score('peak-latency', -200, 800))).toBe('no peak')
+    expect(
+      scoreOf(
+        from(() => 3),
+        times,
+        score('peak-latency', -200, 800),
+      ),
+    ).toBe('no peak')
+    expect(
+      scoreOf(
+        from((t) => (t === -200 ? 1 : t === 800 ? 2 : 0)),
+        times,
+        score('peak-latency', -200, 800),
+      ),
+    ).toBe('no peak')
+    expect(
+      scoreOf(
+        from((t) => (t >= 700 ? 1 : 0)),
+        times,
+        score('peak-latency', -200, 800),
+      ),
+    ).toBe('no peak')
   })
 
   test('agrees with a slow search written from the definition', () => {
@@ -194,13 +236,18 @@ describe('peak', () => {
       return times.map(() => (state = (Math.imul(state, 1664525) + 1013904223) >>> 0) / 2 ** 32)
     })
     fc.assert(
-      fc.property(noisy, fc.integer({ min: -200, max: 300 }), fc.integer({ min: 10, max: 500 }), (values, fromMs, length) => {
-        const y = values
-        const expected = slow(y, fromMs, fromMs + length)
-        const found = findPeak(y, times, { fromMs, toMs: fromMs + length }, 'positive')
-        if (expected < 0) expect(found).toBe('no peak')
-        else expect((found as { first: number }).first).toBe(expected)
-      }),
+      fc.property(
+        noisy,
+        fc.integer({ min: -200, max: 300 }),
+        fc.integer({ min: 10, max: 500 }),
+        (values, fromMs, length) => {
+          const y = values
+          const expected = slow(y, fromMs, fromMs + length)
+          const found = findPeak(y, times, { fromMs, toMs: fromMs + length }, 'positive')
+          if (expected < 0) expect(found).toBe('no peak')
+          else expect((found as { first: number }).first).toBe(expected)
+        },
+      ),
       { numRuns: 40 },
     )
   })
@@ -209,7 +256,9 @@ describe('peak', () => {
 describe('fractional-area latency', () => {
   test('of a symmetric shape is its middle', () => {
     expect(scoreOf(triangle(300, 100, 4), times, score('area-latency', 100, 500))).toBeCloseTo(300, 9)
-    expect(scoreOf(gaussian(351, 120, -4), times, score('area-latency', -100, 800, { polarity: 'negative' }))).toBeCloseTo(351, 6)
+    expect(
+      scoreOf(gaussian(351, 120, -4), times, score('area-latency', -100, 800, { polarity: 'negative' })),
+    ).toBeCloseTo(351, 6)
   })
 
   test('divides a box linearly between samples', () => {
@@ -228,7 +277,13 @@ describe('fractional-area latency', () => {
 
   test('is "no area" where the waveform never takes the stated side', () => {
     expect(scoreOf(gaussian(300, 100, -4), times, score('area-latency', 100, 500))).toBe('no area')
-    expect(scoreOf(from(() => 0), times, score('area-latency', 100, 500))).toBe('no area')
+    expect(
+      scoreOf(
+        from(() => 0),
+        times,
+        score('area-latency', 100, 500),
+      ),
+    ).toBe('no area')
   })
 })
 
@@ -238,13 +293,18 @@ describe('onset latency', () => {
     // the parabola through the tip lies above it; the stated fraction of that
     const top = scoreOf(y, times, score('peak-amplitude', 200, 400)) as number
     for (const fraction of [0.1, 0.5, 0.777]) {
-      expect(scoreOf(y, times, score('onset-latency', 200, 400, { fraction }))).toBeCloseTo(200 + (100 * fraction * top) / 5, 9)
+      expect(scoreOf(y, times, score('onset-latency', 200, 400, { fraction }))).toBeCloseTo(
+        200 + (100 * fraction * top) / 5,
+        9,
+      )
     }
   })
 
   test('of a Gaussian at 50 % is half its full width before the peak', () => {
     expect(scoreOf(gaussian(350, 120, 6), times, score('onset-latency', 250, 450))).toBeCloseTo(290, 2)
-    expect(scoreOf(gaussian(350, 120, -6), times, score('onset-latency', 250, 450, { polarity: 'negative' }))).toBeCloseTo(290, 2)
+    expect(
+      scoreOf(gaussian(350, 120, -6), times, score('onset-latency', 250, 450, { polarity: 'negative' })),
+    ).toBeCloseTo(290, 2)
   })
 
   test('looks before the window, and takes the first crossing met going back', () => {
@@ -255,7 +315,13 @@ describe('onset latency', () => {
   test('is "no onset" where the waveform has been up since the epoch began, or its peak is below zero', () => {
     const y = from((t) => 3 + Math.max(0, 2 - Math.abs(t - 300) / 50))
     expect(scoreOf(y, times, score('onset-latency', 200, 400))).toBe('no onset')
-    expect(scoreOf(y.map((v) => v - 10), times, score('onset-latency', 200, 400))).toBe('no onset')
+    expect(
+      scoreOf(
+        y.map((v) => v - 10),
+        times,
+        score('onset-latency', 200, 400),
+      ),
+    ).toBe('no onset')
   })
 
   test('at a fraction near 1 stays between the last lower sample and the vertex', () => {
@@ -278,18 +344,36 @@ describe('value at a moment', () => {
 })
 
 describe('every score', () => {
-  const kinds: Score['kind'][] = ['mean', 'area', 'peak-amplitude', 'peak-latency', 'area-latency', 'onset-latency', 'moment']
-  const windowOf = (kind: Score['kind'], fromMs: number, toMs: number) => score(kind, fromMs, kind === 'moment' ? fromMs : toMs)
+  const kinds: Score['kind'][] = [
+    'mean',
+    'area',
+    'peak-amplitude',
+    'peak-latency',
+    'area-latency',
+    'onset-latency',
+    'moment',
+  ]
+  const windowOf = (kind: Score['kind'], fromMs: number, toMs: number) =>
+    score(kind, fromMs, kind === 'moment' ? fromMs : toMs)
 
   test('scales with the waveform; latencies do not', () => {
     fc.assert(
-      fc.property(smooth, fc.constantFrom(...kinds), fc.double({ min: 0.01, max: 100, noNaN: true }), (y, kind, factor) => {
-        const s = windowOf(kind, 0, 650)
-        const plain = scoreOf(y, times, s)
-        const scaled = scoreOf(y.map((v) => v * factor), times, s)
-        if (typeof plain === 'string') return void expect(scaled).toBe(plain)
-        expect(scaled).toBeCloseTo(kind.endsWith('latency') ? plain : plain * factor, 7)
-      }),
+      fc.property(
+        smooth,
+        fc.constantFrom(...kinds),
+        fc.double({ min: 0.01, max: 100, noNaN: true }),
+        (y, kind, factor) => {
+          const s = windowOf(kind, 0, 650)
+          const plain = scoreOf(y, times, s)
+          const scaled = scoreOf(
+            y.map((v) => v * factor),
+            times,
+            s,
+          )
+          if (typeof plain === 'string') return void expect(scaled).toBe(plain)
+          expect(scaled).toBeCloseTo(kind.endsWith('latency') ? plain : plain * factor, 7)
+        },
+      ),
     )
   })
 
@@ -298,7 +382,11 @@ describe('every score', () => {
       fc.property(smooth, fc.constantFrom(...kinds), (y, kind) => {
         const s = windowOf(kind, 0, 650)
         const plain = scoreOf(y, times, s)
-        const flipped = scoreOf(y.map((v) => -v), times, { ...s, polarity: 'negative' })
+        const flipped = scoreOf(
+          y.map((v) => -v),
+          times,
+          { ...s, polarity: 'negative' },
+        )
         if (typeof plain === 'string') return void expect(flipped).toBe(plain)
         expect(flipped).toBeCloseTo(kind.endsWith('latency') ? plain : -plain, 12)
       }),
@@ -318,20 +406,34 @@ describe('every score', () => {
     )
   })
 
-  test.each(['mean', 'area', 'peak-amplitude', 'moment'] as const)('%s is the weighted sum of its weights with any baseline', (kind) => {
-    fc.assert(
-      fc.property(smooth, fc.double({ min: -20, max: 20, noNaN: true }), fc.constantFrom<'none' | { fromMs: number; toMs: number }>('none', { fromMs: -200, toMs: 0 }, { fromMs: -50.3, toMs: 21 }), fc.double({ min: 0, max: 200, noNaN: true }), (smoothY, offset, baseline, fromMs) => {
-        const y = smoothY.map((v) => v + offset)
-        const s = windowOf(kind, fromMs, 650)
-        const value = scoreOf(correctBaseline(y, times, baseline), times, s)
-        if (typeof value === 'string') return void expect(() => scoreWeights(s, baseline, times, y)).toThrow(/need a peak/)
-        const weights = scoreWeights(s, baseline, times, y)
-        expect(Math.abs(dot(weights, y) - value)).toBeLessThan(1e-12 * (1 + Math.abs(offset)) * 30)
-        const sum = weights.reduce((a, b) => a + b, 0)
-        if (baseline !== 'none') expect(Math.abs(sum)).toBeLessThan(1e-12)
-      }),
-    )
-  })
+  test.each(['mean', 'area', 'peak-amplitude', 'moment'] as const)(
+    '%s is the weighted sum of its weights with any baseline',
+    (kind) => {
+      fc.assert(
+        fc.property(
+          smooth,
+          fc.double({ min: -20, max: 20, noNaN: true }),
+          fc.constantFrom<'none' | { fromMs: number; toMs: number }>(
+            'none',
+            { fromMs: -200, toMs: 0 },
+            { fromMs: -50.3, toMs: 21 },
+          ),
+          fc.double({ min: 0, max: 200, noNaN: true }),
+          (smoothY, offset, baseline, fromMs) => {
+            const y = smoothY.map((v) => v + offset)
+            const s = windowOf(kind, fromMs, 650)
+            const value = scoreOf(correctBaseline(y, times, baseline), times, s)
+            if (typeof value === 'string')
+              return void expect(() => scoreWeights(s, baseline, times, y)).toThrow(/need a peak/)
+            const weights = scoreWeights(s, baseline, times, y)
+            expect(Math.abs(dot(weights, y) - value)).toBeLessThan(1e-12 * (1 + Math.abs(offset)) * 30)
+            const sum = weights.reduce((a, b) => a + b, 0)
+            if (baseline !== 'none') expect(Math.abs(sum)).toBeLessThan(1e-12)
+          },
+        ),
+      )
+    },
+  )
 
   test.each(['peak-latency', 'area-latency', 'onset-latency'] as const)('%s has no weights', (kind) => {
     expect(() => scoreWeights(score(kind, 0, 400), 'none', times, gaussian(300, 100, 1))).toThrow(RangeError)
@@ -344,21 +446,79 @@ describe('bad input', () => {
   const broken = y.slice()
   broken[3] = NaN
   test.each<[string, () => unknown, RegExp]>([
-    ['a window that leaves the epoch', () => scoreOf(y, times, score('mean', 600, 900)), /score window must lie in the epoch \(-200 to 800 ms\), was 600 to 900 ms/],
-    ['a window between two samples', () => scoreOf(y, times, score('mean', 80.5, 81.5)), /must hold at least one sample/],
-    ['a window that ends before it begins', () => scoreOf(y, times, score('mean', 100, 50)), /must begin before it ends/],
+    [
+      'a window that leaves the epoch',
+      () => scoreOf(y, times, score('mean', 600, 900)),
+      /score window must lie in the epoch \(-200 to 800 ms\), was 600 to 900 ms/,
+    ],
+    [
+      'a window between two samples',
+      () => scoreOf(y, times, score('mean', 80.5, 81.5)),
+      /must hold at least one sample/,
+    ],
+    [
+      'a window that ends before it begins',
+      () => scoreOf(y, times, score('mean', 100, 50)),
+      /must begin before it ends/,
+    ],
     ['an open window', () => scoreOf(y, times, score('mean', NaN, 50)), /must have finite limits/],
     ['an area of one sample', () => scoreOf(y, times, score('area', 80, 81)), /an area needs at least 2 samples/],
-    ['an area latency of one sample', () => scoreOf(y, times, score('area-latency', 80, 81)), /an area needs at least 2 samples/],
-    ['a value that is not a number', () => scoreOf(broken, times, score('mean', 80, 140)), /y\[3\] \(at -194 ms\) was NaN/],
-    ['a length that does not fit', () => scoreOf(y.slice(1), times, score('mean', 80, 140)), /one value per time \(501\), had 500/],
-    ['a fraction of 1', () => scoreOf(y, times, score('onset-latency', 80, 400, { fraction: 1 })), /fraction must lie between 0 and 1, was 1/],
-    ['a moment with two limits', () => scoreOf(y, times, score('moment', 80, 90)), /toMs of a moment must equal its fromMs/],
+    [
+      'an area latency of one sample',
+      () => scoreOf(y, times, score('area-latency', 80, 81)),
+      /an area needs at least 2 samples/,
+    ],
+    [
+      'a value that is not a number',
+      () => scoreOf(broken, times, score('mean', 80, 140)),
+      /y\[3\] \(at -194 ms\) was NaN/,
+    ],
+    [
+      'a length that does not fit',
+      () => scoreOf(y.slice(1), times, score('mean', 80, 140)),
+      /one value per time \(501\), had 500/,
+    ],
+    [
+      'a fraction of 1',
+      () => scoreOf(y, times, score('onset-latency', 80, 400, { fraction: 1 })),
+      /fraction must lie between 0 and 1, was 1/,
+    ],
+    [
+      'a moment with two limits',
+      () => scoreOf(y, times, score('moment', 80, 90)),
+      /toMs of a moment must equal its fromMs/,
+    ],
     ['a moment outside', () => scoreOf(y, times, score('moment', 900, 900)), /must lie in the epoch/],
-    ['a peak without a waveform', () => scoreWeights(score('peak-amplitude', 80, 140), 'none', times), /need the filtered waveform/],
-    ['a baseline outside', () => correctBaseline(y, times, { fromMs: -300, toMs: 0 }), /baseline window must lie in the epoch/],
-    ['uneven times', () => scoreOf(y, times.map((t, i) => (i === 7 ? t + 1 : t)), score('mean', 80, 140)), /evenly spaced .* timesMs\[7\]/],
-    ['descending times', () => scoreOf(y, times.map((t) => -t), score('mean', 80, 140)), /must ascend/],
+    [
+      'a peak without a waveform',
+      () => scoreWeights(score('peak-amplitude', 80, 140), 'none', times),
+      /need the filtered waveform/,
+    ],
+    [
+      'a baseline outside',
+      () => correctBaseline(y, times, { fromMs: -300, toMs: 0 }),
+      /baseline window must lie in the epoch/,
+    ],
+    [
+      'uneven times',
+      () =>
+        scoreOf(
+          y,
+          times.map((t, i) => (i === 7 ? t + 1 : t)),
+          score('mean', 80, 140),
+        ),
+      /evenly spaced .* timesMs\[7\]/,
+    ],
+    [
+      'descending times',
+      () =>
+        scoreOf(
+          y,
+          times.map((t) => -t),
+          score('mean', 80, 140),
+        ),
+      /must ascend/,
+    ],
   ])('%s is refused in words', (_, act, message) => {
     expect(act).toThrow(RangeError)
     expect(act).toThrow(message)
@@ -367,6 +527,12 @@ describe('bad input', () => {
   test('a limit less than a step outside the samples is none: no sample is missing', () => {
     const odd = epochTimesMs(512, { fromMs: -200, toMs: 800 })
     expect(odd[odd.length - 1]).toBeLessThan(800)
-    expect(scoreOf(odd.map(() => 2), odd, score('mean', 500, 800))).toBe(2)
+    expect(
+      scoreOf(
+        odd.map(() => 2),
+        odd,
+        score('mean', 500, 800),
+      ),
+    ).toBe(2)
   })
 })

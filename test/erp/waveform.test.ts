@@ -25,11 +25,16 @@ describe('epochTimesMs', () => {
 
   test('puts time 0 on a sample at every sampling rate, and keeps the limits to 1e-6 sample', () => {
     fc.assert(
-      fc.property(fc.double({ min: 100, max: 4096, noNaN: true }), fc.integer({ min: 20, max: 500 }), fc.integer({ min: 20, max: 900 }), (fs, before, after) => {
-        const times = epochTimesMs(fs, { fromMs: -(before * 1000) / fs, toMs: (after * 1000) / fs })
-        expect(times.length).toBe(before + after + 1)
-        expect(times[before]).toBe(0)
-      }),
+      fc.property(
+        fc.double({ min: 100, max: 4096, noNaN: true }),
+        fc.integer({ min: 20, max: 500 }),
+        fc.integer({ min: 20, max: 900 }),
+        (fs, before, after) => {
+          const times = epochTimesMs(fs, { fromMs: -(before * 1000) / fs, toMs: (after * 1000) / fs })
+          expect(times.length).toBe(before + after + 1)
+          expect(times[before]).toBe(0)
+        },
+      ),
     )
   })
 
@@ -55,7 +60,10 @@ describe('waveformAt', () => {
 
   test('of a difference is the difference of the waveforms, and its components keep their condition', () => {
     const times = epochTimesMs(250, { fromMs: -200, toMs: 800 })
-    const difference = differenceComponents({ name: 'rare', components: [n1, p3] }, { name: 'frequent', components: [n1, hum] })
+    const difference = differenceComponents(
+      { name: 'rare', components: [n1, p3] },
+      { name: 'frequent', components: [n1, hum] },
+    )
     const a = waveformAt([n1, p3], times)
     const b = waveformAt([n1, hum], times)
     waveformAt(difference, times).forEach((v, i) => expect(v).toBeCloseTo(a[i] - b[i], 13))
@@ -84,7 +92,10 @@ describe('checkBuiltWaveform', () => {
   test.each([
     [{ ...good, conditions: [] }, /at least one condition/],
     [{ ...good, conditions: [good.conditions[0], good.conditions[0]] }, /different names, "rare" came twice/],
-    [{ ...good, samplingRateHz: 100, conditions: [{ name: 'a', components: [hum] }] }, /frequencyHz must lie below 50 .* was 50/],
+    [
+      { ...good, samplingRateHz: 100, conditions: [{ name: 'a', components: [hum] }] },
+      /frequencyHz must lie below 50 .* was 50/,
+    ],
     [{ ...good, conditions: [{ name: 'a', components: [{ ...n1, widthMs: -1 }] }] }, /widthMs/],
   ])('refuses a bad one (%#)', (waveform, message) => {
     expect(() => checkBuiltWaveform(waveform)).toThrow(message)

@@ -48,7 +48,13 @@ describe('fidelityRows', () => {
   })
 
   test('of a halved and moved triangle are what geometry says', () => {
-    expect(row(rows, 'peak-latency')).toMatchObject({ before: 300, after: 320, change: 20, percent: null, percentOf: null })
+    expect(row(rows, 'peak-latency')).toMatchObject({
+      before: 300,
+      after: 320,
+      change: 20,
+      percent: null,
+      percentOf: null,
+    })
     // half base times height: 0.8 and 0.4 µV·s
     const area = row(rows, 'signed-area')
     expect(area.before).toBeCloseTo(0.8, 12)
@@ -73,8 +79,19 @@ describe('fidelityRows', () => {
 
   test('the 20 % rule changes sides exactly there', () => {
     const at = (level: number) => {
-      const x = plus(triangle(300, 100, 10), Float64Array.from(times, (t) => (t >= 80 && t <= 140 ? level : 0)))
-      return row(fidelityRows(input(x, x.map((v) => v / 2))), 'score')
+      const x = plus(
+        triangle(300, 100, 10),
+        Float64Array.from(times, (t) => (t >= 80 && t <= 140 ? level : 0)),
+      )
+      return row(
+        fidelityRows(
+          input(
+            x,
+            x.map((v) => v / 2),
+          ),
+        ),
+        'score',
+      )
     }
     expect(at(1.999)).toMatchObject({ percentOf: 'largest' })
     expect(at(1.999).percent).toBeCloseTo(-9.995, 9)
@@ -97,8 +114,14 @@ describe('fidelityRows', () => {
   })
 
   test('the false deflection says so where the onset is not given, or where nothing came before it', () => {
-    const withOnset = (onsetMs: number | 'no onset' | null) => row(fidelityRows(input(before, after, { onsetMs })), 'false-deflection')
-    expect(withOnset(null)).toMatchObject({ before: 'onset not given', after: 'onset not given', change: null, percent: null })
+    const withOnset = (onsetMs: number | 'no onset' | null) =>
+      row(fidelityRows(input(before, after, { onsetMs })), 'false-deflection')
+    expect(withOnset(null)).toMatchObject({
+      before: 'onset not given',
+      after: 'onset not given',
+      change: null,
+      percent: null,
+    })
     expect(withOnset('no onset').before).toBe('no onset')
     expect(withOnset(-200).before).toBe('nothing before the onset')
     expect(withOnset(5000).change).not.toBeNull()
@@ -120,7 +143,11 @@ describe('fidelityRows', () => {
     broken[5] = Infinity
     expect(() => fidelityRows(input(before, broken))).toThrow(/y\[5\].* was Infinity/)
     expect(() =>
-      fidelityRows(input(before, after, { measure: { mean: { fromMs: 0, toMs: 10 }, peak: { fromMs: 0, toMs: 900 }, polarity: 'positive' } })),
+      fidelityRows(
+        input(before, after, {
+          measure: { mean: { fromMs: 0, toMs: 10 }, peak: { fromMs: 0, toMs: 900 }, polarity: 'positive' },
+        }),
+      ),
     ).toThrow(/score window must lie in the epoch/)
   })
 })
@@ -151,7 +178,9 @@ describe('judge', () => {
   })
 
   test('refuses a limit in another unit, or none', () => {
-    expect(() => judge(row(rows, 'peak-latency'), { value: 10, unit: 'µV' })).toThrow(/limit.unit must be ms for peak-latency, was µV/)
+    expect(() => judge(row(rows, 'peak-latency'), { value: 10, unit: 'µV' })).toThrow(
+      /limit.unit must be ms for peak-latency, was µV/,
+    )
     expect(() => judge(row(rows, 'peak-latency'), { value: 10, unit: '%' })).toThrow(/limit.unit must be ms/)
     expect(() => judge(row(rows, 'score'), { value: 10, unit: 'ms' })).toThrow(/limit.unit must be µV or %/)
     expect(() => judge(row(rows, 'score'), { value: -1, unit: 'µV' })).toThrow(/limit.value .* was -1/)
@@ -166,7 +195,14 @@ describe('the scenarios, filtered', () => {
     const chain = designChain(s.chain, s.waveform.samplingRateHz)
     const before = correctBaseline(waveformAt(components, timesMs), timesMs, s.baseline)
     const after = correctBaseline(filterBuiltWaveform(chain, components, timesMs, s.extent), timesMs, s.baseline)
-    const rows = fidelityRows({ timesMs, before, after, score: s.score, measure: s.measure, onsetMs: onsetOfBuilt(components, timesMs) })
+    const rows = fidelityRows({
+      timesMs,
+      before,
+      after,
+      score: s.score,
+      measure: s.measure,
+      onsetMs: onsetOfBuilt(components, timesMs),
+    })
     return { s, rows, judged: (id: keyof typeof s.limits) => judge(row(rows, id), s.limits[id] as Limit) }
   })
   const [latePositivity, slowWave, smeared, delayed, steady] = results

@@ -25,12 +25,19 @@ describe('onsetOfBuilt', () => {
   })
 
   test('leaves steady tones out', () => {
-    expect(onsetOfBuilt([ramp, { shape: 'tone', name: 't', amplitudeUv: 3, frequencyHz: 75, phaseRad: 0 }], times)).toBeCloseTo(151.5, 9)
+    expect(
+      onsetOfBuilt([ramp, { shape: 'tone', name: 't', amplitudeUv: 3, frequencyHz: 75, phaseRad: 0 }], times),
+    ).toBeCloseTo(151.5, 9)
   })
 
   test('is "no onset" without any activity, and the epoch’s start where it is up already', () => {
     expect(onsetOfBuilt([], times)).toBe('no onset')
     expect(onsetOfBuilt([{ ...ramp, amplitudeUv: 0 }], times)).toBe('no onset')
-    expect(onsetOfBuilt([{ shape: 'slow-wave', name: 'w', amplitudeUv: 2, latencyMs: -100, widthMs: 600, edgeMs: 100 }], times)).toBe(-200)
+    expect(
+      onsetOfBuilt(
+        [{ shape: 'slow-wave', name: 'w', amplitudeUv: 2, latencyMs: -100, widthMs: 600, edgeMs: 100 }],
+        times,
+      ),
+    ).toBe(-200)
   })
 })

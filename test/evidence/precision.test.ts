@@ -12,7 +12,8 @@ describe('precisionFactor', () => {
 
 describe('equalTrialsFactor', () => {
   test('is 1 for a filter that only scales, whatever its gain', () => {
-    for (const gain of [0.1, 0.5, 3]) expect(equalTrialsFactor(2, 2 * gain ** 2, { before: 5, after: 5 * gain }, 6)).toBeCloseTo(1, 12)
+    for (const gain of [0.1, 0.5, 3])
+      expect(equalTrialsFactor(2, 2 * gain ** 2, { before: 5, after: 5 * gain }, 6)).toBeCloseTo(1, 12)
   })
 
   test('counts the shrinking of the effect: a precision of 13 with an effect of 17.5 % is worth 0.4', () => {
