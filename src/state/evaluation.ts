@@ -4,6 +4,7 @@
  */
 import type { Chain } from '../filter/chain.ts'
 import type { FidelityRow } from '../evidence/fidelity.ts'
+import type { NoiseRow } from '../evidence/precision.ts'
 
 /** Something the user said that cannot be computed, in words, at the token that says it. */
 export interface Problem {
@@ -74,15 +75,6 @@ export interface ReachMs {
   afterMs: number
 }
 
-/** The noise row of the readout: standard deviations of the score in µV. */
-export interface Precision {
-  before: number
-  after: number
-  precisionFactor: number
-  /** Null where the score has no effect to tell from noise. */
-  equalTrialsFactor: number | null
-}
-
 export interface Evaluation {
   samplingRateHz: number
   /** Sample times of the epoch. */
@@ -108,8 +100,8 @@ export interface Evaluation {
   unseenShare: number | null
   rows: FidelityRow[]
   /** Null for a score that is no weighted sum. */
-  precision: Precision | null
-  /** Numbers for the remark under the figure. */
+  precision: NoiseRow | null
+  /** What the chain did to the score, in a sentence or two. */
   remark: string
 }
 

@@ -100,12 +100,23 @@ const noiseSchema = v.object({
 
 /** How a table is read where its header leaves it open; each is what the user confirmed or chose. */
 const readingSchema = v.object({
+  delimiter: v.optional(v.picklist([',', ';', '\t'])),
+  decimal: v.optional(v.picklist(['.', ','])),
   layout: v.optional(v.picklist(['wide', 'long'])),
-  timeUnit: v.optional(v.picklist(['s', 'ms'])),
-  amplitudeUnit: v.optional(v.picklist(['V', 'mV', 'µV', 'nV'])),
   columnsAre: v.optional(v.picklist(['channels', 'conditions'])),
-  trial: v.optional(text),
+  timeColumn: v.optional(text),
+  valueColumn: v.optional(text),
+  conditionColumn: v.optional(v.nullable(text)),
+  channelColumn: v.optional(v.nullable(text)),
+  participantColumn: v.optional(v.nullable(text)),
+  trialColumn: v.optional(v.nullable(text)),
+  ignoreColumns: v.optional(v.array(text)),
+  timeUnit: v.optional(v.picklist(['s', 'ms', 'µs'])),
+  amplitudeUnit: v.optional(v.picklist(['V', 'mV', 'µV', 'nV'])),
+  samplingRateHz: v.optional(finite),
+  firstMs: v.optional(finite),
   participant: v.optional(text),
+  trial: v.optional(text),
 })
 
 const sourceSchema = v.variant('kind', [
@@ -170,6 +181,8 @@ export const workspaceSchema = v.object({
   /** Onset of a recorded waveform as the user states it; a built one's follows from its components. */
   onsetMs: v.nullable(finite),
 })
+
+export { SCENARIOS }
 
 export type Workspace = v.InferOutput<typeof workspaceSchema>
 export type Source = Workspace['source']

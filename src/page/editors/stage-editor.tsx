@@ -1,6 +1,5 @@
 /** The editor of one stage: which of its parts is in front follows from the token that was opened. */
-import { hzToTimeConstant, timeConstantToHz } from '../../filter/amplifier.ts'
-import { causalTwin, zeroPhaseTwin } from '../../filter/twins.ts'
+import { causalTwin, hzToTimeConstant, timeConstantToHz, zeroPhaseTwin } from '../../state/stage-facts.ts'
 import type { CutoffMeaning, StageSpec, WindowSpec } from '../../filter/stage.ts'
 import {
   canMove,

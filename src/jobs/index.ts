@@ -1,0 +1,1 @@
+export { type Courier, courier, type WorkerApi } from './courier.ts'

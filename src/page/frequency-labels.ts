@@ -1,0 +1,219 @@
+/** Which words stand where in the frequency figure: each beside what it names, none over another. */
+import { textWidth } from '../plot/axis-layout.ts'
+import { type LabelBox, type LabelPlace, type LabelWish, placeLabels, placesAlong, type PlacedLabel } from '../plot/place-labels.ts'
+import type { Tone } from '../plot/tone.ts'
+
+/** A point of the whole chain at half-amplitude or half-power, or a handle without one. */
+export interface HalfPoint {
+  x: number
+  y: number
+  text: string
+  strong: boolean
+}
+
+export interface FrequencyCourses {
+  left: number
+  top: number
+  right: number
+  bottom: number
+  /** Heights by pixel column from `left` on. */
+  chain: Float64Array
+  stages: { name: string; inData: boolean; heights: Float64Array }[]
+  before: Float64Array
+  after: Float64Array
+  noise: Float64Array
+  points: HalfPoint[]
+  /** Heights of the lines at half-amplitude and half-power; null where they would lie on one another. */
+  halves: { amplitude: number; power: number } | null
+}
+
+export interface FigureLabel extends PlacedLabel {
+  text: string
+  tone: Tone
+  strong: boolean
+}
+
+interface Wish extends LabelWish {
+  text: string
+  tone: Tone
+  strong: boolean
+}
+
+const HEIGHT = 15
+
+/** All labels that found room, ready to be drawn. */
+export function frequencyLabels(courses: FrequencyCourses): FigureLabel[] {
+  const { left, right, top, bottom, points } = courses
+  const wishes = [
+    ...points.filter((point) => point.strong).map(pointWish),
+    ...points.filter((point) => !point.strong).map(pointWish),
+    chainWish(courses),
+    ...spectrumWishes(courses),
+    ...courses.stages.map((_, place) => stageWish(courses, place)),
+    noiseWish(courses),
+    ...halfWishes(courses),
+  ]
+  const placed = placeLabels(wishes, {
+    limits: { left, right: right + 1, top, bottom },
+    taken: points.map(({ x, y, strong }): LabelBox => {
+      const r = strong ? 7 : 4
+      return { left: x - r, right: x + r, top: y - r, bottom: y + r }
+    }),
+    courses: [
+      { heights: courses.chain, weight: 4 },
+      ...courses.stages.map(({ heights }) => ({ heights, weight: 1.6 })),
+      { heights: courses.before, weight: 1.6 },
+      { heights: courses.noise, weight: 0.8 },
+    ],
+  })
+  return placed.flatMap((place, i) => {
+    const { text, tone, strong } = wishes[i]
+    return place ? [{ ...place, text, tone, strong }] : []
+  })
+}
+
+function wish(text: string, tone: Tone, strong: boolean, places: LabelPlace[], maxCost?: number): Wish {
+  return { text, tone, strong, width: widthOf(text, strong), height: HEIGHT, places, maxCost }
+}
+
+function widthOf(text: string, strong = false): number {
+  return textWidth(text) * (strong ? 1.05 : 1)
+}
+
+/** Beside its point, on the same height if it can be. */
+function pointWish({ x, y, text, strong }: HalfPoint): Wish {
+  const away = strong ? 10 : 8
+  const places = [0, -8, 8, -14, 14].flatMap((shift, i): LabelPlace[] => [
+    { x: x - away, y: y + shift, anchor: 'end', cost: i * 1.2 },
+    { x: x + away, y: y + shift, anchor: 'start', cost: i * 1.2 + 0.4 },
+  ])
+  return wish(text, 'ink', strong, places)
+}
+
+/** Above its highest stretch, towards its middle. */
+function chainWish({ chain, left, top, bottom }: FrequencyCourses): Wish {
+  const text = 'whole chain'
+  const summit = lowestHeight(chain)
+  const high = columnsWhere(chain, (y) => y <= summit + 3)
+  const middle = (high.first + high.last) / 2
+  const places = placesAlong(chain, { width: widthOf(text, true), height: HEIGHT }, left, (column, side) => {
+    const below = chain[column] - summit
+    return (Math.abs(column - middle) / chain.length) * 3 + (side > 0 ? 1.5 : 0) + (below / (bottom - top)) * 6
+  })
+  return wish(text, 'after', true, places)
+}
+
+/** Where a stage runs alone its name says the most; beside others nobody knows which line is meant. */
+function stageWish({ stages, chain, left, top }: FrequencyCourses, place: number): Wish {
+  const { name, heights, inData } = stages[place]
+  const others = [chain, ...stages.filter((_, other) => other !== place).map((stage) => stage.heights)]
+  const width = widthOf(name)
+  const places = placesAlong(heights, { width, height: HEIGHT }, left, (column, side) => {
+    let near = 0
+    for (const at of [column - width / 2, column - width / 4, column, column + width / 4, column + width / 2]) {
+      const i = Math.round(at)
+      for (const other of others) if (Math.abs(other[i] - heights[i]) < 10) near += 0.2
+    }
+    const edge = Math.min(column, heights.length - column) / heights.length
+    // under a line at the top there is room; above it the place is for those who have no other
+    return near * 2 + edge * 1.2 + (side > 0 ? 0.5 : 0) + (heights[column] < top ? 9 : 0)
+  })
+  return wish(name, inData ? 'quiet' : 'ink', false, places, 14)
+}
+
+function spectrumWishes({ before, after, left, bottom, top }: FrequencyCourses): Wish[] {
+  const waveform = wish(
+    'waveform',
+    'before',
+    true,
+    placesAlong(before, { width: widthOf('waveform', true), height: HEIGHT }, left, (column, side) => {
+      // on its falling side, at a third of the height, is where it can be told from everything else
+      const share = (bottom - before[column]) / (bottom - top)
+      return Math.abs(share - 0.3) * 4 + (side > 0 ? 1 : 0)
+    }).flatMap((place) => {
+      // beside the slope, too, since it is steep
+      const column = Math.round(place.x - left)
+      const share = (bottom - before[column]) / (bottom - top)
+      const slope = { x: place.x + 8, y: before[column] - 2, anchor: 'start' as const, cost: Math.abs(share - 0.3) * 4 }
+      return before[column + 8] > before[column] ? [place, slope] : [place]
+    }),
+    9,
+  )
+  return [
+    waveform,
+    wish('after', 'after', true, betweenPlaces(after, null, bottom, left, widthOf('after', true)), 9),
+    wish('taken out', 'taken-out', true, betweenPlaces(before, after, bottom, left, widthOf('taken out', true)), 9),
+  ]
+}
+
+/** Places inside the area between two curves (or a curve and the bottom), where the whole label fits. */
+function betweenPlaces(
+  upper: Float64Array,
+  lower: Float64Array | null,
+  bottom: number,
+  left: number,
+  width: number,
+): LabelPlace[] {
+  const half = Math.ceil(width / 2)
+  const places: LabelPlace[] = []
+  for (let column = half + 4; column + half + 4 < upper.length; column += 12) {
+    let from = Number.NEGATIVE_INFINITY
+    let to = bottom
+    for (let i = column - half; i <= column + half; i += 3) {
+      if (!Number.isFinite(upper[i])) from = Number.POSITIVE_INFINITY
+      from = Math.max(from, upper[i])
+      if (lower && Number.isFinite(lower[i])) to = Math.min(to, lower[i])
+    }
+    const room = to - from
+    if (room < HEIGHT + 4) continue
+    // low in a high area: the upper part is where the other lines are
+    for (const share of [0.8, 0.65, 0.5, 0.35, 0.2]) {
+      const y = from + HEIGHT / 2 + 2 + (room - HEIGHT - 4) * share
+      places.push({ x: left + column, y, anchor: 'middle', cost: Math.abs(share - 0.75) * 2 + 60 / room })
+    }
+  }
+  return places
+}
+
+function noiseWish({ noise, left }: FrequencyCourses): Wish {
+  const middle = noise.length / 3
+  const size = { width: widthOf('noise'), height: HEIGHT }
+  const costAt = (column: number, side: -1 | 1) =>
+    (Math.abs(column - middle) / noise.length) * 2 + (side > 0 ? 1 : 0)
+  return wish('noise', 'quiet', false, placesAlong(noise, size, left, costAt), 6)
+}
+
+/** What the flat lines stand for, said once where it is quiet. */
+function halfWishes({ halves, left, right }: FrequencyCourses): Wish[] {
+  if (halves === null) return []
+  const rows = [
+    ['half-power', halves.power],
+    ['half-amplitude', halves.amplitude],
+  ] as const
+  return rows.map(([text, y]) => {
+    const places: LabelPlace[] = []
+    for (let x = left + 8; x < right - widthOf(text); x += 12) {
+      for (const side of [-1, 1]) {
+        places.push({ x, y: y + side * 9.5, anchor: 'start', cost: ((x - left) / (right - left)) * 1.5 + (side > 0 ? 0.8 : 0) })
+      }
+    }
+    return wish(text, 'quiet', false, places, 4)
+  })
+}
+
+function lowestHeight(heights: Float64Array): number {
+  let least = Number.POSITIVE_INFINITY
+  for (const y of heights) if (y < least) least = y
+  return least
+}
+
+function columnsWhere(heights: Float64Array, holds: (y: number) => boolean): { first: number; last: number } {
+  let first = heights.length
+  let last = 0
+  heights.forEach((y, i) => {
+    if (!holds(y)) return
+    first = Math.min(first, i)
+    last = Math.max(last, i)
+  })
+  return { first, last }
+}

@@ -1,0 +1,137 @@
+/** Impulse or step response of the stages applied here, with the reach of the kernel. */
+import { useMemo, useRef } from 'react'
+import { FigureFrame } from '../plot/index.ts'
+import type { Evaluation } from '../state/evaluation.ts'
+import { look, type View } from '../state/view.ts'
+import { brief, fixed } from '../words/number.ts'
+import { FigureHead, Switch } from './figure-head.tsx'
+import './frequency-figure.css'
+import { useView } from './hooks.ts'
+import { KernelPlot, type StepEnd } from './kernel-plot.tsx'
+import { type KernelRange, type KernelWords, kernelRange, kernelWords, lagText } from './kernel-shape.ts'
+import { SingleImpulsePlot } from './single-impulse-plot.tsx'
+
+interface KernelFigureProps {
+  evaluation: Evaluation
+  /** Names filter, data and score for the saved figure; read when it is saved. */
+  caption: () => string
+  /** Of the svg, px. */
+  height: number
+  /** Of the svg, px; default: that of the column. */
+  width?: number
+}
+
+/** Room for the axes; the numbers on the left hang into the gutter. */
+const MARGIN = { top: 2, right: 0, bottom: 22, left: 44 }
+
+export function KernelFigure({ evaluation, caption, height, width }: KernelFigureProps) {
+  const shows = useView((view) => view.kernelShows)
+  const scale = useView((view) => view.kernelScale)
+  const svg = useRef<SVGSVGElement>(null)
+  const { kernel } = evaluation
+  const range = useMemo(() => kernelRange(evaluation), [evaluation])
+  const words = useMemo(() => kernelWords(evaluation, range), [evaluation, range])
+  const impulse = shows === 'impulse response'
+  const end = useMemo(() => (impulse ? null : endOfStep(evaluation, range)), [evaluation, range, impulse])
+  return (
+    <div className="figure-body wraps">
+      <FigureHead title="Kernel" svg={svg} caption={caption} fileName="kernel">
+        <span className="told">
+          <Switch
+            value={shows}
+            options={['impulse response', 'step response']}
+            label="Kernel figure shows"
+            onChange={(next) => look({ kernelShows: next })}
+          />
+          {impulse ? ', per second, ' : ', '}
+          <Switch
+            value={scale}
+            options={['compressed', 'linear']}
+            words={{ compressed: 'compressed scale', linear: 'linear scale' }}
+            label="Kernel figure on"
+            onChange={(next) => look({ kernelScale: next })}
+          />
+        </span>
+      </FigureHead>
+      <div className="hanging">
+        <FigureFrame
+          title={`Kernel: ${shows}`}
+          description={describe(evaluation, shows, range, words, end)}
+          height={height}
+          width={width}
+          margin={MARGIN}
+          svgRef={svg}
+        >
+          {(frame) =>
+            words === null ? (
+              <SingleImpulsePlot
+                shows={shows}
+                value={impulse ? evaluation.samplingRateHz : 1}
+                fromMs={-100}
+                toMs={100}
+                words={singleWords(evaluation, impulse)}
+                frame={frame}
+              />
+            ) : (
+              <KernelPlot
+                kernel={kernel}
+                shows={shows}
+                compressed={scale === 'compressed'}
+                range={range}
+                words={words}
+                end={end}
+                frame={frame}
+              />
+            )
+          }
+        </FigureFrame>
+      </div>
+    </div>
+  )
+}
+
+/** What a figure says that has no filter to show. */
+function singleWords(
+  { chain, samplingRateHz }: Pick<Evaluation, 'chain' | 'samplingRateHz'>,
+  impulse: boolean,
+): { strong: string; quiet: string } {
+  const none = chain.stages.length === 0 ? 'no filter' : 'no filter applied here'
+  return impulse
+    ? { strong: `${none}: the kernel is a single impulse`, quiet: `one sample of ${brief(samplingRateHz, 6)} per second, area 1` }
+    : { strong: `${none}: a step passes unchanged`, quiet: 'from 0 to 1 within one sample' }
+}
+
+/** The value that a step settles at, or, where it is still on its way at the end of the figure, the value there. */
+function endOfStep({ kernel, chain }: Evaluation, range: KernelRange): StepEnd | null {
+  const last = kernel.step.length - 1
+  if (last < 0) return null
+  const index = Math.min(last, Math.round(range.toMs / kernel.stepMs) - kernel.fromIndex)
+  const value = kernel.step[index]
+  const slow = chain.stages.some(({ spec }) => spec.design === 'amplifier' && spec.pass === 'high' && spec.inData !== true)
+  const at = lagText((index + kernel.fromIndex) * kernel.stepMs)
+  return { value, words: range.whole && !slow ? `final value ${fixed(value, 2)}` : `${fixed(value, 2)} at ${at} ms` }
+}
+
+/** The figure in words, with its numbers. */
+function describe(
+  { kernel, chain, samplingRateHz }: Evaluation,
+  shows: View['kernelShows'],
+  range: KernelRange,
+  words: KernelWords | null,
+  end: StepEnd | null,
+): string {
+  if (words === null) {
+    const { strong, quiet } = singleWords({ chain, samplingRateHz }, shows === 'impulse response')
+    return `${strong}; ${quiet}.`
+  }
+  const drawn = `Drawn from ${lagText(range.fromMs)} to ${lagText(range.toMs)} ms.`
+  const reach = `${words.reach}, ${words.more.join(', ')}.`
+  if (shows === 'step response') return `Response to a step from 0 to 1. ${drawn} ${end ? `${end.words}. ` : ''}${reach}`
+  let [low, high] = [0, 0]
+  for (const value of kernel.impulse) {
+    low = Math.min(low, value)
+    high = Math.max(high, value)
+  }
+  const numbers = `between ${brief(low)} and ${brief(high)} per second`
+  return `Impulse response of the stages applied here, ${numbers}. ${drawn} ${reach}`
+}

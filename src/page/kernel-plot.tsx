@@ -1,0 +1,180 @@
+import { useMemo } from 'react'
+import { textWidth } from '../plot/axis-layout.ts'
+import { Axis, Clipped, DirectLabel, Dot, type Frame, GridLines, PathArea, PathLine, ZeroLine } from '../plot/index.ts'
+import { areaPath, linePath } from '../plot/path.ts'
+import { placeLabels } from '../plot/place-labels.ts'
+import { compressedScale, linearScale } from '../plot/scale.ts'
+import type { KernelFigure } from '../state/evaluation.ts'
+import { envelopeCourse, type KernelRange, type KernelWords, linearWidth, valueDomain } from './kernel-shape.ts'
+
+/** What is said at the right end of a step response. */
+export interface StepEnd {
+  value: number
+  words: string
+}
+
+interface KernelPlotProps {
+  kernel: KernelFigure
+  shows: 'impulse response' | 'step response'
+  compressed: boolean
+  range: KernelRange
+  words: KernelWords
+  end: StepEnd | null
+  frame: Frame
+}
+
+const LINE_HEIGHT = 16
+
+/** The curve over lag, with its reach between brackets and what is outside it on the colour of the paper. */
+export function KernelPlot({ kernel, shows, compressed, range, words, end, frame }: KernelPlotProps) {
+  const { left, right, top, bottom, plotWidth } = frame
+  const values = shows === 'impulse response' ? kernel.impulse : kernel.step
+  const { fromMs, toMs } = range
+  const x = useMemo(() => linearScale([fromMs, toMs], [left, right]), [fromMs, toMs, left, right])
+  const y = useMemo(() => {
+    const first = Math.floor(fromMs / kernel.stepMs) - kernel.fromIndex
+    const end = Math.ceil(toMs / kernel.stepMs) - kernel.fromIndex + 1
+    const width = compressed ? linearWidth(values) : null
+    const domain = valueDomain(values, first, end, width)
+    return width === null ? linearScale(domain, [bottom, top]) : compressedScale(domain, [bottom, top], width)
+  }, [values, kernel, compressed, fromMs, toMs, bottom, top])
+  const { line, area } = useMemo(() => {
+    const xs = { start: kernel.fromIndex * kernel.stepMs, step: kernel.stepMs }
+    // a causal kernel comes out of nothing
+    const before = xs.start > fromMs ? `M${left},${y.toPixel(0)}H${x.toPixel(xs.start)}` : ''
+    const rise = before && values.length > 0 ? `V${y.toPixel(values[0])}` : ''
+    return { line: before + rise + linePath(xs, values, x, y), area: areaPath(xs, values, x, y) }
+  }, [kernel, values, x, y, fromMs, left])
+  const placed = useMemo(() => {
+    const course = envelopeCourse(kernel, values, x, y, left, plotWidth)
+    return placeWords({ words, end, endY: y.toPixel(end?.value ?? 0), frame: { left, right, top, bottom }, course })
+  }, [kernel, values, words, end, x, y, left, right, top, bottom, plotWidth])
+  const { block } = placed
+  const outside = range.reach === null ? [] : outsideOf(range.reach, x.toPixel, left, right)
+  return (
+    <>
+      {outside.map(([from, to]) => (
+        <rect
+          key={from}
+          x={from}
+          y={top}
+          width={to - from}
+          height={bottom - top}
+          fill="var(--paper)"
+          fillOpacity={0.85}
+          pointerEvents="none"
+        />
+      ))}
+      <GridLines frame={frame} scale={x} along="x" />
+      <GridLines frame={frame} scale={y} along="y" />
+      <ZeroLine frame={frame} scale={x} along="x" />
+      <ZeroLine frame={frame} scale={y} along="y" />
+      <Axis side="bottom" scale={x} at={bottom} title="Lag, ms" />
+      <Axis side="left" scale={y} at={left} />
+      {range.reach === null ? null : <Brackets reach={range.reach} toPixel={x.toPixel} frame={frame} />}
+      <Clipped frame={frame}>
+        <PathArea d={area} tone="after" opacity={0.12} />
+        <PathLine d={line} tone="after" weight="thin" />
+      </Clipped>
+      {end ? <Dot x={right} y={y.toPixel(end.value)} tone="after" /> : null}
+      {end && placed.end ? (
+        <DirectLabel
+          x={placed.end.x}
+          y={placed.end.y}
+          tone="after"
+          anchor={placed.end.anchor}
+          ground={placed.end.crossed ? 'sheet' : 'none'}
+          strong
+        >
+          {end.words}
+        </DirectLabel>
+      ) : null}
+      {block
+        ? [words.reach, ...words.more].map((text, row) => (
+            <DirectLabel
+              key={text}
+              x={block.x}
+              y={block.box.top + LINE_HEIGHT * (row + 0.5)}
+              tone={row === 0 ? 'ink' : 'quiet'}
+              anchor={block.anchor}
+              strong={row === 0}
+              ground={block.crossed ? 'sheet' : 'none'}
+            >
+              {text}
+            </DirectLabel>
+          ))
+        : null}
+    </>
+  )
+}
+
+/** Upright lines at both ends of the reach, bent inwards at the top, as brackets are. */
+function Brackets(props: { reach: { fromMs: number; toMs: number }; toPixel: (ms: number) => number; frame: Frame }) {
+  const { reach, toPixel, frame } = props
+  const bracket = (ms: number, inwards: number) => {
+    const at = Math.round(toPixel(ms) - 0.5) + 0.5
+    if (at < frame.left || at > frame.right) return ''
+    return `M${at + inwards},${frame.top + 0.5}H${at}V${frame.bottom - 0.5}H${at + inwards}`
+  }
+  return (
+    <path
+      d={bracket(reach.fromMs, 5) + bracket(reach.toMs, -5)}
+      fill="none"
+      stroke="var(--quiet)"
+      strokeWidth={1}
+      pointerEvents="none"
+    />
+  )
+}
+
+function outsideOf(
+  reach: { fromMs: number; toMs: number },
+  toPixel: (ms: number) => number,
+  left: number,
+  right: number,
+): [number, number][] {
+  const from = Math.max(left, Math.min(right, toPixel(reach.fromMs)))
+  const to = Math.max(left, Math.min(right, toPixel(reach.toMs)))
+  const strips: [number, number][] = [
+    [left, from],
+    [to, right],
+  ]
+  return strips.filter(([a, b]) => b > a)
+}
+
+interface WordsRoom {
+  words: KernelWords
+  end: StepEnd | null
+  endY: number
+  frame: { left: number; right: number; top: number; bottom: number }
+  course: Float64Array
+}
+
+/** The words on the reach as one block where the curve leaves room, right before left, top before bottom. */
+function placeWords({ words, end, endY, frame, course }: WordsRoom) {
+  const { left, right, top, bottom } = frame
+  const lines = [words.reach, ...words.more]
+  const width = Math.max(...lines.map((line) => textWidth(line))) * 1.05
+  const height = LINE_HEIGHT * lines.length
+  const places = []
+  for (let px = left + 10; px + width <= right - 10; px += 10) {
+    for (let py = top + height / 2 + 4; py + height / 2 <= bottom - 2; py += 8) {
+      const across = (right - 10 - width - px) / (right - left)
+      places.push({ x: px, y: py, anchor: 'start' as const, cost: across + (py - top) / (bottom - top) / 2 })
+    }
+  }
+  const endPlaces = [-14, 14, -24, 24, -40, 40].map((away, i) => ({
+    x: right - 8,
+    y: endY + away,
+    anchor: 'end' as const,
+    cost: i * 0.2,
+  }))
+  const [atEnd, block] = placeLabels(
+    [
+      { width: textWidth(end?.words ?? '') * 1.05, height: 15, places: end ? endPlaces : [] },
+      { width, height, places },
+    ],
+    { limits: { left, right, top, bottom }, courses: [{ heights: course, weight: 3 }] },
+  )
+  return { end: atEnd, block }
+}

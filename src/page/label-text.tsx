@@ -1,0 +1,21 @@
+import { DirectLabel } from '../plot/index.ts'
+import { type DrawnLabel, ROW_PX } from './placed-labels.ts'
+
+/** Labels that were given their places, each row with its halo. */
+export function LabelTexts({ labels }: { labels: readonly DrawnLabel[] }) {
+  return labels.flatMap((label) =>
+    label.rows.map(({ strong, plain }, row) => (
+      <DirectLabel
+        key={`${label.id}/${row}`}
+        x={label.x}
+        y={label.y + (row - (label.rows.length - 1) / 2) * ROW_PX}
+        tone={label.tone}
+        anchor={label.anchor}
+      >
+        {strong ? <tspan className="plot-strong">{strong}</tspan> : null}
+        {strong && plain ? ' ' : null}
+        {plain}
+      </DirectLabel>
+    )),
+  )
+}

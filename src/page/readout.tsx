@@ -1,0 +1,194 @@
+/** The readout: what the chain did, row by row, held against the user's limits. */
+import { useState } from 'react'
+import type { FigureId, Limits } from '../erp/figure.ts'
+import type { FidelityRow } from '../evidence/fidelity.ts'
+import { downloadBlob } from '../plot/index.ts'
+import type { Evaluation } from '../state/evaluation.ts'
+import { readoutCsv } from '../state/readout-csv.ts'
+import { type Verdict, verdictOf } from '../state/verdict.ts'
+import type { Workspace } from '../state/workspace.ts'
+import { brief, changeWords, exact, fixed, rowWords, signed, valueWords } from '../words/index.ts'
+import { MultiplesAxis, MultiplesDot } from './multiples.tsx'
+import { Token } from './token.tsx'
+
+const GROUP_WORDS = {
+  score: 'the score',
+  size: 'size',
+  time: 'time',
+  'false activity': 'false activity',
+  precision: 'precision',
+} as const
+
+interface ReadoutProps {
+  evaluation: Evaluation
+  workspace: Workspace
+}
+
+export function Readout({ evaluation, workspace }: ReadoutProps) {
+  const { rows, precision } = evaluation
+  const [failed, setFailed] = useState<string | null>(null)
+  const save = () => {
+    try {
+      // The mark tells spreadsheets that the file is UTF-8; without it they misread µ.
+      downloadBlob(new Blob(['\ufeff', readoutCsv(evaluation, workspace)], { type: 'text/csv' }), 'readout.csv')
+      setFailed(null)
+    } catch (error) {
+      setFailed(`The readout could not be saved: ${error instanceof Error ? error.message : String(error)}`)
+    }
+  }
+  return (
+    <section className="scroll-x" aria-label="Readout">
+      <table className="readout">
+        <caption className="visually-hidden">What the chain did to the waveform, held against the limits</caption>
+        <colgroup>
+          <col className="col-question" />
+          <col className="col-name" />
+          <col className="col-number" />
+          <col className="col-number" />
+          <col className="col-number" />
+          <col className="col-percent" />
+          <col className="col-limit" />
+          <col className="col-dot" />
+          <col className="col-verdict" />
+        </colgroup>
+        <thead>
+          <tr>
+            <th scope="col" colSpan={2}>
+              <h2>Readout</h2>
+            </th>
+            <th scope="col">before</th>
+            <th scope="col">after</th>
+            <th scope="col">change</th>
+            <th scope="col">in per cent</th>
+            <th scope="col">limit</th>
+            <th scope="col" className="axis-cell">
+              <MultiplesAxis />
+              <span className="visually-hidden">change in multiples of the limit</span>
+            </th>
+            <th scope="col" className="end-cell">
+              {failed ? <span role="alert">{failed} </span> : null}
+              <button type="button" className="plain save" onClick={save} aria-label="save the readout as CSV">
+                save CSV
+              </button>
+            </th>
+          </tr>
+        </thead>
+        <tbody>
+          {rows.map((row, place) => (
+            <Row
+              key={row.id}
+              row={row}
+              limits={workspace.limits}
+              question={rows[place - 1]?.group === row.group ? null : GROUP_WORDS[row.group]}
+              recorded={workspace.source.kind === 'recorded'}
+            />
+          ))}
+          <tr>
+            <th scope="row" className="question">
+              {GROUP_WORDS.precision}
+            </th>
+            <th scope="row">noise of the score, {workspace.trials === 1 ? '1 trial' : `${exact(workspace.trials)} trials`}</th>
+            {precision ? (
+              <>
+                <Cell value={valueWords(precision.before, precision.unit)} unit={precision.unit} />
+                <Cell value={valueWords(precision.after, precision.unit)} unit={precision.unit} />
+                <Cell value={changeWords(precision.change, precision.unit)} unit={precision.unit} />
+                <td className="percent">{signed((100 * precision.change) / precision.before, 0)} %</td>
+                <td className="quiet">no limit</td>
+                <td colSpan={2} className="verdict">
+                  {typeof precision.equalTrialsFactor === 'number'
+                    ? `equal-trials factor ${brief(precision.equalTrialsFactor)}, precision factor ${brief(precision.precisionFactor)}`
+                    : `${precision.equalTrialsFactor}; precision factor ${brief(precision.precisionFactor)}`}
+                </td>
+              </>
+            ) : (
+              <td colSpan={7} className="verdict quiet">
+                a latency’s noise needs simulation; there is no exact figure
+              </td>
+            )}
+          </tr>
+        </tbody>
+      </table>
+    </section>
+  )
+}
+
+function Cell({ value, unit }: { value: string; unit: string }) {
+  const missing = /^[a-z]/.test(value)
+  return (
+    <td className={missing ? 'missing' : undefined}>
+      {value}
+      {missing ? null : <span className="unit">{unit}</span>}
+    </td>
+  )
+}
+
+function Row(props: { row: FidelityRow; limits: Limits; question: string | null; recorded: boolean }) {
+  const { row, limits, question, recorded } = props
+  const limit = limits[row.id]
+  const { name, where } = rowWords(row)
+  const verdict = verdictOf(row, limit)
+  return (
+    <tr className={row.group === 'score' ? 'main' : undefined}>
+      <th scope="row" className="question">
+        {question}
+      </th>
+      <th scope="row">
+        {name} <Where row={row} where={where} recorded={recorded} />
+      </th>
+      <Cell value={valueWords(row.before, row.unit)} unit={row.unit} />
+      <Cell value={valueWords(row.after, row.unit)} unit={row.unit} />
+      {row.change === null ? <td className="quiet">–</td> : <Cell value={changeWords(row.change, row.unit)} unit={row.unit} />}
+      <td className="percent" title={row.percentOf === 'largest' ? 'of the waveform’s largest value, since the value before is small' : undefined}>
+        {row.percent === null ? '' : `${signed(row.percent, 0)} %${row.percentOf === 'largest' ? '*' : ''}`}
+      </td>
+      <td>
+        <Token
+          id={`limit:${row.id}`}
+          className="small"
+          text={limit ? `±${limit.unit === 'ms' || limit.unit === '%' ? exact(limit.value) : fixed(limit.value, limit.value < 0.1 ? 3 : 2)}` : 'no limit'}
+          label={`limit of ${name}`}
+        />
+        <span className="unit">{limit?.unit ?? ''}</span>
+      </td>
+      <td className="dot-cell">
+        <MultiplesDot verdict={verdict} />
+      </td>
+      <td className="verdict">
+        <VerdictWords verdict={verdict} />
+      </td>
+    </tr>
+  )
+}
+
+const MEASURE_TOKEN: Partial<Record<FigureId, string>> = {
+  score: 'score-window',
+  'mean-amplitude': 'measure:mean',
+  'peak-amplitude': 'measure:peak',
+}
+
+/** Where the row is measured; a token once for each window that can be changed. */
+function Where({ row, where, recorded }: { row: FidelityRow; where: string; recorded: boolean }) {
+  if (row.id === 'false-deflection' && row.before === 'onset not given' && recorded)
+    return <Token id="onset" className="small" text="state the onset" label="onset of the recorded waveform" />
+  const token = MEASURE_TOKEN[row.id]
+  if (token && row.id !== 'score') return <Token id={token} className="small" text={where} label="window of this row" />
+  return <>{where}</>
+}
+
+function VerdictWords({ verdict }: { verdict: Verdict }) {
+  switch (verdict.kind) {
+    case 'kept':
+      return <span className="kept">kept</span>
+    case 'over':
+      return (
+        <span className="over">over limit{verdict.multiples === null ? '' : `, ${brief(verdict.multiples, 2)} ×`}</span>
+      )
+    case 'gone':
+      return <span className="over">over limit: gone</span>
+    case 'unknown':
+      return <span className="quiet">nothing to compare</span>
+    case 'no limit':
+      return <span className="quiet">no limit set</span>
+  }
+}

@@ -1,0 +1,148 @@
+/** The labels of the time figure: those of the windows and the score, which stand still, and those that follow the cursor. */
+import type { Frame, Scale, Tone } from '../plot/index.ts'
+import { type CurveCourse, type LabelBox, type LabelPlace, placesAlong } from '../plot/place-labels.ts'
+import {
+  around,
+  type DrawnLabel,
+  drawnLabels,
+  type LabelText,
+  labelSize,
+  placesBeside,
+  ROW_PX,
+  type WantedText,
+} from './placed-labels.ts'
+import type { ScoreMark } from './score-mark.ts'
+
+/** Height of the bands' handles, as a part of the plot's. */
+export const HANDLE_AT = 0.4
+
+export interface WindowLabel {
+  id: string
+  /** The window in pixels, left to right. */
+  fromPx: number
+  toPx: number
+  rows: LabelText['rows']
+}
+
+export interface StillLabels {
+  frame: Frame
+  windows: readonly WindowLabel[]
+  /** The score's mark in pixels and its text; null where the window's label says it. */
+  mark: { fromPx: number; toPx: number; y: number; text: string } | null
+  /** Hatched stretches in pixels. */
+  unseen: readonly { fromPx: number; toPx: number }[]
+  /** Further conditions: their filtered curves. */
+  others: readonly { name: string; tone: Tone; heights: ArrayLike<number> }[]
+  zeroY: number
+  courses: readonly CurveCourse[]
+}
+
+/** Labels that depend on the data and the windows, not on the cursor. */
+export function stillLabels(still: StillLabels): DrawnLabel[] {
+  const { frame, windows, mark, unseen, others, zeroY, courses } = still
+  const wanted: WantedText[] = windows.map((entry) => windowLabel(entry, frame))
+  if (mark) wanted.push(markLabel(mark))
+  for (const [i, { name, tone, heights }] of others.entries()) {
+    const text: LabelText = { id: `condition ${i}`, tone, rows: [{ strong: name }] }
+    // best where the curve stands far from zero, since there it is alone most often
+    const costAt = (column: number) => 24 - Math.min(24, Math.abs(heights[column] - zeroY) * 0.4)
+    wanted.push({ ...text, places: placesAlong(heights, labelSize(text), frame.left, costAt) })
+  }
+  for (const [i, { fromPx, toPx }] of unseen.entries()) {
+    const text: LabelText = { id: `unseen ${i}`, tone: 'quiet', rows: [{ plain: 'unseen' }] }
+    if (toPx - fromPx < labelSize(text).width + 10) continue
+    const places = [0, 1, 2, 3].map((row): LabelPlace => {
+      return { x: (fromPx + toPx) / 2, y: frame.bottom - 10 - ROW_PX * row, anchor: 'middle', cost: row * 4 }
+    })
+    wanted.push({ ...text, places, maxCost: 40 })
+  }
+  return drawnLabels(wanted, frame, courses, handles(windows, frame))
+}
+
+/** The handles at the edges of the windows, which stand above everything. */
+export function handles(windows: readonly WindowLabel[], frame: Frame): LabelBox[] {
+  const y = frame.top + frame.plotHeight * HANDLE_AT
+  return windows.flatMap(({ fromPx, toPx }) => [around(fromPx, y, 5, 13), around(toPx, y, 5, 13)])
+}
+
+/** Inside its window where that is wide enough, else beside it; at the top, or in the rows below. */
+function windowLabel({ id, fromPx, toPx, rows }: WindowLabel, frame: Frame): WantedText {
+  const text: LabelText = { id, tone: 'ink', rows }
+  const { width, height } = labelSize(text)
+  const places: LabelPlace[] = []
+  for (let row = 0; row * 12 + height < frame.plotHeight - 6; row++) {
+    const y = frame.top + 4 + height / 2 + row * 12
+    const cost = row * 9
+    if (toPx - fromPx >= width + 14) places.push({ x: fromPx + 8, y, anchor: 'start', cost })
+    places.push({ x: toPx + 8, y, anchor: 'start', cost: cost + 4 })
+    places.push({ x: fromPx - 8, y, anchor: 'end', cost: cost + 7 })
+  }
+  return { ...text, places }
+}
+
+function markLabel({ fromPx, toPx, y, text }: { fromPx: number; toPx: number; y: number; text: string }): WantedText {
+  const places: LabelPlace[] = []
+  for (const dy of [0, 12, -12, 18, -18, 28, -28, 40, -40, 54, -54, 70, -70])
+    for (const dx of [8, 18, 32, 50]) {
+      const cost = Math.abs(dy) * 0.5 + (dx - 8) * 0.3
+      places.push({ x: toPx + dx, y: y + dy, anchor: 'start', cost })
+      places.push({ x: fromPx - dx, y: y + dy, anchor: 'end', cost: cost + 3 })
+    }
+  return { id: 'score after', tone: 'after', rows: [{ strong: text }], places }
+}
+
+/** What is read at the cursor. */
+export interface CursorReading {
+  id: string
+  tone: Tone
+  name: string
+  text: string
+  /** Height of the curve there, px. */
+  y: number
+}
+
+/**
+ * The moment at the top of the cursor's line and the values beside the curves.
+ *
+ * @param still  labels that already stand, and what else is in the way.
+ */
+export function cursorLabels(
+  frame: Frame,
+  cursorPx: number,
+  moment: string,
+  readings: readonly CursorReading[],
+  courses: readonly CurveCourse[],
+  still: readonly LabelBox[],
+): DrawnLabel[] {
+  const order = [...readings].sort((a, b) => a.y - b.y)
+  const lean = (reading: CursorReading) => {
+    if (order.length < 2) return 0
+    const place = order.indexOf(reading)
+    return place === 0 ? -1 : place === order.length - 1 ? 1 : 0
+  }
+  const rows = [0, 1, 2, 3, 4].flatMap((row): LabelPlace[] => {
+    const y = frame.top + 10 + row * ROW_PX
+    return [
+      { x: cursorPx - 7, y, anchor: 'end', cost: row * 8 },
+      { x: cursorPx + 7, y, anchor: 'start', cost: row * 8 + 3 },
+    ]
+  })
+  const wanted: WantedText[] = [
+    { id: 'moment', tone: 'ink', rows: [{ plain: moment }], places: rows },
+    ...readings.map((reading) => ({
+      id: reading.id,
+      tone: reading.tone,
+      rows: [{ strong: reading.name, plain: reading.text }],
+      places: placesBeside(cursorPx, reading.y, lean(reading)),
+    })),
+  ]
+  const dots = readings.map(({ y }) => around(cursorPx, y, 5))
+  return drawnLabels(wanted, frame, courses, [...still, ...dots])
+}
+
+/** The mark's extent in pixels. */
+export function markExtent(mark: ScoreMark, x: Scale, y: Scale): { fromPx: number; toPx: number; y: number } {
+  const from = mark.kind === 'level' ? mark.fromMs : mark.atMs
+  const to = mark.kind === 'level' ? mark.toMs : mark.atMs
+  return { fromPx: x.toPixel(from), toPx: x.toPixel(to), y: y.toPixel(mark.uv) }
+}

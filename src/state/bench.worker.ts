@@ -1,0 +1,8 @@
+/** The page's worker: reads tables and evaluates what would hold up the page. It imports only what needs no page. */
+import { expose } from 'comlink'
+import { readTable } from '../files/index.ts'
+import { evaluate } from './evaluate.ts'
+
+const api = { readTable, evaluate }
+export type BenchApi = typeof api
+expose(api)

@@ -1,0 +1,78 @@
+/** Keeping the workspace: as a file, as a link, and by itself in the browser's own storage. */
+import { strFromU8, strToU8, unzlibSync, zlibSync } from 'fflate'
+import { get as getKept, set as keep } from 'idb-keyval'
+import { say, workspaceStore } from './store.ts'
+import { readWorkspace, type Workspace } from './workspace.ts'
+
+const STORAGE_KEY = 'sidelobe.workspace'
+const LINK_PREFIX = '#w='
+const AUTOSAVE_MS = 500
+/** No workspace is that large; a longer fragment is hostile or broken. */
+const MAX_LINK_BYTES = 2_000_000
+
+type Result = ReturnType<typeof readWorkspace>
+
+export function workspaceToText(workspace: Workspace): string {
+  return `${JSON.stringify(workspace, null, 2)}\n`
+}
+
+export function workspaceFromText(text: string): Result {
+  try {
+    return readWorkspace(JSON.parse(text))
+  } catch (error) {
+    return { ok: false, reason: `this is no workspace file: ${error instanceof Error ? error.message : String(error)}` }
+  }
+}
+
+/** The part of an address behind `#`: compressed, and never sent to a server by any browser. */
+export function workspaceToFragment(workspace: Workspace): string {
+  const bytes = zlibSync(strToU8(JSON.stringify(workspace)), { level: 9 })
+  let binary = ''
+  for (const byte of bytes) binary += String.fromCharCode(byte)
+  return LINK_PREFIX + btoa(binary).replaceAll('+', '-').replaceAll('/', '_').replace(/=+$/, '')
+}
+
+/** The workspace in an address's fragment; null where there is none. */
+export function workspaceFromFragment(fragment: string): Result | null {
+  if (!fragment.startsWith(LINK_PREFIX)) return null
+  try {
+    const base64 = fragment.slice(LINK_PREFIX.length).replaceAll('-', '+').replaceAll('_', '/')
+    const bytes = Uint8Array.from(atob(base64), (letter) => letter.charCodeAt(0))
+    // Given its buffer, the decompressor stops at its end instead of growing without bound.
+    const text = strFromU8(unzlibSync(bytes, { out: new Uint8Array(MAX_LINK_BYTES) }))
+    return workspaceFromText(text)
+  } catch {
+    return { ok: false, reason: 'the link is damaged or was cut off: ask for it again, or for the workspace file' }
+  }
+}
+
+/**
+ * Takes up the workspace of the link, else the one that was kept, and from then on keeps every change.
+ *
+ * @returns what is to be said about it, or null.
+ */
+export async function takeUpWork(fragment: string): Promise<string | null> {
+  const linked = workspaceFromFragment(fragment)
+  const kept = await getKept<unknown>(STORAGE_KEY).catch(() => undefined)
+  const stored = kept === undefined ? null : readWorkspace(kept)
+  let said: string | null = null
+  if (stored?.ok) start(stored.workspace)
+  if (linked?.ok) say(() => linked.workspace)
+  else if (linked) said = linked.reason
+  else if (stored && !stored.ok) said = `What was kept from last time could not be read (${stored.reason}).`
+
+  let timer: ReturnType<typeof setTimeout> | undefined
+  const write = () => void keep(STORAGE_KEY, workspaceStore.getState().workspace).catch(() => undefined)
+  workspaceStore.subscribe(() => {
+    clearTimeout(timer)
+    timer = setTimeout(write, AUTOSAVE_MS)
+  })
+  globalThis.addEventListener?.('pagehide', write)
+  return said
+}
+
+/** The kept workspace is where undo begins. */
+function start(workspace: Workspace): void {
+  say(() => workspace)
+  workspaceStore.temporal.getState().clear()
+}

@@ -1,0 +1,91 @@
+/**
+ * Loaded tables. They stand outside the workspace, which names a file by the SHA-256 of its text; here is what was read from it. The text
+ * is kept in the browser's own storage, so that a reload finds it again; it goes nowhere else.
+ */
+import { get as getKept, set as keep } from 'idb-keyval'
+import { createStore } from 'zustand/vanilla'
+import { courier } from '../jobs/index.ts'
+import type { Table, TableRefusal } from '../files/index.ts'
+import type { BenchApi } from './bench.worker.ts'
+import type { Reading, RecordedSource, Workspace } from './workspace.ts'
+
+export type RecordedData = Table
+
+interface Loaded {
+  text: string
+  /** Results by the reading asked for (as JSON). */
+  tables: Record<string, Table>
+}
+
+interface DataState {
+  files: Record<string, Loaded>
+  /** What is being read at present, for the line that says so. */
+  reading: { fileName: string; cancel: () => void } | null
+}
+
+export const dataStore = createStore<DataState>(() => ({ files: {}, reading: null }))
+
+export const bench = courier<BenchApi>(
+  () => new Worker(new URL('./bench.worker.ts', import.meta.url), { type: 'module', name: 'sidelobe' }),
+)
+
+const readingKey = (reading: Reading) => JSON.stringify(Object.entries(reading).sort(([a], [b]) => (a < b ? -1 : 1)))
+const storageKey = (fileId: string) => `sidelobe.file.${fileId}`
+
+/** The table of a recorded source as it is read at present; null while it has not been read. */
+export function recordedData(source: Workspace['source'], files: DataState['files']): RecordedData | null {
+  if (source.kind !== 'recorded') return null
+  return files[source.fileId]?.tables[readingKey(source.reading)] ?? null
+}
+
+async function sha256(text: string): Promise<string> {
+  const digest = await crypto.subtle.digest('SHA-256', new TextEncoder().encode(text))
+  return Array.from(new Uint8Array(digest), (byte) => byte.toString(16).padStart(2, '0')).join('')
+}
+
+async function readWith(fileId: string, fileName: string, text: string, reading: Reading): Promise<Table | TableRefusal> {
+  const control = new AbortController()
+  dataStore.setState({ reading: { fileName, cancel: () => control.abort() } })
+  try {
+    const result = await bench.call('readTable', [text, reading], control.signal)
+    if (result.ok)
+      dataStore.setState(({ files }) => ({
+        files: {
+          ...files,
+          [fileId]: { text, tables: { ...files[fileId]?.tables, [readingKey(reading)]: result } },
+        },
+      }))
+    return result
+  } finally {
+    dataStore.setState({ reading: null })
+  }
+}
+
+/**
+ * Reads a file that the user opened or dropped.
+ *
+ * @returns the source and its table, or the reader's refusal; nothing on the page has changed yet.
+ * @throws DOMException 'AbortError' when the user cancels.
+ */
+export async function openTable(
+  file: File,
+): Promise<{ ok: true; source: RecordedSource; table: Table } | (TableRefusal & { fileName: string })> {
+  const text = await file.text()
+  const fileId = await sha256(text)
+  const table = await readWith(fileId, file.name, text, {})
+  if (!table.ok) return { ...table, fileName: file.name }
+  // Without storage the work goes on; only a reload will ask for the file again.
+  await keep(storageKey(fileId), text).catch(() => undefined)
+  return { ok: true, source: { kind: 'recorded', fileName: file.name, fileId, reading: {} }, table }
+}
+
+/** Reads a file that is at hand in another way ("time is in s"). */
+export async function rereadTable(source: RecordedSource, reading: Reading): Promise<Table | TableRefusal | null> {
+  const { files } = dataStore.getState()
+  const known = files[source.fileId]
+  const existing = known?.tables[readingKey(reading)]
+  if (existing) return existing
+  const text = known?.text ?? (await getKept<string>(storageKey(source.fileId)).catch(() => undefined))
+  if (text === undefined) return null
+  return readWith(source.fileId, source.fileName, text, reading)
+}
