@@ -23,7 +23,7 @@ def main():
         # minimum_phase returns the square root of its input's amplitude: the taps convolved with their reverse have
         # the square of the taps' own.
         squared = np.convolve(taps, taps[::-1])
-        own = signal.minimum_phase(squared, method="homomorphic", n_fft=1 << 18)
+        own = signal.minimum_phase(squared, method="homomorphic", n_fft=1 << 20)
         amplitude = np.abs(signal.freqz(own, 1, worN=hz, fs=rate)[1])
         cases.append({"samplingRateHz": rate, "spec": spec, "hz": hz, "prototype": prototype, "scipy": amplitude})
     note = "prototype: |freqz| of the symmetric taps. scipy: |freqz| of minimum_phase(taps convolved with their reverse)."
