@@ -1,10 +1,13 @@
 /** Per stage its line style, half-amplitude, half-power and roll-off; then the whole chain's reach and unseen share. */
-import type { Evaluation } from '../state/evaluation.ts'
+import type { Evaluation, ReachMs } from '../state/evaluation.ts'
 import { fixed } from '../words/index.ts'
 import { stageDash } from './stage-dash.ts'
 
-function reachText(reach: { beforeMs: number; afterMs: number }): string {
-  return `${fixed(-reach.beforeMs, 0)} to ${fixed(reach.afterMs, 0)} ms`
+function reachText({ beforeMs, afterMs }: ReachMs): string {
+  const long = Math.max(beforeMs, afterMs) >= 10_000
+  return long
+    ? `${fixed(-beforeMs / 1000, 1)} to ${fixed(afterMs / 1000, 1)} s`
+    : `${fixed(-beforeMs, 0)} to ${fixed(afterMs, 0)} ms`
 }
 
 export function ChainTable({ evaluation }: { evaluation: Evaluation }) {

@@ -9,7 +9,7 @@ import type { Evaluation } from '../state/evaluation.ts'
 import { endGesture, say } from '../state/store.ts'
 import { type CutoffMark, withCutoff } from './cutoff-marks.ts'
 import { frequencyLabels, type HalfPoint } from './frequency-labels.ts'
-import { courseOf, type GainAxis, type GainUnit, gainsIn, hzText, largest, spectrumIn, valueAt } from './frequency-scale.ts'
+import { axisTitle, courseOf, type GainAxis, type GainUnit, gainsIn, hzText, largest, noiseIn, spectrumIn, valueAt } from './frequency-scale.ts'
 import { stageDash } from './stage-dash.ts'
 
 interface FrequencyGainProps {
@@ -23,9 +23,6 @@ interface FrequencyGainProps {
   /** A drag begins (true) or ends. */
   onDrag: (dragging: boolean) => void
 }
-
-/** The noise stands at about a third of the height, where it is out of the way of the gains. */
-const NOISE_TOP = 0.36
 
 export function FrequencyGain({ evaluation, unit, frame, x, y, axis, cutoffs, onDrag }: FrequencyGainProps) {
   const { frequency, table } = evaluation
@@ -42,9 +39,9 @@ export function FrequencyGain({ evaluation, unit, frame, x, y, axis, cutoffs, on
         // where the stage itself forms the whole chain's curve
         forming: gainsIn(unit, Float64Array.from(stage.gain, (gain) => (gain < 0.985 ? gain : Number.NaN)), axis),
       })),
-      before: spectrumIn(unit, before, most, 1, axis),
-      after: spectrumIn(unit, frequency.after, most, 1, axis),
-      noise: spectrumIn(unit, frequency.noise, largest(frequency.noise), NOISE_TOP, axis),
+      before: spectrumIn(unit, before, most, axis),
+      after: spectrumIn(unit, frequency.after, most, axis),
+      noise: noiseIn(frequency.noise, axis),
       hz,
     }
   }, [frequency, table, unit, axis])
@@ -116,7 +113,7 @@ export function FrequencyGain({ evaluation, unit, frame, x, y, axis, cutoffs, on
       <GridLines frame={frame} scale={x} along="x" />
       <GridLines frame={frame} scale={y} along="y" ticks={lines} />
       <ZeroLine frame={frame} scale={y} along="y" value={axis.domain[0]} />
-      <Axis side="bottom" scale={x} at={bottom} title="Frequency, Hz" />
+      <Axis side="bottom" scale={x} at={bottom} title={axisTitle(x.domain[0], x.domain[1], frame.plotWidth)} />
       <Axis side="left" scale={y} at={left} ticks={ticks} />
       <mask id={maskId} maskUnits="userSpaceOnUse" x={left} y={top} width={plotWidth} height={bottom - top}>
         <path d={paths.chain} fill="none" stroke="#fff" strokeWidth={2.8} />

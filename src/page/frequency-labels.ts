@@ -43,16 +43,25 @@ const HEIGHT = 15
 
 /** All labels that found room, ready to be drawn. */
 export function frequencyLabels(courses: FrequencyCourses): FigureLabel[] {
-  const { left, right, top, bottom, points } = courses
-  const wishes = [
-    ...points.filter((point) => point.strong).map(pointWish),
-    ...points.filter((point) => !point.strong).map(pointWish),
+  const stages = courses.stages.map((_, place) => stageWish(courses, place))
+  const first = [
+    ...courses.points.filter((point) => point.strong).map(pointWish),
+    ...courses.points.filter((point) => !point.strong).map(pointWish),
     chainWish(courses),
     ...spectrumWishes(courses),
-    ...courses.stages.map((_, place) => stageWish(courses, place)),
-    noiseWish(courses),
-    ...halfWishes(courses),
   ]
+  const last = [noiseWish(courses), ...halfWishes(courses)]
+  // which stage chooses first makes a difference, and no order is the best for all chains
+  const orders = stages.length > 1 ? [stages, [...stages].reverse()] : [stages]
+  const tries = orders.map((order) => place([...first, ...order, ...last], courses))
+  return tries.reduce((best, other) => (other.cost < best.cost ? other : best)).labels
+}
+
+/** What it costs to leave a label out. */
+const MISSING = 8
+
+function place(wishes: Wish[], courses: FrequencyCourses): { labels: FigureLabel[]; cost: number } {
+  const { left, right, top, bottom, points } = courses
   const placed = placeLabels(wishes, {
     limits: { left, right: right + 1, top, bottom },
     taken: points.map(({ x, y, strong }): LabelBox => {
@@ -66,10 +75,11 @@ export function frequencyLabels(courses: FrequencyCourses): FigureLabel[] {
       { heights: courses.noise, weight: 0.8 },
     ],
   })
-  return placed.flatMap((place, i) => {
+  const labels = placed.flatMap((found, i) => {
     const { text, tone, strong } = wishes[i]
-    return place ? [{ ...place, text, tone, strong }] : []
+    return found ? [{ ...found, text, tone, strong }] : []
   })
+  return { labels, cost: placed.reduce((sum, found) => sum + (found?.cost ?? MISSING), 0) }
 }
 
 function wish(text: string, tone: Tone, strong: boolean, places: LabelPlace[], maxCost?: number): Wish {
@@ -104,15 +114,15 @@ function chainWish({ chain, left, top, bottom }: FrequencyCourses): Wish {
 }
 
 /** Where a stage runs alone its name says the most; beside others nobody knows which line is meant. */
-function stageWish({ stages, chain, left, top }: FrequencyCourses, place: number): Wish {
-  const { name, heights, inData } = stages[place]
-  const others = [chain, ...stages.filter((_, other) => other !== place).map((stage) => stage.heights)]
+function stageWish({ stages, chain, left, top }: FrequencyCourses, which: number): Wish {
+  const { name, heights, inData } = stages[which]
+  const others = [chain, ...stages.filter((_, other) => other !== which).map((stage) => stage.heights)]
   const width = widthOf(name)
   const places = placesAlong(heights, { width, height: HEIGHT }, left, (column, side) => {
     let near = 0
     for (const at of [column - width / 2, column - width / 4, column, column + width / 4, column + width / 2]) {
       const i = Math.round(at)
-      for (const other of others) if (Math.abs(other[i] - heights[i]) < 10) near += 0.2
+      for (const other of others) if (Math.abs(other[i] - heights[i]) < 10) near += other === chain ? 0.4 : 0.2
     }
     const edge = Math.min(column, heights.length - column) / heights.length
     // under a line at the top there is room; above it the place is for those who have no other
@@ -177,10 +187,11 @@ function betweenPlaces(
 
 function noiseWish({ noise, left }: FrequencyCourses): Wish {
   const middle = noise.length / 3
-  const size = { width: widthOf('noise'), height: HEIGHT }
+  const text = 'noise, log scale'
+  const size = { width: widthOf(text), height: HEIGHT }
   const costAt = (column: number, side: -1 | 1) =>
     (Math.abs(column - middle) / noise.length) * 2 + (side > 0 ? 1 : 0)
-  return wish('noise', 'quiet', false, placesAlong(noise, size, left, costAt), 6)
+  return wish(text, 'quiet', false, placesAlong(noise, size, left, costAt), 6)
 }
 
 /** What the flat lines stand for, said once where it is quiet. */

@@ -5,7 +5,7 @@ import { linePath } from '../plot/path.ts'
 import type { Scale } from '../plot/scale.ts'
 import { ticksAt, ticksFor } from '../plot/ticks.ts'
 import type { FrequencyFigure } from '../state/evaluation.ts'
-import { DRAWN_GAIN, type Pieces } from './frequency-scale.ts'
+import { axisTitle, DRAWN_GAIN, type Pieces } from './frequency-scale.ts'
 
 interface FrequencyPhaseProps {
   frequency: FrequencyFigure
@@ -37,7 +37,7 @@ export function FrequencyPhase({ frequency, shows, frame, x, y, pieces }: Freque
       <GridLines frame={frame} scale={x} along="x" />
       <GridLines frame={frame} scale={y} along="y" ticks={ticks} />
       <ZeroLine frame={frame} scale={y} along="y" />
-      <Axis side="bottom" scale={x} at={bottom} title="Frequency, Hz" />
+      <Axis side="bottom" scale={x} at={bottom} title={axisTitle(x.domain[0], x.domain[1], frame.plotWidth)} />
       <Axis side="left" scale={y} at={left} ticks={ticks} />
       <Clipped frame={frame}>
         <PathLine d={path} tone="after" />

@@ -1,6 +1,6 @@
 /** The numbers behind the frequency figure: its axes, gains as heights, courses of curves by pixel column, phase without false jumps. */
 import type { FrequencyFigure } from '../state/evaluation.ts'
-import { fixed } from '../words/number.ts'
+import { brief, fixed } from '../words/number.ts'
 
 export type GainUnit = 'percent' | 'dB'
 
@@ -73,29 +73,30 @@ export function gainsIn(unit: GainUnit, gain: ArrayLike<number>, axis: GainAxis)
 }
 
 /**
- * A spectrum on a scale of its own on the same axis: its largest value stands at the given height.
+ * The waveform's spectrum on a scale of its own on the same axis: its largest value stands at full gain.
  *
  * @param largestValue  what counts as the largest; two spectra that share it share the scale.
- * @param top           gain whose height the largest value has, 1 for full gain.
  */
-export function spectrumIn(
-  unit: GainUnit,
-  spectrum: ArrayLike<number>,
-  largestValue: number,
-  top: number,
-  axis: GainAxis,
-): Float64Array {
-  const out = new Float64Array(spectrum.length)
-  // a noise at 36 % of the height stands as low in dB: its scale is moved, not stretched
-  const drop = unit === 'dB' ? (1 - top) * (axis.full - axis.domain[0]) : 0
-  for (let i = 0; i < out.length; i++) {
-    const share = largestValue > 0 ? spectrum[i] / largestValue : 0
-    out[i] =
-      unit === 'percent'
-        ? 100 * top * share
-        : Math.max(axis.domain[0] - 20, gainToDb(Math.max(share, 1e-12)) - drop)
-  }
-  return out
+export function spectrumIn(unit: GainUnit, spectrum: ArrayLike<number>, largestValue: number, axis: GainAxis): Float64Array {
+  const shares = Float64Array.from(spectrum, (value) => (largestValue > 0 ? value / largestValue : 0))
+  return gainsIn(unit, shares, axis)
+}
+
+/** Height of the noise's largest density, as a share of the height of full gain: below most of what else is drawn. */
+const NOISE_TOP = 0.36
+/** What the noise's own logarithmic scale spans. */
+const NOISE_DB = 60
+
+/**
+ * The noise on a logarithmic scale of its own: it falls over so many decades that on a linear one only its slowest part would be seen.
+ */
+export function noiseIn(noise: ArrayLike<number>, axis: GainAxis): Float64Array {
+  const most = largest(noise)
+  const [bottom] = axis.domain
+  return Float64Array.from(noise, (value) => {
+    const share = most > 0 && value > 0 ? 1 + gainToDb(value / most) / NOISE_DB : 0
+    return bottom + (axis.full - bottom) * NOISE_TOP * Math.max(0, share)
+  })
 }
 
 /** The largest finite value, 0 where there is none above. */
@@ -200,18 +201,21 @@ export function delayDomain(values: readonly number[]): [number, number] {
   return [low - room, high + room]
 }
 
-/** A frequency as it is written on a figure: three digits, at most as fine as the chain table. */
+/** A frequency as it is written on a figure: three digits, two below 0.1 Hz, whole hertz from 100 on. */
 export function hzText(hz: number): string {
-  if (!Number.isFinite(hz)) return '–'
-  if (hz >= 100) return `${fixed(hz, Number(hz.toFixed(1)) % 1 === 0 ? 0 : 1)} Hz`
+  if (hz >= 99.95) return `${fixed(hz, 0)} Hz`
   if (hz >= 9.995) return `${fixed(hz, 1)} Hz`
-  if (hz >= 0.9995) return `${fixed(hz, 2)} Hz`
-  const digits = hz >= 0.01 ? 3 : 4
-  return `${fixed(hz, digits).replace(/(\.\d\d\d*?)0+$/, '$1')} Hz`
+  return `${hz >= 0.9995 ? fixed(hz, 2) : brief(hz, hz >= 0.0995 ? 3 : 2)} Hz`
 }
 
 /** "71 %, −3.0 dB" */
 export function gainText(gain: number): string {
   const percent = `${fixed(100 * gain, gain < 0.0995 ? 1 : 0)} %`
   return gain > 1e-6 ? `${percent}, ${fixed(gainToDb(gain), 1)} dB` : `${percent}, under ${fixed(-120, 0)} dB`
+}
+
+/** Title of the frequency axis: the whole of it where it fits between two decades, else the unit alone. */
+export function axisTitle(fromHz: number, toHz: number, plotWidth: number): string {
+  const decadePx = plotWidth / Math.log10(toHz / fromHz)
+  return decadePx > 140 ? 'Frequency, Hz' : 'Hz'
 }

@@ -67,9 +67,9 @@ export function KernelFigure({ evaluation, caption, height, width }: KernelFigur
               <SingleImpulsePlot
                 shows={shows}
                 value={impulse ? evaluation.samplingRateHz : 1}
-                fromMs={-100}
-                toMs={100}
-                words={singleWords(evaluation, impulse)}
+                fromMs={-50}
+                toMs={150}
+                words={singleWords(evaluation.chain, impulse)}
                 frame={frame}
               />
             ) : (
@@ -91,14 +91,11 @@ export function KernelFigure({ evaluation, caption, height, width }: KernelFigur
 }
 
 /** What a figure says that has no filter to show. */
-function singleWords(
-  { chain, samplingRateHz }: Pick<Evaluation, 'chain' | 'samplingRateHz'>,
-  impulse: boolean,
-): { strong: string; quiet: string } {
-  const none = chain.stages.length === 0 ? 'no filter' : 'no filter applied here'
-  return impulse
-    ? { strong: `${none}: the kernel is a single impulse`, quiet: `one sample of ${brief(samplingRateHz, 6)} per second, area 1` }
-    : { strong: `${none}: a step passes unchanged`, quiet: 'from 0 to 1 within one sample' }
+function singleWords({ stages }: Evaluation['chain'], impulse: boolean): { strong: string; quiet: string } {
+  return {
+    strong: stages.length === 0 ? 'no filter' : 'no filter applied here',
+    quiet: impulse ? 'the kernel is a single impulse' : 'a step passes unchanged',
+  }
 }
 
 /** The value that a step settles at, or, where it is still on its way at the end of the figure, the value there. */
@@ -114,15 +111,15 @@ function endOfStep({ kernel, chain }: Evaluation, range: KernelRange): StepEnd |
 
 /** The figure in words, with its numbers. */
 function describe(
-  { kernel, chain, samplingRateHz }: Evaluation,
+  { kernel, chain }: Evaluation,
   shows: View['kernelShows'],
   range: KernelRange,
   words: KernelWords | null,
   end: StepEnd | null,
 ): string {
   if (words === null) {
-    const { strong, quiet } = singleWords({ chain, samplingRateHz }, shows === 'impulse response')
-    return `${strong}; ${quiet}.`
+    const { strong, quiet } = singleWords(chain, shows === 'impulse response')
+    return `${strong}: ${quiet}.`
   }
   const drawn = `Drawn from ${lagText(range.fromMs)} to ${lagText(range.toMs)} ms.`
   const reach = `${words.reach}, ${words.more.join(', ')}.`

@@ -2,7 +2,7 @@ import { useMemo } from 'react'
 import { textWidth } from '../plot/axis-layout.ts'
 import { Axis, Clipped, DirectLabel, Dot, type Frame, GridLines, PathArea, PathLine, ZeroLine } from '../plot/index.ts'
 import { areaPath, linePath } from '../plot/path.ts'
-import { placeLabels } from '../plot/place-labels.ts'
+import { type LabelBox, type LabelPlace, type LabelWish, placeLabels } from '../plot/place-labels.ts'
 import { compressedScale, linearScale } from '../plot/scale.ts'
 import type { KernelFigure } from '../state/evaluation.ts'
 import { envelopeCourse, type KernelRange, type KernelWords, linearWidth, valueDomain } from './kernel-shape.ts'
@@ -47,9 +47,10 @@ export function KernelPlot({ kernel, shows, compressed, range, words, end, frame
   }, [kernel, values, x, y, fromMs, left])
   const placed = useMemo(() => {
     const course = envelopeCourse(kernel, values, x, y, left, plotWidth)
-    return placeWords({ words, end, endY: y.toPixel(end?.value ?? 0), frame: { left, right, top, bottom }, course })
-  }, [kernel, values, words, end, x, y, left, right, top, bottom, plotWidth])
-  const { block } = placed
+    const ends = range.reach === null ? [] : [x.toPixel(range.reach.fromMs), x.toPixel(range.reach.toMs)]
+    const taken = ends.map((at) => ({ left: at - 3, right: at + 3, top, bottom }))
+    return placeWords({ words, end, endY: y.toPixel(end?.value ?? 0), limits: { left, right, top, bottom }, course, taken })
+  }, [range, kernel, values, words, end, x, y, left, right, top, bottom, plotWidth])
   const outside = range.reach === null ? [] : outsideOf(range.reach, x.toPixel, left, right)
   return (
     <>
@@ -89,21 +90,19 @@ export function KernelPlot({ kernel, shows, compressed, range, words, end, frame
           {end.words}
         </DirectLabel>
       ) : null}
-      {block
-        ? [words.reach, ...words.more].map((text, row) => (
-            <DirectLabel
-              key={text}
-              x={block.x}
-              y={block.box.top + LINE_HEIGHT * (row + 0.5)}
-              tone={row === 0 ? 'ink' : 'quiet'}
-              anchor={block.anchor}
-              strong={row === 0}
-              ground={block.crossed ? 'sheet' : 'none'}
-            >
-              {text}
-            </DirectLabel>
-          ))
-        : null}
+      {placed.lines.map(({ text, strong, x: px, y: py, anchor, crossed }) => (
+        <DirectLabel
+          key={text}
+          x={px}
+          y={py}
+          tone={strong ? 'ink' : 'quiet'}
+          anchor={anchor}
+          strong={strong}
+          ground={crossed ? 'sheet' : 'none'}
+        >
+          {text}
+        </DirectLabel>
+      ))}
     </>
   )
 }
@@ -146,35 +145,35 @@ interface WordsRoom {
   words: KernelWords
   end: StepEnd | null
   endY: number
-  frame: { left: number; right: number; top: number; bottom: number }
+  limits: LabelBox
   course: Float64Array
+  taken: LabelBox[]
 }
 
-/** The words on the reach as one block where the curve leaves room, right before left, top before bottom. */
-function placeWords({ words, end, endY, frame, course }: WordsRoom) {
-  const { left, right, top, bottom } = frame
-  const lines = [words.reach, ...words.more]
-  const width = Math.max(...lines.map((line) => textWidth(line))) * 1.05
-  const height = LINE_HEIGHT * lines.length
-  const places = []
-  for (let px = left + 10; px + width <= right - 10; px += 10) {
-    for (let py = top + height / 2 + 4; py + height / 2 <= bottom - 2; py += 8) {
-      const across = (right - 10 - width - px) / (right - left)
-      places.push({ x: px, y: py, anchor: 'start' as const, cost: across + (py - top) / (bottom - top) / 2 })
+/** The words on the reach as one block where the curve leaves room, right before left, top before bottom; else line by line. */
+function placeWords({ words, end, endY, limits, course, taken }: WordsRoom) {
+  const { left, right, top, bottom } = limits
+  const room = { limits, taken, courses: [{ heights: course, weight: 3 }] }
+  const lines = [words.reach, ...words.more].map((text, row) => ({ text, strong: row === 0 }))
+  const widthOf = ({ text, strong }: { text: string; strong: boolean }) => textWidth(text) * (strong ? 1.06 : 1)
+  const wishOf = (width: number, height: number): LabelWish => {
+    const places: LabelPlace[] = []
+    for (let px = right - 10; px - width >= left + 10; px -= 8) {
+      for (let py = top + height / 2 + 3; py + height / 2 <= bottom - 2; py += 6) {
+        places.push({ x: px - width, y: py, anchor: 'start', cost: (right - px) / (right - left) + (py - top) / (bottom - top) / 2 })
+      }
     }
+    return { width, height, places }
   }
-  const endPlaces = [-14, 14, -24, 24, -40, 40].map((away, i) => ({
-    x: right - 8,
-    y: endY + away,
-    anchor: 'end' as const,
-    cost: i * 0.2,
-  }))
-  const [atEnd, block] = placeLabels(
-    [
-      { width: textWidth(end?.words ?? '') * 1.05, height: 15, places: end ? endPlaces : [] },
-      { width, height, places },
-    ],
-    { limits: { left, right, top, bottom }, courses: [{ heights: course, weight: 3 }] },
+  const endPlaces = [-14, 14, -24, 24, -40, 40].map(
+    (away, i): LabelPlace => ({ x: right - 8, y: endY + away, anchor: 'end', cost: i * 0.2 }),
   )
-  return { end: atEnd, block }
+  const endWish = { width: textWidth(end?.words ?? '') * 1.06, height: LINE_HEIGHT, places: end ? endPlaces : [] }
+  const [atEnd, block] = placeLabels([endWish, wishOf(Math.max(...lines.map(widthOf)), LINE_HEIGHT * lines.length)], room)
+  if (block && !block.crossed) {
+    const rows = lines.map((line, row) => ({ ...line, ...block, y: block.box.top + LINE_HEIGHT * (row + 0.5) }))
+    return { end: atEnd, lines: rows }
+  }
+  const [, ...apart] = placeLabels([endWish, ...lines.map((line) => wishOf(widthOf(line), LINE_HEIGHT))], room)
+  return { end: atEnd, lines: apart.flatMap((place, i) => (place ? [{ ...lines[i], ...place }] : [])) }
 }

@@ -96,13 +96,12 @@ export interface KernelWords {
   more: string[]
 }
 
-export function kernelWords({ amplifierReach, chain }: Evaluation, range: KernelRange): KernelWords | null {
+export function kernelWords({ chain }: Evaluation, range: KernelRange): KernelWords | null {
   if (range.reach === null) return null
   const { fromMs, toMs } = range.reach
-  const more = ['99 % of the absolute area']
   const amplified = chain.stages.some(({ spec }) => spec.design === 'amplifier' && spec.inData !== true)
   const offline = chain.stages.some(({ spec }) => spec.design !== 'amplifier' && spec.inData !== true)
-  if (amplified && offline && amplifierReach) more.push(`without the amplifier: ${lagText(amplifierReach.afterMs)} ms more`)
+  const more = [amplified && offline ? '99 % of the area, amplifier aside' : '99 % of the absolute area']
   if (!range.whole) more.push(`drawn from ${lagText(range.fromMs)} to ${lagText(range.toMs)} ms only`)
   return { reach: `reach ${lagText(fromMs)} to ${lagText(toMs)} ms`, more }
 }

@@ -1,3 +1,4 @@
+import type { ReactNode } from 'react'
 import { DirectLabel } from '../plot/index.ts'
 import { type DrawnLabel, ROW_PX } from './placed-labels.ts'
 
@@ -17,5 +18,15 @@ export function LabelTexts({ labels }: { labels: readonly DrawnLabel[] }) {
         {plain}
       </DirectLabel>
     )),
+  )
+}
+
+/** Marks and labels that the figure's description and its sliders already say. */
+export function Unspoken({ children, className }: { children: ReactNode; className?: string }) {
+  return (
+    // biome-ignore lint/a11y/noAriaHiddenOnFocusable: a group of an svg takes no focus
+    <g aria-hidden="true" className={className}>
+      {children}
+    </g>
   )
 }

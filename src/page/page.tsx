@@ -80,6 +80,7 @@ export function Page() {
             <div className={`figures grid${shown.stale ? ' stale' : ''}`} aria-busy={shown.working}>
               <div className="figure-body">
                 <TimeFigures evaluation={evaluation} workspace={shown.of} caption={caption} />
+                <p className="remark">{evaluation.remark}</p>
               </div>
               <div className="figure-body">
                 <FrequencyFigure evaluation={evaluation} workspace={shown.of} caption={caption} height={178} />

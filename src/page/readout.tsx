@@ -95,7 +95,7 @@ export function Readout({ evaluation, workspace }: ReadoutProps) {
                 <Cell value={changeWords(precision.change, precision.unit)} unit={precision.unit} />
                 <td className="percent">{signed((100 * precision.change) / precision.before, 0)} %</td>
                 <td className="quiet">no limit</td>
-                <td colSpan={2} className="verdict">
+                <td colSpan={2} className="verdict precision">
                   {typeof precision.equalTrialsFactor === 'number'
                     ? `equal-trials factor ${brief(precision.equalTrialsFactor)}, precision factor ${brief(precision.precisionFactor)}`
                     : `${precision.equalTrialsFactor}; precision factor ${brief(precision.precisionFactor)}`}
@@ -109,6 +109,9 @@ export function Readout({ evaluation, workspace }: ReadoutProps) {
           </tr>
         </tbody>
       </table>
+      {rows.some((row) => row.percentOf === 'largest') ? (
+        <p className="footnote">* per cent of the waveform’s largest value, since the value before is small beside it.</p>
+      ) : null}
     </section>
   )
 }

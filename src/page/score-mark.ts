@@ -24,7 +24,12 @@ export function scoreText(value: FidelityRow['after'], unit: FidelityRow['unit']
  * @param after  the filtered waveform on the epoch, µV.
  * @returns null for an area, which is no place in the figure, and where the score has no value.
  */
-export function scoreMark(score: Score, value: FidelityRow['after'], after: Float64Array, axis: TimeAxis): ScoreMark | null {
+export function scoreMark(
+  score: Score,
+  value: FidelityRow['after'],
+  after: Float64Array,
+  axis: TimeAxis,
+): ScoreMark | null {
   if (typeof value !== 'number') return null
   switch (score.kind) {
     case 'area':

@@ -1,0 +1,230 @@
+/** What is drawn inside the time figure's frame. */
+import { Fragment, memo, useMemo } from 'react'
+import type { Score } from '../erp/score.ts'
+import {
+  Area,
+  Axis,
+  Clipped,
+  Cursor,
+  type Frame,
+  GridLines,
+  HatchedZone,
+  Line,
+  linearScale,
+  type Scale,
+  StaticBand,
+  ticksFor,
+  type Tone,
+  ZeroLine,
+} from '../plot/index.ts'
+import type { Evaluation } from '../state/evaluation.ts'
+import { windowWords } from '../words/index.ts'
+import { LabelTexts, Unspoken } from './label-text.tsx'
+import { courseOf } from './placed-labels.ts'
+import { scoreMark, scoreText } from './score-mark.ts'
+import { ScoreMarkLine } from './score-mark-line.tsx'
+import { amplitudeDomain, msText, type TimeAxis, unseenStretches, uvText } from './time-axis.ts'
+import { TimeBands, type Windows } from './time-bands.tsx'
+import { readingWords } from './time-figure.tsx'
+import { type CursorReading, cursorLabels, handles, markExtent, stillLabels, type WindowLabel } from './time-labels.ts'
+
+interface TimePlotProps {
+  frame: Frame
+  evaluation: Evaluation
+  axis: TimeAxis
+  windows: Windows
+  /** The score that the evaluation's value belongs to. */
+  score: Score
+  cursor: number
+  onCursor: (ms: number) => void
+  onHold: (held: boolean) => void
+  takenOut: boolean
+  polarity: 'up' | 'down'
+}
+
+/** The colour of a condition that is not the chosen one: by its place, so that choosing another changes no more than it must. */
+const conditionTone = (place: number): Tone => `condition-${(place % 4) + 1}`
+
+/** The frame as one object for as long as its size stays, so that nothing in it is laid out anew without need. */
+export function useFrame(frame: Frame): Frame {
+  const { width, height, id, left, top } = frame
+  // biome-ignore lint/correctness/useExhaustiveDependencies: these say all that a frame is made of
+  return useMemo(() => frame, [width, height, id, left, top])
+}
+
+export function TimePlot(props: TimePlotProps) {
+  const { evaluation, axis, windows, score, cursor, onCursor, onHold, takenOut, polarity } = props
+  const frame = useFrame(props.frame)
+  const { curves, chosen } = evaluation
+  const main = curves[chosen]
+  const x = useMemo(() => linearScale([axis.fromMs, axis.toMs], [frame.left, frame.right]), [axis, frame])
+  const y = useMemo(() => {
+    const drawn = curves.flatMap(({ before, after }) => [before, after])
+    if (takenOut) drawn.push(main.takenOut)
+    return linearScale(amplitudeDomain(drawn, polarity), [frame.bottom, frame.top])
+  }, [curves, main, takenOut, polarity, frame])
+  const courses = useMemo(() => {
+    const course = (values: Float64Array) => courseOf(values, axis.firstMs, axis.stepMs, frame, x, y)
+    const others = curves.flatMap((entry, i) =>
+      i === chosen ? [] : [{ name: entry.name, tone: conditionTone(i), ...course(entry.after) }],
+    )
+    const own = [main.before, main.after, ...(takenOut ? [main.takenOut] : [])].map(course)
+    return { others, all: [...own, ...others] }
+  }, [curves, chosen, main, takenOut, axis, frame, x, y])
+
+  const unseen = useMemo(
+    () =>
+      unseenStretches(evaluation.unseenBySample, axis).map(({ fromMs, toMs }) => ({
+        fromPx: x.toPixel(fromMs),
+        toPx: x.toPixel(toMs),
+      })),
+    [evaluation.unseenBySample, axis, x],
+  )
+  const { after: value, unit } = evaluation.rows[0]
+  const mark = useMemo(() => scoreMark(score, value, main.after, axis), [score, value, main, axis])
+  const { score: window, baseline } = windows
+  const still = useMemo(() => {
+    const text = `score after ${scoreText(value, unit)}`
+    const labelled = windowLabels(x, window, baseline, mark ? null : `after ${scoreText(value, unit)}`)
+    const extent = mark ? markExtent(mark, x, y) : null
+    return {
+      extent,
+      windows: labelled,
+      labels: stillLabels({
+        frame,
+        windows: labelled,
+        mark: extent && { ...extent, text },
+        unseen,
+        others: courses.others,
+        zeroY: y.toPixel(0),
+        courses: courses.all,
+      }),
+    }
+  }, [frame, x, y, window, baseline, mark, value, unit, unseen, courses])
+
+  const cursorMs = axis.firstMs + cursor * axis.stepMs
+  const readings: CursorReading[] = [
+    { id: 'before', tone: 'before', name: 'before', ...readAt(main.before, cursor, y) },
+    { id: 'after', tone: 'after', name: 'after', ...readAt(main.after, cursor, y) },
+  ]
+  const difference = evaluation.delayIncluded
+    ? frame.plotWidth > 560
+      ? 'before − after, delay included'
+      : 'before − after'
+    : 'taken out'
+  if (takenOut)
+    readings.push({ id: 'taken out', tone: 'taken-out', name: difference, ...readAt(main.takenOut, cursor, y) })
+  const inTheWay = [...still.labels.map((label) => label.box), ...handles(still.windows, frame)]
+  const moving = cursorLabels(frame, x.toPixel(cursorMs), msText(cursorMs), readings, courses.all, inTheWay)
+
+  return (
+    <>
+      <Grounds {...{ frame, x, y, axis, windows, unseen }} />
+      <TimeCurves {...{ frame, x, y, axis, evaluation, takenOut }} />
+      <TimeAxes {...{ frame, x, y }} />
+      {mark && still.extent ? <ScoreMarkLine kind={mark.kind} {...still.extent} labels={still.labels} /> : null}
+      <Cursor
+        {...{ frame, scale: x, min: axis.firstMs, max: axis.lastMs, step: axis.stepMs }}
+        value={cursorMs}
+        dots={readings.map((reading) => ({ y: reading.y, tone: reading.tone }))}
+        name="cursor"
+        valueText={`${msText(cursorMs)}: ${readingWords(evaluation, cursor, takenOut)}`}
+        onChange={onCursor}
+      />
+      <Unspoken>
+        <LabelTexts labels={still.labels} />
+        <LabelTexts labels={moving} />
+      </Unspoken>
+      <TimeBands {...{ frame, x, axis, windows, onHold }} />
+    </>
+  )
+}
+
+function readAt(values: Float64Array, index: number, y: Scale): { text: string; y: number } {
+  return { text: uvText(values[index]), y: y.toPixel(values[index]) }
+}
+
+function windowLabels(x: Scale, score: Score, baseline: Windows['baseline'], note: string | null): WindowLabel[] {
+  const label = (id: string, window: { fromMs: number; toMs: number }, more: string | null): WindowLabel => ({
+    id,
+    fromPx: x.toPixel(window.fromMs),
+    toPx: x.toPixel(window.toMs),
+    rows: [
+      { strong: id },
+      { plain: windowWords(window.fromMs, window.toMs) },
+      ...(more === null ? [] : [{ plain: more }]),
+    ],
+  })
+  return [...(baseline === 'none' ? [] : [label('baseline', baseline, null)]), label('score', score, note)]
+}
+
+interface PlaneProps {
+  frame: Frame
+  x: Scale
+  y: Scale
+}
+
+type GroundsProps = PlaneProps & {
+  axis: TimeAxis
+  windows: Windows
+  unseen: readonly { fromPx: number; toPx: number }[]
+}
+
+/** Hatching, grid and windows under the curves. */
+export const Grounds = memo(function Grounds({ frame, x, y, axis, windows, unseen }: GroundsProps) {
+  const { score, baseline } = windows
+  return (
+    <>
+      <HatchedZone frame={frame} kind="outside" fromPx={frame.left} toPx={x.toPixel(axis.firstMs)} />
+      <HatchedZone frame={frame} kind="outside" fromPx={x.toPixel(axis.lastMs)} toPx={frame.right} />
+      {unseen.map((part) => (
+        <HatchedZone key={part.fromPx} frame={frame} kind="unseen" {...part} />
+      ))}
+      <GridLines frame={frame} scale={x} along="x" />
+      <GridLines frame={frame} scale={y} along="y" />
+      {baseline === 'none' ? null : (
+        <StaticBand frame={frame} scale={x} look="light" value={{ from: baseline.fromMs, to: baseline.toMs }} />
+      )}
+      <StaticBand frame={frame} scale={x} value={{ from: score.fromMs, to: score.toMs }} />
+      <ZeroLine frame={frame} scale={y} along="y" />
+      <ZeroLine frame={frame} scale={x} along="x" />
+    </>
+  )
+})
+
+type CurvesProps = PlaneProps & { axis: TimeAxis; evaluation: Evaluation; takenOut: boolean }
+
+const TimeCurves = memo(function TimeCurves({ frame, x, y, axis, evaluation, takenOut }: CurvesProps) {
+  const { curves, chosen } = evaluation
+  const main = curves[chosen]
+  const on = { xs: { start: axis.firstMs, step: axis.stepMs }, x, y }
+  return (
+    <Clipped frame={frame}>
+      {takenOut ? <Area {...on} ys={main.takenOut} tone="taken-out" /> : null}
+      {curves.map(({ name, before, after }, i) =>
+        i === chosen ? null : (
+          <Fragment key={name}>
+            <Line {...on} ys={before} tone={conditionTone(i)} weight="hair" />
+            <Line {...on} ys={after} tone={conditionTone(i)} weight="thick" className="condition-after" />
+          </Fragment>
+        ),
+      )}
+      {takenOut ? <Line {...on} ys={main.takenOut} tone="taken-out" /> : null}
+      <Line {...on} ys={main.before} tone="before" />
+      <Line {...on} ys={main.after} tone="after" />
+    </Clipped>
+  )
+})
+
+/** The unit stands above the numbers, so none stands at the very top. */
+const UNIT_PX = 18
+
+const TimeAxes = memo(function TimeAxes({ frame, x, y }: PlaneProps) {
+  const ticks = ticksFor(y, { lie: 'upright' }).filter((tick) => tick.pixel > frame.top + UNIT_PX)
+  return (
+    <>
+      <Axis side="bottom" scale={x} at={frame.bottom} title="Time, ms" />
+      <Axis side="left" scale={y} at={frame.left} ticks={ticks} title="µV" />
+    </>
+  )
+})

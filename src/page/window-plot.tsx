@@ -1,0 +1,161 @@
+/** What is drawn inside the effective window's frame. */
+import { memo, useMemo } from 'react'
+import {
+  Area,
+  Axis,
+  Clipped,
+  compressedScale,
+  type Frame,
+  GridLines,
+  HatchedZone,
+  Line,
+  linearScale,
+  PathArea,
+  PathLine,
+  type Scale,
+  StaticBand,
+  StaticCursor,
+  stepPath,
+  ZeroLine,
+} from '../plot/index.ts'
+import type { WindowFigure } from '../state/evaluation.ts'
+import type { Workspace } from '../state/workspace.ts'
+import { LabelTexts, Unspoken } from './label-text.tsx'
+import { around, courseOf, type DrawnLabel, drawnLabels, labelSize, placesBeside } from './placed-labels.ts'
+import type { TimeAxis } from './time-axis.ts'
+import type { Windows } from './time-bands.tsx'
+import { useFrame } from './time-plot.tsx'
+import { boxesOf, filteredWords, peakHere, perHundredMs, unfilteredWords, weightText } from './window-words.ts'
+
+interface WindowPlotProps {
+  frame: Frame
+  window: WindowFigure
+  workspace: Workspace
+  axis: TimeAxis
+  windows: Windows
+  cursor: number
+  scale: 'compressed' | 'linear'
+}
+
+/** Part of the largest weight up to which the compressed scale is about linear. */
+const LINEAR_PART = 0.03
+/** Room above and below the weights, px. */
+const ROOM_PX = 6
+
+/** Up to the largest weights on both sides, zero among them. */
+export function weightScale(
+  curves: readonly Float64Array[],
+  kind: 'compressed' | 'linear',
+  frame: Pick<Frame, 'top' | 'bottom'>,
+): Scale {
+  let low = 0
+  let high = 0
+  for (const values of curves)
+    for (const value of values) {
+      if (value < low) low = value
+      if (value > high) high = value
+    }
+  if (low === high) high = 1
+  const range = [frame.bottom - ROOM_PX, frame.top + ROOM_PX] as const
+  return kind === 'linear'
+    ? linearScale([low, high], range)
+    : compressedScale([low, high], range, LINEAR_PART * Math.max(-low, high))
+}
+
+export function WindowPlot({ window, workspace, axis, windows, cursor, scale, ...props }: WindowPlotProps) {
+  const frame = useFrame(props.frame)
+  const { score } = workspace
+  const x = useMemo(() => linearScale([axis.fromMs, axis.toMs], [frame.left, frame.right]), [axis, frame])
+  const curves = useMemo(
+    () => ({
+      startMs: axis.firstMs + window.fromIndex * axis.stepMs,
+      unfiltered: perHundredMs(window.unfiltered, axis.stepMs),
+      filtered: perHundredMs(window.filtered, axis.stepMs),
+    }),
+    [window, axis],
+  )
+  const { startMs, unfiltered, filtered } = curves
+  const y = useMemo(() => weightScale([unfiltered, filtered], scale, frame), [unfiltered, filtered, scale, frame])
+  const courses = useMemo(
+    () => [unfiltered, filtered].map((values) => courseOf(values, startMs, axis.stepMs, frame, x, y)),
+    [unfiltered, filtered, startMs, axis, frame, x, y],
+  )
+  const still = useMemo(() => {
+    const text = { id: 'unfiltered', tone: 'before' as const, rows: [{ strong: unfilteredWords(score) }] }
+    const right = x.toPixel(score.toMs)
+    const left = x.toPixel(score.fromMs)
+    const places = [0, 1, 2, 3].flatMap((row) => [
+      { x: right + 8, y: frame.top + 10 + row * 16, anchor: 'start' as const, cost: row * 8 },
+      { x: left - 8, y: frame.top + 10 + row * 16, anchor: 'end' as const, cost: row * 8 + 4 },
+    ])
+    return drawnLabels([{ ...text, places }], frame, courses, [])
+  }, [score, x, frame, courses])
+
+  const cursorMs = axis.firstMs + cursor * axis.stepMs
+  const weight = filtered[cursor - window.fromIndex]
+  const dot = { x: x.toPixel(cursorMs), y: y.toPixel(weight) }
+  const wordings = filteredWords(weightText(weight, score), cursorMs, peakHere(workspace, cursorMs, axis.stepMs / 2))
+  const taken = [...still.map((label) => label.box), around(dot.x, dot.y, 5)]
+  let moving: DrawnLabel[] = []
+  for (const wording of wordings) {
+    const text = { id: 'filtered', tone: 'after' as const, rows: [{ strong: wording }] }
+    if (labelSize(text).width > frame.plotWidth * 0.8) continue
+    moving = drawnLabels([{ ...text, places: placesBeside(dot.x, dot.y, -1) }], frame, courses, taken)
+    if (moving.length > 0) break
+  }
+  return (
+    <>
+      <WindowCurves {...{ frame, x, y, axis, windows, curves }} />
+      <StaticCursor frame={frame} scale={x} value={cursorMs} dots={[{ y: dot.y, tone: 'after' }]} />
+      <Unspoken>
+        <LabelTexts labels={still} />
+        <LabelTexts labels={moving} />
+      </Unspoken>
+    </>
+  )
+}
+
+interface WindowCurvesProps {
+  frame: Frame
+  x: Scale
+  y: Scale
+  axis: TimeAxis
+  windows: Windows
+  curves: { startMs: number; unfiltered: Float64Array; filtered: Float64Array }
+}
+
+const WindowCurves = memo(function WindowCurves({ frame, x, y, axis, windows, curves }: WindowCurvesProps) {
+  const { score, baseline } = windows
+  const { startMs, unfiltered, filtered } = curves
+  const box = useMemo(() => {
+    const { edges, heights } = boxesOf(unfiltered)
+    return stepPath(
+      edges.map((edge) => startMs + edge * axis.stepMs),
+      heights,
+      x,
+      y,
+    )
+  }, [unfiltered, startMs, axis, x, y])
+  const on = { xs: { start: startMs, step: axis.stepMs }, x, y }
+  return (
+    <>
+      <HatchedZone frame={frame} kind="outside" fromPx={frame.left} toPx={x.toPixel(axis.firstMs)} />
+      <HatchedZone frame={frame} kind="outside" fromPx={x.toPixel(axis.lastMs)} toPx={frame.right} />
+      <GridLines frame={frame} scale={x} along="x" />
+      <GridLines frame={frame} scale={y} along="y" />
+      {baseline === 'none' ? null : (
+        <StaticBand frame={frame} scale={x} look="light" value={{ from: baseline.fromMs, to: baseline.toMs }} />
+      )}
+      <StaticBand frame={frame} scale={x} value={{ from: score.fromMs, to: score.toMs }} />
+      <ZeroLine frame={frame} scale={y} along="y" />
+      <ZeroLine frame={frame} scale={x} along="x" />
+      <Clipped frame={frame}>
+        <PathArea d={box} tone="quiet" opacity={0.1} />
+        <Area {...on} ys={filtered} tone="after" />
+        <PathLine d={box} tone="before" weight="hair" />
+        <Line {...on} ys={filtered} tone="after" className="window-filtered" />
+      </Clipped>
+      <Axis side="left" scale={y} at={frame.left} />
+    </>
+  )
+})
