@@ -181,8 +181,7 @@ function prepare(stages: readonly Stage[]): StandAlone {
         const forwardSpace = stateSpaceOf(forward)
         const backwardSpace = stateSpaceOf(backward)
         const decay = slowest(forwardPoles) + slowest(backwardPoles)
-        const start =
-          backwardSpace.size === 0 ? new Float64Array(0) : backwardStart(forwardSpace, backwardSpace, decay)
+        const start = backwardSpace.size === 0 ? new Float64Array(0) : backwardStart(forwardSpace, backwardSpace, decay)
         spaces = { forward: forwardSpace, backward: backwardSpace, start }
       }
       return spaces

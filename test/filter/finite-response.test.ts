@@ -33,7 +33,10 @@ describe('convolveTaps', () => {
 
   test('gives exactly 0 before the first and after the last sample that is not 0, also by transforms', () => {
     const x = new Float64Array(3000)
-    x.set(pseudoRandom(400, 2).map((v) => v + 2), 1000)
+    x.set(
+      pseudoRandom(400, 2).map((v) => v + 2),
+      1000,
+    )
     const taps = pseudoRandom(301, 9)
     const y = convolveTaps(x, taps)
     expect(y.subarray(0, 1000).every((value) => value === 0)).toBe(true)

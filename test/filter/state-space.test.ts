@@ -5,7 +5,8 @@ import { runStateVariable, stateVariableProgram } from '../../src/filter/state-v
 import { singleStage } from './arbitrary-chain.ts'
 import { expectClose, largest } from './expect-close.ts'
 
-const noise = (n: number) => Float64Array.from({ length: n }, (_, i) => ((i * 7919 + ((i * i) % 1013)) % 2003) / 1001 - 1)
+const noise = (n: number) =>
+  Float64Array.from({ length: n }, (_, i) => ((i * 7919 + ((i * i) % 1013)) % 2003) / 1001 - 1)
 
 const program = singleStage
   .filter(({ stages }) => stages[0].analogue !== null)

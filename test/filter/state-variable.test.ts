@@ -13,7 +13,8 @@ import { singleStage } from './arbitrary-chain.ts'
 import { runDirectForm } from './brute-force.ts'
 import { expectClose, largest } from './expect-close.ts'
 
-const noise = (n: number) => Float64Array.from({ length: n }, (_, i) => ((i * 7919 + ((i * i) % 1013)) % 2003) / 1001 - 1)
+const noise = (n: number) =>
+  Float64Array.from({ length: n }, (_, i) => ((i * 7919 + ((i * i) % 1013)) % 2003) / 1001 - 1)
 
 const recursive = singleStage.filter(({ stages }) => stages[0].analogue !== null).map(({ stages }) => stages[0])
 
@@ -63,7 +64,12 @@ describe('runStateVariable', () => {
     runStateVariable(program, new Float64Array(6), whole, 0, whole.length, false)
     const parts = noise(20_000)
     const states = new Float64Array(6)
-    for (const [from, to] of [[0, 1], [1, 8192], [8192, 8193], [8193, 20_000]]) {
+    for (const [from, to] of [
+      [0, 1],
+      [1, 8192],
+      [8192, 8193],
+      [8193, 20_000],
+    ]) {
       runStateVariable(program, states, parts, from, to, false)
     }
     expect(parts).toEqual(whole)
