@@ -48,6 +48,7 @@ export function FrequencyFigure({ evaluation, workspace, caption, height, width 
   const [held, setHeld] = useState<readonly [number, number] | null>(null)
   const [hovered, setHovered] = useState<number | null>(null)
   const [kept, setKept] = useState<number | null>(null)
+  const [focused, setFocused] = useState(false)
 
   const last = frequency.hz.length - 1
   const own: readonly [number, number] = [frequency.hz[0], frequency.hz[last]]
@@ -59,7 +60,7 @@ export function FrequencyFigure({ evaluation, workspace, caption, height, width 
   )
   const at = Math.min(toHz, Math.max(fromHz, hovered ?? kept ?? Math.sqrt(fromHz * toHz)))
   const reading = readingAt(frequency, shows, at)
-  const told = hovered === null && held === null
+  const told = hovered === null && !focused
   return (
     <div className="figure-body wraps">
       <FigureHead title="Frequency" svg={svg} caption={caption} fileName="frequency">
@@ -88,10 +89,14 @@ export function FrequencyFigure({ evaluation, workspace, caption, height, width 
             ' in ms'
           )}
           {told && shows !== 'gain' ? `, ${shows === 'phase' ? 'wrapped, ' : ''}where the gain exceeds 1 %` : null}
-          {hovered !== null ? <span className="read">{`, ${reading}`}</span> : null}
+          {told ? null : <span className="read">{`, ${reading}`}</span>}
         </span>
       </FigureHead>
-      <div className="hanging">
+      <div
+        className="hanging"
+        onFocus={(event) => setFocused(event.target.getAttribute('aria-label') === CURSOR)}
+        onBlur={() => setFocused(false)}
+      >
         <FigureFrame
           title={`Frequency: ${TITLE[shows]}`}
           description={describe(evaluation, shows)}
@@ -166,7 +171,7 @@ function FrequencyPlot(props: FrequencyPlotProps) {
         min={fromHz}
         max={toHz}
         step={at * 0.02}
-        name="frequency cursor"
+        name={CURSOR}
         valueText={reading}
         onChange={onCursor}
       />
@@ -174,6 +179,7 @@ function FrequencyPlot(props: FrequencyPlotProps) {
   )
 }
 
+const CURSOR = 'frequency cursor'
 const PHASE_DOMAIN: [number, number] = [-200, 200]
 
 /** "1.25 Hz: 71 %, −3.0 dB" */

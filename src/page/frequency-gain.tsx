@@ -7,6 +7,7 @@ import { Axis, Clipped, DirectLabel, Dot, type Frame, GridLines, Handle, PathAre
 import { replaceStage } from '../state/chain-actions.ts'
 import type { Evaluation } from '../state/evaluation.ts'
 import { endGesture, say } from '../state/store.ts'
+import { fixed } from '../words/number.ts'
 import { type CutoffMark, withCutoff } from './cutoff-marks.ts'
 import { frequencyLabels, type HalfPoint } from './frequency-labels.ts'
 import { axisTitle, courseOf, type GainAxis, type GainUnit, gainsIn, hzText, largest, noiseIn, spectrumIn, valueAt } from './frequency-scale.ts'
@@ -61,7 +62,7 @@ export function FrequencyGain({ evaluation, unit, frame, x, y, axis, cutoffs, on
   const halves = (points: readonly number[], value: number, strong: boolean): HalfPoint[] =>
     points
       .filter((hz) => hz >= x.domain[0] && hz <= x.domain[1])
-      .map((hz) => ({ x: x.toPixel(hz), y: y.toPixel(value), text: hzText(hz), strong }))
+      .map((hz) => ({ x: x.toPixel(hz), y: y.toPixel(value), text: hzText(hz), strong, stated: false }))
   const marks = cutoffs
     .filter(({ hz }) => hz >= x.domain[0] && hz <= x.domain[1])
     .map((cutoff) => {
@@ -79,7 +80,7 @@ export function FrequencyGain({ evaluation, unit, frame, x, y, axis, cutoffs, on
   const alone = marks.filter((mark) => !dots.some((dot) => near(dot, mark)))
   const points: HalfPoint[] = [
     ...dots,
-    ...alone.map((mark) => ({ x: mark.x, y: mark.y, text: hzText(mark.cutoff.hz), strong: true })),
+    ...alone.map((mark) => ({ x: mark.x, y: mark.y, text: hzText(mark.cutoff.hz), strong: true, stated: true })),
   ]
   const pointKey = points.map(({ x: px, y: py, text, strong }) => `${px} ${py} ${text} ${strong}`).join('|')
   // biome-ignore lint/correctness/useExhaustiveDependencies: the points are what their key says
@@ -101,8 +102,8 @@ export function FrequencyGain({ evaluation, unit, frame, x, y, axis, cutoffs, on
     })
   }, [curves, axis, x, y, left, right, top, bottom, plotWidth, pointKey])
 
-  const ticks = ticksAt(y, axis.ticks)
-  const lines = ticksAt(y, [...axis.ticks, axis.halfAmplitude, axis.halfPower])
+  const ticks = ticksAt(y, axis.ticks, (value) => fixed(value, 0))
+  const lines = ticksAt(y, [...new Set([...axis.ticks, axis.halfAmplitude, axis.halfPower])])
   const maskId = `${frame.id}-chain`
   return (
     <>

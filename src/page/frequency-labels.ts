@@ -9,6 +9,8 @@ export interface HalfPoint {
   y: number
   text: string
   strong: boolean
+  /** A handle's own number, which the protocol line states anyway. */
+  stated: boolean
 }
 
 export interface FrequencyCourses {
@@ -43,14 +45,15 @@ const HEIGHT = 15
 
 /** All labels that found room, ready to be drawn. */
 export function frequencyLabels(courses: FrequencyCourses): FigureLabel[] {
-  const stages = courses.stages.map((_, place) => stageWish(courses, place))
+  const { points } = courses
+  const stages = courses.stages.map((_, which) => stageWish(courses, which))
   const first = [
-    ...courses.points.filter((point) => point.strong).map(pointWish),
-    ...courses.points.filter((point) => !point.strong).map(pointWish),
+    ...points.filter(({ strong, stated }) => strong && !stated).map(pointWish),
+    ...points.filter(({ strong }) => !strong).map(pointWish),
     chainWish(courses),
     ...spectrumWishes(courses),
   ]
-  const last = [noiseWish(courses), ...halfWishes(courses)]
+  const last = [...points.filter(({ stated }) => stated).map(pointWish), noiseWish(courses), ...halfWishes(courses)]
   // which stage chooses first makes a difference, and no order is the best for all chains
   const orders = stages.length > 1 ? [stages, [...stages].reverse()] : [stages]
   const tries = orders.map((order) => place([...first, ...order, ...last], courses))

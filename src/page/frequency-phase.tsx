@@ -1,11 +1,13 @@
 /** Phase or group delay of the whole chain over frequency, where it lets something through. */
 import { useMemo } from 'react'
 import { Axis, Clipped, DirectLabel, type Frame, GridLines, PathLine, ZeroLine } from '../plot/index.ts'
+import { textWidth } from '../plot/axis-layout.ts'
 import { linePath } from '../plot/path.ts'
+import { placeLabels, placesAlong } from '../plot/place-labels.ts'
 import type { Scale } from '../plot/scale.ts'
 import { ticksAt, ticksFor } from '../plot/ticks.ts'
 import type { FrequencyFigure } from '../state/evaluation.ts'
-import { axisTitle, DRAWN_GAIN, type Pieces } from './frequency-scale.ts'
+import { axisTitle, courseOf, DRAWN_GAIN, type Pieces } from './frequency-scale.ts'
 
 interface FrequencyPhaseProps {
   frequency: FrequencyFigure
@@ -17,7 +19,7 @@ interface FrequencyPhaseProps {
 }
 
 export function FrequencyPhase({ frequency, shows, frame, x, y, pieces }: FrequencyPhaseProps) {
-  const { bottom, left, right } = frame
+  const { bottom, left, right, top } = frame
   const path = useMemo(() => linePath(pieces.hz, pieces.values, x, y), [pieces, x, y])
   const ticks = shows === 'phase' ? ticksAt(y, [-180, -90, 0, 90, 180]) : ticksFor(y, { lie: 'upright' })
   const drawn = pieces.values.filter(Number.isFinite)
@@ -30,7 +32,18 @@ export function FrequencyPhase({ frequency, shows, frame, x, y, pieces }: Freque
           ? 'whole chain: zero-phase'
           : 'whole chain: no delay at any frequency'
         : 'whole chain'
-  const place = useMemo(() => emptiest(pieces.hz, pieces.values, x, y, left, right, flat), [pieces, x, y, left, right, flat])
+  const place = useMemo(() => {
+    const limits = { left, right, top, bottom }
+    const size = { width: textWidth(words) * 1.06, height: 15 }
+    const heights = courseOf(pieces.hz, pieces.values, x, y, left, right - left)
+    // towards the middle of what is drawn, above the curve rather than below it
+    const seen = Array.from(heights.keys()).filter((column) => Number.isFinite(heights[column]))
+    const middle = seen.length > 0 ? (seen[0] + seen[seen.length - 1]) / 2 : (right - left) / 2
+    const along = placesAlong(heights, size, left, (column, side) => Math.abs(column - middle) / 60 + (side > 0 ? 0.5 : 0))
+    const anywhere = { x: (left + right) / 2, y: (top + bottom) / 2, anchor: 'middle' as const, cost: 100 }
+    const [found] = placeLabels([{ ...size, places: [...along, anywhere] }], { limits, courses: [{ heights, weight: 3 }] })
+    return found
+  }, [pieces, words, x, y, left, right, top, bottom])
   return (
     <>
       <Unheard frequency={frequency} frame={frame} x={x} />
@@ -42,9 +55,18 @@ export function FrequencyPhase({ frequency, shows, frame, x, y, pieces }: Freque
       <Clipped frame={frame}>
         <PathLine d={path} tone="after" />
       </Clipped>
-      <DirectLabel x={place.x} y={place.y} tone="after" anchor="middle" strong>
-        {words}
-      </DirectLabel>
+      {place ? (
+        <DirectLabel
+          x={place.x}
+          y={place.y}
+          tone="after"
+          anchor={place.anchor}
+          ground={place.crossed ? 'sheet' : 'none'}
+          strong
+        >
+          {words}
+        </DirectLabel>
+      ) : null}
     </>
   )
 }
@@ -72,21 +94,4 @@ function Unheard({ frequency: { hz, gain }, frame, x }: { frequency: FrequencyFi
         pointerEvents="none"
       />
     ))
-}
-
-/** Where the label stands: over the middle of the line if that is flat, else in the corner farther from it. */
-function emptiest(hz: number[], values: number[], x: Scale, y: Scale, left: number, right: number, flat: boolean) {
-  const [bottom, top] = y.range
-  const seen = hz.map((f, i) => [x.toPixel(f), y.toPixel(values[i])] as const).filter(([, py]) => Number.isFinite(py))
-  if (seen.length === 0) return { x: (left + right) / 2, y: (top + bottom) / 2 }
-  const middle = (seen[0][0] + seen[seen.length - 1][0]) / 2
-  const within = Math.min(right - 130, Math.max(left + 130, middle))
-  if (flat) return { x: within, y: y.toPixel(0) - 14 }
-  const rooms = [left + 60, within, right - 60].flatMap((px) =>
-    [top + 14, bottom - 14].map((py) => {
-      const near = seen.filter(([sx]) => Math.abs(sx - px) < 50).map(([, sy]) => Math.abs(sy - py))
-      return { x: px, y: py, room: Math.min(200, ...near) }
-    }),
-  )
-  return rooms.reduce((best, room) => (room.room > best.room ? room : best))
 }

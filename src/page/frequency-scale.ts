@@ -27,7 +27,7 @@ export function gainAxis(frequency: FrequencyFigure, unit: GainUnit): GainAxis {
   const highest = Math.max(1, largest(frequency.gain), ...frequency.stages.map((stage) => largest(stage.gain)))
   if (unit === 'percent') {
     // one row of labels has its place above the highest curve
-    const ticks = highest > 1.6 ? [0, 50, 100, 100 * Math.floor(highest)] : [0, 50, 71, 100]
+    const ticks = highest > 1.6 ? [0, 50, 100, 100 * Math.floor(highest)] : [0, 50, 100 * Math.SQRT1_2, 100]
     return {
       domain: [0, 100 * highest * 1.2],
       ticks: [...new Set(ticks)],

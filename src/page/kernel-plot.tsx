@@ -49,7 +49,9 @@ export function KernelPlot({ kernel, shows, compressed, range, words, end, frame
     const course = envelopeCourse(kernel, values, x, y, left, plotWidth)
     const ends = range.reach === null ? [] : [x.toPixel(range.reach.fromMs), x.toPixel(range.reach.toMs)]
     const taken = ends.map((at) => ({ left: at - 3, right: at + 3, top, bottom }))
-    return placeWords({ words, end, endY: y.toPixel(end?.value ?? 0), limits: { left, right, top, bottom }, course, taken })
+    const endX = Math.min(right, ends[1] ?? right)
+    const endY = y.toPixel(end?.value ?? 0)
+    return placeWords({ words, end, endX, endY, limits: { left, right, top, bottom }, course, taken })
   }, [range, kernel, values, words, end, x, y, left, right, top, bottom, plotWidth])
   const outside = range.reach === null ? [] : outsideOf(range.reach, x.toPixel, left, right)
   return (
@@ -144,6 +146,7 @@ function outsideOf(
 interface WordsRoom {
   words: KernelWords
   end: StepEnd | null
+  endX: number
   endY: number
   limits: LabelBox
   course: Float64Array
@@ -151,7 +154,7 @@ interface WordsRoom {
 }
 
 /** The words on the reach as one block where the curve leaves room, right before left, top before bottom; else line by line. */
-function placeWords({ words, end, endY, limits, course, taken }: WordsRoom) {
+function placeWords({ words, end, endX, endY, limits, course, taken }: WordsRoom) {
   const { left, right, top, bottom } = limits
   const room = { limits, taken, courses: [{ heights: course, weight: 3 }] }
   const lines = [words.reach, ...words.more].map((text, row) => ({ text, strong: row === 0 }))
@@ -166,7 +169,7 @@ function placeWords({ words, end, endY, limits, course, taken }: WordsRoom) {
     return { width, height, places }
   }
   const endPlaces = [-14, 14, -24, 24, -40, 40].map(
-    (away, i): LabelPlace => ({ x: right - 8, y: endY + away, anchor: 'end', cost: i * 0.2 }),
+    (away, i): LabelPlace => ({ x: endX - 8, y: endY + away, anchor: 'end', cost: i * 0.2 }),
   )
   const endWish = { width: textWidth(end?.words ?? '') * 1.06, height: LINE_HEIGHT, places: end ? endPlaces : [] }
   const [atEnd, block] = placeLabels([endWish, wishOf(Math.max(...lines.map(widthOf)), LINE_HEIGHT * lines.length)], room)

@@ -101,8 +101,9 @@ export function kernelWords({ chain }: Evaluation, range: KernelRange): KernelWo
   const { fromMs, toMs } = range.reach
   const amplified = chain.stages.some(({ spec }) => spec.design === 'amplifier' && spec.inData !== true)
   const offline = chain.stages.some(({ spec }) => spec.design !== 'amplifier' && spec.inData !== true)
-  const more = [amplified && offline ? '99 % of the area, amplifier aside' : '99 % of the absolute area']
-  if (!range.whole) more.push(`drawn from ${lagText(range.fromMs)} to ${lagText(range.toMs)} ms only`)
+  const more = [amplified && offline ? '99 %, amplifier aside' : '99 % of the absolute area']
+  const [from, to] = [lagText(range.fromMs), lagText(range.toMs)]
+  if (!range.whole) more.push(from === lagText(-range.toMs) ? `drawn to ±${to} ms` : `drawn ${from} to ${to} ms`)
   return { reach: `reach ${lagText(fromMs)} to ${lagText(toMs)} ms`, more }
 }
 
