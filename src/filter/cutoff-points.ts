@@ -86,8 +86,7 @@ function closedForm(
   passes: number,
   samplingRateHz: number,
 ): CrossingPoints {
-  const at = (gain: number) =>
-    edgesHz(pass, scaleEdges(pass, edges, warpedRatio(gain, passes, order)), samplingRateHz)
+  const at = (gain: number) => edgesHz(pass, scaleEdges(pass, edges, warpedRatio(gain, passes, order)), samplingRateHz)
   return { halfAmplitudeHz: at(HALF_AMPLITUDE), halfPowerHz: at(HALF_POWER) }
 }
 

@@ -7,10 +7,7 @@ export function checkMovingAverage(spec: MovingAverageSpec, samplingRateHz: numb
   checkChoice('delay', spec.delay, ['compensated', 'causal'])
   const shortest = 2000 / samplingRateHz
   if (!(typeof spec.durationMs === 'number' && spec.durationMs >= shortest * (1 - 1e-9))) {
-    throw specError(
-      'durationMs',
-      `durationMs must be at least ${shortest} (two samples), was ${said(spec.durationMs)}`,
-    )
+    throw specError('durationMs', `durationMs must be at least ${shortest} (two samples), was ${said(spec.durationMs)}`)
   }
   checkTaps('durationMs', movingAverageSamples(spec.durationMs, samplingRateHz))
 }

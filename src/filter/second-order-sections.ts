@@ -122,8 +122,8 @@ function quadratic(roots: readonly Root[]): Quadratic {
     return { z1: (-2 * (1 - s0)) / atOne, z2: (1 - s1 + s0) / atOne, s2: 1, s1, s0, atOne }
   }
   const [a, b] = roots
-  const z1 = -(a.zRe + b.zRe)
-  const z2 = a.zRe * b.zRe
+  const z1 = 0 - (a.zRe + b.zRe)
+  const z2 = a.zRe * b.zRe + 0 // no −0
   const finite = roots.filter((root) => root.s.re !== Infinity).map((root) => root.s.re)
   if (finite.length === 0) return { z1, z2, s2: 0, s1: 0, s0: 1, atOne: 1 }
   if (finite.length === 1) return { z1, z2, s2: 0, s1: 1, s0: -finite[0], atOne: 1 - finite[0] }

@@ -80,13 +80,15 @@ export function sectionsGroupDelaySeconds(analogue: Float64Array, frequencyHz: n
 /** (1 + t²)·d/dt arg(q2·(jt)² + q1·jt + q0); 0 where zeros lie on the unit circle, which turn nothing. */
 function argumentSlope(q2: number, q1: number, q0: number, t: number): number {
   if (q1 === 0) return 0
-  if (Math.abs(t) <= 1) {
-    const square = t * t
+  const square = t * t
+  // a root at σ = 0 turns nothing either, and is divided out: at 0 Hz it would leave 0/0
+  if (q0 === 0) return (q1 * q2 * (1 + square)) / (q1 * q1 + q2 * q2 * square)
+  if (square <= 1) {
     const real = q0 - q2 * square
     return (q1 * (q0 + q2 * square) * (1 + square)) / (real * real + q1 * q1 * square)
   }
   // the same, divided by t⁴, so that nothing overflows towards half the sampling rate
-  const inverse = 1 / (t * t)
+  const inverse = 1 / square
   const real = q0 * inverse - q2
   return (q1 * (q0 * inverse + q2) * (1 + inverse)) / (real * real + q1 * q1 * inverse)
 }

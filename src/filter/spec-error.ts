@@ -46,10 +46,7 @@ export function checkChoice(field: string, value: unknown, choices: readonly str
 export function checkFrequency(field: string, hz: unknown, samplingRateHz: number, label = field): void {
   const half = samplingRateHz / 2
   if (typeof hz !== 'number' || !(hz > 0 && hz < half)) {
-    throw specError(
-      field,
-      `${label} must lie between 0 and ${half} (half the sampling rate), was ${said(hz)}`,
-    )
+    throw specError(field, `${label} must lie between 0 and ${half} (half the sampling rate), was ${said(hz)}`)
   }
 }
 
