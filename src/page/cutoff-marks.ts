@@ -39,7 +39,11 @@ export function cutoffMarks(
       const highest = spec.design === 'notch' ? half / (spec.harmonics + 1) : half - margin
       const lowest = spec.design === 'notch' && spec.harmonics > 0 ? spec.bandwidthHz : margin
       const floorHz = Math.max(limits.fromHz, lowest * NEAR, edge > 0 ? all[edge - 1] * NEAR : 0)
-      const ceilingHz = Math.min(limits.toHz, highest / NEAR, edge + 1 < all.length ? all[edge + 1] / NEAR : limits.toHz)
+      const ceilingHz = Math.min(
+        limits.toHz,
+        highest / NEAR,
+        edge + 1 < all.length ? all[edge + 1] / NEAR : limits.toHz,
+      )
       const { gain, word } = meaningOf(spec)
       const side = all.length > 1 ? ['lower ', 'upper '][edge] : ''
       return {

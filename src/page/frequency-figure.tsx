@@ -155,7 +155,9 @@ function FrequencyPlot(props: FrequencyPlotProps) {
     return linearScale(domain, [bottom, top])
   }, [shows, axis, pieces, bottom, top])
   const value =
-    shows === 'gain' ? gainsIn(unit, [valueAt(frequency.hz, frequency.gain, at)], axis)[0] : valueAt(pieces.hz, pieces.values, at)
+    shows === 'gain'
+      ? gainsIn(unit, [valueAt(frequency.hz, frequency.gain, at)], axis)[0]
+      : valueAt(pieces.hz, pieces.values, at)
   return (
     <>
       {shows === 'gain' ? (
@@ -207,7 +209,9 @@ function describe({ frequency, table }: Evaluation, shows: View['frequencyShows'
     const what = shows === 'phase' ? 'Phase in degrees' : 'Group delay in milliseconds'
     if (drawn.length === 0) return `${what} of the whole chain: its gain exceeds 1 % nowhere from ${ends}.`
     const unit = shows === 'phase' ? '°' : ' ms'
-    const [low, high] = [Math.min(...drawn), Math.max(...drawn)].map((value) => fixed(value, shows === 'phase' ? 0 : 1) + unit)
+    const [low, high] = [Math.min(...drawn), Math.max(...drawn)].map(
+      (value) => fixed(value, shows === 'phase' ? 0 : 1) + unit,
+    )
     const range = low === high ? `${low} throughout` : `between ${low} and ${high}`
     return `${what} of the whole chain from ${ends}, where its gain exceeds 1 %: ${range}.`
   }

@@ -3,14 +3,36 @@ import { useMemo } from 'react'
 import { areaPath, linePath } from '../plot/path.ts'
 import type { Scale } from '../plot/scale.ts'
 import { ticksAt } from '../plot/ticks.ts'
-import { Axis, Clipped, DirectLabel, Dot, type Frame, GridLines, Handle, PathArea, PathLine, ZeroLine } from '../plot/index.ts'
+import {
+  Axis,
+  Clipped,
+  DirectLabel,
+  Dot,
+  type Frame,
+  GridLines,
+  Handle,
+  PathArea,
+  PathLine,
+  ZeroLine,
+} from '../plot/index.ts'
 import { replaceStage } from '../state/chain-actions.ts'
 import type { Evaluation } from '../state/evaluation.ts'
 import { endGesture, say } from '../state/store.ts'
 import { fixed } from '../words/number.ts'
 import { type CutoffMark, withCutoff } from './cutoff-marks.ts'
 import { frequencyLabels, type HalfPoint } from './frequency-labels.ts'
-import { axisTitle, courseOf, type GainAxis, type GainUnit, gainsIn, hzText, largest, noiseIn, spectrumIn, valueAt } from './frequency-scale.ts'
+import {
+  axisTitle,
+  courseOf,
+  type GainAxis,
+  type GainUnit,
+  gainsIn,
+  hzText,
+  largest,
+  noiseIn,
+  spectrumIn,
+  valueAt,
+} from './frequency-scale.ts'
 import { stageDash } from './stage-dash.ts'
 
 interface FrequencyGainProps {
@@ -38,7 +60,11 @@ export function FrequencyGain({ evaluation, unit, frame, x, y, axis, cutoffs, on
         name: table.find((row) => row.index === stage.index)?.name ?? `stage ${stage.index + 1}`,
         drawn: gainsIn(unit, stage.gain, axis),
         // where the stage itself forms the whole chain's curve
-        forming: gainsIn(unit, Float64Array.from(stage.gain, (gain) => (gain < 0.985 ? gain : Number.NaN)), axis),
+        forming: gainsIn(
+          unit,
+          Float64Array.from(stage.gain, (gain) => (gain < 0.985 ? gain : Number.NaN)),
+          axis,
+        ),
       })),
       before: spectrumIn(unit, before, most, axis),
       after: spectrumIn(unit, frequency.after, most, axis),
@@ -152,13 +178,7 @@ export function FrequencyGain({ evaluation, unit, frame, x, y, axis, cutoffs, on
         </g>
       </Clipped>
       {dots.map((dot) => (
-        <Dot
-          key={`${dot.x} ${dot.y}`}
-          x={dot.x}
-          y={dot.y}
-          tone="after"
-          radius={dot.strong ? 4.5 : 3.2}
-        />
+        <Dot key={`${dot.x} ${dot.y}`} x={dot.x} y={dot.y} tone="after" radius={dot.strong ? 4.5 : 3.2} />
       ))}
       {labels.map((label) => (
         <DirectLabel

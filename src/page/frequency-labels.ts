@@ -1,6 +1,13 @@
 /** Which words stand where in the frequency figure: each beside what it names, none over another. */
 import { textWidth } from '../plot/axis-layout.ts'
-import { type LabelBox, type LabelPlace, type LabelWish, placeLabels, placesAlong, type PlacedLabel } from '../plot/place-labels.ts'
+import {
+  type LabelBox,
+  type LabelPlace,
+  type LabelWish,
+  placeLabels,
+  placesAlong,
+  type PlacedLabel,
+} from '../plot/place-labels.ts'
 import type { Tone } from '../plot/tone.ts'
 
 /** A point of the whole chain at half-amplitude or half-power, or a handle without one. */
@@ -73,7 +80,7 @@ function place(wishes: Wish[], courses: FrequencyCourses): { labels: FigureLabel
     }),
     courses: [
       { heights: courses.chain, weight: 4 },
-      ...courses.stages.map(({ heights }) => ({ heights, weight: 1.6 })),
+      ...courses.stages.map(({ heights }) => ({ heights, weight: 2.6 })),
       { heights: courses.before, weight: 1.6 },
       { heights: courses.noise, weight: 0.8 },
     ],
@@ -192,8 +199,7 @@ function noiseWish({ noise, left }: FrequencyCourses): Wish {
   const middle = noise.length / 3
   const text = 'noise, log scale'
   const size = { width: widthOf(text), height: HEIGHT }
-  const costAt = (column: number, side: -1 | 1) =>
-    (Math.abs(column - middle) / noise.length) * 2 + (side > 0 ? 1 : 0)
+  const costAt = (column: number, side: -1 | 1) => (Math.abs(column - middle) / noise.length) * 2 + (side > 0 ? 1 : 0)
   return wish(text, 'quiet', false, placesAlong(noise, size, left, costAt), 6)
 }
 
@@ -208,10 +214,15 @@ function halfWishes({ halves, left, right }: FrequencyCourses): Wish[] {
     const places: LabelPlace[] = []
     for (let x = left + 8; x < right - widthOf(text); x += 12) {
       for (const side of [-1, 1]) {
-        places.push({ x, y: y + side * 9.5, anchor: 'start', cost: ((x - left) / (right - left)) * 1.5 + (side > 0 ? 0.8 : 0) })
+        places.push({
+          x,
+          y: y + side * 9.5,
+          anchor: 'start',
+          cost: ((x - left) / (right - left)) * 1.5 + (side > 0 ? 0.8 : 0),
+        })
       }
     }
-    return wish(text, 'quiet', false, places, 4)
+    return wish(text, 'quiet', false, places, 2.4)
   })
 }
 

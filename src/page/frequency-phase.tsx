@@ -39,9 +39,17 @@ export function FrequencyPhase({ frequency, shows, frame, x, y, pieces }: Freque
     // towards the middle of what is drawn, above the curve rather than below it
     const seen = Array.from(heights.keys()).filter((column) => Number.isFinite(heights[column]))
     const middle = seen.length > 0 ? (seen[0] + seen[seen.length - 1]) / 2 : (right - left) / 2
-    const along = placesAlong(heights, size, left, (column, side) => Math.abs(column - middle) / 60 + (side > 0 ? 0.5 : 0))
+    const along = placesAlong(
+      heights,
+      size,
+      left,
+      (column, side) => Math.abs(column - middle) / 60 + (side > 0 ? 0.5 : 0),
+    )
     const anywhere = { x: (left + right) / 2, y: (top + bottom) / 2, anchor: 'middle' as const, cost: 100 }
-    const [found] = placeLabels([{ ...size, places: [...along, anywhere] }], { limits, courses: [{ heights, weight: 3 }] })
+    const [found] = placeLabels([{ ...size, places: [...along, anywhere] }], {
+      limits,
+      courses: [{ heights, weight: 3 }],
+    })
     return found
   }, [pieces, words, x, y, left, right, top, bottom])
   return (

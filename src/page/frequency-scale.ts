@@ -77,7 +77,12 @@ export function gainsIn(unit: GainUnit, gain: ArrayLike<number>, axis: GainAxis)
  *
  * @param largestValue  what counts as the largest; two spectra that share it share the scale.
  */
-export function spectrumIn(unit: GainUnit, spectrum: ArrayLike<number>, largestValue: number, axis: GainAxis): Float64Array {
+export function spectrumIn(
+  unit: GainUnit,
+  spectrum: ArrayLike<number>,
+  largestValue: number,
+  axis: GainAxis,
+): Float64Array {
   const shares = Float64Array.from(spectrum, (value) => (largestValue > 0 ? value / largestValue : 0))
   return gainsIn(unit, shares, axis)
 }

@@ -104,7 +104,9 @@ function endOfStep({ kernel, chain }: Evaluation, range: KernelRange): StepEnd |
   if (last < 0) return null
   const index = Math.min(last, Math.round(range.toMs / kernel.stepMs) - kernel.fromIndex)
   const value = kernel.step[index]
-  const slow = chain.stages.some(({ spec }) => spec.design === 'amplifier' && spec.pass === 'high' && spec.inData !== true)
+  const slow = chain.stages.some(
+    ({ spec }) => spec.design === 'amplifier' && spec.pass === 'high' && spec.inData !== true,
+  )
   const at = lagText((index + kernel.fromIndex) * kernel.stepMs)
   return { value, words: range.whole && !slow ? `final value ${fixed(value, 2)}` : `${fixed(value, 2)} at ${at} ms` }
 }
@@ -123,7 +125,8 @@ function describe(
   }
   const drawn = `Drawn from ${lagText(range.fromMs)} to ${lagText(range.toMs)} ms.`
   const reach = `${words.reach}, ${words.more.join(', ')}.`
-  if (shows === 'step response') return `Response to a step from 0 to 1. ${drawn} ${end ? `${end.words}. ` : ''}${reach}`
+  if (shows === 'step response')
+    return `Response to a step from 0 to 1. ${drawn} ${end ? `${end.words}. ` : ''}${reach}`
   let [low, high] = [0, 0]
   for (const value of kernel.impulse) {
     low = Math.min(low, value)

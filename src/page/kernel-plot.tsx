@@ -163,7 +163,12 @@ function placeWords({ words, end, endX, endY, limits, course, taken }: WordsRoom
     const places: LabelPlace[] = []
     for (let px = right - 10; px - width >= left + 10; px -= 8) {
       for (let py = top + height / 2 + 3; py + height / 2 <= bottom - 2; py += 6) {
-        places.push({ x: px - width, y: py, anchor: 'start', cost: (right - px) / (right - left) + (py - top) / (bottom - top) / 2 })
+        places.push({
+          x: px - width,
+          y: py,
+          anchor: 'start',
+          cost: (right - px) / (right - left) + (py - top) / (bottom - top) / 2,
+        })
       }
     }
     return { width, height, places }
@@ -172,7 +177,10 @@ function placeWords({ words, end, endX, endY, limits, course, taken }: WordsRoom
     (away, i): LabelPlace => ({ x: endX - 8, y: endY + away, anchor: 'end', cost: i * 0.2 }),
   )
   const endWish = { width: textWidth(end?.words ?? '') * 1.06, height: LINE_HEIGHT, places: end ? endPlaces : [] }
-  const [atEnd, block] = placeLabels([endWish, wishOf(Math.max(...lines.map(widthOf)), LINE_HEIGHT * lines.length)], room)
+  const [atEnd, block] = placeLabels(
+    [endWish, wishOf(Math.max(...lines.map(widthOf)), LINE_HEIGHT * lines.length)],
+    room,
+  )
   if (block && !block.crossed) {
     const rows = lines.map((line, row) => ({ ...line, ...block, y: block.box.top + LINE_HEIGHT * (row + 0.5) }))
     return { end: atEnd, lines: rows }

@@ -67,7 +67,12 @@ export function linearWidth(values: ArrayLike<number>): number {
 }
 
 /** Domain of values: zero within, and room at both ends. On a compressed scale the room is taken where the scale is wide. */
-export function valueDomain(values: ArrayLike<number>, first: number, end: number, width: number | null): [number, number] {
+export function valueDomain(
+  values: ArrayLike<number>,
+  first: number,
+  end: number,
+  width: number | null,
+): [number, number] {
   let low = 0
   let high = 0
   for (let i = Math.max(0, first); i < Math.min(values.length, end); i++) {

@@ -1,4 +1,15 @@
-import { Axis, DirectLabel, Dot, type Frame, GridLines, linearScale, PathArea, PathLine, ticksAt, ZeroLine } from '../plot/index.ts'
+import {
+  Axis,
+  DirectLabel,
+  Dot,
+  type Frame,
+  GridLines,
+  linearScale,
+  PathArea,
+  PathLine,
+  ticksAt,
+  ZeroLine,
+} from '../plot/index.ts'
 import { numberText } from '../plot/number-text.ts'
 
 interface SingleImpulsePlotProps {
