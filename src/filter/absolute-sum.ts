@@ -26,8 +26,17 @@ const GONE_TO_THE_END = 1e-12
 const STEP = 0.05
 /** Tails are run sample by sample until steps of this size may be taken. */
 const WORTHWHILE_STEP = 16
-/** Most samples that a margin runs one by one. */
-const MOST_SINGLE_SAMPLES = 2 ** 22
+/**
+ * Most samples that a margin runs one by one. What moves fast and is alive after that rings for long, as a narrow notch does: its
+ * absolute value is then averaged over …
+ */
+const MOST_SINGLE_SAMPLES = 2 ** 16
+/** … so many samples at a time, between which lie steps that are short against its decay alone. */
+const RINGING_SAMPLES = 256
+const RINGING_WEIGHTS = Float64Array.from(
+  { length: RINGING_SAMPLES },
+  (_, i) => (1 - Math.cos((2 * Math.PI * (i + 0.5)) / RINGING_SAMPLES)) / RINGING_SAMPLES,
+)
 
 /**
  * @param x         waveform that stands alone, x[0] at index 0.
@@ -155,39 +164,42 @@ function sumTail(
   margin: number,
   lifetimes: number,
 ): void {
-  const ends = poles.map((pole) => ({ at: lifetimes / pole.decay - margin, swiftness: swiftness(pole) }))
+  const modes = poles.map((pole) => ({
+    end: lifetimes / pole.decay - margin,
+    swift: swiftness(pole),
+    decay: pole.decay,
+  }))
   const state = start.slice()
+  const ringing = new Float64Array(size)
   const move = new Float64Array(size)
-  let value = 0
-  for (let i = 0; i < size; i++) value += c[i] * state[i]
   let power = d
   let step = 1
   let lag = 0
   let sum = 0
   let change = 0
-  let fastest = 0
+  let rings = false
+  let back = 1
+  let value = 0
   for (;;) {
     if (lag >= change) {
       // some modes have ended: the others may allow longer steps
-      const living = ends.filter(({ at }) => at > lag)
+      const living = modes.filter(({ end }) => end > lag)
       if (living.length === 0) return
-      change = Math.min(...living.map(({ at }) => at))
-      fastest = Math.max(...living.map((mode) => mode.swiftness))
+      change = Math.min(...living.map(({ end }) => end))
+      let fastest = Math.max(...living.map(({ swift }) => swift))
+      rings = fastest * WORTHWHILE_STEP > STEP
+      if (rings) fastest = Math.max(...living.map(({ decay }) => decay))
       while (2 * step * fastest <= STEP) {
         power = doubled(power, size)
         step *= 2
       }
+      // the mean belongs to the middle of its samples: what lasts longest has been larger at their start by this factor
+      const slowest = Math.min(...living.map(({ decay }) => decay))
+      back = Math.exp((slowest * RINGING_SAMPLES) / 2)
+      value = rings ? back * meanWhileRinging(d, c, state, ringing, move) : product(c, state)
     }
-    for (let i = 0; i < size; i++) {
-      let total = 0
-      for (let j = 0; j < size; j++) total += power[i * size + j] * state[j]
-      move[i] = total
-    }
-    let next = 0
-    for (let i = 0; i < size; i++) {
-      state[i] += move[i]
-      next += c[i] * state[i]
-    }
+    takeStep(power, state, move)
+    const next = rings ? back * meanWhileRinging(d, c, state, ringing, move) : product(c, state)
     const here = Math.abs(value)
     const there = Math.abs(next)
     // a straight line between the two, which may cross zero, and the ends' difference between sum and integral
@@ -198,4 +210,42 @@ function sumTail(
     tail.sums.push(sum)
     value = next
   }
+}
+
+function product(c: Float64Array, state: Float64Array): number {
+  let total = 0
+  for (let i = 0; i < c.length; i++) total += c[i] * state[i]
+  return total
+}
+
+/** state becomes (1 + D)·state; `move` is room for the difference. */
+function takeStep(d: Float64Array, state: Float64Array, move: Float64Array): void {
+  const size = state.length
+  for (let i = 0; i < size; i++) {
+    let total = 0
+    // a section depends on itself and on those before it alone
+    for (let j = 0; j <= (i | 1); j++) total += d[i * size + j] * state[j]
+    move[i] = total
+  }
+  for (let i = 0; i < size; i++) state[i] += move[i]
+}
+
+/**
+ * Mean absolute output around the middle of the next samples, weighted by a Hann window, so that it hardly depends on the phase in
+ * which the samples begin; the state stays.
+ */
+function meanWhileRinging(
+  d: Float64Array,
+  c: Float64Array,
+  state: Float64Array,
+  running: Float64Array,
+  move: Float64Array,
+): number {
+  running.set(state)
+  let sum = 0
+  for (let i = 0; i < RINGING_SAMPLES; i++) {
+    sum += RINGING_WEIGHTS[i] * Math.abs(product(c, running))
+    takeStep(d, running, move)
+  }
+  return sum
 }

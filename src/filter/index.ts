@@ -46,3 +46,12 @@ export {
   nextPowerOfTwo,
   realTransform,
 } from './fourier.ts'
+
+export { type Extent, appliedAmplifierStages, appliedOfflineStages, applyChain } from './apply-chain.ts'
+export { applyEpochs, epochPaddingSamples } from './epoch-rules.ts'
+export { adjointEpochs } from './epoch-adjoint.ts'
+export { adjointContinuous, runContinuous } from './stand-alone.ts'
+export { type Located, chainKernel, kernelOn, stepResponseOn } from './kernel.ts'
+export { type Reach, reach } from './reach.ts'
+export { type AbsoluteSum, absoluteBefore, absoluteSum } from './absolute-sum.ts'
+export { requireFinite } from './missing-values.ts'

@@ -10,6 +10,9 @@ export interface Located {
   readonly start: number
 }
 
+/** Half a gigabyte; longer responses can be had piece by piece. */
+const MOST_SAMPLES = 2 ** 26
+
 /** What each end of a response may leave out, of its absolute sum. */
 const LEFT_OUT = 4e-10
 
@@ -28,6 +31,9 @@ export function wholeResponse(stages: readonly Stage[], x: Float64Array): Locate
   const sum = absoluteSum(stages, x, true)
   const start = Math.min(0, lastBefore(sum, LEFT_OUT * sum.total))
   const end = Math.max(x.length, firstAfter(sum, LEFT_OUT * sum.total))
+  if (end - start > MOST_SAMPLES) {
+    throw new RangeError(`a response must last at most ${MOST_SAMPLES} samples to be held whole, was ${end - start}`)
+  }
   return { values: runContinuous(stages, x, start, end), start }
 }
 

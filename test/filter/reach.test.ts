@@ -83,6 +83,22 @@ describe('reach', () => {
     expect(absoluteSum(stages, Float64Array.of(1)).at.length).toBeLessThan(20_000)
   })
 
+  test.each([0.1, 0.01, 1e-4, 1e-7])(
+    'of a notch of %f Hz that rings for long follows from its decay',
+    (bandwidthHz) => {
+      // One pass: the impulse itself is 1, and beside it h = 2·α·cos(ωn)·exp(−αn) with α = πB/fs, whose absolute sum is 4/π
+      // where α is small: the last 0.5 % of 1 + 4/π begin where exp(−αn) = 0.005·(1 + π/4).
+      const { stages } = designChain(
+        [{ design: 'notch', frequencyHz: 50, bandwidthHz, harmonics: 0, direction: 'forward' }],
+        4096,
+      )
+      const { beforeSamples, afterSamples } = reach(stages)
+      const lag = Math.log(1 / (0.005 * (1 + Math.PI / 4))) / ((Math.PI * bandwidthHz) / 4096)
+      expect(beforeSamples).toBe(0)
+      expect(Math.abs(afterSamples / lag - 1)).toBeLessThan(1e-3)
+    },
+  )
+
   test('of a windowed sinc is at most its half length, of a causal one starts at 0, of no stage is 0', () => {
     const sinc = (delay: 'compensated' | 'causal'): StageSpec => ({
       design: 'windowed-sinc',
