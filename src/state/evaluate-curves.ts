@@ -27,7 +27,7 @@ type Shown = Workspace['shown']
 /** @throws RangeError where a built waveform or its epoch is impossible, or the recorded file is not at hand. */
 export const timeAxis = memoised((source: Source, data: RecordedData | null): TimeAxis => {
   if (source.kind === 'recorded') {
-    if (!data) throw new RangeError(`the data of ${source.fileName} are not at hand: open the file again`)
+    if (!data) throw new RangeError(`the data of “${source.fileName}” are not at hand: open the file again`)
     return { samplingRateHz: data.samplingRateHz, timesMs: data.timesMs }
   }
   checkBuiltWaveform(source)
@@ -85,7 +85,7 @@ export const rawCurves = memoised(
         components,
       }
     }
-    if (!data) throw new RangeError(`the data of ${source.fileName} are not at hand: open the file again`)
+    if (!data) throw new RangeError(`the data of “${source.fileName}” are not at hand: open the file again`)
     const before = recordedValues(data, name, channel, difference)
     return { before, after: filterRecordedWaveform(chain, before), components: null }
   },

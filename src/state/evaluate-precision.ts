@@ -15,6 +15,8 @@ export interface ScoreVariances {
   after: number
 }
 
+const unfilteredVariance = memoised(scoreVariance)
+
 /**
  * Variance of a linear score over the stated trials, unfiltered and filtered. The model's noise is that of single trials before anything;
  * stages that are in the data have acted on it already, for both.
@@ -33,7 +35,7 @@ export const scoreVariances = memoised(
     if (extent === 'continuous' && past.length === 0) {
       const applied = appliedStages(chain)
       return {
-        before: scoreVariance(weightsBefore, noise, samplingRateHz, trials),
+        before: unfilteredVariance(weightsBefore, noise, samplingRateHz, trials),
         after: scoreVarianceOfResponse(
           weightsAfter,
           (hz) => stagesResponse(applied, hz),

@@ -3,7 +3,7 @@
  * remembered by what it depends on, so that dragging the score window does not redesign the chain.
  */
 import { type Baseline, baselineWeights } from '../erp/baseline.ts'
-import { type NoScore, type Score, scoreOf, scoreUnit, scoreWeights } from '../erp/score.ts'
+import { type NoScore, type Score, scoreLinearity, scoreOf, scoreUnit, scoreWeights } from '../erp/score.ts'
 import { type FidelityRow, fidelityRows, largestAbsolute } from '../evidence/fidelity.ts'
 import { onsetOfBuilt } from '../evidence/onset-of-built.ts'
 import { type NoiseRow, noiseRow, varianceOfDifference } from '../evidence/precision.ts'
@@ -142,29 +142,38 @@ interface Weights {
   after: Float64Array
 }
 
-/** Null for a latency, which is no weighted sum, and for a peak that is not there. */
-const weightsOf = memoised(
-  (score: Score, baseline: Baseline, timesMs: Float64Array, before: Float64Array, after: Float64Array): Weights | null => {
-    switch (score.kind) {
-      case 'mean':
-      case 'moment': {
-        const weights = scoreWeights(score, baseline, timesMs)
-        return { before: weights, after: weights }
-      }
-      case 'area':
-      case 'peak-amplitude': {
-        if (typeof scoreOf(before, timesMs, score) === 'string' || typeof scoreOf(after, timesMs, score) === 'string')
-          return null
-        return {
-          before: scoreWeights(score, baseline, timesMs, before),
-          after: scoreWeights(score, baseline, timesMs, after),
-        }
-      }
-      default:
-        return null
-    }
-  },
+/** The same array for the same score, whatever the chain: what hangs on it alone is kept by its identity. */
+const linearWeights = memoised((score: Score, baseline: Baseline, timesMs: Float64Array) =>
+  scoreWeights(score, baseline, timesMs),
 )
+
+const heldWeights = memoised((score: Score, baseline: Baseline, timesMs: Float64Array, y: Float64Array) =>
+  scoreWeights(score, baseline, timesMs, y),
+)
+
+/** Null for a latency, which is no weighted sum, and for a peak that is not there. */
+function weightsOf(
+  score: Score,
+  baseline: Baseline,
+  timesMs: Float64Array,
+  before: Float64Array,
+  after: Float64Array,
+): Weights | null {
+  switch (scoreLinearity(score.kind)) {
+    case 'linear': {
+      const weights = linearWeights(score, baseline, timesMs)
+      return { before: weights, after: weights }
+    }
+    case 'held fixed':
+      if ([before, after].some((y) => typeof scoreOf(y, timesMs, score) === 'string')) return null
+      return {
+        before: heldWeights(score, baseline, timesMs, before),
+        after: heldWeights(score, baseline, timesMs, after),
+      }
+    case 'none':
+      return null
+  }
+}
 
 const unseenOf = memoised((chain: Chain, weights: Float64Array) => unseenShare(chain, weights, 0, weights.length))
 

@@ -6,11 +6,16 @@ import type { Workspace } from './workspace.ts'
 /** Roughly the samples that one evaluation runs through; about 5 ns each. */
 const HEAVY_SAMPLES = 1_500_000
 
-/** Samples over which a stage's kernel matters: its taps, or some twenty time constants of its slowest pole. */
+/** What a tap costs beside a sample that is run through: designing, responses and sums take each tap many times, a minimum phase more. */
+const TAP_COST = { compensated: 60, causal: 60, 'minimum-phase': 500 } as const
+
+const MINIMUM_PHASE_COST = 60
+
+/** Samples over which a stage's kernel matters: its taps by their cost, or some twenty time constants of its slowest pole. */
 function kernelSamples(spec: StageSpec, samplingRateHz: number): number {
   switch (spec.design) {
     case 'windowed-sinc':
-      return (8 * samplingRateHz) / spec.transitionHz
+      return (TAP_COST[spec.delay] * 3.3 * samplingRateHz) / spec.transitionHz
     case 'moving-average':
       return (spec.durationMs / 1000) * samplingRateHz
     case 'amplifier':

@@ -1,4 +1,6 @@
 /** What the workspace becomes when a table is opened: the user's data, and everything else as sensible as it can be guessed. */
+import type { Baseline } from '../erp/baseline.ts'
+import type { TimeWindow } from '../erp/time-axis.ts'
 import type { Table } from '../files/index.ts'
 import { waveformOf } from '../files/index.ts'
 import type { RecordedSource, Workspace } from './workspace.ts'
@@ -19,20 +21,10 @@ export function workspaceOnTable(workspace: Workspace, source: RecordedSource, t
   const condition = table.conditions[0]
   const { values } = waveformOf(table, condition, channel)
   const { timesMs } = table
-  const first = timesMs[0]
-  const last = timesMs[timesMs.length - 1]
-  let peak = 0
   const from = Math.max(0, timesMs.findIndex((ms) => ms >= 0))
+  let peak = from
   for (let i = from; i < values.length; i++) if (Math.abs(values[i]) > Math.abs(values[peak])) peak = i
-  const stepMs = 1000 / table.samplingRateHz
-  const around = (halfMs: number) => {
-    const whole = Math.max(2 * stepMs, Math.round(halfMs / stepMs) * stepMs)
-    const snapped = (ms: number) => Number(ms.toFixed(3))
-    return {
-      fromMs: snapped(Math.max(first, timesMs[peak] - whole)),
-      toMs: snapped(Math.min(last, timesMs[peak] + whole)),
-    }
-  }
+  const around = (halfMs: number) => windowAround(timesMs, peak, halfMs)
   const polarity = values[peak] < 0 ? ('negative' as const) : ('positive' as const)
   const earlier = workspace.source.kind === 'recorded'
   return {
@@ -43,7 +35,7 @@ export function workspaceOnTable(workspace: Workspace, source: RecordedSource, t
     shown: { conditions: [condition], difference: null, chosen: condition, channel },
     chain: earlier ? workspace.chain : [],
     extent: 'epochs',
-    baseline: first <= -20 ? { fromMs: Number(first.toFixed(3)), toMs: 0 } : 'none',
+    baseline: baselineOn(timesMs),
     trials: table.trialsAveraged ?? (earlier ? workspace.trials : 40),
     score: { kind: 'mean', ...around(SCORE_HALF_MS), polarity },
     measure: { mean: around(SCORE_HALF_MS), peak: around(PEAK_HALF_MS), polarity },
@@ -58,4 +50,25 @@ export function workspaceOnTable(workspace: Workspace, source: RecordedSource, t
     },
     onsetMs: null,
   }
+}
+
+/** A window in whole milliseconds, as a person would state it, inside the epoch; where samples are too far apart for that, the samples around it. */
+function windowAround(timesMs: Float64Array, at: number, halfMs: number): TimeWindow {
+  const last = timesMs.length - 1
+  const whole = {
+    fromMs: Math.ceil(Math.max(timesMs[at] - halfMs, timesMs[0])),
+    toMs: Math.floor(Math.min(timesMs[at] + halfMs, timesMs[last])),
+  }
+  if (samplesIn(timesMs, whole) > 1) return whole
+  return { fromMs: timesMs[Math.max(0, at - 2)], toMs: timesMs[Math.min(last, at + 2)] }
+}
+
+/** The time before the event, where there is enough of it. */
+function baselineOn(timesMs: Float64Array): Baseline {
+  const whole = { fromMs: Math.ceil(timesMs[0]), toMs: Math.min(0, Math.floor(timesMs[timesMs.length - 1])) }
+  return timesMs[0] <= -20 && samplesIn(timesMs, whole) > 0 ? whole : 'none'
+}
+
+function samplesIn(timesMs: Float64Array, { fromMs, toMs }: TimeWindow): number {
+  return timesMs.filter((ms) => ms >= fromMs && ms <= toMs).length
 }

@@ -21,7 +21,7 @@ function waveformWords({ source, shown }: Workspace): string {
   const minus = chosen === DIFFERENCE && difference ? `${difference.first} minus ${difference.second}` : null
   if (source.kind === 'recorded') {
     const what = [channel, minus ?? (chosen === 'condition' ? null : chosen)].filter(Boolean).join(', ')
-    return `${what} of ${source.fileName}`
+    return `${what || 'the first channel'} of ${source.fileName}`
   }
   if (minus) return `the difference ${minus}`
   const condition = source.conditions.find((entry) => entry.name === chosen)

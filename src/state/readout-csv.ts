@@ -28,12 +28,13 @@ export function readoutCsv(evaluation: Evaluation, workspace: Workspace): string
   const { precision } = evaluation
   if (precision)
     rows.push(
-      [`noise of the score, ${workspace.trials} trials`, '', precision.unit, precision.before, precision.after, precision.change, '', '', '', '', ''],
+      [`noise of the score, ${workspace.trials} ${workspace.trials === 1 ? 'trial' : 'trials'}`, '', precision.unit, precision.before, precision.after, precision.change, '', '', '', '', ''],
       ['precision factor', '', '', '', finite(precision.precisionFactor), '', '', '', '', '', ''],
-      ['equal-trials factor', '', '', '', precision.equalTrialsFactor, '', '', '', '', '', ''],
+      ['equal-trials factor', '', '', '', finite(precision.equalTrialsFactor), '', '', '', '', '', ''],
     )
   const line = protocolText(protocolLine(protocolOf(workspace, evaluation.samplingRateHz)))
   return tableToCsv(header, [...rows, ['protocol', line, '', '', '', '', '', '', '', '', '']])
 }
 
-const finite = (value: number) => (Number.isFinite(value) ? value : String(value))
+/** A filter that leaves no noise has an infinite factor. */
+const finite = (value: number | string) => (typeof value === 'string' || Number.isFinite(value) ? value : String(value))
