@@ -109,3 +109,24 @@ export function placesBeside(x: number, y: number, lean: -1 | 0 | 1): LabelPlace
       }
   return places
 }
+
+/** Places above and below a point, for a label of that width that finds no room beside it. */
+export function placesOver(x: number, y: number, width: number): LabelPlace[] {
+  return [0.25, 0.5, 0.75].flatMap((part) =>
+    [-18, 18, -28, 28].map(
+      (dy): LabelPlace => ({ x: x - part * width, y: y + dy, anchor: 'start', cost: 8 + Math.abs(dy) * 0.5 }),
+    ),
+  )
+}
+
+/** The first wording for which a place is found that is no dearer than its limit. */
+export function firstThatFits(
+  wordings: readonly WantedText[],
+  place: (wanted: WantedText) => DrawnLabel[],
+): DrawnLabel[] {
+  for (const wording of wordings) {
+    const placed = place(wording)
+    if (placed.length > 0) return placed
+  }
+  return []
+}

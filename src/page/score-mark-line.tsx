@@ -41,7 +41,8 @@ export function ScoreMarkLine({ kind, fromPx, toPx, y, labels }: ScoreMarkLinePr
 /** A hair line to the nearest corner of a label that does not stand right beside the mark. */
 function tieTo({ box }: DrawnLabel, fromPx: number, toPx: number, y: number): string {
   const middle = (box.top + box.bottom) / 2
-  if (Math.abs(middle - y) < 11) return ''
+  const along = box.left < toPx && box.right > fromPx
+  if (along || Math.abs(middle - y) < 11) return ''
   const right = box.left >= toPx
   const edge = right ? toPx : fromPx
   const corner = right ? box.left - 2 : box.right + 2

@@ -1,4 +1,6 @@
 /** The time axis that the time figure and the effective window share, and what stands on it, without a screen. */
+import { layoutBottomAxis } from '../plot/axis-layout.ts'
+import { type Scale, type Tick, ticksFor } from '../plot/index.ts'
 import { stripMargin } from '../state/evaluate-figures.ts'
 import { fixed } from '../words/number.ts'
 
@@ -28,11 +30,39 @@ export function sampleNear(axis: TimeAxis, ms: number): number {
   return Math.max(0, Math.min(axis.samples - 1, Math.round((ms - axis.firstMs) / axis.stepMs)))
 }
 
-/** Where the cursor stands until it is moved: the moment at which the waveform is largest, whatever its sign. */
+/** Values this near to the largest, as a part of it, are as large. */
+const AS_LARGE = 1e-6
+
+/**
+ * Where the cursor stands until it is moved: the moment at which the waveform is largest, whatever its sign; the middle of it where it
+ * stays as large for a while.
+ */
 export function largestMomentMs(values: Float64Array, axis: TimeAxis): number {
-  let at = 0
-  for (let i = 1; i < values.length; i++) if (Math.abs(values[i]) > Math.abs(values[at])) at = i
-  return axis.firstMs + at * axis.stepMs
+  let first = 0
+  for (let i = 1; i < values.length; i++) if (Math.abs(values[i]) > Math.abs(values[first]) * (1 + AS_LARGE)) first = i
+  const least = Math.abs(values[first]) * (1 - AS_LARGE)
+  let last = first
+  while (last + 1 < values.length && Math.abs(values[last + 1]) >= least) last++
+  return axis.firstMs + Math.round((first + last) / 2) * axis.stepMs
+}
+
+const TITLE = 'Time, ms'
+
+/** Ticks of the time axis, few enough for its title to stand among them. */
+export function timeTicks(x: Scale): { ticks: Tick[]; title: string } {
+  const most = Math.abs(x.range[1] - x.range[0]) / 110
+  let ticks = ticksFor(x, { count: Math.max(3, most) })
+  for (let count = most - 0.5; count >= 1 && !titleFits(ticks, x); count -= 0.5) {
+    const fewer = ticksFor(x, { count })
+    if (fewer.length < 2) break
+    ticks = fewer
+  }
+  return { ticks, title: TITLE }
+}
+
+function titleFits(ticks: readonly Tick[], x: Scale): boolean {
+  const { labels, title } = layoutBottomAxis(ticks, x.range, 0, TITLE)
+  return title === null || labels.every((label) => label.y === title.y)
 }
 
 /** "400 ms", with one decimal where the sample lies between whole milliseconds. */

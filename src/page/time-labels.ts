@@ -40,12 +40,17 @@ export interface StillLabels {
 /** Labels that depend on the data and the windows, not on the cursor. */
 export function stillLabels(still: StillLabels): DrawnLabel[] {
   const { frame, windows, mark, unseen, others, zeroY, courses } = still
-  const wanted: WantedText[] = windows.map((entry) => windowLabel(entry, frame))
+  const wanted: WantedText[] = windows.map((entry) => windowLabel(entry, windows, frame))
   if (mark) wanted.push(markLabel(mark))
   for (const [i, { name, tone, heights }] of others.entries()) {
     const text: LabelText = { id: `condition ${i}`, tone, rows: [{ strong: name }] }
     // best where the curve stands far from zero, since there it is alone most often
-    const costAt = (column: number) => 24 - Math.min(24, Math.abs(heights[column] - zeroY) * 0.4)
+    // and dear where it runs together with another one
+    const rivals = courses.filter((course) => course.heights !== heights)
+    const costAt = (column: number) => {
+      const apart = Math.min(14, ...rivals.map((rival) => Math.abs(rival.heights[column] - heights[column])))
+      return 24 - Math.min(24, Math.abs(heights[column] - zeroY) * 0.4) + 2 * (14 - apart)
+    }
     wanted.push({ ...text, places: placesAlong(heights, labelSize(text), frame.left, costAt) })
   }
   for (const [i, { fromPx, toPx }] of unseen.entries()) {
@@ -66,29 +71,47 @@ export function handles(windows: readonly WindowLabel[], frame: Frame): LabelBox
 }
 
 /** Inside its window where that is wide enough, else beside it; at the top, or in the rows below. */
-function windowLabel({ id, fromPx, toPx, rows }: WindowLabel, frame: Frame): WantedText {
+function windowLabel(
+  { id, fromPx, toPx, rows }: WindowLabel,
+  windows: readonly WindowLabel[],
+  frame: Frame,
+): WantedText {
   const text: LabelText = { id, tone: 'ink', rows }
   const { width, height } = labelSize(text)
   const places: LabelPlace[] = []
+  // in another window it would be taken for that one's
+  const astray = (left: number, right: number) =>
+    windows.some((other) => other.id !== id && left < other.toPx && right > other.fromPx) ? 30 : 0
   for (let row = 0; row * 12 + height < frame.plotHeight - 6; row++) {
     const y = frame.top + 4 + height / 2 + row * 12
     const cost = row * 9
     if (toPx - fromPx >= width + 14) places.push({ x: fromPx + 8, y, anchor: 'start', cost })
-    places.push({ x: toPx + 8, y, anchor: 'start', cost: cost + 4 })
-    places.push({ x: fromPx - 8, y, anchor: 'end', cost: cost + 7 })
+    places.push({ x: toPx + 8, y, anchor: 'start', cost: cost + 4 + astray(toPx + 8, toPx + 8 + width) })
+    places.push({ x: fromPx - 8, y, anchor: 'end', cost: cost + 7 + astray(fromPx - 8 - width, fromPx - 8) })
   }
   return { ...text, places }
 }
 
 function markLabel({ fromPx, toPx, y, text }: { fromPx: number; toPx: number; y: number; text: string }): WantedText {
   const places: LabelPlace[] = []
+  const label: LabelText = { id: 'score after', tone: 'after', rows: [{ strong: text }] }
+  // along a line that is long enough for it
+  if (toPx - fromPx > labelSize(label).width + 16)
+    for (const dy of [-12, 12, -22, 22])
+      for (const part of [0, 0.25, 0.5, 0.75, 1])
+        places.push({
+          x: fromPx + 8 + part * (toPx - fromPx - 16 - labelSize(label).width),
+          y: y + dy,
+          anchor: 'start',
+          cost: Math.abs(dy) * 0.5 - 6,
+        })
   for (const dy of [0, 12, -12, 18, -18, 28, -28, 40, -40, 54, -54, 70, -70])
     for (const dx of [8, 18, 32, 50]) {
       const cost = Math.abs(dy) * 0.5 + (dx - 8) * 0.3
       places.push({ x: toPx + dx, y: y + dy, anchor: 'start', cost })
       places.push({ x: fromPx - dx, y: y + dy, anchor: 'end', cost: cost + 3 })
     }
-  return { id: 'score after', tone: 'after', rows: [{ strong: text }], places }
+  return { ...label, places }
 }
 
 /** What is read at the cursor. */

@@ -23,7 +23,7 @@ import { LabelTexts, Unspoken } from './label-text.tsx'
 import { courseOf } from './placed-labels.ts'
 import { scoreMark, scoreText } from './score-mark.ts'
 import { ScoreMarkLine } from './score-mark-line.tsx'
-import { amplitudeDomain, msText, type TimeAxis, unseenStretches, uvText } from './time-axis.ts'
+import { amplitudeDomain, msText, type TimeAxis, timeTicks, unseenStretches, uvText } from './time-axis.ts'
 import { TimeBands, type Windows } from './time-bands.tsx'
 import { readingWords } from './time-figure.tsx'
 import { type CursorReading, cursorLabels, handles, markExtent, stillLabels, type WindowLabel } from './time-labels.ts'
@@ -85,7 +85,12 @@ export function TimePlot(props: TimePlotProps) {
   const { score: window, baseline } = windows
   const still = useMemo(() => {
     const text = `score after ${scoreText(value, unit)}`
-    const labelled = windowLabels(x, window, baseline, mark ? null : `after ${scoreText(value, unit)}`)
+    const labelled = windowLabels(
+      x,
+      window,
+      baseline,
+      mark ? null : `after${typeof value === 'number' ? '' : ':'} ${scoreText(value, unit)}`,
+    )
     const extent = mark ? markExtent(mark, x, y) : null
     return {
       extent,
@@ -117,6 +122,7 @@ export function TimePlot(props: TimePlotProps) {
   const inTheWay = [...still.labels.map((label) => label.box), ...handles(still.windows, frame)]
   const moving = cursorLabels(frame, x.toPixel(cursorMs), msText(cursorMs), readings, courses.all, inTheWay)
 
+  const band = [x.toPixel(window.fromMs), x.toPixel(window.toMs)] as const
   return (
     <>
       <Grounds {...{ frame, x, y, axis, windows, unseen }} />
@@ -132,8 +138,8 @@ export function TimePlot(props: TimePlotProps) {
         onChange={onCursor}
       />
       <Unspoken>
-        <LabelTexts labels={still.labels} />
-        <LabelTexts labels={moving} />
+        <LabelTexts labels={still.labels} band={band} />
+        <LabelTexts labels={moving} band={band} />
       </Unspoken>
       <TimeBands {...{ frame, x, axis, windows, onHold }} />
     </>
@@ -180,7 +186,7 @@ export const Grounds = memo(function Grounds({ frame, x, y, axis, windows, unsee
       {unseen.map((part) => (
         <HatchedZone key={part.fromPx} frame={frame} kind="unseen" {...part} />
       ))}
-      <GridLines frame={frame} scale={x} along="x" />
+      <GridLines frame={frame} scale={x} along="x" ticks={timeTicks(x).ticks} />
       <GridLines frame={frame} scale={y} along="y" />
       {baseline === 'none' ? null : (
         <StaticBand frame={frame} scale={x} look="light" value={{ from: baseline.fromMs, to: baseline.toMs }} />
@@ -223,7 +229,7 @@ const TimeAxes = memo(function TimeAxes({ frame, x, y }: PlaneProps) {
   const ticks = ticksFor(y, { lie: 'upright' }).filter((tick) => tick.pixel > frame.top + UNIT_PX)
   return (
     <>
-      <Axis side="bottom" scale={x} at={frame.bottom} title="Time, ms" />
+      <Axis side="bottom" scale={x} at={frame.bottom} {...timeTicks(x)} />
       <Axis side="left" scale={y} at={frame.left} ticks={ticks} title="µV" />
     </>
   )

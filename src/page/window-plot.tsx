@@ -21,8 +21,17 @@ import {
 import type { WindowFigure } from '../state/evaluation.ts'
 import type { Workspace } from '../state/workspace.ts'
 import { LabelTexts, Unspoken } from './label-text.tsx'
-import { around, courseOf, type DrawnLabel, drawnLabels, labelSize, placesBeside } from './placed-labels.ts'
-import type { TimeAxis } from './time-axis.ts'
+import {
+  around,
+  courseOf,
+  drawnLabels,
+  firstThatFits,
+  labelSize,
+  placesBeside,
+  placesOver,
+  type WantedText,
+} from './placed-labels.ts'
+import { type TimeAxis, timeTicks } from './time-axis.ts'
 import type { Windows } from './time-bands.tsx'
 import { useFrame } from './time-plot.tsx'
 import { boxesOf, filteredWords, peakHere, perHundredMs, unfilteredWords, weightText } from './window-words.ts'
@@ -42,15 +51,16 @@ const LINEAR_PART = 0.03
 /** Room above and below the weights, px. */
 const ROOM_PX = 6
 
-/** Up to the largest weights on both sides, zero among them. */
+/** Up to the largest weights on both sides, zero among them; about linear up to a small part of the largest filtered weight. */
 export function weightScale(
-  curves: readonly Float64Array[],
+  unfiltered: Float64Array,
+  filtered: Float64Array,
   kind: 'compressed' | 'linear',
   frame: Pick<Frame, 'top' | 'bottom'>,
 ): Scale {
   let low = 0
   let high = 0
-  for (const values of curves)
+  for (const values of [unfiltered, filtered])
     for (const value of values) {
       if (value < low) low = value
       if (value > high) high = value
@@ -59,7 +69,11 @@ export function weightScale(
   const range = [frame.bottom - ROOM_PX, frame.top + ROOM_PX] as const
   return kind === 'linear'
     ? linearScale([low, high], range)
-    : compressedScale([low, high], range, LINEAR_PART * Math.max(-low, high))
+    : compressedScale([low, high], range, LINEAR_PART * (largest(filtered) || 1))
+}
+
+function largest(values: Float64Array): number {
+  return values.reduce((most, value) => Math.max(most, Math.abs(value)), 0)
 }
 
 export function WindowPlot({ window, workspace, axis, windows, cursor, scale, ...props }: WindowPlotProps) {
@@ -75,20 +89,22 @@ export function WindowPlot({ window, workspace, axis, windows, cursor, scale, ..
     [window, axis],
   )
   const { startMs, unfiltered, filtered } = curves
-  const y = useMemo(() => weightScale([unfiltered, filtered], scale, frame), [unfiltered, filtered, scale, frame])
+  const y = useMemo(() => weightScale(unfiltered, filtered, scale, frame), [unfiltered, filtered, scale, frame])
   const courses = useMemo(
     () => [unfiltered, filtered].map((values) => courseOf(values, startMs, axis.stepMs, frame, x, y)),
     [unfiltered, filtered, startMs, axis, frame, x, y],
   )
   const still = useMemo(() => {
-    const text = { id: 'unfiltered', tone: 'before' as const, rows: [{ strong: unfilteredWords(score) }] }
     const right = x.toPixel(score.toMs)
     const left = x.toPixel(score.fromMs)
     const places = [0, 1, 2, 3].flatMap((row) => [
       { x: right + 8, y: frame.top + 10 + row * 16, anchor: 'start' as const, cost: row * 8 },
       { x: left - 8, y: frame.top + 10 + row * 16, anchor: 'end' as const, cost: row * 8 + 4 },
     ])
-    return drawnLabels([{ ...text, places }], frame, courses, [])
+    const wordings = [unfilteredWords(score), 'unfiltered'].map(
+      (strong): WantedText => ({ id: 'unfiltered', tone: 'before', rows: [{ strong }], places, maxCost: 30 }),
+    )
+    return firstThatFits(wordings, (wanted) => drawnLabels([wanted], frame, courses, []))
   }, [score, x, frame, courses])
 
   const cursorMs = axis.firstMs + cursor * axis.stepMs
@@ -96,20 +112,22 @@ export function WindowPlot({ window, workspace, axis, windows, cursor, scale, ..
   const dot = { x: x.toPixel(cursorMs), y: y.toPixel(weight) }
   const wordings = filteredWords(weightText(weight, score), cursorMs, peakHere(workspace, cursorMs, axis.stepMs / 2))
   const taken = [...still.map((label) => label.box), around(dot.x, dot.y, 5)]
-  let moving: DrawnLabel[] = []
-  for (const wording of wordings) {
-    const text = { id: 'filtered', tone: 'after' as const, rows: [{ strong: wording }] }
-    if (labelSize(text).width > frame.plotWidth * 0.8) continue
-    moving = drawnLabels([{ ...text, places: placesBeside(dot.x, dot.y, -1) }], frame, courses, taken)
-    if (moving.length > 0) break
-  }
+  const moving = firstThatFits(
+    wordings.map((strong, i): WantedText => {
+      const text = { id: 'filtered', tone: 'after' as const, rows: [{ strong }] }
+      const places = [...placesBeside(dot.x, dot.y, -1), ...placesOver(dot.x, dot.y, labelSize(text).width)]
+      return { ...text, places, maxCost: i < wordings.length - 1 ? 34 : undefined }
+    }),
+    (wanted) => drawnLabels([wanted], frame, courses, taken),
+  )
+  const band = [x.toPixel(windows.score.fromMs), x.toPixel(windows.score.toMs)] as const
   return (
     <>
       <WindowCurves {...{ frame, x, y, axis, windows, curves }} />
       <StaticCursor frame={frame} scale={x} value={cursorMs} dots={[{ y: dot.y, tone: 'after' }]} />
       <Unspoken>
-        <LabelTexts labels={still} />
-        <LabelTexts labels={moving} />
+        <LabelTexts labels={still} band={band} />
+        <LabelTexts labels={moving} band={band} />
       </Unspoken>
     </>
   )
@@ -141,7 +159,7 @@ const WindowCurves = memo(function WindowCurves({ frame, x, y, axis, windows, cu
     <>
       <HatchedZone frame={frame} kind="outside" fromPx={frame.left} toPx={x.toPixel(axis.firstMs)} />
       <HatchedZone frame={frame} kind="outside" fromPx={x.toPixel(axis.lastMs)} toPx={frame.right} />
-      <GridLines frame={frame} scale={x} along="x" />
+      <GridLines frame={frame} scale={x} along="x" ticks={timeTicks(x).ticks} />
       <GridLines frame={frame} scale={y} along="y" />
       {baseline === 'none' ? null : (
         <StaticBand frame={frame} scale={x} look="light" value={{ from: baseline.fromMs, to: baseline.toMs }} />

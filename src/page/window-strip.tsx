@@ -8,7 +8,7 @@ import { useView } from './hooks.ts'
 import { msText } from './time-axis.ts'
 import { cursorAt, MARGIN, type SharedAxis } from './time-figure.tsx'
 import { WindowPlot } from './window-plot.tsx'
-import { outsideWords, perHundredMs, weightText } from './window-words.ts'
+import { noWindowWords, outsideWords, perHundredMs, weightText } from './window-words.ts'
 
 const HEIGHT = 80
 
@@ -21,14 +21,14 @@ export function WindowStrip(props: SharedAxis) {
         <h2>Effective window</h2>
       </div>
       <p className="no-window" style={{ height: HEIGHT }}>
-        A latency is not a weighted sum of samples, so it has no effective window.
+        {noWindowWords(props.evaluation.rows[0].after)}
       </p>
     </>
   )
 }
 
 function DrawnWindow(props: SharedAxis & { window: WindowFigure }) {
-  const { workspace, window, caption, axis, windows, cursor, onCursor } = props
+  const { evaluation, workspace, window, caption, axis, windows, cursor, onCursor } = props
   const svg = useRef<SVGSVGElement>(null)
   const scale = useView((view) => view.windowScale)
   const { score } = workspace
@@ -37,8 +37,8 @@ function DrawnWindow(props: SharedAxis & { window: WindowFigure }) {
     window.filtered.subarray(cursor - window.fromIndex, cursor - window.fromIndex + 1),
     axis.stepMs,
   )
-  const unit = score.kind === 'area' ? 'weight, in s, per 100 ms' : 'weight per 100 ms'
-  const outside = outsideWords(window.shareOutside)
+  const unit = score.kind === 'area' ? 'weight in s per 100 ms' : 'weight per 100 ms'
+  const outside = outsideWords(window.shareOutside, evaluation.unseenBySample ? 'epochs' : 'continuous')
   const of =
     window.heldFixed === null ? ' of the unfiltered waveform' : ` of the unfiltered waveform, ${window.heldFixed}`
   return (
@@ -60,7 +60,7 @@ function DrawnWindow(props: SharedAxis & { window: WindowFigure }) {
             onChange={(windowScale) => look({ windowScale })}
           />
         </span>
-        <span className="outside">{outside}</span>
+        <span className="outside">{window.heldFixed === null ? outside : outside.replace(' of the weight', '')}</span>
       </FigureHead>
       <div className="time-hanging">
         <FigureFrame

@@ -1,5 +1,6 @@
 /** What is said about the effective window. */
 import type { Score } from '../erp/score.ts'
+import type { FidelityRow } from '../evidence/fidelity.ts'
 import { DIFFERENCE, type Workspace } from '../state/workspace.ts'
 import { fixed } from '../words/number.ts'
 import { msText } from './time-axis.ts'
@@ -50,11 +51,24 @@ export function filteredWords(weight: string, ms: number, peakOf: string | null)
   return [...(peakOf === null ? [] : [`after the chain: ${weight} under the peak of the ${peakOf}`]), at, weight]
 }
 
-/** "hatched: outside the epoch, 4.7 % of the weight" */
-export function outsideWords(share: number): string {
+/**
+ * "hatched: outside the epoch, 4.7 % of the weight"; on cut-out epochs, where no weight can lie outside, the part that would have.
+ *
+ * @param share  0 to 1.
+ */
+export function outsideWords(share: number, extent: 'continuous' | 'epochs'): string {
   const percent = share * 100
-  const text = percent > 0 && percent < 0.05 ? 'under 0.1' : fixed(percent, 1)
-  return `hatched: outside the epoch, ${text} % of the weight`
+  const text = `${percent > 0 && percent < 0.05 ? 'under 0.1' : fixed(percent, 1)} %`
+  return extent === 'epochs'
+    ? `unseen share of the score: ${text}`
+    : `hatched: outside the epoch, ${text} of the weight`
+}
+
+/** Why there is no effective window. */
+export function noWindowWords(value: FidelityRow['after']): string {
+  return value === 'no peak'
+    ? 'The filtered waveform has no peak in the score window, so there is no effective window.'
+    : 'A latency is not a weighted sum of samples, so it has no effective window.'
 }
 
 /** Neighbours of equal height as one box: the edges (in samples from the first, half a sample before its first value) and the heights. */
