@@ -1,5 +1,5 @@
 import { appliedStages, type Chain } from './chain.ts'
-import { applyEpochs } from './epoch-rules.ts'
+import { applyEpochs, requireSameLength } from './epoch-rules.ts'
 import { runContinuous } from './stand-alone.ts'
 import type { Stage } from './stage.ts'
 
@@ -15,14 +15,21 @@ export type Extent = 'continuous' | 'epochs'
  * @param x       waveform at the chain's sampling rate; not changed.
  * @param extent  'continuous': x stands alone, preceded and followed by zeros, exact. 'epochs': x is padded stage by stage
  *                (`applyEpochs`).
+ * @param out     where the result goes, if not into a new array, of as many samples; may be x itself. One array for a whole
+ *                recording's channels saves the time that new memory takes.
  * @returns  as many values; with no stage a copy of x.
- * @throws RangeError for NaN or an infinity in x (naming its index), or an epoch not longer than a stage's padding.
+ * @throws RangeError for NaN or an infinity in x (naming its index), an epoch not longer than a stage's padding, or an `out`
+ *         of another length.
  */
-export function applyChain(chain: Chain, x: Float64Array, extent: Extent): Float64Array {
+export function applyChain(chain: Chain, x: Float64Array, extent: Extent, out?: Float64Array): Float64Array {
   const stages = appliedStages(chain)
-  if (extent === 'continuous') return runContinuous(stages, x, 0, x.length)
-  if (extent === 'epochs') return applyEpochs(stages, x)
-  throw new RangeError(`extent must be 'continuous' or 'epochs', was ${extent}`)
+  if (extent === 'epochs') return applyEpochs(stages, x, out)
+  if (extent !== 'continuous') throw new RangeError(`extent must be 'continuous' or 'epochs', was ${extent}`)
+  const y = runContinuous(stages, x, 0, x.length)
+  if (out === undefined) return y
+  requireSameLength(out, x)
+  out.set(y)
+  return out
 }
 
 /** The applied stages that are analogue filters of the amplifier. */

@@ -1,9 +1,15 @@
-import { epochPaddingSamples, recursiveProgram, requireRoom, sum } from './epoch-rules.ts'
+import {
+  epochPaddingSamples,
+  type RecursiveProgram,
+  recursiveProgram,
+  requireRoom,
+  runFromRest,
+  sum,
+} from './epoch-rules.ts'
 import { convolveTaps } from './finite-response.ts'
 import { requireFinite } from './missing-values.ts'
 import { adjointContinuous } from './stand-alone.ts'
 import type { Stage } from './stage.ts'
-import { runStateVariable } from './state-variable.ts'
 
 /**
  * Weights on the samples of the unfiltered epoch that give the same number as the weights w on the filtered one: the exact
@@ -29,17 +35,17 @@ function adjointStage(stage: Stage, w: Float64Array): Float64Array {
     const before = stage.taps.length - 1 - stage.leadSamples
     return foldOddly(convolveTaps(w, reversed(stage.taps)), before, w.length)
   }
-  const { program, gainAtZero } = recursiveProgram(stage)
+  const program = recursiveProgram(stage)
   if (stage.passes === 1) {
     const v = w.slice()
-    transposePass(program, gainAtZero, v, false)
+    transposePass(program, v, false)
     return v
   }
   const padding = epochPaddingSamples(stage)
   const padded = new Float64Array(w.length + 2 * padding)
   padded.set(w, padding)
-  transposePass(program, gainAtZero, padded, true)
-  transposePass(program, gainAtZero, padded, false)
+  transposePass(program, padded, true)
+  transposePass(program, padded, false)
   return foldOddly(padded, padding, w.length)
 }
 
@@ -47,9 +53,9 @@ function adjointStage(stage: Stage, w: Float64Array): Float64Array {
  * Transpose of one pass from the steady state, y = L(x − x0) + G·x0 with L the run from rest: L transposed is the run on
  * reversed time, and x0 collects what the constant took and gave.
  */
-function transposePass(program: Float64Array, gainAtZero: number, values: Float64Array, backward: boolean): void {
-  const given = gainAtZero * sum(values)
-  runStateVariable(program, new Float64Array(program.length / 3), values, 0, values.length, !backward)
+function transposePass(program: RecursiveProgram, values: Float64Array, backward: boolean): void {
+  const given = program.gainAtZero * sum(values)
+  runFromRest(program, values, !backward)
   values[backward ? values.length - 1 : 0] += given - sum(values)
 }
 

@@ -1,3 +1,4 @@
+import { type DirectProgram, directProgram, runDirect } from './direct-form.ts'
 import { convolveTaps } from './finite-response.ts'
 import { requireFinite } from './missing-values.ts'
 import { runContinuous } from './stand-alone.ts'
@@ -20,15 +21,28 @@ import { programGainAtZero, runStateVariable, stateVariableProgram } from './sta
  */
 
 /**
- * @param x  epoch.
+ * @param x    epoch.
+ * @param out  where the result goes, if not into a new array; may be x itself.
  * @returns  as many values.
- * @throws RangeError for NaN or an infinity in x, or an epoch not longer than a stage's padding, whose `spec` the error
- *         carries.
+ * @throws RangeError for NaN or an infinity in x, an epoch not longer than a stage's padding, whose `spec` the error
+ *         carries, or an `out` of another length.
  */
-export function applyEpochs(stages: readonly Stage[], x: Float64Array): Float64Array {
+export function applyEpochs(
+  stages: readonly Stage[],
+  x: Float64Array,
+  out: Float64Array = new Float64Array(x.length),
+): Float64Array {
   requireFinite('x', x)
-  if (stages.length === 0) return x.slice()
-  return stages.reduce((y, stage) => applyStage(stage, y), x)
+  requireSameLength(out, x)
+  for (const stage of stages) requireRoom(stage, x.length)
+  if (stages.length === 0) out.set(x)
+  for (let i = 0; i < stages.length; i++) applyStage(stages[i], i === 0 ? x : out, out)
+  return out
+}
+
+/** @throws RangeError unless a given output has room for exactly the input's samples. */
+export function requireSameLength(out: Float64Array, x: Float64Array): void {
+  if (out.length !== x.length) throw new RangeError(`out must hold ${x.length} samples as x does, had ${out.length}`)
 }
 
 /** Samples by which a stage pads an epoch at its start, or at both ends if it is not causal. */
@@ -71,37 +85,35 @@ function nameOf(spec: StageSpec): string {
   }
 }
 
-function applyStage(stage: Stage, x: Float64Array): Float64Array {
-  if (stage.spec.design === 'amplifier') return runContinuous([stage], x, 0, x.length)
-  requireRoom(stage, x.length)
-  if (x.length === 0) return new Float64Array(0)
-  if (stage.taps !== null) return applyFinite(stage.taps, stage.leadSamples, x)
-  return stage.passes === 2 ? applyBothWays(stage, x) : applyForward(stage, x)
+function applyStage(stage: Stage, x: Float64Array, out: Float64Array): void {
+  if (x.length === 0) return
+  if (stage.spec.design === 'amplifier') out.set(runContinuous([stage], x, 0, x.length))
+  else if (stage.taps !== null) applyFinite(stage.taps, stage.leadSamples, x, out)
+  else if (stage.passes === 2) applyBothWays(stage, x, out)
+  else applyForward(stage, x, out)
 }
 
-function applyForward(stage: Stage, x: Float64Array): Float64Array {
-  const { program, gainAtZero } = recursiveProgram(stage)
-  const y = x.slice()
-  runStateVariable(program, new Float64Array(program.length / 3), y, 0, y.length, false, x[0])
-  return addConstant(y, gainAtZero * x[0])
+function applyForward(stage: Stage, x: Float64Array, out: Float64Array): void {
+  const program = recursiveProgram(stage)
+  const first = x[0]
+  out.set(x)
+  runFromRest(program, out, false, first)
+  const constant = program.gainAtZero * first
+  if (constant !== 0) for (let i = 0; i < out.length; i++) out[i] += constant
 }
 
-function applyBothWays(stage: Stage, x: Float64Array): Float64Array {
-  const { program, gainAtZero } = recursiveProgram(stage)
+function applyBothWays(stage: Stage, x: Float64Array, out: Float64Array): void {
+  const program = recursiveProgram(stage)
   const padding = epochPaddingSamples(stage)
   const padded = reflectOddly(x, padding, padding, scratch(x.length + 2 * padding))
-  const last = padded.length - 1
   const first = padded[0]
-  runStateVariable(program, new Float64Array(program.length / 3), padded, 0, padded.length, false, first)
+  runFromRest(program, padded, false, first)
   // the forward pass still lacks gain·first, which the backward pass would subtract with its own first value
-  const turn = padded[last]
-  runStateVariable(program, new Float64Array(program.length / 3), padded, 0, padded.length, true, turn)
-  return addConstant(padded.slice(padding, padding + x.length), gainAtZero * (turn + gainAtZero * first))
-}
-
-function addConstant(values: Float64Array, constant: number): Float64Array {
-  if (constant !== 0) for (let i = 0; i < values.length; i++) values[i] += constant
-  return values
+  const turn = padded[padded.length - 1]
+  runFromRest(program, padded, true, turn)
+  const { gainAtZero } = program
+  const constant = gainAtZero * (turn + gainAtZero * first)
+  for (let i = 0; i < out.length; i++) out[i] = padded[padding + i] + constant
 }
 
 /** Room for one padded epoch at a time, kept because asking for megabytes anew costs as much as filtering them. */
@@ -114,13 +126,14 @@ function scratch(length: number): Float64Array {
   return room.subarray(0, length)
 }
 
-function applyFinite(taps: Float64Array, leadSamples: number, x: Float64Array): Float64Array {
+function applyFinite(taps: Float64Array, leadSamples: number, x: Float64Array, out: Float64Array): void {
   const before = taps.length - 1 - leadSamples
   const offset = x[0]
   const padded = reflectOddly(x, before, leadSamples, scratch(before + x.length + leadSamples))
   for (let i = 0; i < padded.length; i++) padded[i] -= offset
-  const y = convolveTaps(padded, taps).slice(taps.length - 1, taps.length - 1 + x.length)
-  return addConstant(y, offset * sum(taps))
+  const y = convolveTaps(padded, taps)
+  const constant = offset * sum(taps)
+  for (let i = 0; i < out.length; i++) out[i] = y[taps.length - 1 + i] + constant
 }
 
 /** Odd reflection: 2·x[0] − x[k] before the start, 2·x[n − 1] − x[n − 1 − k] after the end. */
@@ -132,17 +145,36 @@ function reflectOddly(x: Float64Array, before: number, after: number, padded: Fl
   return padded
 }
 
-const programs = new WeakMap<Stage, { program: Float64Array; gainAtZero: number }>()
+/** One pass of a recursive stage, made ready to run from rest. */
+export interface RecursiveProgram {
+  readonly stateVariable: Float64Array
+  /** null where only the state-variable form is exact. */
+  readonly direct: DirectProgram | null
+  readonly gainAtZero: number
+}
+
+const programs = new WeakMap<Stage, RecursiveProgram>()
 
 /** Program of one pass and its gain at 0 Hz, made once a stage. */
-export function recursiveProgram(stage: Stage): { program: Float64Array; gainAtZero: number } {
+export function recursiveProgram(stage: Stage): RecursiveProgram {
   let made = programs.get(stage)
   if (!made) {
-    const program = stateVariableProgram(stage.analogue as Float64Array)
-    made = { program, gainAtZero: programGainAtZero(program) }
+    const stateVariable = stateVariableProgram(stage.analogue as Float64Array)
+    const direct = directProgram(stage.sections as Float64Array)
+    made = { stateVariable, direct, gainAtZero: programGainAtZero(stateVariable) }
     programs.set(stage, made)
   }
   return made
+}
+
+/** One pass from rest over all values, in place; `offset` is subtracted from every value first. */
+export function runFromRest(program: RecursiveProgram, values: Float64Array, backward: boolean, offset = 0): void {
+  const { direct, stateVariable } = program
+  if (direct !== null) runDirect(direct, values, 0, values.length, backward, offset)
+  else {
+    const states = new Float64Array(stateVariable.length / 3)
+    runStateVariable(stateVariable, states, values, 0, values.length, backward, offset)
+  }
 }
 
 export function sum(values: Float64Array): number {

@@ -216,9 +216,10 @@ async function main() {
 
   if (selected('W1') || selected('W2')) {
     const { channels, shared } = makeChannels()
+    const output = new Float64Array(SAMPLES)
     const filterAll = (specs: typeof BROAD_BAND) => {
       const chain = designChain(specs, RATE)
-      for (const x of channels) applyChain(chain, x, 'epochs')
+      for (const x of channels) applyChain(chain, x, 'epochs', output)
     }
     if (selected('W1')) {
       const [one, two, oneCall, twoCalls]: [number[], number[], number[], number[]] = [[], [], [], []]
