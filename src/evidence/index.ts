@@ -1,6 +1,11 @@
+export { effectiveWindow, effectiveWindowOn } from './effective-window.ts'
+export { shareOutside, unseenShare, unseenShareBySample } from './unseen-share.ts'
+
 export { largestAbsolute, fidelityRows, judge, scoreReference } from './fidelity.ts'
 export type { FidelityInput, FidelityRow, FigureGroup, Judgement, NoValue } from './fidelity.ts'
 export { onsetOfBuilt } from './onset-of-built.ts'
 export { lockedLineContribution, scoreVariance, scoreVarianceOfResponse } from './score-noise.ts'
 export { responseBreaksHz } from './response-breaks.ts'
 export { equalTrialsFactor, noiseRow, precisionFactor, varianceOfDifference, type NoiseRow } from './precision.ts'
+export { type AmplitudeSpectrum, amplitudesAt, amplitudeSpectrum } from './amplitude-spectrum.ts'
+export { filterBuiltWaveform, filterRecordedWaveform } from './filtered-waveform.ts'
