@@ -39,7 +39,10 @@ export function courier<Api extends WorkerApi>(start: () => Worker): Courier<Api
         worker = start()
         remote = wrap<Api>(worker)
       }
+      // A call ends once: an answer that was under way when its worker was ended must not touch the next call's worker.
+      let settled = false
       const finish = () => {
+        settled = true
         signal?.removeEventListener('abort', abort)
         worker?.removeEventListener('error', fail)
         clearTimeout(idle)
@@ -60,10 +63,12 @@ export function courier<Api extends WorkerApi>(start: () => Worker): Courier<Api
       const remoteCall = remote[name] as unknown as (...values: unknown[]) => Promise<Awaited<ReturnType<Api[Name]>>>
       remoteCall(...(args as unknown[])).then(
         (value) => {
+          if (settled) return
           finish()
           resolve(value)
         },
         (error: unknown) => {
+          if (settled) return
           finish()
           reject(error)
         },

@@ -38,8 +38,7 @@ export function newStage(kind: StageKind, pass: 'low' | 'high' | 'band' | 'stop'
 
 /** Adds a stage where it belongs: an amplifier stage behind the last amplifier stage, any other at the end. */
 export function addStage(chain: readonly StageSpec[], stage: StageSpec): { chain: StageSpec[]; index: number } {
-  const index =
-    stage.design === 'amplifier' ? chain.filter((spec) => spec.design === 'amplifier').length : chain.length
+  const index = stage.design === 'amplifier' ? chain.filter((spec) => spec.design === 'amplifier').length : chain.length
   return { chain: [...chain.slice(0, index), stage, ...chain.slice(index)], index }
 }
 

@@ -57,7 +57,12 @@ export const componentsOf = memoised(
   12,
 )
 
-function recordedValues(data: RecordedData, name: string, channel: string | null, difference: Shown['difference']): Float64Array {
+function recordedValues(
+  data: RecordedData,
+  name: string,
+  channel: string | null,
+  difference: Shown['difference'],
+): Float64Array {
   const where = channel ?? data.channels[0]
   if (name !== DIFFERENCE) return waveformOf(data, name, where).values
   if (!difference) throw new RangeError('no difference wave is defined')
@@ -92,8 +97,11 @@ export const rawCurves = memoised(
   24,
 )
 
-export const correctedCurves = memoised((raw: RawCurves, name: string, timesMs: Float64Array, baseline: Baseline): Curves => {
-  const before = correctBaseline(raw.before, timesMs, baseline)
-  const after = correctBaseline(raw.after, timesMs, baseline)
-  return { name, before, after, takenOut: before.map((value, i) => value - after[i]) }
-}, 24)
+export const correctedCurves = memoised(
+  (raw: RawCurves, name: string, timesMs: Float64Array, baseline: Baseline): Curves => {
+    const before = correctBaseline(raw.before, timesMs, baseline)
+    const after = correctBaseline(raw.after, timesMs, baseline)
+    return { name, before, after, takenOut: before.map((value, i) => value - after[i]) }
+  },
+  24,
+)

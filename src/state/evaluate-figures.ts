@@ -45,7 +45,9 @@ function narrowPlacesHz(spec: StageSpec, highestHz: number): number[] {
   const around = (centre: number, width: number) =>
     Array.from({ length: 41 }, (_, i) => centre + (width * (i - 20)) / 10)
   if (spec.design === 'notch')
-    return Array.from({ length: spec.harmonics + 1 }, (_, k) => around(spec.frequencyHz * (k + 1), spec.bandwidthHz)).flat()
+    return Array.from({ length: spec.harmonics + 1 }, (_, k) =>
+      around(spec.frequencyHz * (k + 1), spec.bandwidthHz),
+    ).flat()
   if (spec.design === 'windowed-sinc') return spec.cutoffsHz.flatMap((hz) => around(hz, spec.transitionHz / 2))
   if (spec.design === 'moving-average') {
     const nullHz = 1000 / spec.durationMs
@@ -78,8 +80,16 @@ function wholeWaveform(components: readonly Component[], timesMs: Float64Array):
   const after = Math.min(50_000, Math.max(0, Math.ceil((support.toMs - timesMs[timesMs.length - 1]) / stepMs)))
   const whole = new Float64Array(before + timesMs.length + after)
   const times = whole.map((_, i) => timesMs[0] + (i - before) * stepMs)
-  whole.set(waveformAt(components.filter((component) => component.shape !== 'tone'), times))
-  const tones = waveformAt(components.filter((component) => component.shape === 'tone'), timesMs)
+  whole.set(
+    waveformAt(
+      components.filter((component) => component.shape !== 'tone'),
+      times,
+    ),
+  )
+  const tones = waveformAt(
+    components.filter((component) => component.shape === 'tone'),
+    timesMs,
+  )
   for (let i = 0; i < tones.length; i++) whole[before + i] += tones[i]
   return whole
 }
@@ -89,8 +99,9 @@ function withoutMean(values: Float64Array): Float64Array {
   return values.map((value) => value - mean)
 }
 
-const spectrumOfComponents = memoised((components: readonly Component[], timesMs: Float64Array, samplingRateHz: number) =>
-  amplitudeSpectrum(wholeWaveform(components, timesMs), samplingRateHz),
+const spectrumOfComponents = memoised(
+  (components: readonly Component[], timesMs: Float64Array, samplingRateHz: number) =>
+    amplitudeSpectrum(wholeWaveform(components, timesMs), samplingRateHz),
 )
 const spectrumOfEpoch = memoised((values: Float64Array, samplingRateHz: number) =>
   amplitudeSpectrum(withoutMean(values), samplingRateHz),
@@ -214,7 +225,8 @@ export const windowFigure = memoised(
 )
 
 function heldFixed(score: Score, after: Float64Array, timesMs: Float64Array): string | null {
-  if (score.kind === 'area') return `for the ${score.polarity} samples of ${windowWords(score.fromMs, score.toMs)}, held fixed`
+  if (score.kind === 'area')
+    return `for the ${score.polarity} samples of ${windowWords(score.fromMs, score.toMs)}, held fixed`
   if (score.kind !== 'peak-amplitude') return null
   const peak = findPeak(after, timesMs, score, score.polarity)
   return peak === 'no peak' ? null : `for the peak at ${fixed(peak.latencyMs, 0)} ms, held fixed`

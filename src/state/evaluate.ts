@@ -3,7 +3,9 @@
  * remembered by what it depends on, so that dragging the score window does not redesign the chain.
  */
 import { type Baseline, baselineWeights } from '../erp/baseline.ts'
+import { checkNoise } from '../erp/noise.ts'
 import { type NoScore, type Score, scoreLinearity, scoreOf, scoreUnit, scoreWeights } from '../erp/score.ts'
+import { samplesInWindow, type TimeWindow } from '../erp/time-axis.ts'
 import { type FidelityRow, fidelityRows, largestAbsolute } from '../evidence/fidelity.ts'
 import { onsetOfBuilt } from '../evidence/onset-of-built.ts'
 import { type NoiseRow, noiseRow, varianceOfDifference } from '../evidence/precision.ts'
@@ -11,8 +13,8 @@ import { unseenShare, unseenShareBySample } from '../evidence/unseen-share.ts'
 import { appliedOfflineStages } from '../filter/apply-chain.ts'
 import { appliedStages, type Chain, designChain } from '../filter/chain.ts'
 import type { StageSpec } from '../filter/stage.ts'
-import { brief, inWords, partOfField, remarkWords } from '../words/index.ts'
-import { correctedCurves, drawnNames, type RawCurves, rawCurves, timeAxis } from './evaluate-curves.ts'
+import { inWords, partOfField, remarkWords } from '../words/index.ts'
+import { correctedCurves, drawnNames, type RawCurves, rawCurves, type TimeAxis, timeAxis } from './evaluate-curves.ts'
 import {
   amplifierReach,
   delays,
@@ -23,7 +25,7 @@ import {
 } from './evaluate-figures.ts'
 import { scoreVariances } from './evaluate-precision.ts'
 import { chainPoints, chainTable } from './evaluate-table.ts'
-import type { Curves, Outcome, Problem } from './evaluation.ts'
+import type { Curves, Evaluation, Outcome, Problem } from './evaluation.ts'
 import { memoised } from './memo.ts'
 import type { RecordedData } from './recorded-data.ts'
 import { DIFFERENCE, type Workspace } from './workspace.ts'
@@ -50,17 +52,14 @@ export function evaluate(workspace: Workspace, data: RecordedData | null): Outco
     () => timeAxis(source, data),
   )
   const chain = axis && attempt(stageAt, () => designed(workspace.chain, axis.samplingRateHz))
-  if (!Number.isInteger(trials) || trials < 1 || trials > MAX_TRIALS)
-    problems.push({
-      at: 'trials',
-      message: `The number of trials must be a whole number from 1 to ${MAX_TRIALS}, was ${brief(trials, 8)}.`,
-    })
+  attempt('trials', () => checkTrials(trials))
+  attempt('trials', () => checkNoise(workspace.noise))
   if (axis) {
     const flat = new Float64Array(axis.timesMs.length)
     attempt('baseline', () => baselineWeights(baseline, axis.timesMs))
     attempt('score-window', () => scoreOf(flat, axis.timesMs, score))
-    attempt('measure:mean', () => scoreOf(flat, axis.timesMs, { kind: 'mean', ...measure.mean, polarity: 'positive' }))
-    attempt('measure:peak', () => scoreOf(flat, axis.timesMs, { kind: 'area', ...measure.peak, polarity: 'positive' }))
+    attempt('measure:mean', () => samplesInWindow(axis.timesMs, measure.mean, 'the window of the mean amplitude'))
+    attempt('measure:peak', () => checkPeakWindow(axis.timesMs, measure.peak))
   }
   if (!axis || !chain || problems.length > 0) return { ok: false, problems }
 
@@ -69,12 +68,24 @@ export function evaluate(workspace: Workspace, data: RecordedData | null): Outco
   const names = drawnNames(shown)
   const raw = attempt(
     (error) => (/needs \d+ samples/.test(error.message) ? 'extent' : 'waveform'),
-    () =>
-      names.map((name) =>
-        rawCurves(source, data, shown.channel, shown.difference, name, timesMs, chain, extent),
-      ),
+    () => names.map((name) => rawCurves(source, data, shown.channel, shown.difference, name, timesMs, chain, extent)),
   )
   if (!raw) return { ok: false, problems }
+  // Nothing more to refuse is known; numbers too large for any sum must still not take the page down.
+  const evaluation = attempt('waveform', () => evaluationOf(workspace, axis, chain, extent, raw, names))
+  return evaluation ? { ok: true, evaluation } : { ok: false, problems }
+}
+
+function evaluationOf(
+  workspace: Workspace,
+  axis: TimeAxis,
+  chain: Chain,
+  extent: 'continuous' | 'epochs',
+  raw: readonly RawCurves[],
+  names: readonly string[],
+): Evaluation {
+  const { shown, score, baseline, measure } = workspace
+  const { timesMs } = axis
   const curves = raw.map((entry, i): Curves => correctedCurves(entry, names[i], timesMs, baseline))
   const chosen = names.indexOf(shown.chosen)
   const { before, after } = curves[chosen]
@@ -83,39 +94,51 @@ export function evaluate(workspace: Workspace, data: RecordedData | null): Outco
   const weights = weightsOf(score, baseline, timesMs, before, after)
   const unseen = weights && (extent === 'continuous' ? 0 : unseenOf(chain, weights.after))
   return {
-    ok: true,
-    evaluation: {
-      samplingRateHz: axis.samplingRateHz,
-      timesMs,
-      chain,
-      curves,
-      chosen,
-      delayIncluded: appliedStages(chain).some(delays),
-      unseenBySample: extent === 'epochs' ? unseenAtEachSample(chain, timesMs.length) : null,
-      window: weights && windowFigure(chain, weights.after, extent, score, after, timesMs),
-      frequency: frequencyFigure(workspace, chain, raw[chosen], extent, timesMs, chainPoints(chain)),
-      kernel: kernelFigure(chain, timesMs),
-      table: chainTable(workspace.chain, chain),
-      reach: offlineReach(chain),
-      amplifierReach: amplifierReach(chain),
+    samplingRateHz: axis.samplingRateHz,
+    timesMs,
+    chain,
+    curves,
+    chosen,
+    delayIncluded: appliedStages(chain).some(delays),
+    unseenBySample: extent === 'epochs' ? unseenAtEachSample(chain, timesMs.length) : null,
+    window: weights && windowFigure(chain, weights.after, extent, score, after, timesMs),
+    frequency: frequencyFigure(workspace, chain, raw[chosen], extent, timesMs, chainPoints(chain)),
+    kernel: kernelFigure(chain, timesMs),
+    table: chainTable(workspace.chain, chain),
+    reach: offlineReach(chain),
+    amplifierReach: amplifierReach(chain),
+    unseenShare: unseen,
+    rows,
+    precision: weights && precisionOf(workspace, chain, weights, extent, rows[0], before),
+    remark: remarkWords({
+      score,
+      unit: rows[0].unit,
+      before: rows[0].before as number | NoScore,
+      after: rows[0].after as number | NoScore,
+      largestUv: largestAbsolute(before),
       unseenShare: unseen,
-      rows,
-      precision: weights && precisionOf(workspace, chain, weights, extent, rows[0], before),
-      remark: remarkWords({
-        score,
-        unit: rows[0].unit,
-        before: rows[0].before as number | NoScore,
-        after: rows[0].after as number | NoScore,
-        largestUv: largestAbsolute(before),
-        unseenShare: unseen,
-        extent,
-        noFilter: appliedStages(chain).length === 0,
-      }),
-    },
+      extent,
+      noFilter: appliedStages(chain).length === 0,
+    }),
   }
 }
 
-const designed = memoised((specs: readonly StageSpec[], samplingRateHz: number): Chain => designChain(specs, samplingRateHz))
+/** An area needs two samples. */
+function checkPeakWindow(timesMs: Float64Array, window: TimeWindow): void {
+  const what = 'the window of the peak and the area'
+  const { first, last } = samplesInWindow(timesMs, window, what)
+  if (first === last)
+    throw new RangeError(`${what} must hold at least 2 samples, ${window.fromMs} to ${window.toMs} ms holds 1`)
+}
+
+function checkTrials(trials: number): void {
+  if (Number.isInteger(trials) && trials >= 1 && trials <= MAX_TRIALS) return
+  throw new RangeError(`the number of trials must be a whole number from 1 to ${MAX_TRIALS}, was ${trials}`)
+}
+
+const designed = memoised(
+  (specs: readonly StageSpec[], samplingRateHz: number): Chain => designChain(specs, samplingRateHz),
+)
 
 function stageAt(error: RangeError & { stageIndex?: number; field?: string }): string {
   return `stage:${error.stageIndex ?? 0}:${partOfField(error.field)}`

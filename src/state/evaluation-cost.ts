@@ -9,8 +9,6 @@ const HEAVY_SAMPLES = 1_500_000
 /** What a tap costs beside a sample that is run through: designing, responses and sums take each tap many times, a minimum phase more. */
 const TAP_COST = { compensated: 60, causal: 60, 'minimum-phase': 500 } as const
 
-const MINIMUM_PHASE_COST = 60
-
 /** Samples over which a stage's kernel matters: its taps by their cost, or some twenty time constants of its slowest pole. */
 function kernelSamples(spec: StageSpec, samplingRateHz: number): number {
   switch (spec.design) {

@@ -1,6 +1,6 @@
 /** Keeping the workspace: as a file, as a link, and by itself in the browser's own storage. */
 import { strFromU8, strToU8, unzlibSync, zlibSync } from 'fflate'
-import { get as getKept, set as keep } from 'idb-keyval'
+import { recall, remember } from './browser-storage.ts'
 import { say, workspaceStore } from './store.ts'
 import { readWorkspace, type Workspace } from './workspace.ts'
 
@@ -9,6 +9,8 @@ const LINK_PREFIX = '#w='
 const AUTOSAVE_MS = 500
 /** No workspace is that large; a longer fragment is hostile or broken. */
 const MAX_LINK_BYTES = 2_000_000
+/** So long a fragment could be decompressed for seconds. */
+const MAX_FRAGMENT_LENGTH = 200_000
 
 type Result = ReturnType<typeof readWorkspace>
 
@@ -36,11 +38,13 @@ export function workspaceToFragment(workspace: Workspace): string {
 export function workspaceFromFragment(fragment: string): Result | null {
   if (!fragment.startsWith(LINK_PREFIX)) return null
   try {
+    if (fragment.length > MAX_FRAGMENT_LENGTH) throw new RangeError('the fragment is too long')
     const base64 = fragment.slice(LINK_PREFIX.length).replaceAll('-', '+').replaceAll('_', '/')
     const bytes = Uint8Array.from(atob(base64), (letter) => letter.charCodeAt(0))
     // Given its buffer, the decompressor stops at its end instead of growing without bound.
-    const text = strFromU8(unzlibSync(bytes, { out: new Uint8Array(MAX_LINK_BYTES) }))
-    return workspaceFromText(text)
+    const unpacked = unzlibSync(bytes, { out: new Uint8Array(MAX_LINK_BYTES) })
+    if (unpacked.length === MAX_LINK_BYTES) throw new RangeError('the workspace is too large')
+    return readWorkspace(JSON.parse(strFromU8(unpacked)))
   } catch {
     return { ok: false, reason: 'the link is damaged or was cut off: ask for it again, or for the workspace file' }
   }
@@ -53,7 +57,7 @@ export function workspaceFromFragment(fragment: string): Result | null {
  */
 export async function takeUpWork(fragment: string): Promise<string | null> {
   const linked = workspaceFromFragment(fragment)
-  const kept = await getKept<unknown>(STORAGE_KEY).catch(() => undefined)
+  const kept = await recall<unknown>(STORAGE_KEY)
   const stored = kept === undefined ? null : readWorkspace(kept)
   let said: string | null = null
   if (stored?.ok) start(stored.workspace)
@@ -62,7 +66,7 @@ export async function takeUpWork(fragment: string): Promise<string | null> {
   else if (stored && !stored.ok) said = `What was kept from last time could not be read (${stored.reason}).`
 
   let timer: ReturnType<typeof setTimeout> | undefined
-  const write = () => void keep(STORAGE_KEY, workspaceStore.getState().workspace).catch(() => undefined)
+  const write = () => void remember(STORAGE_KEY, workspaceStore.getState().workspace)
   workspaceStore.subscribe(() => {
     clearTimeout(timer)
     timer = setTimeout(write, AUTOSAVE_MS)

@@ -8,7 +8,9 @@ export function memoised<Args extends readonly unknown[], Result>(
 ): (...args: Args) => Result {
   const kept: { args: Args; result: Result }[] = []
   return (...args) => {
-    const place = kept.findIndex((entry) => entry.args.length === args.length && entry.args.every((value, i) => Object.is(value, args[i])))
+    const place = kept.findIndex(
+      (entry) => entry.args.length === args.length && entry.args.every((value, i) => Object.is(value, args[i])),
+    )
     if (place >= 0) {
       const [entry] = kept.splice(place, 1)
       kept.unshift(entry)

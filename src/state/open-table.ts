@@ -21,7 +21,10 @@ export function workspaceOnTable(workspace: Workspace, source: RecordedSource, t
   const condition = table.conditions[0]
   const { values } = waveformOf(table, condition, channel)
   const { timesMs } = table
-  const from = Math.max(0, timesMs.findIndex((ms) => ms >= 0))
+  const from = Math.max(
+    0,
+    timesMs.findIndex((ms) => ms >= 0),
+  )
   let peak = from
   for (let i = from; i < values.length; i++) if (Math.abs(values[i]) > Math.abs(values[peak])) peak = i
   const around = (halfMs: number) => windowAround(timesMs, peak, halfMs)

@@ -7,7 +7,19 @@ import type { Workspace } from './workspace.ts'
 
 /** The readout with full digits, one row per figure, and the protocol line that the numbers belong to. */
 export function readoutCsv(evaluation: Evaluation, workspace: Workspace): string {
-  const header = ['figure', 'where', 'unit', 'before', 'after', 'change', 'change in per cent', 'per cent of', 'limit', 'limit unit', 'kept']
+  const header = [
+    'figure',
+    'where',
+    'unit',
+    'before',
+    'after',
+    'change',
+    'change in per cent',
+    'per cent of',
+    'limit',
+    'limit unit',
+    'kept',
+  ]
   const rows = evaluation.rows.map((row) => {
     const { name, where } = rowWords(row)
     const limit = workspace.limits[row.id]
@@ -28,7 +40,19 @@ export function readoutCsv(evaluation: Evaluation, workspace: Workspace): string
   const { precision } = evaluation
   if (precision)
     rows.push(
-      [`noise of the score, ${workspace.trials} ${workspace.trials === 1 ? 'trial' : 'trials'}`, '', precision.unit, precision.before, precision.after, precision.change, '', '', '', '', ''],
+      [
+        `noise of the score, ${workspace.trials} ${workspace.trials === 1 ? 'trial' : 'trials'}`,
+        '',
+        precision.unit,
+        precision.before,
+        precision.after,
+        precision.change,
+        '',
+        '',
+        '',
+        '',
+        '',
+      ],
       ['precision factor', '', '', '', finite(precision.precisionFactor), '', '', '', '', '', ''],
       ['equal-trials factor', '', '', '', finite(precision.equalTrialsFactor), '', '', '', '', '', ''],
     )

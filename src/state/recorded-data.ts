@@ -2,11 +2,11 @@
  * Loaded tables. They stand outside the workspace, which names a file by the SHA-256 of its text; here is what was read from it. The text
  * is kept in the browser's own storage, so that a reload finds it again; it goes nowhere else.
  */
-import { get as getKept, set as keep } from 'idb-keyval'
 import { createStore } from 'zustand/vanilla'
 import { courier } from '../jobs/index.ts'
 import type { Table, TableRefusal } from '../files/index.ts'
 import type { BenchApi } from './bench.worker.ts'
+import { recall, remember } from './browser-storage.ts'
 import type { Reading, RecordedSource, Workspace } from './workspace.ts'
 
 export type RecordedData = Table
@@ -43,7 +43,12 @@ async function sha256(text: string): Promise<string> {
   return Array.from(new Uint8Array(digest), (byte) => byte.toString(16).padStart(2, '0')).join('')
 }
 
-async function readWith(fileId: string, fileName: string, text: string, reading: Reading): Promise<Table | TableRefusal> {
+async function readWith(
+  fileId: string,
+  fileName: string,
+  text: string,
+  reading: Reading,
+): Promise<Table | TableRefusal> {
   const control = new AbortController()
   dataStore.setState({ reading: { fileName, cancel: () => control.abort() } })
   try {
@@ -75,7 +80,7 @@ export async function openTable(
   const table = await readWith(fileId, file.name, text, {})
   if (!table.ok) return { ...table, fileName: file.name }
   // Without storage the work goes on; only a reload will ask for the file again.
-  await keep(storageKey(fileId), text).catch(() => undefined)
+  await remember(storageKey(fileId), text)
   return { ok: true, source: { kind: 'recorded', fileName: file.name, fileId, reading: {} }, table }
 }
 
@@ -85,7 +90,7 @@ export async function rereadTable(source: RecordedSource, reading: Reading): Pro
   const known = files[source.fileId]
   const existing = known?.tables[readingKey(reading)]
   if (existing) return existing
-  const text = known?.text ?? (await getKept<string>(storageKey(source.fileId)).catch(() => undefined))
+  const text = known?.text ?? (await recall<string>(storageKey(source.fileId)))
   if (text === undefined) return null
   return readWith(source.fileId, source.fileName, text, reading)
 }

@@ -15,7 +15,16 @@ export interface View {
   help: boolean
 }
 
-const KEPT = ['theme', 'polarity', 'takenOut', 'gainUnit', 'frequencyShows', 'kernelShows', 'kernelScale', 'windowScale'] as const
+const KEPT = [
+  'theme',
+  'polarity',
+  'takenOut',
+  'gainUnit',
+  'frequencyShows',
+  'kernelShows',
+  'kernelScale',
+  'windowScale',
+] as const
 const STORAGE_KEY = 'sidelobe.view'
 
 const initial: View = {

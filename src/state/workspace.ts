@@ -4,8 +4,9 @@
  * shows what) is in `view.ts`.
  */
 import * as v from 'valibot'
-import type { NoiseSpec } from '../erp/noise.ts'
+import { checkNoise, type NoiseSpec } from '../erp/noise.ts'
 import { SCENARIOS, type Scenario } from '../erp/scenarios.ts'
+import { inWords } from '../words/index.ts'
 
 const finite = v.pipe(v.number(), v.finite())
 const positive = v.pipe(finite, v.gtValue(0))
@@ -85,7 +86,7 @@ const scoreSchema = v.object({
   fraction: v.optional(finite),
 })
 
-const noiseSchema = v.object({
+const noiseFields = v.object({
   kind: v.literal('model'),
   exponent: finite,
   levelAt1HzUv2PerHz: finite,
@@ -93,10 +94,24 @@ const noiseSchema = v.object({
   whiteUv2PerHz: finite,
   alpha: v.optional(v.object({ centreHz: finite, sdHz: finite, peakUv2PerHz: finite })),
   driftAt1HzUv2PerHz: v.optional(finite),
-  lines: v.array(
-    v.object({ hz: finite, amplitudeUv: finite, locked: v.boolean(), phaseRad: v.optional(finite) }),
+  lines: v.pipe(
+    v.array(v.object({ hz: finite, amplitudeUv: finite, locked: v.boolean(), phaseRad: v.optional(finite) })),
+    v.maxLength(100),
   ),
 })
+
+/** The noise has no token at which a fault could be shown, so it is refused where it comes in. */
+const noiseSchema = v.pipe(
+  noiseFields,
+  v.rawCheck(({ dataset, addIssue }) => {
+    if (!dataset.typed) return
+    try {
+      checkNoise(dataset.value)
+    } catch (error) {
+      addIssue({ message: inWords((error as RangeError).message) })
+    }
+  }),
+)
 
 /** How a table is read where its header leaves it open; each is what the user confirmed or chose. */
 const readingSchema = v.object({
@@ -149,7 +164,7 @@ export const workspaceSchema = v.object({
   source: sourceSchema,
   /** Conditions drawn; the one that the readout and the score are about; a difference of two conditions; the channel. */
   shown: v.object({
-    conditions: v.array(text),
+    conditions: v.pipe(v.array(text), v.maxLength(400)),
     difference: v.nullable(v.object({ first: text, second: text })),
     chosen: text,
     channel: v.nullable(text),

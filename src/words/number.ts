@@ -4,10 +4,15 @@
 
 const MINUS = '\u2212'
 
+/** Digits of a size ≥ 0 that never turn into an exponent: from 1e21 on, where `toFixed` would use one, every double is whole. */
+function digitsOf(size: number, decimals: number): string {
+  return size < 1e21 ? size.toFixed(decimals) : BigInt(size).toString()
+}
+
 /** A number with a fixed count of decimals; a rounded zero carries no sign. */
 export function fixed(value: number, decimals: number): string {
   if (!Number.isFinite(value)) return '\u2013'
-  const text = Math.abs(value).toFixed(decimals)
+  const text = digitsOf(Math.abs(value), decimals)
   return value < 0 && Number(text) !== 0 ? MINUS + text : text
 }
 
@@ -21,11 +26,11 @@ export function signed(value: number, decimals: number): string {
 export function brief(value: number, digits = 3): string {
   if (!Number.isFinite(value)) return '\u2013'
   if (value === 0) return '0'
-  const rounded = Number(value.toPrecision(digits))
-  const decimals = Math.max(0, Math.min(12, digits - 1 - Math.floor(Math.log10(Math.abs(rounded)))))
-  const text = Math.abs(rounded).toFixed(decimals)
+  const size = Math.abs(Number(value.toPrecision(digits)))
+  const decimals = Math.max(0, Math.min(100, digits - 1 - Math.floor(Math.log10(size))))
+  const text = digitsOf(size, decimals)
   const trimmed = text.includes('.') ? text.replace(/\.?0+$/, '') : text
-  return rounded < 0 ? MINUS + trimmed : trimmed
+  return value < 0 && Number(trimmed) !== 0 ? MINUS + trimmed : trimmed
 }
 
 /** A number as the user typed it: every digit that matters, up to twelve. */
@@ -33,10 +38,12 @@ export function exact(value: number): string {
   return brief(value, 12)
 }
 
-/** What a person types for a number: a true or a plain minus, a decimal point or comma. NaN for anything else. */
+/** What a person types for a number: a true or a plain minus, a decimal point or comma. NaN for anything else, and for what no double can hold. */
 export function parseNumber(text: string): number {
-  const plain = text.trim().replace(MINUS, '-').replace(',', '.')
-  return /^[+-]?(\d+\.?\d*|\.\d+)(e[+-]?\d+)?$/i.test(plain) ? Number(plain) : Number.NaN
+  const plain = text.trim().replaceAll(MINUS, '-').replace(',', '.')
+  if (!/^[+-]?(\d+\.?\d*|\.\d+)(e[+-]?\d+)?$/i.test(plain)) return Number.NaN
+  const value = Number(plain)
+  return Number.isFinite(value) ? value : Number.NaN
 }
 
 /** "a, b and c" */

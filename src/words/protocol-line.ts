@@ -66,15 +66,6 @@ const COUNT = ['no', 'one', 'two', 'three', 'four', 'five', 'six', 'seven', 'eig
  * that is switched off stays as a token, marked `off`, and is no part of the copied text.
  */
 export function protocolLine(protocol: Protocol): Piece[] {
-  const built = protocol.source === 'built'
-  const pieces: Piece[] = [
-    text('The '),
-    token('source', built ? 'built waveform' : 'recorded waveform', 'source of the waveform'),
-    text(', '),
-    token('waveform', protocol.waveform, built ? 'components of the waveform' : 'condition and channel'),
-    text(' sampled at '),
-    token('rate', `${exact(protocol.samplingRateHz)} Hz`, 'sampling rate'),
-  ]
   const indexed = protocol.chain.map((spec, index) => ({ spec, index }))
   const on = indexed.filter(({ spec }) => spec.enabled !== false)
   const off = indexed.filter(({ spec }) => spec.enabled === false)
@@ -82,11 +73,19 @@ export function protocolLine(protocol: Protocol): Piece[] {
   const amplifiers = on.filter(({ spec }) => !spec.inData && spec.design === 'amplifier')
   const offline = on.filter(({ spec }) => !spec.inData && spec.design !== 'amplifier')
 
+  const built = protocol.source === 'built'
+  const pieces: Piece[] = [
+    text('The '),
+    token('source', built ? 'built waveform' : 'recorded waveform', 'source of the waveform'),
+    text(past.length + amplifiers.length > 0 ? ', ' : ' is '),
+    token('waveform', protocol.waveform, built ? 'components of the waveform' : 'condition and channel'),
+    text(' sampled at '),
+    token('rate', `${exact(protocol.samplingRateHz)} Hz`, 'sampling rate'),
+  ]
   if (past.length > 0) pieces.push(text(', had passed '), ...joined(past))
-  if (amplifiers.length > 0) pieces.push(text(past.length > 0 ? '. Here it passed ' : ', passed '), ...joined(amplifiers))
-  pieces.push(text('. '))
-  if (offline.length > 0) pieces.push(text('Offline it passed '), ...joined(offline))
-  else pieces.push(text('Offline it passed no filter'))
+  if (amplifiers.length > 0)
+    pieces.push(text(past.length > 0 ? '. Here it passed ' : ', passed '), ...joined(amplifiers))
+  pieces.push(text(offlineLead(past, offline.length > 0)), ...joined(offline))
   for (const { spec, index } of off)
     pieces.push({
       kind: 'token',
@@ -129,6 +128,13 @@ export function protocolLine(protocol: Protocol): Piece[] {
     text('.'),
   )
   return pieces
+}
+
+/** Leads over to the offline stages of this chain, which must not be taken for offline stages that the data had passed before. */
+function offlineLead(past: readonly { spec: StageSpec }[], filtered: boolean): string {
+  if (past.every(({ spec }) => spec.design === 'amplifier'))
+    return filtered ? '. Offline it passed ' : '. Offline it passed no filter'
+  return filtered ? '. Here, offline, it passed ' : '. Here, offline, it passed no further filter'
 }
 
 function joined(entries: readonly { spec: StageSpec; index: number }[]): Piece[] {

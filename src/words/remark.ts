@@ -47,30 +47,40 @@ function effectWords(facts: RemarkFacts): string {
   const where = spanWords(score)
   if (typeof before === 'string' && typeof after === 'string')
     return `The waveform ${NO_SCORE[before]} in ${where}, with the chain or without.`
-  if (typeof before === 'string') return `Before the chain the waveform ${NO_SCORE[before]} in ${where}; after it there is one.`
-  if (typeof after === 'string') return `After the chain the waveform ${NO_SCORE[after]} in ${where}; before it there was one.`
+  if (typeof before === 'string')
+    return `Before the chain the waveform ${NO_SCORE[before]} in ${where}; after it there is one.`
+  if (typeof after === 'string')
+    return `After the chain the waveform ${NO_SCORE[after]} in ${where}; before it there was one.`
   const change = after - before
   const said = (value: number) => `${fixed(value, decimals(unit, value))} ${unit}`
   const saidChange = `${signed(change, decimals(unit, change))} ${unit}`
   if (unit === 'ms') {
     if (Math.abs(change) < 0.5) return `The chain leaves the latency at ${said(after)}.`
-    return `The chain moves the latency from ${said(before)} to ${said(after)}: ${change < 0 ? 'earlier' : 'later'} by ${said(Math.abs(change))}.`
+    const ms = (value: number) => `${fixed(value, decimals(unit, change))} ms`
+    return `The chain moves the latency from ${ms(before)} to ${ms(after)}: ${change < 0 ? 'earlier' : 'later'} by ${ms(Math.abs(change))}.`
   }
   const scale = unit === 'µV' ? largestUv : Math.max(Math.abs(before), Math.abs(after))
   if (scale === 0 || Math.abs(change) < NOTEWORTHY * Math.max(scale * (unit === 'µV' ? NOTHING : 1), Math.abs(before)))
     return `The chain leaves the score nearly as it was: ${said(before)} before, ${said(after)} after.`
-  if (unit === 'µV' && Math.abs(before) < NOTHING * scale && Math.abs(after) > 2 * Math.abs(before))
+  if (unit === 'µV' && Math.abs(before) < NOTHING * scale && isNew(before, after))
     return `The deflection of ${said(after)} at ${where} was not in the input: before the chain the same score is ${said(before)}.`
-  if (before * after < 0 && Math.abs(before) > NOTHING * scale)
+  if (before * after < 0 && Math.abs(after) >= NOTEWORTHY * Math.abs(before))
     return `The chain turns the sign of the score: ${said(before)} before, ${said(after)} after.`
-  const percent = Math.round((100 * Math.abs(change)) / Math.abs(before))
-  if (Math.abs(after) < Math.abs(before)) return `The chain takes ${percent} % of the score: ${said(before)} before, ${said(after)} after.`
+  const percent = Math.min(100, Math.round((100 * Math.abs(change)) / Math.abs(before)))
+  if (Math.abs(after) < Math.abs(before))
+    return `The chain takes ${percent} % of the score: ${said(before)} before, ${said(after)} after.`
   return `The chain changes the score by ${saidChange}: ${said(before)} before, ${said(after)} after.`
+}
+
+/** What is after the chain was not there before it: of the other sign, or so much larger that hardly any of it was. */
+function isNew(before: number, after: number): boolean {
+  return Math.abs(after) > (before * after < 0 ? 2 : 10) * Math.abs(before)
 }
 
 function unseenWords({ unseenShare, extent, noFilter }: RemarkFacts): string {
   if (extent !== 'epochs' || unseenShare === null || noFilter) return ''
   const share = `${fixed(unseenShare * 100, unseenShare < 0.1 ? 1 : 0)} %`
-  if (unseenShare < 0.0005) return 'Filtered as epochs, the score leans on no sample outside its data.'
+  if (unseenShare < 0.0005)
+    return 'Filtered as epochs, less than 0.05 % of the score’s weight falls on samples outside the data.'
   return `Filtered as epochs, ${share} of the score’s weight falls on samples outside the data, which had to be invented.`
 }

@@ -5,7 +5,13 @@ import { exact, list } from './number.ts'
 /** A phrase of the protocol line: plain text, or a token that the user can change. */
 export type Piece =
   | { readonly kind: 'text'; readonly text: string }
-  | { readonly kind: 'token'; readonly id: string; readonly text: string; readonly label: string; readonly off?: boolean }
+  | {
+      readonly kind: 'token'
+      readonly id: string
+      readonly text: string
+      readonly label: string
+      readonly off?: boolean
+    }
   | { readonly kind: 'add'; readonly id: string; readonly text: string; readonly label: string }
 
 export const text = (words: string): Piece => ({ kind: 'text', text: words })
@@ -121,7 +127,11 @@ export function stagePieces(spec: StageSpec, index: number): Piece[] {
           text('an '),
           token(id('design'), 'amplifier', `${n}: amplifier high-pass`),
           text(' with a '),
-          token(id('cutoff'), `${exact(Number(hzToTimeConstant(spec.cutoffHz).toPrecision(10)))} s`, `${n}, time constant`),
+          token(
+            id('cutoff'),
+            `${exact(Number(hzToTimeConstant(spec.cutoffHz).toPrecision(10)))} s`,
+            `${n}, time constant`,
+          ),
           text(' time constant'),
         ]
       return [

@@ -1,0 +1,22 @@
+/**
+ * The browser's own storage. Where there is none, or it is shut off (which some browsers say by throwing at the first touch), nothing is
+ * kept and nothing else depends on it.
+ */
+import { get, set } from 'idb-keyval'
+
+/** What was kept under a key; undefined where there is nothing, or no storage. */
+export async function recall<T>(key: string): Promise<T | undefined> {
+  try {
+    return await get<T>(key)
+  } catch {
+    return undefined
+  }
+}
+
+export async function remember(key: string, value: unknown): Promise<void> {
+  try {
+    await set(key, value)
+  } catch {
+    // The work goes on without being kept.
+  }
+}
