@@ -35,8 +35,12 @@ export function Page() {
   useKeys(files.chooseFile, files.saveWorkspace)
   useStoredFile(workspace, files.report)
 
+  // That of the workspace in the sentence, which may be ahead of the figures.
+  const table = useStore(dataStore, (state) => recordedData(workspace.source, state.files))
   const samplingRateHz =
-    workspace.source.kind === 'built' ? workspace.source.samplingRateHz : (evaluation?.samplingRateHz ?? 0)
+    workspace.source.kind === 'built'
+      ? workspace.source.samplingRateHz
+      : (table?.samplingRateHz ?? evaluation?.samplingRateHz ?? 0)
   const protocol = useMemo(() => protocolOf(workspace, samplingRateHz), [workspace, samplingRateHz])
   const caption = () => {
     const of = shown.of ?? workspace

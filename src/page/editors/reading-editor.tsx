@@ -8,7 +8,7 @@ import { look } from '../../state/view.ts'
 import type { Reading, RecordedSource } from '../../state/workspace.ts'
 import { brief } from '../../words/index.ts'
 import { Actions, Choice, WordButton } from '../fields.tsx'
-import { Editor } from './editor.tsx'
+import { closeEditor, Editor } from './editor.tsx'
 
 const GUESS_WORDS: Partial<Record<Guess['what'], string>> = {
   delimiter: 'columns are separated by',
@@ -148,7 +148,7 @@ export function ReadingEditor({ source, table, onOpenFile }: ReadingEditorProps)
         </p>
       ) : null}
       <Actions>
-        <WordButton onPress={() => look({ open: null })}>it is right</WordButton>
+        <WordButton onPress={closeEditor}>it is right</WordButton>
         <WordButton onPress={() => look({ open: 'waveform' })}>condition and channel</WordButton>
         <WordButton onPress={() => look({ open: 'source' })}>scenarios</WordButton>
         <WordButton onPress={onOpenFile}>open another file</WordButton>

@@ -1,0 +1,67 @@
+/** What the core says, in the digits in which the page prints it: the journeys hold the page's text against this. */
+import { evaluate } from '../src/state/evaluate.ts'
+import type { Evaluation } from '../src/state/evaluation.ts'
+import { SCENARIOS, type Workspace, workspaceOf } from '../src/state/workspace.ts'
+import { rowWords } from '../src/words/index.ts'
+
+export { SCENARIOS, type Workspace, workspaceOf }
+
+export interface ReadoutLine {
+  name: string
+  before: string
+  after: string
+  change: string
+}
+
+/** A number as it is printed: so many decimals, a true minus sign, no sign on a rounded zero. */
+export function printed(value: number, decimals: number): string {
+  const text = value.toFixed(decimals)
+  return Number(text) === 0 ? text.replace('-', '') : text.replace('-', '\u2212')
+}
+
+const DECIMALS = { 'µV': 2, ms: 1, 'µV·s': 3 } as const
+
+/** A change carries its sign. */
+export function printedChange(value: number, decimals: number): string {
+  const text = printed(value, decimals)
+  return value > 0 && Number(text) !== 0 ? `+${text}` : text
+}
+
+/** The evaluation of a built waveform. */
+export function evaluated(workspace: Workspace): Evaluation {
+  const outcome = evaluate(workspace, null)
+  if (!outcome.ok) throw new Error(`this workspace has problems: ${outcome.problems.map((p) => p.message).join(' ')}`)
+  return outcome.evaluation
+}
+
+/** The first sight: the scenario that opens on a first visit. */
+export const firstSight = (): Workspace => workspaceOf(SCENARIOS[0])
+
+/** Every line of the readout as the page must print it, the noise of the score last. */
+export function readoutOf(workspace: Workspace): ReadoutLine[] {
+  const { rows, precision } = evaluated(workspace)
+  const lines = rows.map((row): ReadoutLine => {
+    const { name, where } = rowWords(row)
+    const cell = (value: number | string) => (typeof value === 'string' ? value : printed(value, DECIMALS[row.unit]) + row.unit)
+    return {
+      name: `${name} ${where}`.trim(),
+      before: cell(row.before),
+      after: cell(row.after),
+      change: row.change === null ? '–' : printedChange(row.change, DECIMALS[row.unit]) + row.unit,
+    }
+  })
+  const noise = `noise of the score, ${workspace.trials} trials`
+  if (!precision)
+    // a latency: no weighted sum, so no exact figure
+    lines.push({ name: noise, before: 'a latency’s noise needs simulation; there is no exact figure', after: '', change: '' })
+  else {
+    const decimals = DECIMALS[precision.unit]
+    lines.push({
+      name: noise,
+      before: printed(precision.before, decimals) + precision.unit,
+      after: printed(precision.after, decimals) + precision.unit,
+      change: printedChange(precision.change, decimals) + precision.unit,
+    })
+  }
+  return lines
+}
