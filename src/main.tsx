@@ -1,6 +1,5 @@
 import { createRoot } from 'react-dom/client'
 import './page/theme.css'
-import './plot/plot.css'
 import './page/page.css'
 import { Page } from './page/page.tsx'
 

@@ -14,10 +14,15 @@ export interface Chain {
  *
  * @param specs           stages in the order in which they act; amplifier stages come first.
  * @param samplingRateHz  samples per second, positive.
+ * @param design          designs one stage; a caller that designs often hands in one that remembers.
  * @throws RangeError     whose message begins `stage n: ` (n from 1) and which carries `stageIndex` (from 0) and, where one
  *                        property is at fault, its name in `field`.
  */
-export function designChain(specs: readonly StageSpec[], samplingRateHz: number): Chain {
+export function designChain(
+  specs: readonly StageSpec[],
+  samplingRateHz: number,
+  design: typeof designStage = designStage,
+): Chain {
   checkSamplingRate(samplingRateHz)
   const stages: Stage[] = []
   let offline = -1
@@ -31,7 +36,7 @@ export function designChain(specs: readonly StageSpec[], samplingRateHz: number)
       )
     }
     try {
-      stages.push(designStage(spec, samplingRateHz))
+      stages.push(design(spec, samplingRateHz))
     } catch (error) {
       throw error instanceof RangeError ? stageError(index, error) : error
     }
@@ -40,9 +45,9 @@ export function designChain(specs: readonly StageSpec[], samplingRateHz: number)
   return { samplingRateHz, stages }
 }
 
-/** The stages of a chain that are applied here: those that are not in the data already. */
+/** The stages of a chain that are applied here: those that are not in the data already, nor switched off. */
 export function appliedStages(chain: Chain): readonly Stage[] {
-  return chain.stages.filter((stage) => stage.spec.inData !== true)
+  return chain.stages.filter(({ spec }) => spec.inData !== true && spec.enabled !== false)
 }
 
 /**

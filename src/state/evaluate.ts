@@ -12,7 +12,7 @@ import { type NoiseRow, noiseRow, varianceOfDifference } from '../evidence/preci
 import { unseenShare, unseenShareBySample } from '../evidence/unseen-share.ts'
 import { appliedOfflineStages } from '../filter/apply-chain.ts'
 import { appliedStages, type Chain, designChain } from '../filter/chain.ts'
-import type { StageSpec } from '../filter/stage.ts'
+import { designStage, type Stage, type StageSpec } from '../filter/stage.ts'
 import { inWords, partOfField, remarkWords } from '../words/index.ts'
 import { correctedCurves, drawnNames, type RawCurves, rawCurves, type TimeAxis, timeAxis } from './evaluate-curves.ts'
 import {
@@ -136,8 +136,19 @@ function checkTrials(trials: number): void {
   throw new RangeError(`the number of trials must be a whole number from 1 to ${MAX_TRIALS}, was ${trials}`)
 }
 
+/** Stages by the specification that they were designed from: dragging one cutoff leaves the others as they are. */
+const stages = new WeakMap<StageSpec, Stage>()
+
+function designedStage(spec: StageSpec, samplingRateHz: number): Stage {
+  const kept = stages.get(spec)
+  if (kept?.samplingRateHz === samplingRateHz) return kept
+  const stage = designStage(spec, samplingRateHz)
+  stages.set(spec, stage)
+  return stage
+}
+
 const designed = memoised(
-  (specs: readonly StageSpec[], samplingRateHz: number): Chain => designChain(specs, samplingRateHz),
+  (specs: readonly StageSpec[], samplingRateHz: number): Chain => designChain(specs, samplingRateHz, designedStage),
 )
 
 function stageAt(error: RangeError & { stageIndex?: number; field?: string }): string {
