@@ -14,6 +14,14 @@ function concerns(problem: Problem, id: string): boolean {
   return problem.at === id || (problem.at.split(':').length === 2 && id === `${problem.at}:design`)
 }
 
+const messageId = (place: number) => `problem-${place}`
+
+/** Id of the message about a token; undefined where there is none. */
+function problemOf(problems: readonly Problem[], id: string): string | undefined {
+  const place = problems.findIndex((problem) => concerns(problem, id))
+  return place < 0 ? undefined : messageId(place)
+}
+
 export function ProtocolLine({ protocol, problems }: ProtocolLineProps) {
   const pieces = useMemo(() => protocolLine(protocol), [protocol])
   return (
@@ -40,14 +48,14 @@ export function ProtocolLine({ protocol, problems }: ProtocolLineProps) {
               text={piece.text}
               label={piece.label}
               off={piece.kind === 'token' ? piece.off : undefined}
-              bad={problems.some((problem) => concerns(problem, piece.id))}
+              bad={problemOf(problems, piece.id)}
               className={piece.kind === 'add' ? 'add' : ''}
             />
           )
         })}
       </p>
-      {problems.map((problem) => (
-        <p key={problem.at + problem.message} className="message" role="alert">
+      {problems.map((problem, place) => (
+        <p key={problem.at + problem.message} id={messageId(place)} className="message" role="alert">
           {problem.message}
         </p>
       ))}

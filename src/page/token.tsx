@@ -8,7 +8,8 @@ interface TokenProps {
   /** What the token is, for a screen reader: the text alone ("1 Hz") does not say. */
   label: string
   off?: boolean | undefined
-  bad?: boolean | undefined
+  /** Id of the message that says what is wrong with it. */
+  bad?: string | undefined
   className?: string
 }
 
@@ -21,6 +22,8 @@ export function Token({ id, text, label, off, bad, className = '' }: TokenProps)
       className={['token', off ? 'off' : '', bad ? 'bad' : '', className].filter(Boolean).join(' ')}
       aria-label={`${text}, ${label}`}
       aria-expanded={open}
+      aria-invalid={bad ? true : undefined}
+      aria-describedby={bad}
       onClick={() => look({ open: viewStore.getState().open === id ? null : id })}
     >
       {text}
