@@ -1,54 +1,20 @@
 /** Which words stand where in the frequency figure: each beside what it names, none over another. */
-import { textWidth } from '../plot/axis-layout.ts'
 import {
   type LabelBox,
   type LabelPlace,
-  type LabelWish,
   placeLabels,
   placesAlong,
   type PlacedLabel,
 } from '../plot/place-labels.ts'
 import type { Tone } from '../plot/tone.ts'
-
-/** A point of the whole chain at half-amplitude or half-power, or a handle without one. */
-export interface HalfPoint {
-  x: number
-  y: number
-  text: string
-  strong: boolean
-  /** A handle's own number, which the protocol line states anyway. */
-  stated: boolean
-}
-
-export interface FrequencyCourses {
-  left: number
-  top: number
-  right: number
-  bottom: number
-  /** Heights by pixel column from `left` on. */
-  chain: Float64Array
-  stages: { name: string; inData: boolean; heights: Float64Array }[]
-  before: Float64Array
-  after: Float64Array
-  noise: Float64Array
-  points: HalfPoint[]
-  /** Heights of the lines at half-amplitude and half-power; null where they would lie on one another. */
-  halves: { amplitude: number; power: number } | null
-}
+import { type FrequencyCourses, type HalfPoint, HEIGHT, type Wish, widthOf, wish } from './label-wish.ts'
+import { spectrumWishes } from './spectrum-labels.ts'
 
 export interface FigureLabel extends PlacedLabel {
   text: string
   tone: Tone
   strong: boolean
 }
-
-interface Wish extends LabelWish {
-  text: string
-  tone: Tone
-  strong: boolean
-}
-
-const HEIGHT = 15
 
 /** All labels that found room, ready to be drawn. */
 export function frequencyLabels(courses: FrequencyCourses): FigureLabel[] {
@@ -92,14 +58,6 @@ function place(wishes: Wish[], courses: FrequencyCourses): { labels: FigureLabel
   return { labels, cost: placed.reduce((sum, found) => sum + (found?.cost ?? MISSING), 0) }
 }
 
-function wish(text: string, tone: Tone, strong: boolean, places: LabelPlace[], maxCost?: number): Wish {
-  return { text, tone, strong, width: widthOf(text, strong), height: HEIGHT, places, maxCost }
-}
-
-function widthOf(text: string, strong = false): number {
-  return textWidth(text) * (strong ? 1.05 : 1)
-}
-
 /** Beside its point, on the same height if it can be. */
 function pointWish({ x, y, text, strong }: HalfPoint): Wish {
   const away = strong ? 10 : 8
@@ -139,60 +97,6 @@ function stageWish({ stages, chain, left, top }: FrequencyCourses, which: number
     return near * 2 + edge * 1.2 + (side > 0 ? 0.5 : 0) + (heights[column] < top ? 9 : 0)
   })
   return wish(name, inData ? 'quiet' : 'ink', false, places, 14)
-}
-
-function spectrumWishes({ before, after, left, bottom, top }: FrequencyCourses): Wish[] {
-  const waveform = wish(
-    'waveform',
-    'before',
-    true,
-    placesAlong(before, { width: widthOf('waveform', true), height: HEIGHT }, left, (column, side) => {
-      // on its falling side, at a third of the height, is where it can be told from everything else
-      const share = (bottom - before[column]) / (bottom - top)
-      return Math.abs(share - 0.3) * 4 + (side > 0 ? 1 : 0)
-    }).flatMap((place) => {
-      // beside the slope, too, since it is steep
-      const column = Math.round(place.x - left)
-      const share = (bottom - before[column]) / (bottom - top)
-      const slope = { x: place.x + 8, y: before[column] - 2, anchor: 'start' as const, cost: Math.abs(share - 0.3) * 4 }
-      return before[column + 8] > before[column] ? [place, slope] : [place]
-    }),
-    9,
-  )
-  return [
-    waveform,
-    wish('after', 'after', true, betweenPlaces(after, null, bottom, left, widthOf('after', true)), 9),
-    wish('taken out', 'taken-out', true, betweenPlaces(before, after, bottom, left, widthOf('taken out', true)), 9),
-  ]
-}
-
-/** Places inside the area between two curves (or a curve and the bottom), where the whole label fits. */
-function betweenPlaces(
-  upper: Float64Array,
-  lower: Float64Array | null,
-  bottom: number,
-  left: number,
-  width: number,
-): LabelPlace[] {
-  const half = Math.ceil(width / 2)
-  const places: LabelPlace[] = []
-  for (let column = half + 4; column + half + 4 < upper.length; column += 12) {
-    let from = Number.NEGATIVE_INFINITY
-    let to = bottom
-    for (let i = column - half; i <= column + half; i += 3) {
-      if (!Number.isFinite(upper[i])) from = Number.POSITIVE_INFINITY
-      from = Math.max(from, upper[i])
-      if (lower && Number.isFinite(lower[i])) to = Math.min(to, lower[i])
-    }
-    const room = to - from
-    if (room < HEIGHT + 4) continue
-    // low in a high area: the upper part is where the other lines are
-    for (const share of [0.8, 0.65, 0.5, 0.35, 0.2]) {
-      const y = from + HEIGHT / 2 + 2 + (room - HEIGHT - 4) * share
-      places.push({ x: left + column, y, anchor: 'middle', cost: Math.abs(share - 0.75) * 2 + 60 / room })
-    }
-  }
-  return places
 }
 
 function noiseWish({ noise, left }: FrequencyCourses): Wish {

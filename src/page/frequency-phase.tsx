@@ -1,5 +1,5 @@
 /** Phase or group delay of the whole chain over frequency, where it lets something through. */
-import { useMemo } from 'react'
+import { type ReactNode, useMemo } from 'react'
 import { Axis, Clipped, DirectLabel, type Frame, GridLines, PathLine, ZeroLine } from '../plot/index.ts'
 import { textWidth } from '../plot/axis-layout.ts'
 import { linePath } from '../plot/path.ts'
@@ -7,7 +7,10 @@ import { placeLabels, placesAlong } from '../plot/place-labels.ts'
 import type { Scale } from '../plot/scale.ts'
 import { ticksAt, ticksFor } from '../plot/ticks.ts'
 import type { FrequencyFigure } from '../state/evaluation.ts'
-import { axisTitle, courseOf, DRAWN_GAIN, type Pieces } from './frequency-scale.ts'
+import { courseOf } from './curve-course.ts'
+import type { Pieces } from './frequency-pieces.ts'
+import { axisTitle } from './frequency-words.ts'
+import { DRAWN_GAIN } from './gain-axis.ts'
 
 interface FrequencyPhaseProps {
   frequency: FrequencyFigure
@@ -16,9 +19,11 @@ interface FrequencyPhaseProps {
   x: Scale
   y: Scale
   pieces: Pieces
+  /** Drawn over the curve: the cursor. */
+  children: ReactNode
 }
 
-export function FrequencyPhase({ frequency, shows, frame, x, y, pieces }: FrequencyPhaseProps) {
+export function FrequencyPhase({ frequency, shows, frame, x, y, pieces, children }: FrequencyPhaseProps) {
   const { bottom, left, right, top } = frame
   const path = useMemo(() => linePath(pieces.hz, pieces.values, x, y), [pieces, x, y])
   const ticks = shows === 'phase' ? ticksAt(y, [-180, -90, 0, 90, 180]) : ticksFor(y, { lie: 'upright' })
@@ -58,7 +63,7 @@ export function FrequencyPhase({ frequency, shows, frame, x, y, pieces }: Freque
       <GridLines frame={frame} scale={x} along="x" />
       <GridLines frame={frame} scale={y} along="y" ticks={ticks} />
       <ZeroLine frame={frame} scale={y} along="y" />
-      <Axis side="bottom" scale={x} at={bottom} title={axisTitle(x.domain[0], x.domain[1], frame.plotWidth)} />
+      <Axis side="bottom" scale={x} at={bottom} title={axisTitle(x)} />
       <Axis side="left" scale={y} at={left} ticks={ticks} />
       <Clipped frame={frame}>
         <PathLine d={path} tone="after" />
@@ -75,6 +80,7 @@ export function FrequencyPhase({ frequency, shows, frame, x, y, pieces }: Freque
           {words}
         </DirectLabel>
       ) : null}
+      {children}
     </>
   )
 }

@@ -7,7 +7,8 @@ import { brief, fixed } from '../words/number.ts'
 import { FigureHead, Switch } from './figure-head.tsx'
 import './frequency-figure.css'
 import { useView } from './hooks.ts'
-import { KernelPlot, type StepEnd } from './kernel-plot.tsx'
+import type { StepEnd } from './kernel-labels.ts'
+import { KernelPlot } from './kernel-plot.tsx'
 import { type KernelRange, type KernelWords, kernelRange, kernelWords, lagText } from './kernel-shape.ts'
 import { SingleImpulsePlot } from './single-impulse-plot.tsx'
 
@@ -56,7 +57,7 @@ export function KernelFigure({ evaluation, caption, height, width }: KernelFigur
       <div className="hanging">
         <FigureFrame
           title={`Kernel: ${shows}`}
-          description={describe(evaluation, shows, range, words, end)}
+          description={kernelInWords(evaluation, shows, range, words, end)}
           height={height}
           width={width}
           margin={MARGIN}
@@ -112,7 +113,7 @@ function endOfStep({ kernel, chain }: Evaluation, range: KernelRange): StepEnd |
 }
 
 /** The figure in words, with its numbers. */
-function describe(
+function kernelInWords(
   { kernel, chain }: Evaluation,
   shows: View['kernelShows'],
   range: KernelRange,

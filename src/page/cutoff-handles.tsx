@@ -1,0 +1,49 @@
+import { Handle } from '../plot/index.ts'
+import type { Scale } from '../plot/scale.ts'
+import { replaceStage } from '../state/chain-actions.ts'
+import { endGesture, say } from '../state/store.ts'
+import { type CutoffMark, withCutoff } from './cutoff-marks.ts'
+import type { PlacedCutoff } from './frequency-curves.ts'
+import { hzText } from './frequency-words.ts'
+
+interface CutoffHandlesProps {
+  placed: readonly PlacedCutoff[]
+  x: Scale
+  /** A drag begins (true) or ends. */
+  onDrag: (dragging: boolean) => void
+}
+
+/** One circle per cutoff of the stages applied here; dragging it says the cutoff. */
+export function CutoffHandles({ placed, x, onDrag }: CutoffHandlesProps) {
+  const end = () => {
+    endGesture()
+    onDrag(false)
+  }
+  return placed.map(({ cutoff, y }) => (
+    <Handle
+      key={`${cutoff.stage} ${cutoff.edge}`}
+      scale={x}
+      value={cutoff.hz}
+      y={y}
+      min={cutoff.minHz}
+      max={cutoff.maxHz}
+      stepBy={(hz, steps) => Number((hz * 1.01 ** steps).toPrecision(3))}
+      label={cutoff.label}
+      valueText={hzText}
+      onChangeStart={() => onDrag(true)}
+      onChange={(hz) => setCutoff(cutoff, hz)}
+      onChangeEnd={end}
+      onChangeCancel={end}
+    />
+  ))
+}
+
+/** Says one cutoff; those of one drag are one step of undo. */
+function setCutoff({ stage, edge }: CutoffMark, hz: number): void {
+  say((workspace) => {
+    const spec = workspace.chain[stage]
+    // undo during a drag may have taken the stage away
+    if (!spec) return workspace
+    return { ...workspace, chain: replaceStage(workspace.chain, stage, withCutoff(spec, edge, hz)) }
+  }, `stage:${stage}:cutoff`)
+}
