@@ -41,10 +41,11 @@ export function directProgram(sections: Float64Array): DirectProgram | null {
 }
 
 /**
- * Runs all sections from rest over values[from], …, values[to − 1] in place.
+ * Runs all sections over values[from], …, values[to − 1] in place, from rest or from the steady state of a constant input.
  *
  * @param backward  runs from to − 1 down to from.
  * @param offset    is subtracted from every value first.
+ * @param level     what the input, with the offset off, is taken to have been for ever before; 0 is rest.
  */
 export function runDirect(
   { rows, gain }: DirectProgram,
@@ -53,9 +54,10 @@ export function runDirect(
   to: number,
   backward: boolean,
   offset = 0,
+  level = 0,
 ): void {
   const sections = rows.length / ROW
-  const states = new Float64Array(2 * sections)
+  const states = level === 0 ? new Float64Array(2 * sections) : steadyStates(rows, level)
   const step = backward ? -1 : 1
   for (let done = 0; done < to - from; done += PIECE) {
     const count = Math.min(PIECE, to - from - done)
@@ -63,12 +65,26 @@ export function runDirect(
     const end = start + step * count
     for (let section = 0; section < sections; section += 2) {
       const first = section === 0 ? offset : 0
-      const last = section + 2 >= sections ? gain : 1
-      if (section + 1 < sections) runPair(rows, states, section, values, start, end, step, first, last)
-      else runSingle(rows, states, section, values, start, end, step, first, last)
+      const scale = section + 2 >= sections ? gain : 1
+      if (section + 1 < sections) runPair(rows, states, section, values, start, end, step, first, scale)
+      else runSingle(rows, states, section, values, start, end, step, first, scale)
     }
     for (let i = 0; i < states.length; i++) if (Math.abs(states[i]) < NEGLIGIBLE) states[i] = 0
   }
+}
+
+/** States that a constant input leaves: y = g·v with g = (1 + b1 + b2)/(1 + a1 + a2), section by section. */
+function steadyStates(rows: Float64Array, level: number): Float64Array {
+  const states = new Float64Array(rows.length / 2)
+  let input = level
+  for (let at = 0; at < rows.length; at += ROW) {
+    const [c1, c2, a1, a2] = rows.subarray(at, at + ROW)
+    const output = (input * (1 + c1 + a1 + c2 + a2)) / (1 + a1 + a2)
+    states[at / 2] = output - input
+    states[at / 2 + 1] = (c2 + a2) * input - a2 * output
+    input = output
+  }
+  return states
 }
 
 function runPair(

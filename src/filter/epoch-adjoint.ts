@@ -3,7 +3,7 @@ import {
   type RecursiveProgram,
   recursiveProgram,
   requireRoom,
-  runFromRest,
+  runPass,
   sum,
 } from './epoch-rules.ts'
 import { convolveTaps } from './finite-response.ts'
@@ -55,7 +55,7 @@ function adjointStage(stage: Stage, w: Float64Array): Float64Array {
  */
 function transposePass(program: RecursiveProgram, values: Float64Array, backward: boolean): void {
   const given = program.gainAtZero * sum(values)
-  runFromRest(program, values, !backward)
+  runPass(program, values, !backward)
   values[backward ? values.length - 1 : 0] += given - sum(values)
 }
 

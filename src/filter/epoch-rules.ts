@@ -97,7 +97,7 @@ function applyForward(stage: Stage, x: Float64Array, out: Float64Array): void {
   const program = recursiveProgram(stage)
   const first = x[0]
   out.set(x)
-  runFromRest(program, out, false, first)
+  runPass(program, out, false, first)
   const constant = program.gainAtZero * first
   if (constant !== 0) for (let i = 0; i < out.length; i++) out[i] += constant
 }
@@ -107,13 +107,11 @@ function applyBothWays(stage: Stage, x: Float64Array, out: Float64Array): void {
   const padding = epochPaddingSamples(stage)
   const padded = reflectOddly(x, padding, padding, scratch(x.length + 2 * padding))
   const first = padded[0]
-  runFromRest(program, padded, false, first)
-  // the forward pass still lacks gain·first, which the backward pass would subtract with its own first value
-  const turn = padded[padded.length - 1]
-  runFromRest(program, padded, true, turn)
-  const { gainAtZero } = program
-  const constant = gainAtZero * (turn + gainAtZero * first)
-  for (let i = 0; i < out.length; i++) out[i] = padded[padding + i] + constant
+  // the forward pass leaves out what the first sample gives for ever; the backward pass takes it in again
+  const missing = program.gainAtZero * first
+  runPass(program, padded, false, first)
+  runPass(program, padded, true, -missing, padded[padded.length - 1] + missing)
+  out.set(padded.subarray(padding, padding + x.length))
 }
 
 /** Room for one padded epoch at a time, kept because asking for megabytes anew costs as much as filtering them. */
@@ -167,14 +165,28 @@ export function recursiveProgram(stage: Stage): RecursiveProgram {
   return made
 }
 
-/** One pass from rest over all values, in place; `offset` is subtracted from every value first. */
-export function runFromRest(program: RecursiveProgram, values: Float64Array, backward: boolean, offset = 0): void {
-  const { direct, stateVariable } = program
-  if (direct !== null) runDirect(direct, values, 0, values.length, backward, offset)
-  else {
-    const states = new Float64Array(stateVariable.length / 3)
-    runStateVariable(stateVariable, states, values, 0, values.length, backward, offset)
+/**
+ * One pass over all values, in place.
+ *
+ * @param offset  is subtracted from every value first.
+ * @param level   what the input, with the offset off, is taken to have been for ever before; 0 is rest.
+ */
+export function runPass(
+  { direct, stateVariable, gainAtZero }: RecursiveProgram,
+  values: Float64Array,
+  backward: boolean,
+  offset = 0,
+  level = 0,
+): void {
+  if (direct !== null) {
+    runDirect(direct, values, 0, values.length, backward, offset, level)
+    return
   }
+  // a steady state of 20 mV would cost these states the digits that they are there for
+  const states = new Float64Array(stateVariable.length / 3)
+  runStateVariable(stateVariable, states, values, 0, values.length, backward, offset + level)
+  const constant = gainAtZero * level
+  if (constant !== 0) for (let i = 0; i < values.length; i++) values[i] += constant
 }
 
 export function sum(values: Float64Array): number {

@@ -48,6 +48,20 @@ describe('runDirect', () => {
     )
   })
 
+  test('starts from a level as if that level had lasted for ever', () => {
+    for (const order of [1, 2, 3, 4]) {
+      for (const pass of ['low', 'high'] as const) {
+        const direct = directProgram(designStage(spec(pass, order, [60]), 500).sections!)!
+        const long = new Float64Array(3000).fill(5.5)
+        const short = wave(100)
+        long.set(short, 2900)
+        runDirect(direct, long, 0, 3000, false, 2)
+        runDirect(direct, short, 0, 100, false, 2, 3.5)
+        short.forEach((v, i) => expect(Math.abs(v - long[2900 + i]!)).toBeLessThan(1e-13))
+      }
+    }
+  })
+
   test('goes on unchanged where a long run is cut into pieces', () => {
     const direct = directProgram(designStage(spec('low', 3, [80]), 500).sections!)!
     const [whole, parts] = [wave(20_000), wave(20_000)]
