@@ -86,6 +86,9 @@ function windowLabel(
     const y = frame.top + 4 + height / 2 + row * 12
     const cost = row * 9
     if (toPx - fromPx >= width + 14) places.push({ x: fromPx + 8, y, anchor: 'start', cost })
+    // from one edge inwards and out at the other, where neighbours leave no room
+    places.push({ x: toPx - 7, y, anchor: 'end', cost: cost + 16 + astray(toPx - 7 - width, toPx - 7) })
+    places.push({ x: fromPx + 8, y, anchor: 'start', cost: cost + 17 + astray(fromPx + 8, fromPx + 8 + width) })
     places.push({ x: toPx + 8, y, anchor: 'start', cost: cost + 4 + astray(toPx + 8, toPx + 8 + width) })
     places.push({ x: fromPx - 8, y, anchor: 'end', cost: cost + 7 + astray(fromPx - 8 - width, fromPx - 8) })
   }

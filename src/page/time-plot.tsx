@@ -1,31 +1,18 @@
 /** What is drawn inside the time figure's frame. */
-import { Fragment, memo, useMemo } from 'react'
+import { useMemo } from 'react'
 import type { Score } from '../erp/score.ts'
-import {
-  Area,
-  Axis,
-  Clipped,
-  Cursor,
-  type Frame,
-  GridLines,
-  HatchedZone,
-  Line,
-  linearScale,
-  type Scale,
-  StaticBand,
-  ticksFor,
-  type Tone,
-  ZeroLine,
-} from '../plot/index.ts'
+import { Cursor, type Frame, linearScale, type Scale } from '../plot/index.ts'
 import type { Evaluation } from '../state/evaluation.ts'
 import { windowWords } from '../words/index.ts'
 import { LabelTexts, Unspoken } from './label-text.tsx'
 import { courseOf } from './placed-labels.ts'
 import { scoreMark, scoreText } from './score-mark.ts'
 import { ScoreMarkLine } from './score-mark-line.tsx'
-import { amplitudeDomain, msText, type TimeAxis, timeTicks, unseenStretches, uvText } from './time-axis.ts'
+import { amplitudeDomain, msText, type TimeAxis, unseenStretches, uvText } from './time-axis.ts'
 import { TimeBands, type Windows } from './time-bands.tsx'
-import { readingWords } from './time-figure.tsx'
+import { conditionTone, Grounds, TimeAxes, TimeCurves } from './time-layers.tsx'
+import { readingWords } from './time-reading.ts'
+import { useFrame } from './shared-axis.ts'
 import { type CursorReading, cursorLabels, handles, markExtent, stillLabels, type WindowLabel } from './time-labels.ts'
 
 interface TimePlotProps {
@@ -42,27 +29,22 @@ interface TimePlotProps {
   polarity: 'up' | 'down'
 }
 
-/** The colour of a condition that is not the chosen one: by its place, so that choosing another changes no more than it must. */
-const conditionTone = (place: number): Tone => `condition-${(place % 4) + 1}`
-
-/** The frame as one object for as long as its size stays, so that nothing in it is laid out anew without need. */
-export function useFrame(frame: Frame): Frame {
-  const { width, height, id, left, top } = frame
-  // biome-ignore lint/correctness/useExhaustiveDependencies: these say all that a frame is made of
-  return useMemo(() => frame, [width, height, id, left, top])
-}
-
 export function TimePlot(props: TimePlotProps) {
   const { evaluation, axis, windows, score, cursor, onCursor, onHold, takenOut, polarity } = props
   const frame = useFrame(props.frame)
   const { curves, chosen } = evaluation
   const main = curves[chosen]
   const x = useMemo(() => linearScale([axis.fromMs, axis.toMs], [frame.left, frame.right]), [axis, frame])
-  const y = useMemo(() => {
+  const [bottomUv, topUv] = useMemo(() => {
     const drawn = curves.flatMap(({ before, after }) => [before, after])
     if (takenOut) drawn.push(main.takenOut)
-    return linearScale(amplitudeDomain(drawn, polarity), [frame.bottom, frame.top])
-  }, [curves, main, takenOut, polarity, frame])
+    return amplitudeDomain(drawn, polarity)
+  }, [curves, main, takenOut, polarity])
+  // by its numbers, so that the curves' paths are kept while only the score's window is moved
+  const y = useMemo(
+    () => linearScale([bottomUv, topUv], [frame.bottom, frame.top]),
+    [bottomUv, topUv, frame.bottom, frame.top],
+  )
   const courses = useMemo(() => {
     const course = (values: Float64Array) => courseOf(values, axis.firstMs, axis.stepMs, frame, x, y)
     const others = curves.flatMap((entry, i) =>
@@ -163,74 +145,3 @@ function windowLabels(x: Scale, score: Score, baseline: Windows['baseline'], not
   })
   return [...(baseline === 'none' ? [] : [label('baseline', baseline, null)]), label('score', score, note)]
 }
-
-interface PlaneProps {
-  frame: Frame
-  x: Scale
-  y: Scale
-}
-
-type GroundsProps = PlaneProps & {
-  axis: TimeAxis
-  windows: Windows
-  unseen: readonly { fromPx: number; toPx: number }[]
-}
-
-/** Hatching, grid and windows under the curves. */
-export const Grounds = memo(function Grounds({ frame, x, y, axis, windows, unseen }: GroundsProps) {
-  const { score, baseline } = windows
-  return (
-    <>
-      <HatchedZone frame={frame} kind="outside" fromPx={frame.left} toPx={x.toPixel(axis.firstMs)} />
-      <HatchedZone frame={frame} kind="outside" fromPx={x.toPixel(axis.lastMs)} toPx={frame.right} />
-      {unseen.map((part) => (
-        <HatchedZone key={part.fromPx} frame={frame} kind="unseen" {...part} />
-      ))}
-      <GridLines frame={frame} scale={x} along="x" ticks={timeTicks(x).ticks} />
-      <GridLines frame={frame} scale={y} along="y" />
-      {baseline === 'none' ? null : (
-        <StaticBand frame={frame} scale={x} look="light" value={{ from: baseline.fromMs, to: baseline.toMs }} />
-      )}
-      <StaticBand frame={frame} scale={x} value={{ from: score.fromMs, to: score.toMs }} />
-      <ZeroLine frame={frame} scale={y} along="y" />
-      <ZeroLine frame={frame} scale={x} along="x" />
-    </>
-  )
-})
-
-type CurvesProps = PlaneProps & { axis: TimeAxis; evaluation: Evaluation; takenOut: boolean }
-
-const TimeCurves = memo(function TimeCurves({ frame, x, y, axis, evaluation, takenOut }: CurvesProps) {
-  const { curves, chosen } = evaluation
-  const main = curves[chosen]
-  const on = { xs: { start: axis.firstMs, step: axis.stepMs }, x, y }
-  return (
-    <Clipped frame={frame}>
-      {takenOut ? <Area {...on} ys={main.takenOut} tone="taken-out" /> : null}
-      {curves.map(({ name, before, after }, i) =>
-        i === chosen ? null : (
-          <Fragment key={name}>
-            <Line {...on} ys={before} tone={conditionTone(i)} weight="hair" />
-            <Line {...on} ys={after} tone={conditionTone(i)} weight="thick" className="condition-after" />
-          </Fragment>
-        ),
-      )}
-      {takenOut ? <Line {...on} ys={main.takenOut} tone="taken-out" /> : null}
-      <Line {...on} ys={main.before} tone="before" />
-      <Line {...on} ys={main.after} tone="after" />
-    </Clipped>
-  )
-})
-
-/** The unit stands above the numbers, so none stands at the very top. */
-const UNIT_PX = 18
-
-const TimeAxes = memo(function TimeAxes({ frame, x, y }: PlaneProps) {
-  const ticks = ticksFor(y, { lie: 'upright' }).filter((tick) => tick.pixel > frame.top + UNIT_PX)
-  return (
-    <>
-      <Axis side="bottom" scale={x} at={frame.bottom} {...timeTicks(x)} />
-      <Axis side="left" scale={y} at={frame.left} ticks={ticks} title="µV" />
-    </>
-  )
-})

@@ -16,6 +16,7 @@ import {
   StaticBand,
   StaticCursor,
   stepPath,
+  ticksFor,
   ZeroLine,
 } from '../plot/index.ts'
 import type { WindowFigure } from '../state/evaluation.ts'
@@ -33,7 +34,7 @@ import {
 } from './placed-labels.ts'
 import { type TimeAxis, timeTicks } from './time-axis.ts'
 import type { Windows } from './time-bands.tsx'
-import { useFrame } from './time-plot.tsx'
+import { useFrame } from './shared-axis.ts'
 import { boxesOf, filteredWords, peakHere, perHundredMs, unfilteredWords, weightText } from './window-words.ts'
 
 interface WindowPlotProps {
@@ -154,13 +155,15 @@ const WindowCurves = memo(function WindowCurves({ frame, x, y, axis, windows, cu
       y,
     )
   }, [unfiltered, startMs, axis, x, y])
+  // the strip is low: two or three numbers
+  const ticks = ticksFor(y, y.kind === 'linear' ? { count: 3 } : { lie: 'upright' })
   const on = { xs: { start: startMs, step: axis.stepMs }, x, y }
   return (
     <>
       <HatchedZone frame={frame} kind="outside" fromPx={frame.left} toPx={x.toPixel(axis.firstMs)} />
       <HatchedZone frame={frame} kind="outside" fromPx={x.toPixel(axis.lastMs)} toPx={frame.right} />
       <GridLines frame={frame} scale={x} along="x" ticks={timeTicks(x).ticks} />
-      <GridLines frame={frame} scale={y} along="y" />
+      <GridLines frame={frame} scale={y} along="y" ticks={ticks} />
       {baseline === 'none' ? null : (
         <StaticBand frame={frame} scale={x} look="light" value={{ from: baseline.fromMs, to: baseline.toMs }} />
       )}
@@ -173,7 +176,7 @@ const WindowCurves = memo(function WindowCurves({ frame, x, y, axis, windows, cu
         <PathLine d={box} tone="before" weight="hair" />
         <Line {...on} ys={filtered} tone="after" className="window-filtered" />
       </Clipped>
-      <Axis side="left" scale={y} at={frame.left} />
+      <Axis side="left" scale={y} at={frame.left} ticks={ticks} />
     </>
   )
 })

@@ -6,7 +6,7 @@ import { look } from '../state/view.ts'
 import { FigureHead, Switch } from './figure-head.tsx'
 import { useView } from './hooks.ts'
 import { msText } from './time-axis.ts'
-import { cursorAt, MARGIN, type SharedAxis } from './time-figure.tsx'
+import { cursorAt, MARGIN, type SharedAxis } from './shared-axis.ts'
 import { WindowPlot } from './window-plot.tsx'
 import { noWindowWords, outsideWords, perHundredMs, weightText } from './window-words.ts'
 
@@ -38,7 +38,8 @@ function DrawnWindow(props: SharedAxis & { window: WindowFigure }) {
     axis.stepMs,
   )
   const unit = score.kind === 'area' ? 'weight in s per 100 ms' : 'weight per 100 ms'
-  const outside = outsideWords(window.shareOutside, evaluation.unseenBySample ? 'epochs' : 'continuous')
+  const extent = evaluation.unseenBySample ? 'epochs' : 'continuous'
+  const outside = outsideWords(window.shareOutside, extent)
   const of =
     window.heldFixed === null ? ' of the unfiltered waveform' : ` of the unfiltered waveform, ${window.heldFixed}`
   return (
@@ -60,7 +61,7 @@ function DrawnWindow(props: SharedAxis & { window: WindowFigure }) {
             onChange={(windowScale) => look({ windowScale })}
           />
         </span>
-        <span className="outside">{window.heldFixed === null ? outside : outside.replace(' of the weight', '')}</span>
+        <span className="outside">{outsideWords(window.shareOutside, extent, window.heldFixed !== null)}</span>
       </FigureHead>
       <div className="time-hanging">
         <FigureFrame

@@ -55,13 +55,13 @@ export function filteredWords(weight: string, ms: number, peakOf: string | null)
  * "hatched: outside the epoch, 4.7 % of the weight"; on cut-out epochs, where no weight can lie outside, the part that would have.
  *
  * @param share  0 to 1.
+ * @param short  beside a long title line.
  */
-export function outsideWords(share: number, extent: 'continuous' | 'epochs'): string {
+export function outsideWords(share: number, extent: 'continuous' | 'epochs', short = false): string {
   const percent = share * 100
   const text = `${percent > 0 && percent < 0.05 ? 'under 0.1' : fixed(percent, 1)} %`
-  return extent === 'epochs'
-    ? `unseen share of the score: ${text}`
-    : `hatched: outside the epoch, ${text} of the weight`
+  if (extent === 'epochs') return short ? `unseen share: ${text}` : `unseen share of the score: ${text}`
+  return short ? `outside the epoch: ${text}` : `hatched: outside the epoch, ${text} of the weight`
 }
 
 /** Why there is no effective window. */

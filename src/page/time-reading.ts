@@ -1,0 +1,13 @@
+import type { Evaluation } from '../state/evaluation.ts'
+import { uvText } from './time-axis.ts'
+
+/** What is read at the cursor, for those who do not see the labels. */
+export function readingWords(evaluation: Evaluation, cursor: number, takenOut: boolean): string {
+  const chosen = evaluation.curves[evaluation.chosen]
+  const words = [`before ${uvText(chosen.before[cursor])}`, `after ${uvText(chosen.after[cursor])}`]
+  const name = evaluation.delayIncluded ? 'before − after, delay included,' : 'taken out'
+  if (takenOut) words.push(`${name} ${uvText(chosen.takenOut[cursor])}`)
+  for (const [i, { name, before, after }] of evaluation.curves.entries())
+    if (i !== evaluation.chosen) words.push(`${name} before ${uvText(before[cursor])}, after ${uvText(after[cursor])}`)
+  return words.join(', ')
+}
