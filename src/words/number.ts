@@ -26,7 +26,7 @@ export function signed(value: number, decimals: number): string {
 export function brief(value: number, digits = 3): string {
   if (!Number.isFinite(value)) return '\u2013'
   if (value === 0) return '0'
-  const size = Math.abs(Number(value.toPrecision(digits)))
+  const size = Math.min(Number.MAX_VALUE, Math.abs(Number(value.toPrecision(digits))))
   const decimals = Math.max(0, Math.min(100, digits - 1 - Math.floor(Math.log10(size))))
   const text = digitsOf(size, decimals)
   const trimmed = text.includes('.') ? text.replace(/\.?0+$/, '') : text

@@ -55,8 +55,8 @@ function effectWords(facts: RemarkFacts): string {
   const said = (value: number) => `${fixed(value, decimals(unit, value))} ${unit}`
   const saidChange = `${signed(change, decimals(unit, change))} ${unit}`
   if (unit === 'ms') {
-    if (Math.abs(change) < 0.5) return `The chain leaves the latency at ${said(after)}.`
     const ms = (value: number) => `${fixed(value, decimals(unit, change))} ms`
+    if (Math.abs(change) < 0.5) return `The chain leaves the latency at ${ms(after)}.`
     return `The chain moves the latency from ${ms(before)} to ${ms(after)}: ${change < 0 ? 'earlier' : 'later'} by ${ms(Math.abs(change))}.`
   }
   const scale = unit === 'µV' ? largestUv : Math.max(Math.abs(before), Math.abs(after))

@@ -66,6 +66,12 @@ function cutoffsText(cutoffsHz: readonly number[]): string {
   return `${list(cutoffsHz.map(exact))} Hz`
 }
 
+/** A dash for a cutoff that has no time constant: the sentence stands even where its stage cannot be designed. */
+function timeConstantText(cutoffHz: number): string {
+  if (!(cutoffHz > 0 && cutoffHz < Infinity)) return exact(Number.NaN)
+  return exact(Number(hzToTimeConstant(cutoffHz).toPrecision(10)))
+}
+
 /** A cutoff has one reading only: which gain, and after which passes. */
 export function meaningWords(meaning: CutoffMeaning, passes: 1 | 2, sinc: boolean): { before: string; after: string } {
   const after = passes === 2 ? ' after both passes' : ''
@@ -127,11 +133,7 @@ export function stagePieces(spec: StageSpec, index: number): Piece[] {
           text('an '),
           token(id('design'), 'amplifier', `${n}: amplifier high-pass`),
           text(' with a '),
-          token(
-            id('cutoff'),
-            `${exact(Number(hzToTimeConstant(spec.cutoffHz).toPrecision(10)))} s`,
-            `${n}, time constant`,
-          ),
+          token(id('cutoff'), `${timeConstantText(spec.cutoffHz)} s`, `${n}, time constant`),
           text(' time constant'),
         ]
       return [
