@@ -9,3 +9,35 @@ export { responseBreaksHz } from './response-breaks.ts'
 export { equalTrialsFactor, noiseRow, precisionFactor, varianceOfDifference, type NoiseRow } from './precision.ts'
 export { type AmplitudeSpectrum, amplitudesAt, amplitudeSpectrum } from './amplitude-spectrum.ts'
 export { filterBuiltWaveform, filterRecordedWaveform } from './filtered-waveform.ts'
+export {
+  isTraced,
+  type NotTraced,
+  type Traced,
+  type TracedInput,
+  type TracedOf,
+  tracedWeights,
+} from './traced-weights.ts'
+export type { Events, TraceSource } from './traced-waveform.ts'
+export { checkEvents, type Interval } from './event-train.ts'
+export { neighbourContribution, neighboursAfter, neighboursBefore } from './neighbours.ts'
+export {
+  type Boundary,
+  boundaryAt,
+  moveBoundary,
+  removeBoundary,
+  splitStretch,
+  type Stretches,
+} from './stretches.ts'
+export { type LargeComponent, largeComponents } from './large-components.ts'
+export { defaultStretches, type StretchMarks } from './default-stretches.ts'
+export { isAboutZero, type TraceInput } from './trace-input.ts'
+export { type MomentRow, type MomentTrace, momentRows, shareDensity, traceByMoment } from './trace-by-moment.ts'
+export {
+  type PartRow,
+  type PartTrace,
+  type SignedCondition,
+  traceByComponent,
+  traceByCondition,
+} from './trace-by-component.ts'
+export { type StageRow, type StageTrace, traceByStage } from './trace-by-stage.ts'
+export { type TraceBack, traceBack, type TraceTrust, traceTrust, UNSEEN_THRESHOLD } from './trace-back.ts'
