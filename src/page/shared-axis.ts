@@ -18,7 +18,7 @@ export interface SharedAxis {
 }
 
 /** Room for the axes; the numbers on the left hang into the page's margin. */
-export const MARGIN = { top: 2, right: 0, bottom: 24, left: 44 }
+export const MARGIN = { top: 6, right: 0, bottom: 24, left: 44 }
 
 /** The sample under the pointer, in ms. */
 export function cursorAt(point: Point, frame: Frame, axis: TimeAxis): number {

@@ -15,7 +15,7 @@ interface TimeFigureProps extends SharedAxis {
   onDelayed: (shown: boolean) => void
 }
 
-const HEIGHT = 238
+const HEIGHT = 240
 
 export function TimeFigure(props: TimeFigureProps) {
   const { evaluation, workspace, caption, axis, windows, cursor, onCursor, takenOut, onDelayed } = props

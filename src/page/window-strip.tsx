@@ -68,7 +68,7 @@ function DrawnWindow(props: SharedAxis & { window: WindowFigure }) {
           title="Effective window"
           description={`${unit}${of}. After the chain ${weightText(weight, score)} at ${msText(cursorMs)}; ${outside}.`}
           height={HEIGHT}
-          margin={{ ...MARGIN, bottom: 2 }}
+          margin={{ ...MARGIN, top: 2, bottom: 2 }}
           svgRef={svg}
           onHover={(point, frame) => (point ? onCursor(cursorAt(point, frame, axis)) : undefined)}
         >
