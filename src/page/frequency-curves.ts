@@ -70,6 +70,7 @@ export function gainCourses(curves: GainCurves, axis: GainAxis, x: Scale, y: Sca
     before: course(curves.before),
     after: course(curves.after),
     noise: course(curves.noise),
+    full: y.toPixel(axis.full),
     halves: Math.abs(amplitude - power) > 20 ? { amplitude, power } : null,
   }
 }

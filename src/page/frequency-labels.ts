@@ -1,11 +1,5 @@
 /** Which words stand where in the frequency figure: each beside what it names, none over another. */
-import {
-  type LabelBox,
-  type LabelPlace,
-  placeLabels,
-  placesAlong,
-  type PlacedLabel,
-} from '../plot/place-labels.ts'
+import { type LabelBox, type LabelPlace, placeLabels, placesAlong, type PlacedLabel } from '../plot/place-labels.ts'
 import type { Tone } from '../plot/tone.ts'
 import { type FrequencyCourses, type HalfPoint, HEIGHT, type Wish, widthOf, wish } from './label-wish.ts'
 import { spectrumWishes } from './spectrum-labels.ts'
@@ -19,11 +13,12 @@ export interface FigureLabel extends PlacedLabel {
 /** All labels that found room, ready to be drawn. */
 export function frequencyLabels(courses: FrequencyCourses): FigureLabel[] {
   const { points } = courses
-  const stages = courses.stages.map((_, which) => stageWish(courses, which))
+  const row = courses.full - HEIGHT / 2 - 3
+  const stages = courses.stages.map((_, which) => inRow(stageWish(courses, which), row))
   const first = [
     ...points.filter(({ strong, stated }) => strong && !stated).map(pointWish),
     ...points.filter(({ strong }) => !strong).map(pointWish),
-    chainWish(courses),
+    inRow(chainWish(courses), row),
     ...spectrumWishes(courses),
   ]
   const last = [...points.filter(({ stated }) => stated).map(pointWish), noiseWish(courses), ...halfWishes(courses)]
@@ -31,6 +26,14 @@ export function frequencyLabels(courses: FrequencyCourses): FigureLabel[] {
   const orders = stages.length > 1 ? [stages, [...stages].reverse()] : [stages]
   const tries = orders.map((order) => place([...first, ...order, ...last], courses))
   return tries.reduce((best, other) => (other.cost < best.cost ? other : best)).labels
+}
+
+/** Labels that stand nearly in the row above full gain stand in it, on one line. */
+function inRow(wanted: Wish, row: number): Wish {
+  return {
+    ...wanted,
+    places: wanted.places.map((spot) => (Math.abs(spot.y - row) < 4 ? { ...spot, y: row } : spot)),
+  }
 }
 
 /** What it costs to leave a label out. */

@@ -99,17 +99,22 @@ function singleWords({ stages }: Evaluation['chain'], impulse: boolean): { stron
   }
 }
 
-/** The value that a step settles at, or, where it is still on its way at the end of the figure, the value there. */
+/**
+ * The value that a step settles at, and before it the value at the end of the figure where the two are not yet the same. Every design is
+ * scaled to pass 0 Hz whole or to stop it, so that the final value is known without waiting for it.
+ */
 function endOfStep({ kernel, chain }: Evaluation, range: KernelRange): StepEnd | null {
   const last = kernel.step.length - 1
   if (last < 0) return null
   const index = Math.min(last, Math.round(range.toMs / kernel.stepMs) - kernel.fromIndex)
   const value = kernel.step[index]
-  const slow = chain.stages.some(
-    ({ spec }) => spec.design === 'amplifier' && spec.pass === 'high' && spec.inData !== true,
-  )
-  const at = lagText((index + kernel.fromIndex) * kernel.stepMs)
-  return { value, words: range.whole && !slow ? `final value ${fixed(value, 2)}` : `${fixed(value, 2)} at ${at} ms` }
+  const applied = chain.stages.flatMap(({ spec }) => (spec.inData === true ? [] : [spec]))
+  const stopped = applied.some((spec) => 'pass' in spec && (spec.pass === 'high' || spec.pass === 'band'))
+  const slow = applied.some((spec) => spec.design === 'amplifier' && spec.pass === 'high')
+  const final = stopped ? 0 : 1
+  const settled = range.whole && !slow && fixed(value, 2) === fixed(final, 2)
+  const at = `${fixed(value, 2)} at ${lagText((index + kernel.fromIndex) * kernel.stepMs)} ms`
+  return { value, words: settled ? `final value ${final}` : `${at}, final value ${final}` }
 }
 
 /** The figure in words, with its numbers. */

@@ -25,6 +25,8 @@ export interface FrequencyCourses {
   after: Float64Array
   noise: Float64Array
   points: HalfPoint[]
+  /** Height of full gain. */
+  full: number
   /** Heights of the lines at half-amplitude and half-power; null where they would lie on one another. */
   halves: { amplitude: number; power: number } | null
 }

@@ -110,10 +110,12 @@ describe('kernel figure', () => {
     expect(texts(markup)).toContain('reach −844 to 844 ms')
   })
 
-  test('a step response says the value that it settles at', () => {
+  test('a step response says the value that it settles at, and where it stands if it has not settled', () => {
     look({ kernelShows: 'step response' })
-    expect(texts(kernel([highPass]))).toContain('final value 0.00')
-    expect(texts(kernel([{ ...highPass, pass: 'low', cutoffsHz: [30] }]))).toContain('final value 1.00')
+    expect(texts(kernel([{ ...highPass, pass: 'low', cutoffsHz: [30] }]))).toContain('final value 1')
+    expect(texts(kernel([highPass]))).toContain('final value 0')
+    const slow = texts(kernel([{ ...highPass, cutoffsHz: [0.05] }])).find((text) => text.endsWith('final value 0'))
+    expect(slow).toMatch(/^[−\d.]+ at \d+ ms, final value 0$/)
   })
 
   test('an empty chain is said in words, and so is one that does not run here', () => {
