@@ -1,6 +1,6 @@
 /** Title line of a figure: name, what it shows as tokens or words, and saving it as SVG or PNG with its caption. */
 import { type ReactNode, type RefObject, useState } from 'react'
-import { downloadBlob, figureToPng, figureToSvg } from '../plot/index.ts'
+import { downloadBlob, figureToPng, figureToSvg, fontFaceCss } from '../plot/index.ts'
 
 interface FigureHeadProps {
   title: string
@@ -19,7 +19,7 @@ export function FigureHead({ title, children, svg, caption, fileName }: FigureHe
     setOpen(false)
     if (!svg.current) return
     try {
-      const text = figureToSvg(svg.current, { title, caption: caption() })
+      const text = figureToSvg(svg.current, { title, caption: caption(), fontCss: await fontFaceCss() })
       downloadBlob(
         kind === 'svg' ? new Blob([text], { type: 'image/svg+xml' }) : await figureToPng(text, 2),
         `${fileName}.${kind}`,

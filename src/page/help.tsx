@@ -1,9 +1,10 @@
+import { useEffect } from 'react'
 import { look } from '../state/view.ts'
 
 const KEYS: readonly [string, string][] = [
   ['Tab, Shift+Tab', 'to the next or the last token, band, handle or button'],
   ['Enter', 'opens the editor of a token'],
-  ['Escape', 'closes the editor; during a drag it puts back what was there'],
+  ['Escape', 'closes the editor or the help; during a drag it puts back what was there'],
   ['arrow keys', 'on a band or handle: one sample or one per cent; in a number field: one step'],
   ['Shift + arrow keys', 'ten steps'],
   ['Home, End', 'on a band or handle: as far as it goes'],
@@ -13,6 +14,13 @@ const KEYS: readonly [string, string][] = [
 ]
 
 export function Help() {
+  useEffect(() => {
+    const before = document.activeElement
+    return () => {
+      // Its own button goes with it: the keyboard returns to where it was.
+      if (document.activeElement === document.body && before instanceof HTMLElement) before.focus()
+    }
+  }, [])
   return (
     <section className="help" aria-label="Help">
       <div>

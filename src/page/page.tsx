@@ -4,7 +4,7 @@ import { useStore } from 'zustand'
 import { dataStore, recordedData, rereadTable } from '../state/recorded-data.ts'
 import { protocolOf } from '../state/protocol.ts'
 import { redo, say, undo } from '../state/store.ts'
-import { look } from '../state/view.ts'
+import { look, viewStore } from '../state/view.ts'
 import { startWorkspace, type Workspace } from '../state/workspace.ts'
 import { protocolLine, protocolText } from '../words/index.ts'
 import { ChainTable } from './chain-table.tsx'
@@ -91,7 +91,9 @@ export function Page() {
                 <KernelFigure evaluation={evaluation} caption={caption} height={148} />
               </div>
             </div>
-            <Readout evaluation={evaluation} workspace={shown.of} />
+            <div className={shown.stale ? 'stale' : undefined} aria-busy={shown.working}>
+              <Readout evaluation={evaluation} workspace={shown.of} />
+            </div>
           </>
         ) : (
           <p className="remark">
@@ -132,7 +134,7 @@ function useKeys(openFile: () => void, saveWorkspace: () => void): void {
   useEffect(() => {
     const onKey = (event: KeyboardEvent) => {
       const inField = event.target instanceof HTMLInputElement && event.target.type === 'text'
-      if (event.key === 'Escape') return closeEditor()
+      if (event.key === 'Escape') return viewStore.getState().open === null ? look({ help: false }) : closeEditor()
       if (event.key === '?' && !inField) return look({ help: true })
       if (!(event.ctrlKey || event.metaKey)) return
       const key = event.key.toLowerCase()

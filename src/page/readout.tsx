@@ -79,7 +79,7 @@ export function Readout({ evaluation, workspace }: ReadoutProps) {
               key={row.id}
               row={row}
               limits={workspace.limits}
-              question={rows[place - 1]?.group === row.group ? null : GROUP_WORDS[row.group]}
+              begins={rows[place - 1]?.group !== row.group}
               recorded={workspace.source.kind === 'recorded'}
             />
           ))}
@@ -126,15 +126,16 @@ function Cell({ value, unit }: { value: string; unit: string }) {
   )
 }
 
-function Row(props: { row: FidelityRow; limits: Limits; question: string | null; recorded: boolean }) {
-  const { row, limits, question, recorded } = props
+function Row(props: { row: FidelityRow; limits: Limits; begins: boolean; recorded: boolean }) {
+  const { row, limits, begins, recorded } = props
   const limit = limits[row.id]
   const { name, where } = rowWords(row)
   const verdict = verdictOf(row, limit)
   return (
     <tr className={row.group === 'score' ? 'main' : undefined}>
       <th scope="row" className="question">
-        {question}
+        {/* printed once for its rows, read out with each of them */}
+        <span className={begins ? undefined : 'visually-hidden'}>{GROUP_WORDS[row.group]}</span>
       </th>
       <th scope="row">
         {name} <Where row={row} where={where} recorded={recorded} />

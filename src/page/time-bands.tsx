@@ -1,6 +1,7 @@
 /** The score window and the baseline in the time figure, dragged and resized by pointer and keyboard. */
 import type { Score } from '../erp/score.ts'
 import { Band, type BandValue, type Frame, Handle, type Scale, snapToGrid } from '../plot/index.ts'
+import { statedWindow } from '../state/stated-window.ts'
 import { endGesture, say } from '../state/store.ts'
 import type { Workspace } from '../state/workspace.ts'
 import { useWorkspace } from './hooks.ts'
@@ -49,8 +50,8 @@ export function TimeBands({ frame, x, axis, windows, onHold }: TimeBandsProps) {
     },
   }
   const common = { frame, scale: x, ground: false, handleAt: HANDLE_AT, valueText: msText, ...limits, ...gesture }
-  const sayScore = ({ from, to }: BandValue) =>
-    say((w) => ({ ...w, score: { ...w.score, fromMs: from, toMs: to } }), 'score-window')
+  const sayScore = (band: BandValue) =>
+    say((w) => ({ ...w, score: { ...w.score, ...statedWindow(band, axis.stepMs) } }), 'score-window')
   return (
     <>
       {baseline === 'none' ? null : (
@@ -59,7 +60,7 @@ export function TimeBands({ frame, x, axis, windows, onHold }: TimeBandsProps) {
           look="light"
           label="baseline"
           value={{ from: baseline.fromMs, to: baseline.toMs }}
-          onChange={({ from, to }) => say((w) => ({ ...w, baseline: { fromMs: from, toMs: to } }), 'baseline')}
+          onChange={(band) => say((w) => ({ ...w, baseline: statedWindow(band, axis.stepMs) }), 'baseline')}
         />
       )}
       {score.kind === 'moment' ? (
