@@ -2,6 +2,7 @@
 import { type Baseline, correctBaseline } from '../erp/baseline.ts'
 import type { Component } from '../erp/component.ts'
 import { checkBuiltWaveform, differenceComponents, epochTimesMs, waveformAt } from '../erp/waveform.ts'
+import { neighboursAfter, neighboursBefore } from '../evidence/neighbours.ts'
 import { filterBuiltWaveform, filterRecordedWaveform } from '../evidence/filtered-waveform.ts'
 import { waveformOf } from '../files/index.ts'
 import type { Chain } from '../filter/chain.ts'
@@ -84,11 +85,14 @@ export const rawCurves = memoised(
   ): RawCurves => {
     if (source.kind === 'built') {
       const components = componentsOf(source, name, difference)
-      return {
-        before: waveformAt(components, timesMs),
-        after: filterBuiltWaveform(chain, components, timesMs, extent),
-        components,
+      const before = waveformAt(components, timesMs)
+      const after = filterBuiltWaveform(chain, components, timesMs, extent)
+      const { events } = source
+      if (events !== 'alone') {
+        add(before, neighboursBefore(components, events, timesMs, chain.samplingRateHz))
+        add(after, neighboursAfter(chain, components, events, timesMs, extent))
       }
+      return { before, after, components }
     }
     if (!data) throw new RangeError(`the data of “${source.fileName}” are not at hand: open the file again`)
     const before = recordedValues(data, name, channel, difference)
@@ -96,6 +100,10 @@ export const rawCurves = memoised(
   },
   24,
 )
+
+function add(sum: Float64Array, values: Float64Array): void {
+  for (let i = 0; i < sum.length; i++) sum[i] += values[i]
+}
 
 export const correctedCurves = memoised(
   (raw: RawCurves, name: string, timesMs: Float64Array, baseline: Baseline): Curves => {

@@ -33,13 +33,19 @@ const frequencyAxis = memoised((chain: Chain): Float64Array => {
   const places: number[] = []
   for (const { spec } of chain.stages) {
     if ((spec.design === 'butterworth' || spec.design === 'windowed-sinc') && spec.pass !== 'low')
-      lowest = Math.min(lowest, spec.cutoffsHz[0] / 100)
+      lowest = Math.min(lowest, roundBelow(spec.cutoffsHz[0] / 100))
     places.push(...narrowPlacesHz(spec, highest))
   }
   for (let i = 0; i < FREQUENCY_POINTS; i++) places.push(lowest * (highest / lowest) ** (i / (FREQUENCY_POINTS - 1)))
   places[places.length - 1] = highest
   return Float64Array.from(new Set(places.filter((hz) => hz >= lowest && hz <= highest))).sort()
 })
+
+/** The next 1, 2 or 5 times a power of ten at or below: the axis stays put while a cutoff is dragged a little. */
+function roundBelow(hz: number): number {
+  const decade = 10 ** Math.floor(Math.log10(hz) + 1e-9)
+  return ([5, 2].find((step) => step * decade <= hz * (1 + 1e-9)) ?? 1) * decade
+}
 
 function narrowPlacesHz(spec: StageSpec, highestHz: number): number[] {
   const around = (centre: number, width: number) =>

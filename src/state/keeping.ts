@@ -1,5 +1,5 @@
 /** Keeping the workspace: as a file, as a link, and by itself in the browser's own storage. */
-import { strFromU8, strToU8, unzlibSync, zlibSync } from 'fflate'
+import { strFromU8, strToU8, Unzlib, zlibSync } from 'fflate'
 import { recall, remember } from './browser-storage.ts'
 import { say, workspaceStore } from './store.ts'
 import { readWorkspace, type Workspace } from './workspace.ts'
@@ -9,8 +9,9 @@ const LINK_PREFIX = '#w='
 const AUTOSAVE_MS = 500
 /** No workspace is that large; a longer fragment is hostile or broken. */
 const MAX_LINK_BYTES = 2_000_000
-/** So long a fragment could be decompressed for seconds. */
 const MAX_FRAGMENT_LENGTH = 200_000
+/** Bytes that are unpacked at a time; they become at most some thousand times as many. */
+const UNPACKED_AT_A_TIME = 1024
 
 type Result = ReturnType<typeof readWorkspace>
 
@@ -41,13 +42,26 @@ export function workspaceFromFragment(fragment: string): Result | null {
     if (fragment.length > MAX_FRAGMENT_LENGTH) throw new RangeError('the fragment is too long')
     const base64 = fragment.slice(LINK_PREFIX.length).replaceAll('-', '+').replaceAll('_', '/')
     const bytes = Uint8Array.from(atob(base64), (letter) => letter.charCodeAt(0))
-    // Given its buffer, the decompressor stops at its end instead of growing without bound.
-    const unpacked = unzlibSync(bytes, { out: new Uint8Array(MAX_LINK_BYTES) })
-    if (unpacked.length === MAX_LINK_BYTES) throw new RangeError('the workspace is too large')
-    return readWorkspace(JSON.parse(strFromU8(unpacked)))
+    return readWorkspace(JSON.parse(strFromU8(unpacked(bytes))))
   } catch {
     return { ok: false, reason: 'the link is damaged or was cut off: ask for it again, or for the workspace file' }
   }
+}
+
+/** Piece by piece, so that a small fragment that would unpack to gigabytes is given up early. @throws for what is damaged or too large. */
+function unpacked(bytes: Uint8Array): Uint8Array {
+  const whole = new Uint8Array(MAX_LINK_BYTES)
+  let length = 0
+  let ended = false
+  const stream = new Unzlib((piece, last) => {
+    whole.set(piece, length)
+    length += piece.length
+    ended = last
+  })
+  for (let from = 0; from < bytes.length; from += UNPACKED_AT_A_TIME)
+    stream.push(bytes.subarray(from, from + UNPACKED_AT_A_TIME), from + UNPACKED_AT_A_TIME >= bytes.length)
+  if (!ended) throw new RangeError('the fragment ends too early')
+  return whole.subarray(0, length)
 }
 
 /**

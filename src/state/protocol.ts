@@ -1,5 +1,8 @@
+import { unnamedCondition } from '../files/index.ts'
 import { componentsWords, type Protocol } from '../words/index.ts'
 import { DIFFERENCE, type Workspace } from './workspace.ts'
+
+export { unnamedCondition }
 
 /** What the protocol line states of a workspace. */
 export function protocolOf(workspace: Workspace, samplingRateHz: number): Protocol {
@@ -20,7 +23,7 @@ function waveformWords({ source, shown }: Workspace): string {
   const { chosen, difference, channel } = shown
   const minus = chosen === DIFFERENCE && difference ? `${difference.first} minus ${difference.second}` : null
   if (source.kind === 'recorded') {
-    const what = [channel, minus ?? (chosen === 'condition' ? null : chosen)].filter(Boolean).join(', ')
+    const what = [channel, minus ?? (chosen === unnamedCondition ? null : chosen)].filter(Boolean).join(', ')
     return `${what || 'the first channel'} of ${source.fileName}`
   }
   if (minus) return `the difference ${minus}`

@@ -16,10 +16,12 @@ interface WorkspaceState {
 
 let open: { group: string; at: number } | null = null
 let asked: string | undefined
+/** A pointer or a key is held down: however long it rests, what follows belongs to the same step. */
+let held = false
 
 function continuesGesture(): boolean {
   const now = Date.now()
-  const continues = asked !== undefined && open?.group === asked && now - open.at < GROUP_PAUSE_MS
+  const continues = asked !== undefined && open?.group === asked && (held || now - open.at < GROUP_PAUSE_MS)
   open = asked === undefined ? null : { group: asked, at: now }
   return continues
 }
@@ -44,9 +46,16 @@ export function say(change: (workspace: Workspace) => Workspace, group?: string)
   workspaceStore.setState({ workspace: next })
 }
 
+/** A drag or a held key begins: all its changes are one step of undo. */
+export function beginGesture(): void {
+  open = null
+  held = true
+}
+
 /** Ends a drag or a burst of typing: the next change is a step of its own. */
 export function endGesture(): void {
   open = null
+  held = false
 }
 
 export function undo(): void {
@@ -57,4 +66,19 @@ export function undo(): void {
 export function redo(): void {
   endGesture()
   workspaceStore.temporal.getState().redo()
+}
+
+/** A drag that was broken off leaves neither a change nor a step of undo. */
+export function cancelGesture(): void {
+  const changed = open !== null
+  endGesture()
+  if (!changed) return
+  const { pastStates } = workspaceStore.temporal.getState()
+  const before = pastStates[pastStates.length - 1]
+  if (!before) return
+  const { temporal } = workspaceStore
+  temporal.getState().pause()
+  workspaceStore.setState(before)
+  temporal.getState().resume()
+  temporal.setState({ pastStates: pastStates.slice(0, -1) })
 }

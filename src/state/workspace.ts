@@ -21,6 +21,25 @@ const windowSchema = v.union([
   v.object({ name: v.literal('kaiser'), attenuationDb: finite }),
 ])
 
+/** What is traced back: a row of the readout, or the value at a moment of the time figure. */
+const questionSchema = v.variant('kind', [
+  v.object({
+    kind: v.literal('row'),
+    row: v.picklist([
+      'score',
+      'mean-amplitude',
+      'peak-amplitude',
+      'signed-area',
+      'peak-latency',
+      'area-latency',
+      'onset-latency',
+      'false-deflection',
+    ]),
+    of: v.picklist(['after', 'change']),
+  }),
+  v.object({ kind: v.literal('moment'), atMs: finite, of: v.picklist(['after', 'change']) }),
+])
+
 /** Field types only: whether a filter can be designed is the filter room's own judgement, shown at the token. */
 export const stageSchema = v.variant('design', [
   v.object({
@@ -139,6 +158,8 @@ const sourceSchema = v.variant('kind', [
     kind: v.literal('built'),
     samplingRateHz: finite,
     epoch: windowLimits,
+    /** The events stand alone, or come every a to b ms: then the neighbours' waveforms overlap with this one's. */
+    events: v.optional(v.union([v.literal('alone'), windowLimits]), 'alone'),
     conditions: v.pipe(
       v.array(v.object({ name: text, components: v.pipe(v.array(componentSchema), v.maxLength(200)) })),
       v.minLength(1),
@@ -155,6 +176,14 @@ const sourceSchema = v.variant('kind', [
 ])
 
 const limitSchema = v.object({ value: positive, unit: v.picklist(['µV', 'ms', 'µV·s', '%']) })
+
+const START_TRACE = {
+  question: { kind: 'row' as const, row: 'score' as const, of: 'after' as const },
+  stretches: null,
+  threshold: 0.1,
+}
+
+export const MAX_PINS = 3
 
 export const workspaceSchema = v.object({
   version: v.literal(1),
@@ -195,6 +224,29 @@ export const workspaceSchema = v.object({
   noise: noiseSchema,
   /** Onset of a recorded waveform as the user states it; a built one's follows from its components. */
   onsetMs: v.nullable(finite),
+  /** The question of the trace-back desk, its stretches (null: those that suggest themselves), and the unseen share that is too much. */
+  trace: v.optional(
+    v.object({
+      question: questionSchema,
+      stretches: v.nullable(v.pipe(v.array(v.object({ sample: finite, atMs: finite })), v.maxLength(200))),
+      threshold: v.pipe(finite, v.minValue(0), v.maxValue(1)),
+    }),
+    START_TRACE,
+  ),
+  /** Chains kept for comparison. */
+  pins: v.optional(
+    v.pipe(
+      v.array(
+        v.object({
+          name: text,
+          chain: v.pipe(v.array(stageSchema), v.maxLength(60)),
+          extent: v.picklist(['continuous', 'epochs']),
+        }),
+      ),
+      v.maxLength(3),
+    ),
+    [],
+  ),
 })
 
 export { SCENARIOS }
@@ -203,6 +255,8 @@ export type Workspace = v.InferOutput<typeof workspaceSchema>
 export type Source = Workspace['source']
 export type BuiltSource = Extract<Source, { kind: 'built' }>
 export type RecordedSource = Extract<Source, { kind: 'recorded' }>
+export type Question = Workspace['trace']['question']
+export type Pin = Workspace['pins'][number]
 export type Reading = v.InferOutput<typeof readingSchema>
 
 /** The name under which the difference wave is chosen. */
@@ -215,7 +269,7 @@ export function workspaceOf(scenario: Scenario): Workspace {
     version: 1 as const,
     title: scenario.title,
     remark: scenario.sentence,
-    source: { kind: 'built', samplingRateHz, epoch, conditions },
+    source: { kind: 'built', samplingRateHz, epoch, events: 'alone', conditions },
     shown: {
       conditions: [scenario.condition],
       difference: null,
@@ -231,6 +285,8 @@ export function workspaceOf(scenario: Scenario): Workspace {
     limits: scenario.limits,
     noise: modelNoise(scenario.noise),
     onsetMs: null,
+    trace: START_TRACE,
+    pins: [],
   } satisfies Workspace)
 }
 
