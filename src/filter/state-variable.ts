@@ -90,7 +90,8 @@ export function runStateVariable(
     let section = 0
     const sections = program.length / SECTION_SIZE
     for (; section + 1 < sections; section += 2) {
-      runPair(program, states, section, values, start, end, step, section === 0 ? offset : 0)
+      const run = isHighPair(program, section) ? runHighPair : runPair
+      run(program, states, section, values, start, end, step, section === 0 ? offset : 0)
     }
     if (section < sections) runSingle(program, states, section, values, start, end, step, section === 0 ? offset : 0)
     for (let i = 0; i < states.length; i++) if (Math.abs(states[i]) < NEGLIGIBLE) states[i] = 0
@@ -139,6 +140,50 @@ function runPair(
   states[2 * section + 1] = b
   states[2 * section + 2] = e_ === 0 ? 0 : a_
   states[2 * section + 3] = b_
+}
+
+/** Both sections listen to their first integrator's input alone, as those of a Butterworth high-pass do. */
+function isHighPair(program: Float64Array, section: number): boolean {
+  const at = section * SECTION_SIZE
+  return program[at + 4] === 0 && program[at + 5] === 0 && program[at + 10] === 0 && program[at + 11] === 0
+}
+
+/** `runPair` where S = Q = 0 twice: all gains in one, by states in units of their sections' inputs. */
+function runHighPair(
+  program: Float64Array,
+  states: Float64Array,
+  section: number,
+  values: Float64Array,
+  start: number,
+  end: number,
+  step: number,
+  offset: number,
+): void {
+  const at = section * SECTION_SIZE
+  const e = program[at + 1]
+  const f = program[at + 2]
+  const e_ = program[at + 7]
+  const f_ = program[at + 8]
+  const unit = program[at]
+  const unit_ = unit * program[at + 3] * program[at + 6]
+  const gain = unit_ * program[at + 9]
+  let a = states[2 * section] / unit
+  let b = states[2 * section + 1] / unit
+  let a_ = states[2 * section + 2] / unit_
+  let b_ = states[2 * section + 3] / unit_
+  for (let i = start; i !== end; i += step) {
+    const move = values[i] - offset - b
+    b = b + e * a + f * move
+    a += move
+    const move_ = move - b_
+    values[i] = gain * move_
+    b_ = b_ + e_ * a_ + f_ * move_
+    a_ += move_
+  }
+  states[2 * section] = e === 0 ? 0 : a * unit
+  states[2 * section + 1] = b * unit
+  states[2 * section + 2] = e_ === 0 ? 0 : a_ * unit_
+  states[2 * section + 3] = b_ * unit_
 }
 
 function runSingle(
