@@ -37,4 +37,14 @@ export {
   type NoiseSpec,
   type NoiseTable,
 } from './noise.ts'
+export { noiseAutocovariance, noiseSpectrum, type NoiseSpectrum } from './noise-autocovariance.ts'
+export { seededRandom, type SeededRandom } from './seeded-random.ts'
+export { drawNoise, noiseSource, type NoiseSource } from './simulate-noise.ts'
+export {
+  EXTRAPOLATED_MARK,
+  noiseFromTrials,
+  summariseTrials,
+  type EstimatedNoise,
+  type TrialsSummary,
+} from './noise-from-trials.ts'
 export { SCENARIOS, type Scenario } from './scenarios.ts'
