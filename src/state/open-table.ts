@@ -59,7 +59,7 @@ export function workspaceOnTable(workspace: Workspace, source: RecordedSource, t
 function windowAround(timesMs: Float64Array, at: number, halfMs: number): TimeWindow {
   const last = timesMs.length - 1
   const whole = {
-    fromMs: Math.ceil(Math.max(timesMs[at] - halfMs, timesMs[0])),
+    fromMs: Math.ceil(Math.max(timesMs[at] - halfMs, timesMs[0])) + 0, // no −0
     toMs: Math.floor(Math.min(timesMs[at] + halfMs, timesMs[last])),
   }
   if (samplesIn(timesMs, whole) > 1) return whole

@@ -25,7 +25,7 @@ const agreement: [
   Same<Workspace['chain'][number], StageSpec>,
   Same<Workspace['score'], Score>,
   Same<BuiltSource['conditions'][number]['components'][number], Component>,
-  Same<Omit<BuiltSource, 'kind'>, BuiltWaveform>,
+  Same<Omit<BuiltSource, 'kind' | 'events'>, BuiltWaveform>,
   Same<Workspace['limits'], Limits>,
   Same<keyof Workspace['limits'], FigureId>,
   Same<Workspace['noise'], NoiseModel>,
