@@ -1,5 +1,5 @@
 import { type ChildProcessWithoutNullStreams, spawn } from 'node:child_process'
-import { cpus } from 'node:os'
+import { cpus, loadavg } from 'node:os'
 import { dirname, join } from 'node:path'
 import { createInterface } from 'node:readline'
 import { fileURLToPath } from 'node:url'
@@ -177,7 +177,10 @@ async function main() {
   const began = ms()
   const versions = `node ${process.versions.node}${scipy ? `, SciPy ${process.env.BENCH_SCIPY}` : ''}`
   console.log(`${cpus()[0]?.model.trim() ?? 'unknown processor'} × ${cpus().length}, ${versions}`)
-  console.log('medians in ms; ratio: how many times as fast as SciPy\n')
+  console.log('medians in ms; ratio: how many times as fast as SciPy')
+  const load = loadavg()[0]!
+  if (load > 0.5) console.log(`other work is running here (load ${load.toFixed(1)}): the figures are disturbed`)
+  console.log()
   row('id', 'work', 'ours', 'SciPy', 'ratio', 'goal', null)
 
   // The sliders come first, so that their first calls meet a fresh process.
