@@ -1,7 +1,7 @@
 import { Handle } from '../plot/index.ts'
 import type { Scale } from '../plot/scale.ts'
 import { replaceStage } from '../state/chain-actions.ts'
-import { endGesture, say } from '../state/store.ts'
+import { beginGesture, cancelGesture, endGesture, say } from '../state/store.ts'
 import { type CutoffMark, withCutoff } from './cutoff-marks.ts'
 import type { PlacedCutoff } from './frequency-curves.ts'
 import { hzText } from './frequency-words.ts'
@@ -15,9 +15,19 @@ interface CutoffHandlesProps {
 
 /** One circle per cutoff of the stages applied here; dragging it says the cutoff. */
 export function CutoffHandles({ placed, x, onDrag }: CutoffHandlesProps) {
-  const end = () => {
-    endGesture()
-    onDrag(false)
+  const gesture = {
+    onChangeStart: () => {
+      beginGesture()
+      onDrag(true)
+    },
+    onChangeEnd: () => {
+      endGesture()
+      onDrag(false)
+    },
+    onChangeCancel: () => {
+      cancelGesture()
+      onDrag(false)
+    },
   }
   return placed.map(({ cutoff, y }) => (
     <Handle
@@ -30,10 +40,8 @@ export function CutoffHandles({ placed, x, onDrag }: CutoffHandlesProps) {
       stepBy={(hz, steps) => Number((hz * 1.01 ** steps).toPrecision(3))}
       label={cutoff.label}
       valueText={hzText}
-      onChangeStart={() => onDrag(true)}
+      {...gesture}
       onChange={(hz) => setCutoff(cutoff, hz)}
-      onChangeEnd={end}
-      onChangeCancel={end}
     />
   ))
 }

@@ -1,5 +1,6 @@
 /** The few form parts that every token editor is made of. All of them report each change at once. */
 import { type ReactNode, useEffect, useId, useRef, useState } from 'react'
+import { beginGesture } from '../state/store.ts'
 import { exact, parseNumber } from '../words/index.ts'
 
 interface NumberFieldProps {
@@ -130,6 +131,7 @@ export function SliderField({ label, unit, value, min, max, scale, ticks, step =
           const next = scale === 'log' ? value * 1.02 ** (direction * coarse) : value + direction * step * coarse
           onChange(Math.min(max, Math.max(min, roundTo(next, scale === 'log' ? 3 : 10))))
         }}
+        onPointerDown={beginGesture}
         onPointerUp={onEnd}
         onKeyUp={onEnd}
       />

@@ -2,7 +2,7 @@
 import type { Score } from '../erp/score.ts'
 import { Band, type BandValue, type Frame, Handle, type Scale, snapToGrid } from '../plot/index.ts'
 import { statedWindow } from '../state/stated-window.ts'
-import { endGesture, say } from '../state/store.ts'
+import { beginGesture, cancelGesture, endGesture, say } from '../state/store.ts'
 import type { Workspace } from '../state/workspace.ts'
 import { useWorkspace } from './hooks.ts'
 import { msText, type TimeAxis } from './time-axis.ts'
@@ -43,10 +43,17 @@ export function TimeBands({ frame, x, axis, windows, onHold }: TimeBandsProps) {
   const { score, baseline } = windows
   const limits = { min: axis.firstMs, max: axis.lastMs, step: axis.stepMs, origin: axis.firstMs }
   const gesture = {
-    onChangeStart: () => onHold(true),
+    onChangeStart: () => {
+      onHold(true)
+      beginGesture()
+    },
     onChangeEnd: () => {
       onHold(false)
       endGesture()
+    },
+    onChangeCancel: () => {
+      onHold(false)
+      cancelGesture()
     },
   }
   const common = { frame, scale: x, ground: false, handleAt: HANDLE_AT, valueText: msText, ...limits, ...gesture }

@@ -1,6 +1,7 @@
 /** Title line of the time figure: what is shown, and whether what was taken out is drawn. */
 import type { RefObject } from 'react'
 import type { Evaluation } from '../state/evaluation.ts'
+import { unnamedCondition } from '../state/protocol.ts'
 import { look } from '../state/view.ts'
 import type { Workspace } from '../state/workspace.ts'
 import { FigureHead, Switch } from './figure-head.tsx'
@@ -21,7 +22,9 @@ export function shownWords(evaluation: Evaluation, channel: string | null): stri
   const others = evaluation.curves.filter((_, i) => i !== evaluation.chosen).map((curves) => curves.name)
   const chosen = evaluation.curves[evaluation.chosen].name
   const beside = others.length === 0 ? [] : [others.length === 1 ? `with ${others[0]}` : `with ${others.length} more`]
-  return [chosen, ...beside, ...(channel === null ? [] : [channel])].join(', ')
+  // A table that names no condition has nothing to say of it beside the channel.
+  const named = chosen === unnamedCondition && channel !== null ? [] : [chosen]
+  return [...named, ...beside, ...(channel === null ? [] : [channel])].join(', ')
 }
 
 export function TimeHead({ evaluation, workspace, takenOut, onDelayed, svg, caption }: TimeHeadProps) {

@@ -58,12 +58,15 @@ export const componentsOf = memoised(
   12,
 )
 
-function recordedValues(
-  data: RecordedData,
+/** @throws RangeError where the file is not at hand, or has no such condition or channel. */
+export function recordedValues(
+  source: Extract<Source, { kind: 'recorded' }>,
+  data: RecordedData | null,
   name: string,
   channel: string | null,
   difference: Shown['difference'],
 ): Float64Array {
+  if (!data) throw new RangeError(`the data of ${source.fileName} are not at hand: open the file again`)
   const where = channel ?? data.channels[0]
   if (name !== DIFFERENCE) return waveformOf(data, name, where).values
   if (!difference) throw new RangeError('no difference wave is defined')
@@ -95,7 +98,7 @@ export const rawCurves = memoised(
       return { before, after, components }
     }
     if (!data) throw new RangeError(`the data of “${source.fileName}” are not at hand: open the file again`)
-    const before = recordedValues(data, name, channel, difference)
+    const before = recordedValues(source, data, name, channel, difference)
     return { before, after: filterRecordedWaveform(chain, before), components: null }
   },
   24,

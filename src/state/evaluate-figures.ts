@@ -152,6 +152,18 @@ export function frequencyFigure(
   }
 }
 
+/** The gain of a pinned chain on the present chain's frequencies. */
+export const gainOn = memoised((chain: Chain, hz: Float64Array) => gainOf(stagesResponse(appliedStages(chain), hz)))
+
+/** Impulse and step response of a pinned chain on the present kernel figure's lags. */
+export const kernelOf = memoised((chain: Chain, from: number, samples: number) => {
+  const stages = appliedStages(chain)
+  return {
+    impulse: kernelOn(stages, from, from + samples).map((value) => value * chain.samplingRateHz),
+    step: stepResponseOn(stages, from, from + samples),
+  }
+})
+
 const noiseOn = memoised((noise: Workspace['noise'], hz: Float64Array) => noiseDensity(noise, hz).map(Math.sqrt))
 
 /** How much more than the reach is drawn, and how far at most (in epochs): beyond that a kernel is a line at zero. */

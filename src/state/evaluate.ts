@@ -2,18 +2,16 @@
  * evaluate(workspace, data): every number and curve on the page, as a pure function of what the user said. It is computed in parts, each
  * remembered by what it depends on, so that dragging the score window does not redesign the chain.
  */
-import { type Baseline, baselineWeights } from '../erp/baseline.ts'
+import { baselineWeights } from '../erp/baseline.ts'
 import { checkNoise } from '../erp/noise.ts'
-import { type NoScore, type Score, scoreLinearity, scoreOf, scoreUnit, scoreWeights } from '../erp/score.ts'
+import { type NoScore, scoreOf } from '../erp/score.ts'
 import { samplesInWindow, type TimeWindow } from '../erp/time-axis.ts'
-import { type FidelityRow, fidelityRows, largestAbsolute } from '../evidence/fidelity.ts'
-import { onsetOfBuilt } from '../evidence/onset-of-built.ts'
-import { type NoiseRow, noiseRow, varianceOfDifference } from '../evidence/precision.ts'
+import { largestAbsolute } from '../evidence/fidelity.ts'
 import { unseenShare, unseenShareBySample } from '../evidence/unseen-share.ts'
 import { appliedOfflineStages } from '../filter/apply-chain.ts'
-import { appliedStages, type Chain, designChain } from '../filter/chain.ts'
-import { designStage, type Stage, type StageSpec } from '../filter/stage.ts'
+import { appliedStages, type Chain } from '../filter/chain.ts'
 import { inWords, partOfField, remarkWords } from '../words/index.ts'
+import { designedChain } from './evaluate-chain.ts'
 import { correctedCurves, drawnNames, type RawCurves, rawCurves, type TimeAxis, timeAxis } from './evaluate-curves.ts'
 import {
   amplifierReach,
@@ -23,12 +21,13 @@ import {
   offlineReach,
   windowFigure,
 } from './evaluate-figures.ts'
-import { scoreVariances } from './evaluate-precision.ts'
+import { pinnedResult } from './evaluate-pins.ts'
+import { precisionOf, rowsOf, weightsOf } from './evaluate-score.ts'
 import { chainPoints, chainTable } from './evaluate-table.ts'
 import type { Curves, Evaluation, Outcome, Problem } from './evaluation.ts'
 import { memoised } from './memo.ts'
 import type { RecordedData } from './recorded-data.ts'
-import { DIFFERENCE, type Workspace } from './workspace.ts'
+import type { Workspace } from './workspace.ts'
 
 const MAX_TRIALS = 1_000_000
 
@@ -51,7 +50,7 @@ export function evaluate(workspace: Workspace, data: RecordedData | null): Outco
     (error) => (source.kind === 'recorded' ? 'source' : error.message.includes('samplingRateHz') ? 'rate' : 'waveform'),
     () => timeAxis(source, data),
   )
-  const chain = axis && attempt(stageAt, () => designed(workspace.chain, axis.samplingRateHz))
+  const chain = axis && attempt(stageAt, () => designedChain(workspace.chain, axis.samplingRateHz))
   attempt('trials', () => checkTrials(trials))
   attempt('trials', () => checkNoise(workspace.noise))
   if (axis) {
@@ -67,17 +66,19 @@ export function evaluate(workspace: Workspace, data: RecordedData | null): Outco
   const extent = source.kind === 'recorded' ? 'epochs' : workspace.extent
   const names = drawnNames(shown)
   const raw = attempt(
-    (error) => (/needs \d+ samples/.test(error.message) ? 'extent' : 'waveform'),
+    (error) =>
+      /needs \d+ samples/.test(error.message) ? 'extent' : /interval/.test(error.message) ? 'events' : 'waveform',
     () => names.map((name) => rawCurves(source, data, shown.channel, shown.difference, name, timesMs, chain, extent)),
   )
   if (!raw) return { ok: false, problems }
   // Nothing more to refuse is known; numbers too large for any sum must still not take the page down.
-  const evaluation = attempt('waveform', () => evaluationOf(workspace, axis, chain, extent, raw, names))
+  const evaluation = attempt('waveform', () => evaluationOf(workspace, data, axis, chain, extent, raw, names))
   return evaluation ? { ok: true, evaluation } : { ok: false, problems }
 }
 
 function evaluationOf(
   workspace: Workspace,
+  data: RecordedData | null,
   axis: TimeAxis,
   chain: Chain,
   extent: 'continuous' | 'epochs',
@@ -93,6 +94,8 @@ function evaluationOf(
   const rows = rowsOf(before, after, raw[chosen], timesMs, score, measure, workspace.onsetMs)
   const weights = weightsOf(score, baseline, timesMs, before, after)
   const unseen = weights && (extent === 'continuous' ? 0 : unseenOf(chain, weights.after))
+  const frequency = frequencyFigure(workspace, chain, raw[chosen], extent, timesMs, chainPoints(chain))
+  const kernel = kernelFigure(chain, timesMs)
   return {
     samplingRateHz: axis.samplingRateHz,
     timesMs,
@@ -102,14 +105,15 @@ function evaluationOf(
     delayIncluded: appliedStages(chain).some(delays),
     unseenBySample: extent === 'epochs' ? unseenAtEachSample(chain, timesMs.length) : null,
     window: weights && windowFigure(chain, weights.after, extent, score, after, timesMs),
-    frequency: frequencyFigure(workspace, chain, raw[chosen], extent, timesMs, chainPoints(chain)),
-    kernel: kernelFigure(chain, timesMs),
+    frequency,
+    kernel,
     table: chainTable(workspace.chain, chain),
     reach: offlineReach(chain),
     amplifierReach: amplifierReach(chain),
     unseenShare: unseen,
     rows,
     precision: weights && precisionOf(workspace, chain, weights, extent, rows[0], before),
+    pins: workspace.pins.map((pin) => pinnedResult(pin, workspace, data, axis, frequency.hz, kernel)),
     remark: remarkWords({
       score,
       unit: rows[0].unit,
@@ -136,77 +140,8 @@ function checkTrials(trials: number): void {
   throw new RangeError(`the number of trials must be a whole number from 1 to ${MAX_TRIALS}, was ${trials}`)
 }
 
-/** Stages by the specification that they were designed from: dragging one cutoff leaves the others as they are. */
-const stages = new WeakMap<StageSpec, Stage>()
-
-function designedStage(spec: StageSpec, samplingRateHz: number): Stage {
-  const kept = stages.get(spec)
-  if (kept?.samplingRateHz === samplingRateHz) return kept
-  const stage = designStage(spec, samplingRateHz)
-  stages.set(spec, stage)
-  return stage
-}
-
-const designed = memoised(
-  (specs: readonly StageSpec[], samplingRateHz: number): Chain => designChain(specs, samplingRateHz, designedStage),
-)
-
 function stageAt(error: RangeError & { stageIndex?: number; field?: string }): string {
   return `stage:${error.stageIndex ?? 0}:${partOfField(error.field)}`
-}
-
-const rowsOf = memoised(
-  (
-    before: Float64Array,
-    after: Float64Array,
-    raw: RawCurves,
-    timesMs: Float64Array,
-    score: Score,
-    measure: Workspace['measure'],
-    statedOnsetMs: number | null,
-  ): FidelityRow[] => {
-    const onsetMs = raw.components ? onsetOfBuilt(raw.components, timesMs) : statedOnsetMs
-    return fidelityRows({ timesMs, before, after, score, measure, onsetMs })
-  },
-)
-
-interface Weights {
-  /** On the unfiltered and on the filtered waveform: the same for linear scores, each at its own peak or side for the others. */
-  before: Float64Array
-  after: Float64Array
-}
-
-/** The same array for the same score, whatever the chain: what hangs on it alone is kept by its identity. */
-const linearWeights = memoised((score: Score, baseline: Baseline, timesMs: Float64Array) =>
-  scoreWeights(score, baseline, timesMs),
-)
-
-const heldWeights = memoised((score: Score, baseline: Baseline, timesMs: Float64Array, y: Float64Array) =>
-  scoreWeights(score, baseline, timesMs, y),
-)
-
-/** Null for a latency, which is no weighted sum, and for a peak that is not there. */
-function weightsOf(
-  score: Score,
-  baseline: Baseline,
-  timesMs: Float64Array,
-  before: Float64Array,
-  after: Float64Array,
-): Weights | null {
-  switch (scoreLinearity(score.kind)) {
-    case 'linear': {
-      const weights = linearWeights(score, baseline, timesMs)
-      return { before: weights, after: weights }
-    }
-    case 'held fixed':
-      if ([before, after].some((y) => typeof scoreOf(y, timesMs, score) === 'string')) return null
-      return {
-        before: heldWeights(score, baseline, timesMs, before),
-        after: heldWeights(score, baseline, timesMs, after),
-      }
-    case 'none':
-      return null
-  }
 }
 
 const unseenOf = memoised((chain: Chain, weights: Float64Array) => unseenShare(chain, weights, 0, weights.length))
@@ -214,27 +149,3 @@ const unseenOf = memoised((chain: Chain, weights: Float64Array) => unseenShare(c
 const unseenAtEachSample = memoised((chain: Chain, samples: number) =>
   unseenShareBySample(appliedOfflineStages(chain), samples),
 )
-
-function precisionOf(
-  workspace: Workspace,
-  chain: Chain,
-  weights: Weights,
-  extent: 'continuous' | 'epochs',
-  scoreRow: FidelityRow,
-  before: Float64Array,
-): NoiseRow {
-  const { noise, trials, score } = workspace
-  let variances = scoreVariances(chain, weights.before, weights.after, extent, noise, trials)
-  if (workspace.shown.chosen === DIFFERENCE) {
-    // Two conditions of as many trials each, independent of one another.
-    const { before: b, after: a } = variances
-    variances = { before: varianceOfDifference(b, b), after: varianceOfDifference(a, a) }
-  }
-  const unit = scoreUnit(score.kind) === 'µV·s' ? 'µV·s' : 'µV'
-  const effect =
-    typeof scoreRow.before === 'number' && typeof scoreRow.after === 'number'
-      ? { before: scoreRow.before, after: scoreRow.after }
-      : null
-  const largest = largestAbsolute(before) * (unit === 'µV·s' ? (score.toMs - score.fromMs) / 1000 : 1)
-  return noiseRow(unit, trials, variances.before, variances.after, effect, largest)
-}

@@ -75,6 +75,28 @@ export interface ReachMs {
   afterMs: number
 }
 
+/** The same waveform and score through a pinned chain, for every figure and the readout. */
+export interface PinnedResult {
+  name: string
+  /** Chosen condition, minus its own baseline mean, µV. */
+  after: Float64Array
+  /** On `WindowFigure`'s samples; null where there is no window. */
+  window: Float64Array | null
+  /** On `FrequencyFigure`'s frequencies. */
+  gain: Float64Array
+  /** On `KernelFigure`'s lags. */
+  impulse: Float64Array
+  step: Float64Array
+  rows: FidelityRow[]
+  precision: NoiseRow | null
+}
+
+/** A pin that cannot be computed on this waveform, and why. */
+export interface FailedPin {
+  name: string
+  reason: string
+}
+
 export interface Evaluation {
   samplingRateHz: number
   /** Sample times of the epoch. */
@@ -101,6 +123,8 @@ export interface Evaluation {
   rows: FidelityRow[]
   /** Null for a score that is no weighted sum. */
   precision: NoiseRow | null
+  /** Chains kept for comparison, in the workspace's order. */
+  pins: (PinnedResult | FailedPin)[]
   /** What the chain did to the score, in a sentence or two. */
   remark: string
 }

@@ -5,6 +5,7 @@ import { say, workspaceStore } from './store.ts'
 import { readWorkspace, type Workspace } from './workspace.ts'
 
 const STORAGE_KEY = 'sidelobe.workspace'
+const LEFT_KEY = 'sidelobe.workspace.left'
 const LINK_PREFIX = '#w='
 const AUTOSAVE_MS = 500
 /** No workspace is that large; a longer fragment is hostile or broken. */
@@ -64,6 +65,27 @@ function unpacked(bytes: Uint8Array): Uint8Array {
   return whole.subarray(0, length)
 }
 
+/** A page that goes away has no time for the browser's database: what it has not written there yet is left here, at once. */
+function leaveBehind(workspace: Workspace): void {
+  try {
+    localStorage.setItem(LEFT_KEY, JSON.stringify(workspace))
+  } catch {
+    // Without storage nothing is kept.
+  }
+}
+
+/** What a page left behind, once; undefined where there is nothing. */
+function leftBehind(): unknown {
+  try {
+    const text = localStorage.getItem(LEFT_KEY)
+    if (text === null) return undefined
+    localStorage.removeItem(LEFT_KEY)
+    return JSON.parse(text)
+  } catch {
+    return undefined
+  }
+}
+
 /**
  * Takes up the workspace of the link, else the one that was kept, and from then on keeps every change.
  *
@@ -71,8 +93,8 @@ function unpacked(bytes: Uint8Array): Uint8Array {
  */
 export async function takeUpWork(fragment: string): Promise<string | null> {
   const linked = workspaceFromFragment(fragment)
-  const kept = await recall<unknown>(STORAGE_KEY)
-  const stored = kept === undefined ? null : readWorkspace(kept)
+  const found = leftBehind() ?? (await recall<unknown>(STORAGE_KEY))
+  const stored = found === undefined ? null : readWorkspace(found)
   let said: string | null = null
   if (stored?.ok) start(stored.workspace)
   if (linked?.ok) say(() => linked.workspace)
@@ -80,12 +102,22 @@ export async function takeUpWork(fragment: string): Promise<string | null> {
   else if (stored && !stored.ok) said = `What was kept from last time could not be read (${stored.reason}).`
 
   let timer: ReturnType<typeof setTimeout> | undefined
-  const write = () => void remember(STORAGE_KEY, workspaceStore.getState().workspace)
+  let kept: Workspace | null = stored?.ok || linked?.ok ? null : workspaceStore.getState().workspace
+  const write = () => {
+    timer = undefined
+    const { workspace } = workspaceStore.getState()
+    void remember(STORAGE_KEY, workspace).then(() => {
+      kept = workspace
+    })
+  }
+  if (stored?.ok || linked?.ok) write()
   workspaceStore.subscribe(() => {
-    clearTimeout(timer)
-    timer = setTimeout(write, AUTOSAVE_MS)
+    timer ??= setTimeout(write, AUTOSAVE_MS)
   })
-  globalThis.addEventListener?.('pagehide', write)
+  globalThis.addEventListener?.('pagehide', () => {
+    const { workspace } = workspaceStore.getState()
+    if (workspace !== kept) leaveBehind(workspace)
+  })
   return said
 }
 

@@ -11,6 +11,7 @@ export function protocolOf(workspace: Workspace, samplingRateHz: number): Protoc
     source: source.kind,
     waveform: waveformWords(workspace),
     samplingRateHz,
+    events: source.kind === 'built' ? source.events : null,
     chain: workspace.chain,
     extent: source.kind === 'recorded' ? 'epochs' : workspace.extent,
     baseline: workspace.baseline,

@@ -2,7 +2,7 @@ export { brief, exact, fixed, list, parseNumber, signed } from './number.ts'
 export { type RemarkFacts, remarkWords } from './remark.ts'
 export { changeWords, decimalsOf, rowWords, valueWords } from './row-words.ts'
 export { inWords, partOfField } from './problem.ts'
-export { componentsWords, type Protocol, protocolLine, protocolText, scoreWords, windowWords } from './protocol-line.ts'
+export { componentsWords, eventsWords, type Protocol, protocolLine, protocolText, scoreWords, windowWords } from './protocol-line.ts'
 export {
   meaningWords,
   PASS_WORD,
@@ -12,3 +12,25 @@ export {
   stageShortName,
   WINDOW_WORD,
 } from './stage-words.ts'
+export {
+  heldFixedWords,
+  momentRowWords,
+  momentWords,
+  notTracedWords,
+  shareWords,
+  spanWords,
+  stageSummary,
+  type TracedFigure,
+  tracedPhrase,
+  traceQuestion,
+  traceValueWords,
+  trustWords,
+  zeroWords,
+} from './trace-words.ts'
+export { type SaidNumber, type TraceSummary, type TraceSummaryFacts, traceSummary } from './trace-summary.ts'
+export { coefficientsCsv, coefficientsJson } from './exported-code/coefficients.ts'
+export { type ExportPlan, type ExportStage, exportPlan, type SelfCheck } from './exported-code/export-plan.ts'
+export { JULIA_FILE, juliaSource } from './exported-code/julia.ts'
+export { OCTAVE_FILE, octaveSource } from './exported-code/octave.ts'
+export { PYTHON_FILE, pythonSource } from './exported-code/python.ts'
+export { R_FILE, rSource } from './exported-code/r.ts'

@@ -11,6 +11,8 @@ export interface Protocol {
   /** A noun phrase with its article: "a late positivity", "PO7 of average.csv". */
   waveform: string
   samplingRateHz: number
+  /** How the events of a built waveform stand; null for a recorded one, whose events are in the data. */
+  events?: 'alone' | { fromMs: number; toMs: number } | null
   chain: readonly StageSpec[]
   extent: 'continuous' | 'epochs'
   baseline: Baseline
@@ -44,6 +46,12 @@ export function scoreWords(score: Score): string {
 export function windowWords(fromMs: number, toMs: number): string {
   const ms = (value: number) => (Number.isInteger(value) ? fixed(value, 0) : exact(Number(value.toFixed(3))))
   return fromMs === toMs ? `${ms(fromMs)} ms` : `${ms(fromMs)} to ${ms(toMs)} ms`
+}
+
+/** "alone", or "every 1000 to 1400 ms". */
+export function eventsWords(events: 'alone' | { fromMs: number; toMs: number }): string {
+  if (events === 'alone') return 'alone'
+  return `every ${windowWords(events.fromMs, events.toMs)}`
 }
 
 const article = (word: string) => (/^[aeiou]/i.test(word) ? 'an' : 'a')
@@ -82,6 +90,8 @@ export function protocolLine(protocol: Protocol): Piece[] {
     text(' sampled at '),
     token('rate', `${exact(protocol.samplingRateHz)} Hz`, 'sampling rate'),
   ]
+  if (protocol.events)
+    pieces.push(text(', its events '), token('events', eventsWords(protocol.events), 'how the events follow one another'))
   if (past.length > 0) pieces.push(text(', had passed '), ...joined(past))
   if (amplifiers.length > 0)
     pieces.push(text(past.length > 0 ? '. Here it passed ' : ', passed '), ...joined(amplifiers))

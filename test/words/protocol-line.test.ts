@@ -24,6 +24,7 @@ function ofScenario({ waveform, condition, chain, extent, baseline, trials, scor
     source: 'built',
     waveform: componentsWords(components),
     samplingRateHz,
+    events: 'alone',
     chain,
     extent,
     baseline,
@@ -78,23 +79,23 @@ describe('the scenarios’ protocol lines', () => {
   test.each([
     [
       'late-positivity',
-      'The built waveform, a late positivity sampled at 500 Hz, passed an amplifier with a 10 s time constant. Offline it passed a Butterworth high-pass of order 2 per pass, run both ways, half-amplitude 1 Hz after both passes, and a Hamming-windowed sinc low-pass, zero-phase, half-amplitude 30 Hz, transition width 7.5 Hz. The chain ran on the continuous recording. Over 40 trials, with a baseline of −200 to 0 ms, the score is the mean amplitude from 80 to 140 ms.',
+      'The built waveform, a late positivity sampled at 500 Hz, its events alone, passed an amplifier with a 10 s time constant. Offline it passed a Butterworth high-pass of order 2 per pass, run both ways, half-amplitude 1 Hz after both passes, and a Hamming-windowed sinc low-pass, zero-phase, half-amplitude 30 Hz, transition width 7.5 Hz. The chain ran on the continuous recording. Over 40 trials, with a baseline of −200 to 0 ms, the score is the mean amplitude from 80 to 140 ms.',
     ],
     [
       'slow-wave',
-      'The built waveform, a visual positivity and a sustained negativity sampled at 250 Hz, passed an amplifier with a 10 s time constant. Offline it passed a Butterworth high-pass of order 2 per pass, run both ways, half-amplitude 0.5 Hz after both passes. The chain ran on the continuous recording. Over 60 trials, with a baseline of −200 to 0 ms, the score is the mean amplitude from 600 to 1200 ms.',
+      'The built waveform, a visual positivity and a sustained negativity sampled at 250 Hz, its events alone, passed an amplifier with a 10 s time constant. Offline it passed a Butterworth high-pass of order 2 per pass, run both ways, half-amplitude 0.5 Hz after both passes. The chain ran on the continuous recording. Over 60 trials, with a baseline of −200 to 0 ms, the score is the mean amplitude from 600 to 1200 ms.',
     ],
     [
       'smeared-onset',
-      'The built waveform is an early negativity sampled at 1000 Hz. Offline it passed a Butterworth low-pass of order 4 per pass, run both ways, half-amplitude 6 Hz after both passes. The chain ran on the continuous recording. Over 80 trials, with a baseline of −200 to 0 ms, the score is the onset latency at 50 % of the negative peak from 100 to 300 ms.',
+      'The built waveform is an early negativity sampled at 1000 Hz, its events alone. Offline it passed a Butterworth low-pass of order 4 per pass, run both ways, half-amplitude 6 Hz after both passes. The chain ran on the continuous recording. Over 80 trials, with a baseline of −200 to 0 ms, the score is the onset latency at 50 % of the negative peak from 100 to 300 ms.',
     ],
     [
       'delayed-peak',
-      'The built waveform, three components sampled at 1000 Hz, passed an amplifier with a 10 s time constant. Offline it passed a Butterworth low-pass of order 4, run forward, causal, half-power 15 Hz. The chain ran on the continuous recording. Over 100 trials, with a baseline of −100 to 0 ms, the score is the negative peak latency from 70 to 180 ms.',
+      'The built waveform, three components sampled at 1000 Hz, its events alone, passed an amplifier with a 10 s time constant. Offline it passed a Butterworth low-pass of order 4, run forward, causal, half-power 15 Hz. The chain ran on the continuous recording. Over 100 trials, with a baseline of −100 to 0 ms, the score is the negative peak latency from 70 to 180 ms.',
     ],
     [
       'steady-interference',
-      'The built waveform, four components sampled at 500 Hz, passed an amplifier with a 10 s time constant. Offline it passed a notch at 75 Hz and no harmonics, run both ways, each 4 Hz wide at half-power after both passes. The chain ran on the continuous recording. Over 100 trials, with a baseline of −100 to 0 ms, the score is the positive peak amplitude from 85 to 130 ms.',
+      'The built waveform, four components sampled at 500 Hz, its events alone, passed an amplifier with a 10 s time constant. Offline it passed a notch at 75 Hz and no harmonics, run both ways, each 4 Hz wide at half-power after both passes. The chain ran on the continuous recording. Over 100 trials, with a baseline of −100 to 0 ms, the score is the positive peak amplitude from 85 to 130 ms.',
     ],
   ])('%s', (id, words) => {
     const scenario = SCENARIOS.find((entry) => entry.id === id)

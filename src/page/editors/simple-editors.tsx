@@ -73,6 +73,37 @@ export function ExtentEditor({ workspace, error }: EditorProps) {
   )
 }
 
+export function EventsEditor({ workspace, error }: EditorProps) {
+  const { source } = workspace
+  if (source.kind !== 'built') return null
+  const { events } = source
+  const set = (next: typeof events, group?: string) =>
+    say((w) => (w.source.kind === 'built' ? { ...w, source: { ...w.source, events: next } } : w), group)
+  return (
+    <Editor title="Events" subtitle="how they follow one another" error={error}>
+      <Choice
+        stacked
+        label="how the events follow one another"
+        value={events === 'alone' ? 'alone' : 'train'}
+        options={[
+          { value: 'alone', text: 'alone', hint: 'nothing overlaps' },
+          { value: 'train', text: 'one after another', hint: 'the neighbours’ waveforms overlap, before the chain' },
+        ]}
+        onChange={(value) => set(value === 'alone' ? 'alone' : { fromMs: 1000, toMs: 1400 })}
+      />
+      {events === 'alone' ? null : (
+        <WindowFields
+          fromMs={events.fromMs}
+          toMs={events.toMs}
+          stepMs={50}
+          onChange={(fromMs, toMs) => set({ fromMs, toMs }, 'events')}
+        />
+      )}
+      <p className="quiet">Intervals are drawn evenly and independently between the two.</p>
+    </Editor>
+  )
+}
+
 export function BaselineEditor({ workspace, samplingRateHz, error }: EditorProps) {
   const { baseline } = workspace
   return (

@@ -12,6 +12,7 @@ import { ShownEditor } from './shown-editor.tsx'
 import {
   AddStageEditor,
   BaselineEditor,
+  EventsEditor,
   ExtentEditor,
   LimitEditor,
   MeasureEditor,
@@ -80,6 +81,8 @@ export function TokenEditor({ workspace, shown, onOpenFile }: TokenEditorProps) 
       return <ExtentEditor {...common} />
     case 'trials':
       return <TrialsEditor {...common} />
+    case 'events':
+      return <EventsEditor {...common} />
     case 'baseline':
       return <BaselineEditor {...common} />
     case 'score':

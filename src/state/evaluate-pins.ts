@@ -1,0 +1,46 @@
+/** The part of evaluate() that runs the same waveform and score through a pinned chain. */
+import { effectiveWindowOn } from '../evidence/effective-window.ts'
+import { inWords } from '../words/index.ts'
+import { designedChain } from './evaluate-chain.ts'
+import { correctedCurves, rawCurves, type TimeAxis } from './evaluate-curves.ts'
+import { gainOn, kernelOf, stripMargin } from './evaluate-figures.ts'
+import { precisionOf, rowsOf, weightsOf } from './evaluate-score.ts'
+import type { FailedPin, KernelFigure, PinnedResult } from './evaluation.ts'
+import type { RecordedData } from './recorded-data.ts'
+import type { Pin, Workspace } from './workspace.ts'
+
+/**
+ * What a pinned chain makes of the present waveform, on the grids of the present figures. A pin that cannot be computed says why and leaves
+ * the rest of the page alone.
+ */
+export function pinnedResult(
+  pin: Pin,
+  workspace: Workspace,
+  data: RecordedData | null,
+  { samplingRateHz, timesMs }: TimeAxis,
+  hz: Float64Array,
+  kernel: KernelFigure,
+): PinnedResult | FailedPin {
+  const { source, shown, score, baseline, measure, onsetMs } = workspace
+  try {
+    const chain = designedChain(pin.chain, samplingRateHz)
+    const extent = source.kind === 'recorded' ? 'epochs' : pin.extent
+    const raw = rawCurves(source, data, shown.channel, shown.difference, shown.chosen, timesMs, chain, extent)
+    const { before, after } = correctedCurves(raw, shown.chosen, timesMs, baseline)
+    const rows = rowsOf(before, after, raw, timesMs, score, measure, onsetMs)
+    const weights = weightsOf(score, baseline, timesMs, before, after)
+    const margin = stripMargin(timesMs.length)
+    return {
+      name: pin.name,
+      after,
+      window: weights && effectiveWindowOn(chain, weights.after, extent, -margin, timesMs.length + margin),
+      gain: gainOn(chain, hz),
+      ...kernelOf(chain, kernel.fromIndex, kernel.impulse.length),
+      rows,
+      precision: weights && precisionOf(workspace, chain, weights, extent, rows[0], before),
+    }
+  } catch (error) {
+    if (!(error instanceof RangeError)) throw error
+    return { name: pin.name, reason: inWords(error.message) }
+  }
+}
