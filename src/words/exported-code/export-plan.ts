@@ -3,7 +3,7 @@ import { appliedStages, type Chain } from '../../filter/chain.ts'
 import { epochPaddingSamples, recursiveProgram } from '../../filter/epoch-rules.ts'
 import { logPoles } from '../../filter/state-variable.ts'
 import type { Stage } from '../../filter/stage.ts'
-import { exact, list } from '../number.ts'
+import { exact } from '../number.ts'
 import { stagePieces } from '../stage-words.ts'
 import { directForm } from './direct-form-run.ts'
 
@@ -190,7 +190,10 @@ function total(runs: readonly { later: number; earlier: number }[], side: 'later
 }
 
 function tailSamples(stage: Stage): number {
-  const slowest = logPoles(stage.analogue as Float64Array).reduce((least, { decay }) => Math.min(least, decay), Infinity)
+  const slowest = logPoles(stage.analogue as Float64Array).reduce(
+    (least, { decay }) => Math.min(least, decay),
+    Infinity,
+  )
   return Math.ceil(Math.log(1 / TAIL) / slowest) + 8
 }
 
@@ -205,24 +208,32 @@ export function headerLines(plan: ExportPlan): string[] {
     inData.length === 0
       ? []
       : ['The data had already passed these, which are not run here:', ...inData.map((words) => `  - ${words}`)]
-  return [...applied, ...had, `Sampling rate: ${exact(samplingRateHz)} Hz.`, '', ...extentLines(plan), '', ...checkLines(check)]
+  return [
+    ...applied,
+    ...had,
+    `Sampling rate: ${exact(samplingRateHz)} Hz.`,
+    '',
+    ...extentLines(plan),
+    '',
+    ...checkLines(check),
+  ]
 }
 
 function extentLines({ extent, stages, zerosBefore, zerosAfter, shortestSamples }: ExportPlan): string[] {
   if (extent === 'continuous') {
+    const cut = Math.max(zerosBefore, zerosAfter) < MOST_ZEROS ? 'has decayed by a factor of 1e14' : 'is small'
     return [
       'Applied to a waveform that stands alone: zeros before and after it, every run from rest.',
       ...(zerosBefore + zerosAfter > 0
         ? [
-            `${exact(zerosBefore)} zeros are put before it and ${exact(zerosAfter)} after it, so many that what is cut has decayed`,
-            `by a factor of 1e14${Math.max(zerosBefore, zerosAfter) >= MOST_ZEROS ? ' or is as long as memory allows' : ''}, and are taken off again.`,
+            `${exact(zerosBefore)} zeros are put before it and ${exact(zerosAfter)} after it, so many that what is cut ${cut};`,
+            'they are taken off again.',
           ]
         : []),
     ]
   }
   const rules = [
-    stages.some(({ rule }) => rule === 'rest') &&
-      'an amplifier stage runs from rest, as if the epoch stood alone',
+    stages.some(({ rule }) => rule === 'rest') && 'an amplifier stage runs from rest, as if the epoch stood alone',
     stages.some(({ rule }) => rule === 'both') &&
       'a stage run both ways pads both ends by odd reflection and starts each pass in its steady state',
     stages.some(({ rule }) => rule === 'forward') &&
@@ -232,7 +243,7 @@ function extentLines({ extent, stages, zerosBefore, zerosAfter, shortestSamples 
   ].filter((rule) => rule !== false)
   return [
     'Applied to one cut-out epoch, which knows nothing outside itself. Each stage pads, runs and trims:',
-    ...rules.map((rule) => `  - ${rule};`),
+    ...rules.map((rule, i) => `  - ${rule}${i < rules.length - 1 ? ';' : '.'}`),
     `An epoch must have at least ${exact(shortestSamples)} ${shortestSamples === 1 ? 'sample' : 'samples'}.`,
   ]
 }
@@ -253,9 +264,4 @@ function checkLines({ samples, at, tolerance, found }: SelfCheck): string[] {
 /** 1e-9, 3e-8: one digit and an exponent, in any language's spelling. */
 export function exponent(value: number): string {
   return value === 0 ? '0' : value.toExponential(0)
-}
-
-/** "stage 1, 2 and 4" for messages. */
-export function stageNumbers(numbers: readonly number[]): string {
-  return `stage ${list(numbers.map(String))}`
 }
