@@ -7,7 +7,7 @@ import type { Evaluation } from '../state/evaluation.ts'
 import { readoutCsv } from '../state/readout-csv.ts'
 import { type Verdict, verdictOf } from '../state/verdict.ts'
 import type { Workspace } from '../state/workspace.ts'
-import { brief, changeWords, exact, fixed, rowWords, signed, valueWords } from '../words/index.ts'
+import { brief, changeWords, exact, fixed, rowWords, signed, valueWords, windowWords } from '../words/index.ts'
 import { MultiplesAxis, MultiplesDot } from './multiples.tsx'
 import { Token } from './token.tsx'
 
@@ -173,8 +173,21 @@ const MEASURE_TOKEN: Partial<Record<FigureId, string>> = {
 
 /** Where the row is measured; a token once for each window that can be changed. */
 function Where({ row, where, recorded }: { row: FidelityRow; where: string; recorded: boolean }) {
-  if (row.id === 'false-deflection' && row.before === 'onset not given' && recorded)
-    return <Token id="onset" className="small" text="state the onset" label="onset of the recorded waveform" />
+  if (row.id === 'false-deflection' && recorded) {
+    const stated = row.before !== 'onset not given'
+    const { toMs } = row.label.window
+    return (
+      <>
+        <Token
+          id="onset"
+          className="small"
+          text={stated ? windowWords(toMs, toMs) : 'state the onset'}
+          label="onset of the recorded waveform"
+        />
+        {stated && where ? `, ${where}` : ''}
+      </>
+    )
+  }
   const token = MEASURE_TOKEN[row.id]
   if (token && row.id !== 'score') return <Token id={token} className="small" text={where} label="window of this row" />
   return <>{where}</>

@@ -324,8 +324,9 @@ function CutoffPart({ spec, set, samplingRateHz, designHz }: Parts) {
     )
   }
   if (spec.design === 'amplifier') {
-    const tau = Number(hzToTimeConstant(spec.cutoffHz).toPrecision(10))
-    const setTau = (seconds: number) => set({ ...spec, cutoffHz: timeConstantToHz(seconds) }, 'cutoff')
+    const tau = spec.cutoffHz > 0 ? Number(hzToTimeConstant(spec.cutoffHz).toPrecision(10)) : 0
+    const setTau = (seconds: number) =>
+      set({ ...spec, cutoffHz: seconds > 0 ? timeConstantToHz(seconds) : 0 }, 'cutoff')
     return (
       <>
         {spec.pass === 'high' && spec.order === 1 ? (
