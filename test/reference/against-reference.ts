@@ -25,9 +25,7 @@ export function readReference<Case>(name: string): ReferenceFile<Case> {
 
 /** The first Python that has SciPy, or null. */
 export function findPython(): string | null {
-  const candidates = [process.env.SIDELOBE_PYTHON, 'python3', '/usr/bin/python3'].filter(
-    (path) => path !== undefined && path !== '',
-  )
+  const candidates = [process.env.SIDELOBE_PYTHON || 'python3', 'python3', '/usr/bin/python3']
   const probe = 'import importlib.util as u, sys; sys.exit(0 if u.find_spec("scipy") and u.find_spec("numpy") else 1)'
   return candidates.find((python) => spawnSync(python, ['-c', probe]).status === 0) ?? null
 }
