@@ -29,7 +29,7 @@ export type Interval = Exclude<Events, 'alone'>
 /** Events cannot follow each other faster than this in any experiment with an epoch. */
 const SHORTEST_INTERVAL_MS = 50
 const LONGEST_INTERVAL_MS = 1e6
-/** A train has forgotten this event when its average keeps within this part of the waveform's largest value of the constant. */
+/** A train has forgotten this event when its average keeps within this part of the waveform's largest value for an interval. */
 const FORGOTTEN = 1e-12
 /** Finest grid of the renewal equation, in parts of a sample. */
 const FINEST = 16
@@ -230,8 +230,8 @@ function renewal(
     if (k > 0) integral[k] = integral[k - 1] + stepIntegral(average, k, h)
     const own = read(integral, i, shortDelay) - read(integral, i, longDelay)
     average[i] = (xAt(early, i) - xAt(late, i) + own) / widthMs
-    calm = i > quiet && Math.abs(average[i] - meanUv) <= level ? calm + 1 : 0
-    // an average over what keeps within the level keeps within it for ever
+    if (i > quiet && Math.abs(average[i] - average[i - calm]) <= level) calm++
+    else calm = 0
     if (calm > window) {
       made = i + 1
       break
