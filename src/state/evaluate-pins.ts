@@ -6,8 +6,12 @@ import { correctedCurves, rawCurves, type TimeAxis } from './evaluate-curves.ts'
 import { gainOn, kernelOf, stripMargin } from './evaluate-figures.ts'
 import { precisionOf, rowsOf, weightsOf } from './evaluate-score.ts'
 import type { FailedPin, KernelFigure, PinnedResult } from './evaluation.ts'
+import { memoised } from './memo.ts'
 import type { RecordedData } from './recorded-data.ts'
 import type { Pin, Workspace } from './workspace.ts'
+
+/** A pinned window hangs on nothing that is dragged but the score. */
+const windowOf = memoised(effectiveWindowOn)
 
 /**
  * What a pinned chain makes of the present waveform, on the grids of the present figures. A pin that cannot be computed says why and leaves
@@ -15,6 +19,7 @@ import type { Pin, Workspace } from './workspace.ts'
  */
 export function pinnedResult(
   pin: Pin,
+  name: string,
   workspace: Workspace,
   data: RecordedData | null,
   { samplingRateHz, timesMs }: TimeAxis,
@@ -31,9 +36,9 @@ export function pinnedResult(
     const weights = weightsOf(score, baseline, timesMs, before, after)
     const margin = stripMargin(timesMs.length)
     return {
-      name: pin.name,
+      name,
       after,
-      window: weights && effectiveWindowOn(chain, weights.after, extent, -margin, timesMs.length + margin),
+      window: weights && windowOf(chain, weights.after, extent, -margin, timesMs.length + margin),
       gain: gainOn(chain, hz),
       ...kernelOf(chain, kernel.fromIndex, kernel.impulse.length),
       rows,
@@ -41,6 +46,6 @@ export function pinnedResult(
     }
   } catch (error) {
     if (!(error instanceof RangeError)) throw error
-    return { name: pin.name, reason: inWords(error.message) }
+    return { name, reason: inWords(error.message) }
   }
 }

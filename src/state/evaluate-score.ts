@@ -36,8 +36,11 @@ const linearWeights = memoised((score: Score, baseline: Baseline, timesMs: Float
   scoreWeights(score, baseline, timesMs),
 )
 
-const heldWeights = memoised((score: Score, baseline: Baseline, timesMs: Float64Array, y: Float64Array) =>
-  scoreWeights(score, baseline, timesMs, y),
+/** Two for the present chain and two for each pinned one. */
+const heldWeights = memoised(
+  (score: Score, baseline: Baseline, timesMs: Float64Array, y: Float64Array) =>
+    scoreWeights(score, baseline, timesMs, y),
+  12,
 )
 
 /** Null for a latency, which is no weighted sum, and for a peak that is not there. */

@@ -26,6 +26,7 @@ import { precisionOf, rowsOf, weightsOf } from './evaluate-score.ts'
 import { chainPoints, chainTable } from './evaluate-table.ts'
 import type { Curves, Evaluation, Outcome, Problem } from './evaluation.ts'
 import { memoised } from './memo.ts'
+import { namesOfPins } from './pin-actions.ts'
 import type { RecordedData } from './recorded-data.ts'
 import type { Workspace } from './workspace.ts'
 
@@ -96,6 +97,7 @@ function evaluationOf(
   const unseen = weights && (extent === 'continuous' ? 0 : unseenOf(chain, weights.after))
   const frequency = frequencyFigure(workspace, chain, raw[chosen], extent, timesMs, chainPoints(chain))
   const kernel = kernelFigure(chain, timesMs)
+  const pinned = namesOfPins(workspace)
   return {
     samplingRateHz: axis.samplingRateHz,
     timesMs,
@@ -113,7 +115,7 @@ function evaluationOf(
     unseenShare: unseen,
     rows,
     precision: weights && precisionOf(workspace, chain, weights, extent, rows[0], before),
-    pins: workspace.pins.map((pin) => pinnedResult(pin, workspace, data, axis, frequency.hz, kernel)),
+    pins: workspace.pins.map((pin, i) => pinnedResult(pin, pinned[i], workspace, data, axis, frequency.hz, kernel)),
     remark: remarkWords({
       score,
       unit: rows[0].unit,

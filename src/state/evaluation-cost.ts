@@ -32,8 +32,10 @@ export function isHeavy(workspace: Workspace, data: RecordedData | null): boolea
     source.kind === 'built'
       ? ((source.epoch.toMs - source.epoch.fromMs) / 1000) * samplingRateHz
       : (data?.timesMs.length ?? 0)
-  const samples = workspace.chain
-    .filter((spec) => spec.enabled !== false)
-    .reduce((sum, spec) => sum + 3 * kernelSamples(spec, samplingRateHz) + 12 * epochSamples, 20 * epochSamples)
-  return samples > HEAVY_SAMPLES
+  const costOf = (chain: readonly StageSpec[]) =>
+    chain
+      .filter((spec) => spec.enabled !== false)
+      .reduce((sum, spec) => sum + 3 * kernelSamples(spec, samplingRateHz) + 12 * epochSamples, 20 * epochSamples)
+  // What was computed of a pinned chain is mostly remembered: it counts only where it is heavy by itself.
+  return [workspace.chain, ...workspace.pins.map((pin) => pin.chain)].some((chain) => costOf(chain) > HEAVY_SAMPLES)
 }

@@ -2,6 +2,7 @@ export { brief, exact, fixed, list, parseNumber, signed } from './number.ts'
 export { type RemarkFacts, remarkWords } from './remark.ts'
 export { changeWords, decimalsOf, rowWords, valueWords } from './row-words.ts'
 export { inWords, partOfField } from './problem.ts'
+export { type NamedChain, pinName, pinNames, sameChain, shortened } from './pin-name.ts'
 export {
   componentsWords,
   eventsWords,
