@@ -38,7 +38,7 @@ export function Header({ title, kind, onOpen, onSave, onNew, onCopyLink }: Heade
           <Plain onPress={onOpen} hint="Ctrl+O">
             Open
           </Plain>
-          <Plain onPress={onSave} hint="Ctrl+S">
+          <Plain id="token-save" onPress={onSave} hint="Ctrl+S saves at once">
             Save
           </Plain>
           <Plain onPress={onNew}>New</Plain>
@@ -70,9 +70,9 @@ export function Header({ title, kind, onOpen, onSave, onNew, onCopyLink }: Heade
   )
 }
 
-function Plain(props: { onPress: () => void; disabled?: boolean; hint?: string; children: string }) {
+function Plain(props: { id?: string; onPress: () => void; disabled?: boolean; hint?: string; children: string }) {
   return (
-    <button type="button" className="plain" onClick={props.onPress} disabled={props.disabled} title={props.hint}>
+    <button type="button" id={props.id} className="plain" onClick={props.onPress} disabled={props.disabled} title={props.hint}>
       {props.children}
     </button>
   )

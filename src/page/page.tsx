@@ -32,7 +32,7 @@ export function Page() {
   useEffect(() => {
     document.documentElement.dataset.theme = theme
   }, [theme])
-  useKeys(files.chooseFile, files.saveWorkspace)
+  useKeys(files.chooseFile, () => void files.saveWorkspace())
   useStoredFile(workspace, files.report)
 
   // That of the workspace in the sentence, which may be ahead of the figures.
@@ -55,7 +55,7 @@ export function Page() {
         title={workspace.title}
         kind={workspace.source.kind === 'built' ? 'built waveform' : 'recorded waveform'}
         onOpen={files.chooseFile}
-        onSave={files.saveWorkspace}
+        onSave={() => look({ open: 'save' })}
         onNew={() => say(startWorkspace)}
         onCopyLink={files.copyLink}
       />
@@ -67,16 +67,31 @@ export function Page() {
             {files.message ? (
               <p className={`message ${files.message.kind}`} role={files.message.kind === 'note' ? 'status' : 'alert'}>
                 {files.message.text}
-                <button type="button" className="word" onClick={files.dismiss}>
-                  dismiss
-                </button>
+                {files.message.answers?.map(({ words, run }) => (
+                  <button key={words} type="button" className="word" onClick={run}>
+                    {words}
+                  </button>
+                ))}
+                {files.message.answers ? null : (
+                  <button type="button" className="word" onClick={files.dismiss}>
+                    dismiss
+                  </button>
+                )}
               </p>
             ) : null}
             <ReadingProgress />
           </div>
           <div className="side">
             {evaluation ? <ChainTable evaluation={evaluation} /> : null}
-            <TokenEditor workspace={workspace} shown={shown} onOpenFile={files.chooseFile} />
+            <TokenEditor
+              workspace={workspace}
+              shown={shown}
+              onOpenFile={files.chooseFile}
+              onSave={(name, enclose) => {
+                void files.saveWorkspace(name, enclose)
+                closeEditor()
+              }}
+            />
           </div>
         </section>
         {evaluation && shown.of ? (

@@ -1,15 +1,18 @@
 /** Opening by button, keyboard and drop; saving; the link. A refused file changes nothing but the line that says why. */
 import { type ChangeEvent, type DragEvent, useCallback, useEffect, useRef, useState } from 'react'
 import { downloadBlob } from '../plot/index.ts'
+import type { KeepingState } from '../state/autosave.ts'
 import { takeUpWork, workspaceFromText, workspaceToFragment, workspaceToText } from '../state/keeping.ts'
 import { workspaceOnTable } from '../state/open-table.ts'
-import { openTable } from '../state/recorded-data.ts'
+import { dataStore, fileText, openTable, recordedData, rereadTable } from '../state/recorded-data.ts'
 import { say, workspaceStore } from '../state/store.ts'
 import { look } from '../state/view.ts'
 
 export interface Message {
   kind: 'problem' | 'note'
   text: string
+  /** What the user can answer, beside dismissing it. */
+  answers?: readonly { words: string; run: () => void }[]
 }
 
 const MAX_LINK_LENGTH = 8000
@@ -21,8 +24,36 @@ export function useFiles() {
   const report = useCallback((text: string) => setMessage({ kind: 'problem', text }), [])
 
   useEffect(() => {
-    void takeUpWork(location.hash).then((said) => {
-      if (said) report(said)
+    let keepMine = () => undefined as void
+    const tell = (state: KeepingState) => {
+      if (state.kind === 'no storage')
+        report('This browser keeps nothing (its storage is full or shut off): save the workspace as a file before you leave.')
+      if (state.kind === 'other tab')
+        setMessage({
+          kind: 'problem',
+          text: 'This workspace was changed in another tab meanwhile. Nothing is overwritten until you choose.',
+          answers: [
+            {
+              words: 'take the other tab’s work',
+              run: () => {
+                say(() => state.workspace)
+                keepMine()
+                setMessage(null)
+              },
+            },
+            {
+              words: 'keep what is on this screen',
+              run: () => {
+                keepMine()
+                setMessage(null)
+              },
+            },
+          ],
+        })
+    }
+    void takeUpWork(location.hash, tell).then((taken) => {
+      keepMine = taken.keepMine
+      if (taken.said) report(taken.said)
       if (location.hash) history.replaceState(null, '', location.pathname + location.search)
     })
   }, [report])
@@ -32,8 +63,16 @@ export function useFiles() {
       try {
         if (file.name.toLowerCase().endsWith('.json')) {
           const result = workspaceFromText(await file.text())
-          if (!result.ok) return report(`${file.name} was not opened: ${result.reason}. The work on screen is as it was.`)
-          say(() => result.workspace)
+          if (!result.ok)
+            return report(`${file.name} was not opened: ${sentence(result.reason)} The work on screen is as it was.`)
+          const { enclosed, workspace } = result
+          if (enclosed && workspace.source.kind === 'recorded') {
+            const named = { name: enclosed.fileName, text: () => Promise.resolve(enclosed.text) }
+            const table = await openTable(named, workspace.source.reading)
+            if (!table.ok || table.source.fileId !== workspace.source.fileId)
+              return report(`${file.name} was not opened: the table inside is damaged. The work on screen is as it was.`)
+          }
+          say(() => workspace)
           look({ open: null })
           return setMessage(null)
         }
@@ -49,9 +88,23 @@ export function useFiles() {
             `${file.name} was not opened${where ? ` (${where})` : ''}: ${sentence(result.reason)} ${sentence(result.todo ?? '')} The work on screen is as it was.`,
           )
         }
+        const { source } = workspaceStore.getState().workspace
+        const waiting = source.kind === 'recorded' && !recordedData(source, dataStore.getState().files) ? source : null
+        if (waiting && waiting.fileId === result.source.fileId) {
+          // The very file that the workspace asks for: everything that was said about it stands.
+          const table = await rereadTable(waiting, waiting.reading)
+          if (table?.ok) return setMessage(null)
+        }
         say((w) => workspaceOnTable(w, result.source, result.table))
         look({ open: 'scenario' })
-        setMessage(null)
+        setMessage(
+          waiting
+            ? {
+                kind: 'note',
+                text: `${file.name} is not the file that this workspace was made on (${waiting.fileName}): its content differs. It was opened as new data; undo brings the workspace back.`,
+              }
+            : null,
+        )
       } catch (error) {
         if (error instanceof DOMException && error.name === 'AbortError')
           return setMessage({ kind: 'note', text: `Reading ${file.name} was cancelled. The work on screen is as it was.` })
@@ -67,10 +120,15 @@ export function useFiles() {
     dismiss: () => setMessage(null),
     dragging,
     chooseFile: () => inputRef.current?.click(),
-    saveWorkspace: () => {
+    /** Saves under a name, with the loaded table inside if the user says so. */
+    saveWorkspace: async (fileName?: string, encloseTable = false) => {
       const { workspace } = workspaceStore.getState()
-      const name = workspace.title.replace(/[^\p{L}\p{N}]+/gu, '-').replace(/^-|-$/g, '') || 'workspace'
-      downloadBlob(new Blob([workspaceToText(workspace)], { type: 'application/json' }), `${name}.sidelobe.json`)
+      const name = (fileName ?? workspace.title).replace(/[^\p{L}\p{N}]+/gu, '-').replace(/^-|-$/g, '') || 'workspace'
+      const { source } = workspace
+      const text = encloseTable && source.kind === 'recorded' ? await fileText(source.fileId) : undefined
+      const enclosed = text !== undefined && source.kind === 'recorded' ? { fileName: source.fileName, text } : null
+      if (encloseTable && !enclosed) return report('The table is not at hand: open the file again before saving it inside.')
+      downloadBlob(new Blob([workspaceToText(workspace, enclosed)], { type: 'application/json' }), `${name}.sidelobe.json`)
     },
     copyLink: async () => {
       const { workspace } = workspaceStore.getState()

@@ -13,10 +13,12 @@ export async function recall<T>(key: string): Promise<T | undefined> {
   }
 }
 
-export async function remember(key: string, value: unknown): Promise<void> {
+/** @returns whether it was kept: storage can be full, or forbidden. */
+export async function remember(key: string, value: unknown): Promise<boolean> {
   try {
     await set(key, value)
+    return true
   } catch {
-    // The work goes on without being kept.
+    return false
   }
 }

@@ -1,13 +1,10 @@
-/** Keeping the workspace: as a file, as a link, and by itself in the browser's own storage. */
+/** The workspace as a file and as a link, and taking it up again. Keeping it by itself is in `autosave.ts`. */
 import { strFromU8, strToU8, Unzlib, zlibSync } from 'fflate'
-import { recall, remember } from './browser-storage.ts'
+import { type KeepingState, keepChanges, recallWork } from './autosave.ts'
 import { say, workspaceStore } from './store.ts'
 import { readWorkspace, type Workspace } from './workspace.ts'
 
-const STORAGE_KEY = 'sidelobe.workspace'
-const LEFT_KEY = 'sidelobe.workspace.left'
 const LINK_PREFIX = '#w='
-const AUTOSAVE_MS = 500
 /** No workspace is that large; a longer fragment is hostile or broken. */
 const MAX_LINK_BYTES = 2_000_000
 const MAX_FRAGMENT_LENGTH = 200_000
@@ -16,16 +13,40 @@ const UNPACKED_AT_A_TIME = 1024
 
 type Result = ReturnType<typeof readWorkspace>
 
-export function workspaceToText(workspace: Workspace): string {
-  return `${JSON.stringify(workspace, null, 2)}\n`
+/** The text of a loaded table, where the user wants it to travel inside the workspace file. */
+export interface EnclosedTable {
+  fileName: string
+  text: string
 }
 
-export function workspaceFromText(text: string): Result {
+/** A workspace file: the workspace, and the table that it is about if the user says so. */
+export function workspaceToText(workspace: Workspace, table: EnclosedTable | null = null): string {
+  return `${JSON.stringify(table ? { ...workspace, enclosed: table } : workspace, null, 2)}\n`
+}
+
+/** @returns the workspace and what was enclosed, or a sentence that names the first field that is wrong. */
+export function workspaceFromText(
+  text: string,
+): { ok: true; workspace: Workspace; enclosed: EnclosedTable | null } | { ok: false; reason: string } {
+  let value: unknown
   try {
-    return readWorkspace(JSON.parse(text))
+    value = JSON.parse(text)
   } catch (error) {
     return { ok: false, reason: `this is no workspace file: ${error instanceof Error ? error.message : String(error)}` }
   }
+  const result = readWorkspace(value)
+  if (!result.ok) return result
+  const enclosed = (value as { enclosed?: unknown }).enclosed
+  if (enclosed === undefined) return { ...result, enclosed: null }
+  if (!isEnclosed(enclosed))
+    return { ok: false, reason: 'this is no workspace that the page can read: enclosed: a table has a fileName and a text' }
+  return { ...result, enclosed: { fileName: enclosed.fileName, text: enclosed.text } }
+}
+
+function isEnclosed(value: unknown): value is EnclosedTable {
+  if (typeof value !== 'object' || value === null) return false
+  const { fileName, text } = value as Partial<Record<keyof EnclosedTable, unknown>>
+  return typeof fileName === 'string' && typeof text === 'string'
 }
 
 /** The part of an address behind `#`: compressed, and never sent to a server by any browser. */
@@ -65,60 +86,26 @@ function unpacked(bytes: Uint8Array): Uint8Array {
   return whole.subarray(0, length)
 }
 
-/** A page that goes away has no time for the browser's database: what it has not written there yet is left here, at once. */
-function leaveBehind(workspace: Workspace): void {
-  try {
-    localStorage.setItem(LEFT_KEY, JSON.stringify(workspace))
-  } catch {
-    // Without storage nothing is kept.
-  }
-}
-
-/** What a page left behind, once; undefined where there is nothing. */
-function leftBehind(): unknown {
-  try {
-    const text = localStorage.getItem(LEFT_KEY)
-    if (text === null) return undefined
-    localStorage.removeItem(LEFT_KEY)
-    return JSON.parse(text)
-  } catch {
-    return undefined
-  }
-}
-
 /**
  * Takes up the workspace of the link, else the one that was kept, and from then on keeps every change.
  *
- * @returns what is to be said about it, or null.
+ * @param tell called when keeping meets another tab, or cannot keep.
+ * @returns what is to be said about it, or null; and how to go on keeping after another tab was met.
  */
-export async function takeUpWork(fragment: string): Promise<string | null> {
+export async function takeUpWork(
+  fragment: string,
+  tell: (state: KeepingState) => void = () => undefined,
+): Promise<{ said: string | null; keepMine: () => void }> {
   const linked = workspaceFromFragment(fragment)
-  const found = leftBehind() ?? (await recall<unknown>(STORAGE_KEY))
-  const stored = found === undefined ? null : readWorkspace(found)
+  const found = await recallWork()
+  const stored = found === undefined ? null : readWorkspace(found.workspace)
   let said: string | null = null
   if (stored?.ok) start(stored.workspace)
   if (linked?.ok) say(() => linked.workspace)
   else if (linked) said = linked.reason
   else if (stored && !stored.ok) said = `What was kept from last time could not be read (${stored.reason}).`
-
-  let timer: ReturnType<typeof setTimeout> | undefined
-  let kept: Workspace | null = stored?.ok || linked?.ok ? null : workspaceStore.getState().workspace
-  const write = () => {
-    timer = undefined
-    const { workspace } = workspaceStore.getState()
-    void remember(STORAGE_KEY, workspace).then(() => {
-      kept = workspace
-    })
-  }
-  if (stored?.ok || linked?.ok) write()
-  workspaceStore.subscribe(() => {
-    timer ??= setTimeout(write, AUTOSAVE_MS)
-  })
-  globalThis.addEventListener?.('pagehide', () => {
-    const { workspace } = workspaceStore.getState()
-    if (workspace !== kept) leaveBehind(workspace)
-  })
-  return said
+  const { keepMine } = keepChanges(found?.savedAt ?? 0, tell)
+  return { said, keepMine }
 }
 
 /** The kept workspace is where undo begins. */

@@ -73,15 +73,21 @@ async function readWith(
  * @throws DOMException 'AbortError' when the user cancels.
  */
 export async function openTable(
-  file: File,
+  file: { readonly name: string; text(): Promise<string> },
+  reading: Reading = {},
 ): Promise<{ ok: true; source: RecordedSource; table: Table } | (TableRefusal & { fileName: string })> {
   const text = await file.text()
   const fileId = await sha256(text)
-  const table = await readWith(fileId, file.name, text, {})
+  const table = await readWith(fileId, file.name, text, reading)
   if (!table.ok) return { ...table, fileName: file.name }
   // Without storage the work goes on; only a reload will ask for the file again.
   await remember(storageKey(fileId), text)
-  return { ok: true, source: { kind: 'recorded', fileName: file.name, fileId, reading: {} }, table }
+  return { ok: true, source: { kind: 'recorded', fileName: file.name, fileId, reading }, table }
+}
+
+/** The text of a file that is at hand; undefined where it is not. */
+export async function fileText(fileId: string): Promise<string | undefined> {
+  return dataStore.getState().files[fileId]?.text ?? (await recall<string>(storageKey(fileId)))
 }
 
 /** Reads a file that is at hand in another way ("time is in s"). */
@@ -90,7 +96,7 @@ export async function rereadTable(source: RecordedSource, reading: Reading): Pro
   const known = files[source.fileId]
   const existing = known?.tables[readingKey(reading)]
   if (existing) return existing
-  const text = known?.text ?? (await recall<string>(storageKey(source.fileId)))
+  const text = await fileText(source.fileId)
   if (text === undefined) return null
   return readWith(source.fileId, source.fileName, text, reading)
 }

@@ -12,6 +12,8 @@ export interface View {
   windowScale: 'compressed' | 'linear'
   /** The token whose editor is open. */
   open: string | null
+  /** The desk that is open under the readout. */
+  desk: 'trace' | null
   help: boolean
 }
 
@@ -24,6 +26,7 @@ const KEPT = [
   'kernelShows',
   'kernelScale',
   'windowScale',
+  'desk',
 ] as const
 const STORAGE_KEY = 'sidelobe.view'
 
@@ -37,6 +40,7 @@ const initial: View = {
   kernelScale: 'compressed',
   windowScale: 'compressed',
   open: null,
+  desk: null,
   help: false,
 }
 
@@ -49,6 +53,7 @@ const CHOICES: { [K in (typeof KEPT)[number]]: readonly View[K][] } = {
   kernelShows: ['impulse response', 'step response'],
   kernelScale: ['compressed', 'linear'],
   windowScale: ['compressed', 'linear'],
+  desk: ['trace', null],
 }
 
 function kept(): Partial<View> {

@@ -104,7 +104,7 @@ describe('a link', () => {
 
 describe('a workspace file', () => {
   test.each(scenarios)('brings back the scenario %s', (_, workspace) => {
-    expect(workspaceFromText(workspaceToText(workspace))).toEqual({ ok: true, workspace })
+    expect(workspaceFromText(workspaceToText(workspace))).toEqual({ ok: true, workspace, enclosed: null })
   })
 
   test('that is no JSON is refused with what is wrong', () => {
@@ -116,10 +116,25 @@ describe('a workspace file', () => {
   })
 })
 
+describe('a workspace file with a table inside', () => {
+  const table = { fileName: 'average.csv', text: 'time_ms,Cz\n0,1\n' }
+
+  test('gives back both, and the workspace does not keep the table as a part of itself', () => {
+    const workspace = startWorkspace()
+    expect(workspaceFromText(workspaceToText(workspace, table))).toEqual({ ok: true, workspace, enclosed: table })
+    expect(workspaceFromText(workspaceToText(workspace))).toEqual({ ok: true, workspace, enclosed: null })
+  })
+
+  test.each([[null], [3], [{ fileName: 'a.csv' }], [{ fileName: 1, text: '' }]])('is refused when it is %j', (enclosed) => {
+    const text = JSON.stringify({ ...startWorkspace(), enclosed })
+    expect(workspaceFromText(text)).toEqual({ ok: false, reason: expect.stringContaining('enclosed') })
+  })
+})
+
 describe('taking up work', () => {
   test('goes on without a word where the browser has no storage, and keeps the work on screen', async () => {
     const { workspace } = workspaceStore.getState()
-    expect(await takeUpWork('')).toBeNull()
+    expect((await takeUpWork('')).said).toBeNull()
     expect(workspaceStore.getState().workspace).toBe(workspace)
   })
 
@@ -130,13 +145,13 @@ describe('taking up work', () => {
       },
     })
     const workspace = { ...workspaceOf(SCENARIOS[1]), title: 'from a link' }
-    expect(await takeUpWork(workspaceToFragment(workspace))).toBeNull()
+    expect((await takeUpWork(workspaceToFragment(workspace))).said).toBeNull()
     expect(workspaceStore.getState().workspace).toEqual(workspace)
   })
 
   test('says what is wrong with a damaged link and leaves the work as it was', async () => {
     const { workspace } = workspaceStore.getState()
-    expect(await takeUpWork('#w=AAAA')).toContain('damaged')
+    expect((await takeUpWork('#w=AAAA')).said).toContain('damaged')
     expect(workspaceStore.getState().workspace).toBe(workspace)
   })
 })

@@ -22,6 +22,7 @@ import {
   ScoreWindowEditor,
   TrialsEditor,
 } from './simple-editors.tsx'
+import { SaveEditor } from './save-editor.tsx'
 import { SourceEditor } from './source-editor.tsx'
 import { StageEditor } from './stage-editor.tsx'
 import { BuiltWaveformEditor } from './waveform-editor.tsx'
@@ -30,9 +31,10 @@ interface TokenEditorProps {
   workspace: Workspace
   shown: Shown
   onOpenFile: () => void
+  onSave: (fileName: string, encloseTable: boolean) => void
 }
 
-export function TokenEditor({ workspace, shown, onOpenFile }: TokenEditorProps) {
+export function TokenEditor({ workspace, shown, onOpenFile, onSave }: TokenEditorProps) {
   const open = useView((view) => view.open)
   const files = useStore(dataStore, (state) => state.files)
   if (!open) return null
@@ -59,6 +61,8 @@ export function TokenEditor({ workspace, shown, onOpenFile }: TokenEditorProps) 
       const conditions = source.kind === 'built' ? source.conditions.map((entry) => entry.name) : (table?.conditions ?? [])
       return <ShownEditor workspace={workspace} conditions={conditions} channels={table?.channels ?? []} />
     }
+    case 'save':
+      return <SaveEditor workspace={workspace} onSave={onSave} />
     case 'rate':
       return <RateEditor {...common} />
     case 'stage': {
