@@ -21,6 +21,9 @@ export const LIMIT_TOLERANCE_SAMPLES = 1e-6
  */
 export function stepMs(timesMs: Float64Array): number {
   const n = timesMs.length
+  const known = checkedAxes.get(timesMs)
+  // one axis serves thousands of scores: it is walked once, and looked at again only where its ends have changed
+  if (known && known.first === timesMs[0] && known.last === timesMs[n - 1]) return known.step
   if (n < 2) throw new RangeError(`timesMs must hold at least 2 times, had ${n}`)
   const start = timesMs[0]
   const step = (timesMs[n - 1] - start) / (n - 1)
@@ -32,8 +35,12 @@ export function stepMs(timesMs: Float64Array): number {
       throw new RangeError(`timesMs must be evenly spaced (every ${step} ms), timesMs[${i}] was ${timesMs[i]}`)
     }
   }
+  checkedAxes.set(timesMs, { first: start, last: timesMs[n - 1], step })
   return step
 }
+
+/** Time axes that were found evenly spaced. An axis is not changed once it is in use. */
+const checkedAxes = new WeakMap<Float64Array, { first: number; last: number; step: number }>()
 
 /**
  * First and last index of the samples in a window.
