@@ -1,4 +1,5 @@
 /** Per stage its line style, half-amplitude, half-power and roll-off; then the whole chain's reach and unseen share. */
+import type { ReactNode } from 'react'
 import type { Evaluation, ReachMs } from '../state/evaluation.ts'
 import { fixed } from '../words/index.ts'
 import { stageDash } from './stage-dash.ts'
@@ -10,7 +11,7 @@ function reachText({ beforeMs, afterMs }: ReachMs): string {
     : `${fixed(-beforeMs, 0)} to ${fixed(afterMs, 0)} ms`
 }
 
-export function ChainTable({ evaluation }: { evaluation: Evaluation }) {
+export function ChainTable({ evaluation, children }: { evaluation: Evaluation; children?: ReactNode }) {
   const { table, reach, amplifierReach, unseenShare } = evaluation
   const unseen = unseenShare === null ? '' : `, unseen share ${fixed(unseenShare * 100, 1)} %`
   return (
@@ -62,6 +63,7 @@ export function ChainTable({ evaluation }: { evaluation: Evaluation }) {
           <td colSpan={3}>{table.some((row) => !row.inData) ? `reach ${reachText(reach)}${unseen}` : 'no filter is applied'}</td>
         </tr>
       </tbody>
+      {children}
     </table>
   )
 }

@@ -15,6 +15,7 @@ import { Header } from './header.tsx'
 import { Help } from './help.tsx'
 import { useView, useWorkspace } from './hooks.ts'
 import { KernelFigure } from './kernel-figure.tsx'
+import { PinRows } from './pins.tsx'
 import { ProtocolLine } from './protocol-line.tsx'
 import { Readout } from './readout.tsx'
 import { TimeFigures } from './time-figures.tsx'
@@ -82,7 +83,15 @@ export function Page() {
             <ReadingProgress />
           </div>
           <div className="side">
-            {evaluation ? <ChainTable evaluation={evaluation} /> : null}
+            {evaluation ? (
+              <ChainTable evaluation={evaluation}>
+                <PinRows
+                  workspace={workspace}
+                  evaluation={evaluation}
+                  broken={shown.problems.some(({ at }) => at.startsWith('stage:'))}
+                />
+              </ChainTable>
+            ) : null}
             <TokenEditor
               workspace={workspace}
               shown={shown}

@@ -11,6 +11,9 @@ const presentOf = (workspace: Workspace) => asRun(workspace, { chain: workspace.
 
 const isPresent = (workspace: Workspace, pin: Pin) => sameChain(asRun(workspace, pin), presentOf(workspace))
 
+/** Whether the pinned chain is the present one. */
+export const isInUse = (workspace: Workspace, index: number) => isPresent(workspace, workspace.pins[index])
+
 /** The names under which the pins are shown, in their order. */
 export function namesOfPins(workspace: Workspace): string[] {
   return pinNames(

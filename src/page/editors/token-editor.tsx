@@ -7,6 +7,7 @@ import type { Workspace } from '../../state/workspace.ts'
 import { rowWords } from '../../words/index.ts'
 import { useView } from '../hooks.ts'
 import type { Shown } from '../use-evaluation.ts'
+import { PinEditor } from './pin-editor.tsx'
 import { ReadingEditor } from './reading-editor.tsx'
 import { ShownEditor } from './shown-editor.tsx'
 import {
@@ -95,6 +96,8 @@ export function TokenEditor({ workspace, shown, onOpenFile, onSave }: TokenEdito
       return <ScoreWindowEditor {...common} />
     case 'measure':
       return <MeasureEditor key={first} {...common} which={first === 'mean' ? 'mean' : 'peak'} />
+    case 'pin':
+      return <PinEditor key={open} workspace={workspace} index={Number(first)} />
     case 'onset':
       return <OnsetEditor {...common} />
     case 'limit': {
