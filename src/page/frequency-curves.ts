@@ -6,13 +6,15 @@ import { courseOf, valueAt } from './curve-course.ts'
 import type { CutoffMark } from './cutoff-marks.ts'
 import { hzText } from './frequency-words.ts'
 import { type GainAxis, type GainUnit, gainsIn, largest, noiseIn, spectrumIn } from './gain-axis.ts'
+import { drawnPins } from './pin-line.tsx'
 import type { FrequencyCourses, HalfPoint } from './label-wish.ts'
 
 /** Where a stage lets less through than this, it forms the whole chain's curve, which then carries its dashes. */
 const FORMING = 0.985
 
 /** All curves in the unit of the axis, sample by sample as `hz`. */
-export function gainCurves({ frequency, table }: Evaluation, unit: GainUnit, axis: GainAxis) {
+export function gainCurves(evaluation: Evaluation, unit: GainUnit, axis: GainAxis) {
+  const { frequency, table } = evaluation
   const most = largest(frequency.before)
   return {
     hz: frequency.hz,
@@ -28,6 +30,11 @@ export function gainCurves({ frequency, table }: Evaluation, unit: GainUnit, axi
         axis,
       ),
     })),
+    pins: drawnPins(evaluation).map(({ index, name, result }) => ({
+      index,
+      name,
+      drawn: gainsIn(unit, result.gain, axis),
+    })),
     before: spectrumIn(unit, frequency.before, most, axis),
     after: spectrumIn(unit, frequency.after, most, axis),
     noise: noiseIn(frequency.noise, axis),
@@ -41,6 +48,7 @@ export function gainPaths(curves: GainCurves, x: Scale, y: Scale) {
   return {
     chain: line(curves.chain),
     stages: curves.stages.map((stage) => ({ whole: line(stage.drawn), forming: line(stage.forming) })),
+    pins: curves.pins.map((pin) => line(pin.drawn)),
     before: line(curves.before),
     noise: line(curves.noise),
     taken: areaPath(
@@ -67,6 +75,7 @@ export function gainCourses(curves: GainCurves, axis: GainAxis, x: Scale, y: Sca
     bottom,
     chain: course(curves.chain),
     stages: curves.stages.map(({ name, inData, drawn }) => ({ name, inData, heights: course(drawn) })),
+    pins: curves.pins.map(({ name, drawn }) => ({ name, heights: course(drawn) })),
     before: course(curves.before),
     after: course(curves.after),
     noise: course(curves.noise),

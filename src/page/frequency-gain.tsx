@@ -11,6 +11,7 @@ import { gainCourses, gainCurves, gainPaths, halfPoints, placeCutoffs } from './
 import { frequencyLabels } from './frequency-labels.ts'
 import { axisTitle } from './frequency-words.ts'
 import type { GainAxis, GainUnit } from './gain-axis.ts'
+import { PinPath } from './pin-line.tsx'
 import { stageDash } from './stage-dash.ts'
 
 interface FrequencyGainProps {
@@ -61,6 +62,9 @@ export function FrequencyGain(props: FrequencyGainProps) {
       <Clipped frame={frame}>
         <PathLine d={paths.before} tone="before" />
         <PathLine d={paths.noise} tone="quiet" dash="dotted" weight="hair" />
+        {curves.pins.map(({ index }, i) => (
+          <PinPath key={index} d={paths.pins[i]} index={index} />
+        ))}
         {curves.stages.map((stage, i) => (
           <path
             key={stage.index}

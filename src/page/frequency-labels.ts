@@ -19,6 +19,7 @@ export function frequencyLabels(courses: FrequencyCourses): FigureLabel[] {
     ...points.filter(({ strong, stated }) => strong && !stated).map(pointWish),
     ...points.filter(({ strong }) => !strong).map(pointWish),
     inRow(chainWish(courses), row),
+    ...(courses.pins ?? []).map((_, which) => pinWish(courses, which)),
     ...spectrumWishes(courses),
   ]
   const last = [...points.filter(({ stated }) => stated).map(pointWish), noiseWish(courses), ...halfWishes(courses)]
@@ -50,6 +51,7 @@ function place(wishes: Wish[], courses: FrequencyCourses): { labels: FigureLabel
     courses: [
       { heights: courses.chain, weight: 4 },
       ...courses.stages.map(({ heights }) => ({ heights, weight: 2.6 })),
+      ...(courses.pins ?? []).map(({ heights }) => ({ heights, weight: 2.6 })),
       { heights: courses.before, weight: 1.6 },
       { heights: courses.noise, weight: 0.8 },
     ],
@@ -100,6 +102,30 @@ function stageWish({ stages, chain, left, top }: FrequencyCourses, which: number
     return near * 2 + edge * 1.2 + (side > 0 ? 0.5 : 0) + (heights[column] < top ? 9 : 0)
   })
   return wish(name, inData ? 'quiet' : 'ink', false, places, 14)
+}
+
+/** Where a pinned chain lets through most differently from the present one, as far from every other line as can be. */
+function pinWish({ pins = [], chain, stages, before, left, top, bottom }: FrequencyCourses, which: number): Wish {
+  const { name, heights } = pins[which]
+  const others = [chain, before, ...stages.map((stage) => stage.heights)]
+  for (const [i, pin] of pins.entries()) if (i !== which) others.push(pin.heights)
+  const size = { width: widthOf(name), height: HEIGHT }
+  const alone = (column: number) => {
+    let least = 14
+    for (const other of others) least = Math.min(least, Math.abs(other[column] - heights[column]))
+    return least / 14
+  }
+  const apart = (column: number) => Math.abs(chain[column] - heights[column]) / (bottom - top)
+  const along = placesAlong(heights, size, left, (column) => 6 - 3 * alone(column) - 3 * Math.min(1, apart(column)))
+  // A slope is steep on this axis: beside it, too, since above and below it the name would stand far off.
+  const beside: LabelPlace[] = []
+  for (let column = 4; column < heights.length; column += 4) {
+    const y = heights[column]
+    if (!(y > top + HEIGHT && y < bottom - HEIGHT / 2)) continue
+    const cost = 5.5 - 3 * alone(column) - 3 * Math.min(1, apart(column))
+    beside.push({ x: left + column - 7, y, anchor: 'end', cost }, { x: left + column + 7, y, anchor: 'start', cost })
+  }
+  return wish(name, 'quiet', false, [...along, ...beside], 20)
 }
 
 function noiseWish({ noise, left }: FrequencyCourses): Wish {

@@ -8,6 +8,7 @@ import { FrequencyGain } from './frequency-gain.tsx'
 import { FrequencyPhase } from './frequency-phase.tsx'
 import { delayDomain, delayPieces, phasePieces } from './frequency-pieces.ts'
 import { gainAxis, gainsIn } from './gain-axis.ts'
+import { drawnPins } from './pin-line.tsx'
 
 interface FrequencyPlotProps {
   evaluation: Evaluation
@@ -28,7 +29,10 @@ export function FrequencyPlot(props: FrequencyPlotProps) {
   const { frequency } = evaluation
   const { left, right, top, bottom } = frame
   const x = useMemo(() => logScale([fromHz, toHz], [left, right]), [fromHz, toHz, left, right])
-  const axis = useMemo(() => gainAxis(frequency, unit), [frequency, unit])
+  const axis = useMemo(() => {
+    const pinned = drawnPins(evaluation).map(({ result }) => result.gain)
+    return gainAxis(evaluation.frequency, unit, pinned)
+  }, [evaluation, unit])
   const pieces = useMemo(() => (shows === 'phase' ? phasePieces : delayPieces)(frequency), [frequency, shows])
   const y = useMemo(() => {
     const domain = { gain: axis.domain, phase: PHASE_DOMAIN, 'group delay': delayDomain(pieces.values) }[shows]

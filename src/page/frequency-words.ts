@@ -39,7 +39,8 @@ export function readingAt(frequency: FrequencyFigure, shows: View['frequencyShow
 }
 
 /** The figure in words, with its numbers. */
-export function frequencyInWords({ frequency, table }: Evaluation, shows: View['frequencyShows']): string {
+export function frequencyInWords(evaluation: Evaluation, shows: View['frequencyShows']): string {
+  const { frequency, table, pins } = evaluation
   const ends = `${hzText(frequency.hz[0])} to ${hzText(frequency.hz[frequency.hz.length - 1])}`
   if (shows !== 'gain') {
     const { values } = (shows === 'phase' ? phasePieces : delayPieces)(frequency)
@@ -64,6 +65,21 @@ export function frequencyInWords({ frequency, table }: Evaluation, shows: View['
     `The whole chain passes half the amplitude ${points(halfAmplitudeHz)} and half the power ${points(halfPowerHz)}`,
     `and at most ${fixed(100 * largest(frequency.gain), 0)} % of the amplitude.`,
     names.length > 0 ? `Stages: ${list(names)}.` : 'There is no stage.',
+    ...pins.flatMap((pin) =>
+      'reason' in pin ? [] : [`Pinned ${pin.name}: ${halvesOf(frequency.hz, pin.gain)}.`],
+    ),
     'Behind it the amplitude spectra of the waveform before and after, and of the noise, to their own scales.',
   ].join(' ')
+}
+
+/** Where a gain runs through a half, as read off its curve: "half the amplitude at 0.10 Hz and 30.0 Hz". */
+function halvesOf(hz: Float64Array, gain: Float64Array): string {
+  const found: number[] = []
+  for (let i = 1; i < hz.length; i++) {
+    const [a, b] = [gain[i - 1] - 0.5, gain[i] - 0.5]
+    if (a === b || a * b > 0 || b === 0) continue
+    found.push(hz[i - 1] * (hz[i] / hz[i - 1]) ** (a / (a - b)))
+  }
+  if (found.length === 0) return 'half the amplitude nowhere on the axis'
+  return found.length > 4 ? `half the amplitude at ${found.length} points` : `half the amplitude at ${list(found.map(hzText))}`
 }

@@ -22,8 +22,14 @@ export interface GainAxis {
   full: number
 }
 
-export function gainAxis(frequency: FrequencyFigure, unit: GainUnit): GainAxis {
-  const highest = Math.max(1, largest(frequency.gain), ...frequency.stages.map((stage) => largest(stage.gain)))
+/** @param pinned  gains of pinned chains, which are drawn as well. */
+export function gainAxis(
+  frequency: FrequencyFigure,
+  unit: GainUnit,
+  pinned: readonly Float64Array[] = [],
+): GainAxis {
+  const drawn = [frequency.gain, ...frequency.stages.map((stage) => stage.gain), ...pinned]
+  const highest = Math.max(1, ...drawn.map(largest))
   if (unit === 'percent') {
     // one row of labels has its place above the highest curve
     const ticks = highest > 1.6 ? [0, 50, 100, 100 * Math.floor(highest)] : [0, 50, 100 * Math.SQRT1_2, 100]

@@ -3,13 +3,14 @@ import { useMemo, useRef } from 'react'
 import { FigureFrame } from '../plot/index.ts'
 import type { Evaluation } from '../state/evaluation.ts'
 import { look, type View } from '../state/view.ts'
-import { brief, fixed } from '../words/number.ts'
+import { brief, fixed, list } from '../words/number.ts'
 import { FigureHead, Switch } from './figure-head.tsx'
 import './frequency-figure.css'
 import { useView } from './hooks.ts'
 import type { StepEnd } from './kernel-labels.ts'
 import { KernelPlot } from './kernel-plot.tsx'
 import { type KernelRange, type KernelWords, kernelRange, kernelWords, lagText } from './kernel-shape.ts'
+import { drawnPins } from './pin-line.tsx'
 import { SingleImpulsePlot } from './single-impulse-plot.tsx'
 
 interface KernelFigureProps {
@@ -32,6 +33,7 @@ export function KernelFigure({ evaluation, caption, height, width }: KernelFigur
   const { kernel } = evaluation
   const range = useMemo(() => kernelRange(evaluation), [evaluation])
   const words = useMemo(() => kernelWords(evaluation, range), [evaluation, range])
+  const pins = useMemo(() => drawnPins(evaluation), [evaluation])
   const impulse = shows === 'impulse response'
   const end = useMemo(() => (impulse ? null : endOfStep(evaluation, range)), [evaluation, range, impulse])
   return (
@@ -76,6 +78,7 @@ export function KernelFigure({ evaluation, caption, height, width }: KernelFigur
             ) : (
               <KernelPlot
                 kernel={kernel}
+                pins={pins}
                 shows={shows}
                 compressed={scale === 'compressed'}
                 range={range}
@@ -119,7 +122,7 @@ function endOfStep({ kernel, chain }: Evaluation, range: KernelRange): StepEnd |
 
 /** The figure in words, with its numbers. */
 function kernelInWords(
-  { kernel, chain }: Evaluation,
+  { kernel, chain, pins }: Evaluation,
   shows: View['kernelShows'],
   range: KernelRange,
   words: KernelWords | null,
@@ -130,7 +133,9 @@ function kernelInWords(
     return `${strong}: ${quiet}.`
   }
   const drawn = `Drawn from ${lagText(range.fromMs)} to ${lagText(range.toMs)} ms.`
-  const reach = `${words.reach}, ${words.more.join(', ')}.`
+  const pinned = drawnPins({ pins }).map((pin) => pin.result.name)
+  const beside = pinned.length > 0 ? ` Beside it the pinned ${list(pinned)}.` : ''
+  const reach = `${words.reach}, ${words.more.join(', ')}.${beside}`
   if (shows === 'step response')
     return `Response to a step from 0 to 1. ${drawn} ${end ? `${end.words}. ` : ''}${reach}`
   let [low, high] = [0, 0]

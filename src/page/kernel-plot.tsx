@@ -4,10 +4,12 @@ import { areaPath, linePath } from '../plot/path.ts'
 import { compressedScale, linearScale } from '../plot/scale.ts'
 import type { KernelFigure } from '../state/evaluation.ts'
 import { envelopeCourse, type KernelRange, type KernelWords, linearWidth, valueDomain } from './kernel-shape.ts'
+import { type DrawnPin, PinLine } from './pin-line.tsx'
 import { placeWords, type StepEnd } from './kernel-labels.ts'
 
 interface KernelPlotProps {
   kernel: KernelFigure
+  pins: readonly DrawnPin[]
   shows: 'impulse response' | 'step response'
   compressed: boolean
   range: KernelRange
@@ -17,18 +19,32 @@ interface KernelPlotProps {
 }
 
 /** The curve over lag, with its reach between brackets and what is outside it on the colour of the paper. */
-export function KernelPlot({ kernel, shows, compressed, range, words, end, frame }: KernelPlotProps) {
+export function KernelPlot({ kernel, pins, shows, compressed, range, words, end, frame }: KernelPlotProps) {
   const { left, right, top, bottom, plotWidth } = frame
   const values = shows === 'impulse response' ? kernel.impulse : kernel.step
+  const pinned = useMemo(
+    () =>
+      pins.map(({ index, name, result }) => ({
+        index,
+        name,
+        values: shows === 'impulse response' ? result.impulse : result.step,
+      })),
+    [pins, shows],
+  )
   const { fromMs, toMs } = range
   const x = useMemo(() => linearScale([fromMs, toMs], [left, right]), [fromMs, toMs, left, right])
   const y = useMemo(() => {
     const first = Math.floor(fromMs / kernel.stepMs) - kernel.fromIndex
     const end = Math.ceil(toMs / kernel.stepMs) - kernel.fromIndex + 1
     const width = compressed ? linearWidth(values) : null
-    const domain = valueDomain(values, first, end, width)
+    const domains = [values, ...pinned.map((pin) => pin.values)].map((drawn) => valueDomain(drawn, first, end, width))
+    const domain: [number, number] = [
+      Math.min(...domains.map(([low]) => low)),
+      Math.max(...domains.map(([, high]) => high)),
+    ]
     return width === null ? linearScale(domain, [bottom, top]) : compressedScale(domain, [bottom, top], width)
-  }, [values, kernel, compressed, fromMs, toMs, bottom, top])
+  }, [values, pinned, kernel, compressed, fromMs, toMs, bottom, top])
+  const xs = { start: kernel.fromIndex * kernel.stepMs, step: kernel.stepMs }
   const { line, area } = useMemo(() => {
     const xs = { start: kernel.fromIndex * kernel.stepMs, step: kernel.stepMs }
     // a causal kernel comes out of nothing
@@ -42,8 +58,12 @@ export function KernelPlot({ kernel, shows, compressed, range, words, end, frame
     const taken = ends.map((at) => ({ left: at - 3, right: at + 3, top, bottom }))
     const endX = Math.min(right, ends[1] ?? right)
     const endY = y.toPixel(end?.value ?? 0)
-    return placeWords({ words, end, endX, endY, limits: { left, right, top, bottom }, course, taken })
-  }, [range, kernel, values, words, end, x, y, left, right, top, bottom, plotWidth])
+    const others = pinned.map((pin) => ({
+      name: pin.name,
+      course: envelopeCourse(kernel, pin.values, x, y, left, plotWidth),
+    }))
+    return placeWords({ words, end, endX, endY, limits: { left, right, top, bottom }, course, others, taken })
+  }, [range, kernel, values, pinned, words, end, x, y, left, right, top, bottom, plotWidth])
   const outside = range.reach === null ? [] : outsideOf(range.reach, x.toPixel, left, right)
   return (
     <>
@@ -68,6 +88,9 @@ export function KernelPlot({ kernel, shows, compressed, range, words, end, frame
       {range.reach === null ? null : <Brackets reach={range.reach} toPixel={x.toPixel} frame={frame} />}
       <Clipped frame={frame}>
         <PathArea d={area} tone="after" opacity={0.12} />
+        {pinned.map((pin) => (
+          <PinLine key={pin.index} index={pin.index} xs={xs} ys={pin.values} x={x} y={y} />
+        ))}
         <PathLine d={line} tone="after" weight="thin" />
       </Clipped>
       {end ? <Dot x={right} y={y.toPixel(end.value)} tone="after" /> : null}
@@ -83,6 +106,11 @@ export function KernelPlot({ kernel, shows, compressed, range, words, end, frame
           {end.words}
         </DirectLabel>
       ) : null}
+      {placed.names.map(({ text, x: px, y: py, anchor, crossed }) => (
+        <DirectLabel key={text} x={px} y={py} tone="quiet" anchor={anchor} ground={crossed ? 'sheet' : 'none'}>
+          {text}
+        </DirectLabel>
+      ))}
       {placed.lines.map(({ text, strong, x: px, y: py, anchor, crossed }) => (
         <DirectLabel
           key={text}

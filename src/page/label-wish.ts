@@ -21,6 +21,8 @@ export interface FrequencyCourses {
   /** Heights by pixel column from `left` on. */
   chain: Float64Array
   stages: { name: string; inData: boolean; heights: Float64Array }[]
+  /** Whole gains of pinned chains. */
+  pins?: { name: string; heights: Float64Array }[]
   before: Float64Array
   after: Float64Array
   noise: Float64Array

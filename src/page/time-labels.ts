@@ -125,6 +125,8 @@ export interface CursorReading {
   text: string
   /** Height of the curve there, px. */
   y: number
+  /** Heights of a curve that may be named anywhere along it where there is no room at the cursor. */
+  along?: ArrayLike<number>
 }
 
 /**
@@ -146,6 +148,16 @@ export function cursorLabels(
     const place = order.indexOf(reading)
     return place === 0 ? -1 : place === order.length - 1 ? 1 : 0
   }
+  const elsewhere = ({ name, text, along }: CursorReading): LabelPlace[] => {
+    if (!along) return []
+    const size = labelSize({ id: '', tone: 'quiet', rows: [{ strong: name, plain: text }] })
+    const rivals = courses.filter((course) => course.heights !== along)
+    return placesAlong(along, size, frame.left, (column) => {
+      // beside its own curve more than beside any other
+      const apart = Math.min(14, ...rivals.map((rival) => Math.abs(rival.heights[column] - along[column])))
+      return 24 + 2 * (14 - apart) + Math.abs(frame.left + column - cursorPx) * 0.03
+    })
+  }
   const rows = [0, 1, 2, 3, 4].flatMap((row): LabelPlace[] => {
     const y = frame.top + 10 + row * ROW_PX
     return [
@@ -159,7 +171,7 @@ export function cursorLabels(
       id: reading.id,
       tone: reading.tone,
       rows: [{ strong: reading.name, plain: reading.text }],
-      places: placesBeside(cursorPx, reading.y, lean(reading)),
+      places: [...placesBeside(cursorPx, reading.y, lean(reading)), ...elsewhere(reading)],
     })),
   ]
   const dots = readings.map(({ y }) => around(cursorPx, y, 5))

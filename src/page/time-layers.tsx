@@ -15,6 +15,7 @@ import {
   ZeroLine,
 } from '../plot/index.ts'
 import type { Evaluation } from '../state/evaluation.ts'
+import { type DrawnPin, PinLine } from './pin-line.tsx'
 import { type TimeAxis, timeTicks } from './time-axis.ts'
 import type { Windows } from './time-bands.tsx'
 
@@ -55,9 +56,15 @@ export const Grounds = memo(function Grounds({ frame, x, y, axis, windows, unsee
   )
 })
 
-type CurvesProps = PlaneProps & { axis: TimeAxis; evaluation: Evaluation; takenOut: boolean }
+type CurvesProps = PlaneProps & {
+  axis: TimeAxis
+  evaluation: Evaluation
+  pins: readonly DrawnPin[]
+  takenOut: boolean
+}
 
-export const TimeCurves = memo(function TimeCurves({ frame, x, y, axis, evaluation, takenOut }: CurvesProps) {
+export const TimeCurves = memo(function TimeCurves(props: CurvesProps) {
+  const { frame, x, y, axis, evaluation, pins, takenOut } = props
   const { curves, chosen } = evaluation
   const main = curves[chosen]
   const on = { xs: { start: axis.firstMs, step: axis.stepMs }, x, y }
@@ -74,6 +81,9 @@ export const TimeCurves = memo(function TimeCurves({ frame, x, y, axis, evaluati
       )}
       {takenOut ? <Line {...on} ys={main.takenOut} tone="taken-out" /> : null}
       <Line {...on} ys={main.before} tone="before" />
+      {pins.map(({ index, result }) => (
+        <PinLine key={index} index={index} {...on} ys={result.after} />
+      ))}
       <Line {...on} ys={main.after} tone="after" />
     </Clipped>
   )

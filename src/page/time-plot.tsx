@@ -5,6 +5,7 @@ import { Cursor, type Frame, linearScale, type Scale } from '../plot/index.ts'
 import type { Evaluation } from '../state/evaluation.ts'
 import { windowWords } from '../words/index.ts'
 import { LabelTexts, Unspoken } from './label-text.tsx'
+import { drawnPins } from './pin-line.tsx'
 import { courseOf } from './placed-labels.ts'
 import { scoreMark, scoreText } from './score-mark.ts'
 import { ScoreMarkLine } from './score-mark-line.tsx'
@@ -34,12 +35,14 @@ export function TimePlot(props: TimePlotProps) {
   const frame = useFrame(props.frame)
   const { curves, chosen } = evaluation
   const main = curves[chosen]
+  const pins = useMemo(() => drawnPins(evaluation), [evaluation])
   const x = useMemo(() => linearScale([axis.fromMs, axis.toMs], [frame.left, frame.right]), [axis, frame])
   const [bottomUv, topUv] = useMemo(() => {
     const drawn = curves.flatMap(({ before, after }) => [before, after])
     if (takenOut) drawn.push(main.takenOut)
+    drawn.push(...pins.map(({ result }) => result.after))
     return amplitudeDomain(drawn, polarity)
-  }, [curves, main, takenOut, polarity])
+  }, [curves, main, pins, takenOut, polarity])
   // by its numbers, so that the curves' paths are kept while only the score's window is moved
   const y = useMemo(
     () => linearScale([bottomUv, topUv], [frame.bottom, frame.top]),
@@ -51,8 +54,9 @@ export function TimePlot(props: TimePlotProps) {
       i === chosen ? [] : [{ name: entry.name, tone: conditionTone(i), ...course(entry.after) }],
     )
     const own = [main.before, main.after, ...(takenOut ? [main.takenOut] : [])].map(course)
-    return { others, all: [...own, ...others] }
-  }, [curves, chosen, main, takenOut, axis, frame, x, y])
+    const pinned = pins.map(({ result }) => course(result.after))
+    return { others, pinned, all: [...own, ...others, ...pinned] }
+  }, [curves, chosen, main, pins, takenOut, axis, frame, x, y])
 
   const unseen = useMemo(
     () =>
@@ -101,6 +105,10 @@ export function TimePlot(props: TimePlotProps) {
     : 'taken out'
   if (takenOut)
     readings.push({ id: 'taken out', tone: 'taken-out', name: difference, ...readAt(main.takenOut, cursor, y) })
+  for (const [i, { index, name, result }] of pins.entries()) {
+    const { heights } = courses.pinned[i]
+    readings.push({ id: `pin ${index}`, tone: 'quiet', name, ...readAt(result.after, cursor, y), along: heights })
+  }
   const inTheWay = [...still.labels.map((label) => label.box), ...handles(still.windows, frame)]
   const moving = cursorLabels(frame, x.toPixel(cursorMs), msText(cursorMs), readings, courses.all, inTheWay)
 
@@ -108,7 +116,7 @@ export function TimePlot(props: TimePlotProps) {
   return (
     <>
       <Grounds {...{ frame, x, y, axis, windows, unseen }} />
-      <TimeCurves {...{ frame, x, y, axis, evaluation, takenOut }} />
+      <TimeCurves {...{ frame, x, y, axis, evaluation, pins, takenOut }} />
       <TimeAxes {...{ frame, x, y }} />
       {mark && still.extent ? <ScoreMarkLine kind={mark.kind} {...still.extent} labels={still.labels} /> : null}
       <Cursor

@@ -9,5 +9,7 @@ export function readingWords(evaluation: Evaluation, cursor: number, takenOut: b
   if (takenOut) words.push(`${name} ${uvText(chosen.takenOut[cursor])}`)
   for (const [i, { name, before, after }] of evaluation.curves.entries())
     if (i !== evaluation.chosen) words.push(`${name} before ${uvText(before[cursor])}, after ${uvText(after[cursor])}`)
+  for (const pin of evaluation.pins)
+    if (!('reason' in pin)) words.push(`pinned ${pin.name} ${uvText(pin.after[cursor])}`)
   return words.join(', ')
 }

@@ -19,9 +19,11 @@ import {
   ticksFor,
   ZeroLine,
 } from '../plot/index.ts'
+import { type CurveCourse, placesAlong } from '../plot/place-labels.ts'
 import type { WindowFigure } from '../state/evaluation.ts'
 import type { Workspace } from '../state/workspace.ts'
 import { LabelTexts, Unspoken } from './label-text.tsx'
+import { type DrawnPin, PinLine } from './pin-line.tsx'
 import {
   around,
   courseOf,
@@ -45,7 +47,10 @@ interface WindowPlotProps {
   windows: Windows
   cursor: number
   scale: 'compressed' | 'linear'
+  pins?: readonly DrawnPin[]
 }
+
+const NO_PINS: readonly DrawnPin[] = []
 
 /** Part of the largest weight up to which the compressed scale is about linear. */
 const LINEAR_PART = 0.03
@@ -58,10 +63,11 @@ export function weightScale(
   filtered: Float64Array,
   kind: 'compressed' | 'linear',
   frame: Pick<Frame, 'top' | 'bottom'>,
+  pinned: readonly Float64Array[] = [],
 ): Scale {
   let low = 0
   let high = 0
-  for (const values of [unfiltered, filtered])
+  for (const values of [unfiltered, filtered, ...pinned])
     for (const value of values) {
       if (value < low) low = value
       if (value > high) high = value
@@ -77,7 +83,7 @@ function largest(values: Float64Array): number {
   return values.reduce((most, value) => Math.max(most, Math.abs(value)), 0)
 }
 
-export function WindowPlot({ window, workspace, axis, windows, cursor, scale, ...props }: WindowPlotProps) {
+export function WindowPlot({ window, workspace, axis, windows, cursor, scale, pins = NO_PINS, ...props }: WindowPlotProps) {
   const frame = useFrame(props.frame)
   const { score } = workspace
   const x = useMemo(() => linearScale([axis.fromMs, axis.toMs], [frame.left, frame.right]), [axis, frame])
@@ -86,14 +92,23 @@ export function WindowPlot({ window, workspace, axis, windows, cursor, scale, ..
       startMs: axis.firstMs + window.fromIndex * axis.stepMs,
       unfiltered: perHundredMs(window.unfiltered, axis.stepMs),
       filtered: perHundredMs(window.filtered, axis.stepMs),
+      pinned: pins.flatMap(({ index, name, result }) =>
+        result.window ? [{ index, name, weights: perHundredMs(result.window, axis.stepMs) }] : [],
+      ),
     }),
-    [window, axis],
+    [window, pins, axis],
   )
-  const { startMs, unfiltered, filtered } = curves
-  const y = useMemo(() => weightScale(unfiltered, filtered, scale, frame), [unfiltered, filtered, scale, frame])
+  const { startMs, unfiltered, filtered, pinned } = curves
+  const y = useMemo(() => {
+    const weights = pinned.map((pin) => pin.weights)
+    return weightScale(unfiltered, filtered, scale, frame, weights)
+  }, [unfiltered, filtered, pinned, scale, frame])
   const courses = useMemo(
-    () => [unfiltered, filtered].map((values) => courseOf(values, startMs, axis.stepMs, frame, x, y)),
-    [unfiltered, filtered, startMs, axis, frame, x, y],
+    () =>
+      [unfiltered, filtered, ...pinned.map((pin) => pin.weights)].map((values) =>
+        courseOf(values, startMs, axis.stepMs, frame, x, y),
+      ),
+    [unfiltered, filtered, pinned, startMs, axis, frame, x, y],
   )
   const still = useMemo(() => {
     const right = x.toPixel(score.toMs)
@@ -105,8 +120,11 @@ export function WindowPlot({ window, workspace, axis, windows, cursor, scale, ..
     const wordings = [unfilteredWords(score), 'unfiltered'].map(
       (strong): WantedText => ({ id: 'unfiltered', tone: 'before', rows: [{ strong }], places, maxCost: 30 }),
     )
-    return firstThatFits(wordings, (wanted) => drawnLabels([wanted], frame, courses, []))
-  }, [score, x, frame, courses])
+    const unfilteredLabel = firstThatFits(wordings, (wanted) => drawnLabels([wanted], frame, courses, []))
+    const wanted = pinned.map(({ index, name }, i) => pinWish(index, name, courses[2 + i], courses, frame))
+    const inTheWay = unfilteredLabel.map((label) => label.box)
+    return [...unfilteredLabel, ...drawnLabels(wanted, frame, courses, inTheWay)]
+  }, [score, x, frame, pinned, courses])
 
   const cursorMs = axis.firstMs + cursor * axis.stepMs
   const weight = filtered[cursor - window.fromIndex]
@@ -134,18 +152,38 @@ export function WindowPlot({ window, workspace, axis, windows, cursor, scale, ..
   )
 }
 
+/** A pinned window is named along its curve, where it runs apart from the others. */
+function pinWish(
+  index: number,
+  name: string,
+  own: CurveCourse,
+  courses: readonly CurveCourse[],
+  frame: Frame,
+): WantedText {
+  const text = { id: `pin ${index}`, tone: 'quiet' as const, rows: [{ plain: name }] }
+  const rivals = courses.filter((course) => course !== own)
+  const costAt = (column: number) =>
+    2 * (10 - Math.min(10, ...rivals.map(({ heights }) => Math.abs(heights[column] - own.heights[column]))))
+  return { ...text, places: placesAlong(own.heights, labelSize(text), frame.left, costAt), maxCost: 40 }
+}
+
 interface WindowCurvesProps {
   frame: Frame
   x: Scale
   y: Scale
   axis: TimeAxis
   windows: Windows
-  curves: { startMs: number; unfiltered: Float64Array; filtered: Float64Array }
+  curves: {
+    startMs: number
+    unfiltered: Float64Array
+    filtered: Float64Array
+    pinned: { index: number; name: string; weights: Float64Array }[]
+  }
 }
 
 const WindowCurves = memo(function WindowCurves({ frame, x, y, axis, windows, curves }: WindowCurvesProps) {
   const { score, baseline } = windows
-  const { startMs, unfiltered, filtered } = curves
+  const { startMs, unfiltered, filtered, pinned } = curves
   const box = useMemo(() => {
     const { edges, heights } = boxesOf(unfiltered)
     return stepPath(
@@ -174,6 +212,9 @@ const WindowCurves = memo(function WindowCurves({ frame, x, y, axis, windows, cu
         <PathArea d={box} tone="quiet" opacity={0.1} />
         <Area {...on} ys={filtered} tone="after" />
         <PathLine d={box} tone="before" weight="hair" />
+        {pinned.map(({ index, weights }) => (
+          <PinLine key={index} index={index} {...on} ys={weights} />
+        ))}
         <Line {...on} ys={filtered} tone="after" className="window-filtered" />
       </Clipped>
       <Axis side="left" scale={y} at={frame.left} ticks={ticks} />

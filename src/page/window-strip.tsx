@@ -1,10 +1,11 @@
 /** The effective window: the weight of the score, after the chain and the baseline, on every moment of the unfiltered waveform. */
-import { useRef } from 'react'
+import { useMemo, useRef } from 'react'
 import { FigureFrame } from '../plot/index.ts'
 import type { WindowFigure } from '../state/evaluation.ts'
 import { look } from '../state/view.ts'
 import { FigureHead, Switch } from './figure-head.tsx'
 import { useView } from './hooks.ts'
+import { drawnPins } from './pin-line.tsx'
 import { msText } from './time-axis.ts'
 import { cursorAt, MARGIN, type SharedAxis } from './shared-axis.ts'
 import { WindowPlot } from './window-plot.tsx'
@@ -32,9 +33,16 @@ function DrawnWindow(props: SharedAxis & { window: WindowFigure }) {
   const svg = useRef<SVGSVGElement>(null)
   const scale = useView((view) => view.windowScale)
   const { score } = workspace
+  const pins = useMemo(() => drawnPins(evaluation), [evaluation])
+  const at = cursor - window.fromIndex
+  const pinned = pins.flatMap(({ name, result }) => {
+    if (!result.window) return []
+    const [pinnedWeight] = perHundredMs(result.window.subarray(at, at + 1), axis.stepMs)
+    return [`; pinned ${name} ${weightText(pinnedWeight, score)}`]
+  })
   const cursorMs = axis.firstMs + cursor * axis.stepMs
   const [weight] = perHundredMs(
-    window.filtered.subarray(cursor - window.fromIndex, cursor - window.fromIndex + 1),
+    window.filtered.subarray(at, at + 1),
     axis.stepMs,
   )
   const unit = score.kind === 'area' ? 'weight in s per 100 ms' : 'weight per 100 ms'
@@ -66,13 +74,13 @@ function DrawnWindow(props: SharedAxis & { window: WindowFigure }) {
       <div className="time-hanging">
         <FigureFrame
           title="Effective window"
-          description={`${unit}${of}. After the chain ${weightText(weight, score)} at ${msText(cursorMs)}; ${outside}.`}
+          description={`${unit}${of}. After the chain ${weightText(weight, score)} at ${msText(cursorMs)}${pinned.join('')}; ${outside}.`}
           height={HEIGHT}
           margin={{ ...MARGIN, top: 2, bottom: 2 }}
           svgRef={svg}
           onHover={(point, frame) => (point ? onCursor(cursorAt(point, frame, axis)) : undefined)}
         >
-          {(frame) => <WindowPlot {...{ frame, window, workspace, axis, windows, cursor, scale }} />}
+          {(frame) => <WindowPlot {...{ frame, window, workspace, axis, windows, cursor, scale, pins }} />}
         </FigureFrame>
       </div>
     </div>
