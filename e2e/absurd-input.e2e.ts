@@ -3,7 +3,12 @@ import { expect, test } from './fixtures.ts'
 import type { Workbench } from './page-models/workbench.ts'
 
 /** The token is marked, the words say what is wrong, and the last good figures stay, dimmed. */
-async function expectProblem(workbench: Workbench, token: string, words: string | RegExp, last: Workspace): Promise<void> {
+async function expectProblem(
+  workbench: Workbench,
+  token: string,
+  words: string | RegExp,
+  last: Workspace,
+): Promise<void> {
   await expect(workbench.problems().filter({ hasText: words }).first()).toBeVisible()
   await expect(workbench.token(token)).toHaveAttribute('aria-invalid', 'true')
   await expect(workbench.token(token)).toHaveAccessibleDescription(words)
@@ -20,7 +25,9 @@ async function expectMended(workbench: Workbench, now: Workspace): Promise<void>
   await workbench.expectReadout(readoutOf(now))
 }
 
-test('a cutoff above half the sampling rate is refused in words at its token, until it is mended', async ({ workbench }) => {
+test('a cutoff above half the sampling rate is refused in words at its token, until it is mended', async ({
+  workbench,
+}) => {
   await workbench.edit('stage 2, cutoff')
   await workbench.field('cutoff').fill('300')
   await expectProblem(workbench, 'stage 2, cutoff', /cutoff must lie between 0 and 250 .*was 300/, firstSight())
@@ -51,7 +58,12 @@ test('an order of 0, 13 or 2.5 is refused', async ({ workbench }) => {
   await workbench.edit('stage 2, order')
   for (const absurd of ['0', '13', '2.5']) {
     await workbench.field('order of one pass').fill(absurd)
-    await expectProblem(workbench, 'stage 2, order', new RegExp(`order must be .*was ${absurd.replace('.', '\\.')}`), firstSight())
+    await expectProblem(
+      workbench,
+      'stage 2, order',
+      new RegExp(`order must be .*was ${absurd.replace('.', '\\.')}`),
+      firstSight(),
+    )
   }
   await workbench.button('Undo').click()
   await expectMended(workbench, firstSight())
@@ -99,7 +111,12 @@ test('a score window and a baseline outside the epoch, and a window that ends be
 test('no trials and a sampling rate of 0 are refused', async ({ workbench }) => {
   await workbench.edit('number of trials')
   await workbench.field('trials').fill('0')
-  await expectProblem(workbench, 'number of trials', 'The number of trials must be a whole number from 1 to 1000000, was 0.', firstSight())
+  await expectProblem(
+    workbench,
+    'number of trials',
+    'The number of trials must be a whole number from 1 to 1000000, was 0.',
+    firstSight(),
+  )
   await workbench.field('trials').fill('40')
   await expectMended(workbench, firstSight())
   await workbench.edit('sampling rate')

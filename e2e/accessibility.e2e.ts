@@ -2,7 +2,10 @@ import { readFileSync } from 'node:fs'
 import { expect, expectAccessible, test } from './fixtures.ts'
 import { textFile } from './page-models/workbench.ts'
 
-const table = textFile('two-conditions.csv', readFileSync(new URL('./tables/two-conditions.csv', import.meta.url), 'utf8'))
+const table = textFile(
+  'two-conditions.csv',
+  readFileSync(new URL('./tables/two-conditions.csv', import.meta.url), 'utf8'),
+)
 
 // Reading the whole page takes seconds, twice a journey.
 test.describe.configure({ timeout: 120_000 })

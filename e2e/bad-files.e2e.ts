@@ -22,27 +22,48 @@ const BAD: { what: string; file: GivenFile; says: RegExp }[] = [
   },
   {
     what: 'text in a number',
-    file: textFile('text.csv', lines(40, (i) => String(i * 4), (i) => (i === 20 ? 'n/k' : sine(i)))),
+    file: textFile(
+      'text.csv',
+      lines(
+        40,
+        (i) => String(i * 4),
+        (i) => (i === 20 ? 'n/k' : sine(i)),
+      ),
+    ),
     says: /^text\.csv was not opened \(line 22, column “Cz”\): .*n\/k/,
   },
   {
     what: 'uneven sampling',
-    file: textFile('uneven.csv', lines(40, (i) => String(i * 4 + (i % 3 === 1 ? 1.5 : 0)), sine)),
+    file: textFile(
+      'uneven.csv',
+      lines(40, (i) => String(i * 4 + (i % 3 === 1 ? 1.5 : 0)), sine),
+    ),
     says: /^uneven\.csv was not opened.*(even|step)/i,
   },
   {
     what: 'a gap',
-    file: textFile('gap.csv', lines(40, (i) => String(i < 20 ? i * 4 : i * 4 + 40), sine)),
+    file: textFile(
+      'gap.csv',
+      lines(40, (i) => String(i < 20 ? i * 4 : i * 4 + 40), sine),
+    ),
     says: /^gap\.csv was not opened \(line 22/,
   },
   {
     what: 'ten samples',
-    file: textFile('short.csv', lines(10, (i) => String(i * 4), sine)),
+    file: textFile(
+      'short.csv',
+      lines(10, (i) => String(i * 4), sine),
+    ),
     says: /^short\.csv was not opened.*16/,
   },
   {
     what: 'two columns of one name',
-    file: textFile('twice.csv', lines(40, (i) => String(i * 4), sine).replace('time_ms,Cz', 'time_ms,Cz,Cz').replaceAll(/^(\d+),(.*)$/gm, '$1,$2,$2')),
+    file: textFile(
+      'twice.csv',
+      lines(40, (i) => String(i * 4), sine)
+        .replace('time_ms,Cz', 'time_ms,Cz,Cz')
+        .replaceAll(/^(\d+),(.*)$/gm, '$1,$2,$2'),
+    ),
     says: /^twice\.csv was not opened.*Cz/,
   },
   { what: 'an empty file', file: textFile('empty.csv', ''), says: /^empty\.csv was not opened/ },

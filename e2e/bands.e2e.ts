@@ -42,7 +42,9 @@ test('the score window is dragged, sentence and readout follow it, and one undo 
   await workbench.expectReadout(readoutOf(withScore(fromMs, toMs)))
 })
 
-test('during the drag sentence and readout already follow, and Escape puts back what was there', async ({ workbench }) => {
+test('during the drag sentence and readout already follow, and Escape puts back what was there', async ({
+  workbench,
+}) => {
   await workbench.edit('score window')
   await workbench.startDrag(workbench.slider('score window, end'), 90)
   await expect(workbench.token('score window')).not.toHaveText('80 to 140 ms')
@@ -61,7 +63,9 @@ test('during the drag sentence and readout already follow, and Escape puts back 
   await workbench.closeEditor()
 })
 
-test('the keyboard moves a window by a sample, with shift by ten, and to the ends of the epoch', async ({ workbench }) => {
+test('the keyboard moves a window by a sample, with shift by ten, and to the ends of the epoch', async ({
+  workbench,
+}) => {
   const whole = workbench.slider('score window, whole')
   await whole.press('ArrowRight')
   await expect(workbench.token('score window')).toHaveText('82 to 142 ms')

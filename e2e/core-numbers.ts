@@ -19,7 +19,7 @@ export function printed(value: number, decimals: number): string {
   return Number(text) === 0 ? text.replace('-', '') : text.replace('-', '\u2212')
 }
 
-const DECIMALS = { 'µV': 2, ms: 1, 'µV·s': 3 } as const
+const DECIMALS = { µV: 2, ms: 1, µV·s: 3 } as const
 
 /** A change carries its sign. */
 export function printedChange(value: number, decimals: number): string {
@@ -42,7 +42,8 @@ export function readoutOf(workspace: Workspace): ReadoutLine[] {
   const { rows, precision } = evaluated(workspace)
   const lines = rows.map((row): ReadoutLine => {
     const { name, where } = rowWords(row)
-    const cell = (value: number | string) => (typeof value === 'string' ? value : printed(value, DECIMALS[row.unit]) + row.unit)
+    const cell = (value: number | string) =>
+      typeof value === 'string' ? value : printed(value, DECIMALS[row.unit]) + row.unit
     return {
       name: `${name} ${where}`.trim(),
       before: cell(row.before),
@@ -53,7 +54,12 @@ export function readoutOf(workspace: Workspace): ReadoutLine[] {
   const noise = `noise of the score, ${workspace.trials} trials`
   if (!precision)
     // a latency: no weighted sum, so no exact figure
-    lines.push({ name: noise, before: 'a latency’s noise needs simulation; there is no exact figure', after: '', change: '' })
+    lines.push({
+      name: noise,
+      before: 'a latency’s noise needs simulation; there is no exact figure',
+      after: '',
+      change: '',
+    })
   else {
     const decimals = DECIMALS[precision.unit]
     lines.push({

@@ -5,9 +5,7 @@ import type { Workbench } from './page-models/workbench.ts'
 /** The first sight with another cutoff of its high-pass. */
 function withHighPass(hz: number): Workspace {
   const workspace = firstSight()
-  const chain = workspace.chain.map((spec) =>
-    spec.design === 'butterworth' ? { ...spec, cutoffsHz: [hz] } : spec,
-  )
+  const chain = workspace.chain.map((spec) => (spec.design === 'butterworth' ? { ...spec, cutoffsHz: [hz] } : spec))
   return { ...workspace, chain }
 }
 
@@ -76,11 +74,15 @@ test('gain, phase and group delay, and per cent and decibel, say the same points
   await cursor.press('Home')
   await expect(workbench.slider('high-pass, half-amplitude cutoff')).toHaveAttribute('aria-valuetext', '1.00 Hz')
   const inPercent = await workbench.descriptionOf('Frequency: gain of each stage and of the whole chain')
-  expect(inPercent).toContain('The whole chain passes half the amplitude at 1.00 Hz and 30.0 Hz and half the power at 1.25 Hz and 29.1 Hz')
+  expect(inPercent).toContain(
+    'The whole chain passes half the amplitude at 1.00 Hz and 30.0 Hz and half the power at 1.25 Hz and 29.1 Hz',
+  )
   await workbench.button('gain in: per cent of amplitude; switch to dB').click()
   expect(await workbench.descriptionOf('Frequency: gain of each stage and of the whole chain')).toBe(inPercent)
   await workbench.button('Frequency figure shows: gain; switch to phase').click()
   expect(await workbench.descriptionOf('Frequency: phase')).toContain('Phase in degrees of the whole chain')
   await workbench.button('Frequency figure shows: phase; switch to group delay').click()
-  expect(await workbench.descriptionOf('Frequency: group delay')).toContain('Group delay in milliseconds of the whole chain')
+  expect(await workbench.descriptionOf('Frequency: group delay')).toContain(
+    'Group delay in milliseconds of the whole chain',
+  )
 })

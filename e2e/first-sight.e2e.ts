@@ -32,7 +32,9 @@ test('first sight shows the false early deflection with the numbers of the core'
 })
 
 for (const scenario of SCENARIOS)
-  test(`the scenario “${scenario.title}” opens without a problem and with the numbers of the core`, async ({ workbench }) => {
+  test(`the scenario “${scenario.title}” opens without a problem and with the numbers of the core`, async ({
+    workbench,
+  }) => {
     await workbench.edit('scenario or file in use')
     await workbench.editor().getByRole('button', { name: scenario.title, exact: true }).click()
     await expect(workbench.token('scenario or file in use')).toHaveText(scenario.title)

@@ -3,7 +3,10 @@ import { evaluated, firstSight, readoutOf, type Workspace } from './core-numbers
 import { expect, test } from './fixtures.ts'
 import { textFile, Workbench } from './page-models/workbench.ts'
 
-const table = textFile('two-conditions.csv', readFileSync(new URL('./tables/two-conditions.csv', import.meta.url), 'utf8'))
+const table = textFile(
+  'two-conditions.csv',
+  readFileSync(new URL('./tables/two-conditions.csv', import.meta.url), 'utf8'),
+)
 
 /** The first sight with three things changed by hand. */
 async function work(workbench: Workbench): Promise<Workspace> {
@@ -24,7 +27,9 @@ async function work(workbench: Workbench): Promise<Workspace> {
 test('a workspace saved to a file and opened again gives the same page', async ({ workbench }) => {
   const now = await work(workbench)
   const sentence = await workbench.sentenceText()
-  const { name, bytes } = await workbench.saved(() => workbench.button('Save').click())
+  await workbench.button('Save').click()
+  await expect(workbench.field('name')).toHaveValue('Late positivity to rare targets')
+  const { name, bytes } = await workbench.saved(() => workbench.button('save as a file').click())
   expect(name).toBe('Late-positivity-to-rare-targets.sidelobe.json')
   expect(JSON.parse(bytes.toString('utf8'))).toEqual(JSON.parse(JSON.stringify(now)))
 
@@ -36,6 +41,59 @@ test('a workspace saved to a file and opened again gives the same page', async (
   // Opening is one step that can be taken back.
   await workbench.button('Undo').click()
   await workbench.expectReadout(readoutOf(firstSight()))
+})
+
+test('a workspace saved with its table inside opens in a browser that never saw the table', async ({
+  workbench,
+  browser,
+  baseURL,
+}) => {
+  await workbench.openFile(table)
+  await expect(workbench.editor()).toContainText('2 channels, 2 conditions')
+  await workbench.button('Save').click()
+  await workbench.choose('data of the table', 'with the table inside')
+  await workbench.field('name').fill('faces and houses')
+  const { name, bytes } = await workbench.saved(() => workbench.field('name').press('Enter'))
+  expect(name).toBe('faces-and-houses.sidelobe.json')
+  await workbench.closeEditor()
+  const sentence = await workbench.sentenceText()
+  const readout = await workbench.readout()
+
+  const elsewhere = await browser.newContext({ baseURL })
+  try {
+    const other = new Workbench(await elsewhere.newPage())
+    await other.open()
+    await other.openFile({ name, mimeType: 'application/json', buffer: bytes })
+    await other.expectReadout(readout)
+    expect(await other.sentenceText()).toBe(sentence)
+  } finally {
+    await elsewhere.close()
+  }
+})
+
+test('two tabs on one workspace do not overwrite each other: the later one asks', async ({ workbench, context }) => {
+  await workbench.edit('number of trials')
+  await workbench.field('trials').fill('41')
+  const other = new Workbench(await context.newPage())
+  // what this tab said is kept within half a second
+  await expect(async () => {
+    await other.open()
+    await expect(other.token('number of trials')).toHaveText('41 trials', { timeout: 500 })
+  }).toPass()
+  await other.edit('number of trials')
+  await other.field('trials').fill('99')
+  const third = new Workbench(await context.newPage())
+  await expect(async () => {
+    await third.open()
+    await expect(third.token('number of trials')).toHaveText('99 trials', { timeout: 500 })
+  }).toPass()
+
+  await workbench.field('trials').fill('42')
+  await expect(workbench.top().getByRole('alert')).toContainText('changed in another tab')
+  await expect(workbench.token('number of trials')).toHaveText('42 trials')
+  await workbench.button('take the other tab’s work').click()
+  await expect(workbench.token('number of trials')).toHaveText('99 trials')
+  await expect(workbench.top().getByRole('alert')).toHaveCount(0)
 })
 
 test('a copied link opened elsewhere gives the same page', async ({ workbench, context, browser, baseURL }) => {
@@ -148,8 +206,12 @@ test('work goes on where a second waveform is opened: the chain stays for the ne
   await workbench.editor().getByRole('button', { name: 'add Butterworth low-pass' }).click()
   await workbench.field('cutoff').fill('20')
   await workbench.closeEditor()
+  const { name } = await workbench.saved(() => workbench.page.keyboard.press('Control+S'))
+  expect(name).toBe('two-conditions-csv.sidelobe.json')
   const after = (await workbench.readout()).map((line) => line.after)
-  await workbench.openFile({ ...table, name: 'second.csv' })
+  const chooser = workbench.page.waitForEvent('filechooser')
+  await workbench.page.keyboard.press('Control+O')
+  await (await chooser).setFiles({ ...table, name: 'second.csv' })
   await expect(workbench.token('scenario or file in use')).toHaveText('second.csv')
   expect(await workbench.sentenceText()).toContain('half-amplitude 20 Hz after both passes')
   expect((await workbench.readout()).map((line) => line.after)).toEqual(after)

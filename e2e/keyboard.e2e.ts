@@ -15,7 +15,9 @@ test('everything from the first Tab on can be done by keyboard: a cutoff, a wind
   await expect(workbench.token('stage 2, cutoff')).toHaveText('1.02 Hz')
   await keyboard.press('Shift+ArrowLeft')
   await expect(workbench.token('stage 2, cutoff')).toHaveText('0.837 Hz')
-  const chain = firstSight().chain.map((spec) => (spec.design === 'butterworth' ? { ...spec, cutoffsHz: [0.837] } : spec))
+  const chain = firstSight().chain.map((spec) =>
+    spec.design === 'butterworth' ? { ...spec, cutoffsHz: [0.837] } : spec,
+  )
   await workbench.expectReadout(readoutOf({ ...firstSight(), chain }))
   await keyboard.press('Escape')
   await expect(workbench.button('Esc closes')).toHaveCount(0)
@@ -53,7 +55,9 @@ test('everything from the first Tab on can be done by keyboard: a cutoff, a wind
   await expect(workbench.button('Polarity: positive down')).toBeFocused()
 })
 
-test('help opens from its button, and Escape or its own button closes it and hands the keyboard back', async ({ workbench }) => {
+test('help opens from its button, and Escape or its own button closes it and hands the keyboard back', async ({
+  workbench,
+}) => {
   const { keyboard } = workbench.page
   const help = workbench.page.getByRole('region', { name: 'Help' })
   const button = workbench.button('Help')
@@ -109,7 +113,9 @@ test('each action of a stage is there for the keyboard: move, switch off, duplic
   await workbench.tabTo('switch off')
   await keyboard.press('Enter')
   const { chain } = firstSight()
-  await workbench.expectReadout(readoutOf({ ...firstSight(), chain: chain.map((spec, i) => (i === 1 ? { ...spec, enabled: false } : spec)) }))
+  await workbench.expectReadout(
+    readoutOf({ ...firstSight(), chain: chain.map((spec, i) => (i === 1 ? { ...spec, enabled: false } : spec)) }),
+  )
   await expect(workbench.token('stage 2: Butterworth high-pass, switched off')).toBeVisible()
   await workbench.tabTo('switch on')
   await keyboard.press('Enter')

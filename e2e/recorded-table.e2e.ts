@@ -28,7 +28,8 @@ test('a real table is opened, a channel chosen and a low-pass added by keyboard 
   const { keyboard } = page
 
   const chooser = page.waitForEvent('filechooser')
-  await keyboard.press('Control+O')
+  await workbench.tabTo('Open')
+  await keyboard.press('Enter')
   await (await chooser).setFiles(average)
 
   // What was guessed is shown for confirmation.
@@ -90,7 +91,9 @@ test('a real table is opened, a channel chosen and a low-pass added by keyboard 
   const row = (name: string) => workbench.readoutRow(new RegExp(`^${name} `)).getByRole('cell')
   await expect(row('peak amplitude').nth(0)).toHaveText(`${printed(n1.before.amplitudeUv, 2)}µV`)
   await expect(row('peak amplitude').nth(1)).toHaveText(`${printed(n1.after.amplitudeUv, 2)}µV`)
-  await expect(row('peak amplitude').nth(2)).toHaveText(`${printedChange(n1.after.amplitudeUv - n1.before.amplitudeUv, 2)}µV`)
+  await expect(row('peak amplitude').nth(2)).toHaveText(
+    `${printedChange(n1.after.amplitudeUv - n1.before.amplitudeUv, 2)}µV`,
+  )
   await expect(row('peak latency').nth(0)).toHaveText(`${printed(n1.before.latencyMs, 1)}ms`)
   await expect(row('peak latency').nth(1)).toHaveText(`${printed(n1.after.latencyMs, 1)}ms`)
   await expect(row('peak latency').nth(2)).toHaveText(`${printedChange(n1.after.latencyMs - n1.before.latencyMs, 1)}ms`)
@@ -104,7 +107,9 @@ test('a real table is opened, a channel chosen and a low-pass added by keyboard 
   await expect(workbench.chainTable()).toContainText(/unseen share \d+\.\d %/)
 })
 
-test('a score at the epoch’s edge leans on invented samples, and the page says how much of it', async ({ workbench }) => {
+test('a score at the epoch’s edge leans on invented samples, and the page says how much of it', async ({
+  workbench,
+}) => {
   test.skip(!existsSync(average), `the recordings are not here (${average}): SIDELOBE_DATA names their folder`)
   await workbench.openFile(average)
   await workbench.editor().getByRole('button', { name: 'it is right' }).click()

@@ -81,7 +81,10 @@ test('how a table is read can be changed, and taken back', async ({ workbench })
   await workbench.drop(file)
   const editor = workbench.editor()
   await expect(editor).toContainText('250 samples at 250 Hz, −200 to 796 ms')
-  const peak = workbench.readoutRow(/^peak amplitude /).getByRole('cell').first()
+  const peak = workbench
+    .readoutRow(/^peak amplitude /)
+    .getByRole('cell')
+    .first()
   const inMicrovolts = Number(((await peak.textContent()) ?? '').replace('−', '-').replace('µV', ''))
   expect(Math.abs(inMicrovolts)).toBeGreaterThan(5)
 

@@ -101,7 +101,9 @@ for (const [width, height] of [
     await expect(workbench.field('cutoff')).toBeInViewport()
     await workbench.field('cutoff').fill('0.5')
     await expect(workbench.token('stage 2, cutoff')).toHaveText('0.5 Hz')
-    const chain = firstSight().chain.map((spec) => (spec.design === 'butterworth' ? { ...spec, cutoffsHz: [0.5] } : spec))
+    const chain = firstSight().chain.map((spec) =>
+      spec.design === 'butterworth' ? { ...spec, cutoffsHz: [0.5] } : spec,
+    )
     await workbench.expectReadout(readoutOf({ ...firstSight(), chain }))
     await expectNoSidewaysScrolling(workbench)
     await workbench.closeEditor()

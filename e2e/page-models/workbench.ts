@@ -138,6 +138,7 @@ export class Workbench {
 
   /** Takes hold of a part and moves it, in several steps as a hand does; the button stays down. */
   async startDrag(slider: Locator, dx: number): Promise<void> {
+    await slider.scrollIntoViewIfNeeded()
     const from = await this.gripOf(slider)
     await this.page.mouse.move(from.x, from.y)
     await this.page.mouse.down()
@@ -188,7 +189,9 @@ export class Workbench {
   }
 
   readoutRow(name: string | RegExp): Locator {
-    return this.readoutTable().getByRole('row').filter({ has: this.page.getByRole('rowheader', { name }) })
+    return this.readoutTable()
+      .getByRole('row')
+      .filter({ has: this.page.getByRole('rowheader', { name }) })
   }
 
   chainTable(): Locator {
@@ -255,8 +258,10 @@ export class Workbench {
     return this.page.evaluate(() => {
       const node = document.activeElement
       if (!node || node === document.body) return ''
-      const labels = node instanceof HTMLInputElement || node instanceof HTMLSelectElement ? [...(node.labels ?? [])] : []
-      const said = node.getAttribute('aria-label') ?? (labels.map((label) => label.textContent).join(' ') || node.textContent)
+      const labels =
+        node instanceof HTMLInputElement || node instanceof HTMLSelectElement ? [...(node.labels ?? [])] : []
+      const said =
+        node.getAttribute('aria-label') ?? (labels.map((label) => label.textContent).join(' ') || node.textContent)
       return (said ?? '').replace(/\s+/g, ' ').trim()
     })
   }

@@ -26,13 +26,14 @@ export function Help() {
       <div>
         <h2>How the page works</h2>
         <p>
-          The paragraph at the top states what is done to the data; every figure and number follows from it. The dotted phrases can be
-          changed. What you see at once: the waveform before and after the chain and what was taken out; the weight that the score gives
-          to every moment of the unfiltered waveform; the gain; the kernel; and a readout with your limits.
+          The paragraph at the top states what is done to the data; every figure and number follows from it. The dotted
+          phrases can be changed. What you see at once: the waveform before and after the chain and what was taken out;
+          the weight that the score gives to every moment of the unfiltered waveform; the gain; the kernel; and a
+          readout with your limits.
         </p>
         <p>
-          Bring your own average as a table (CSV, TSV or semicolons: a time column, then channels or conditions; or one row per value). It
-          stays in this browser: nothing is sent anywhere.
+          Bring your own average as a table (CSV, TSV or semicolons: a time column, then channels or conditions; or one
+          row per value). It stays in this browser: nothing is sent anywhere.
         </p>
       </div>
       <div>
@@ -62,15 +63,17 @@ export function Help() {
           <dt>unseen share</dt>
           <dd>the part of a result’s absolute weight that falls on samples outside the data</dd>
           <dt>equal-trials factor</dt>
-          <dd>how many times as many trials the unfiltered score would need to tell the effect from noise equally well</dd>
+          <dd>
+            how many times as many trials the unfiltered score would need to tell the effect from noise equally well
+          </dd>
         </dl>
       </div>
       <div>
         <h2>Caution</h2>
         <p>
-          For research planning, not for diagnosis. Clinical recordings follow the local laboratory’s standards and the responsible
-          clinician. A filter must be chosen on expected or pooled data, not on the effect under test: choosing by the largest effect
-          inflates false positives.
+          For research planning, not for diagnosis. Clinical recordings follow the local laboratory’s standards and the
+          responsible clinician. A filter must be chosen on expected or pooled data, not on the effect under test:
+          choosing by the largest effect inflates false positives.
         </p>
         <button type="button" className="word" onClick={() => look({ help: false })}>
           close help

@@ -14,6 +14,9 @@ function concerns(problem: Problem, id: string): boolean {
   return problem.at === id || (problem.at.split(':').length === 2 && id === `${problem.at}:design`)
 }
 
+/** The comma or full stop that follows a token: it stays on the token's line. */
+const leadingMark = (words: string) => /^[,.;:]/.exec(words)?.[0] ?? ''
+
 const messageId = (place: number) => `problem-${place}`
 
 /** Id of the message about a token; undefined where there is none. */
@@ -39,18 +42,22 @@ export function ProtocolLine({ protocol, problems }: ProtocolLineProps) {
         }}
       >
         {pieces.map((piece, place) => {
-          // biome-ignore lint/suspicious/noArrayIndexKey: a phrase is its place in the sentence
-          if (piece.kind === 'text') return <span key={place}>{piece.text}</span>
+          const mark =
+            piece.kind === 'text' && place > 0 && pieces[place - 1].kind !== 'text' ? leadingMark(piece.text) : ''
+          if (piece.kind === 'text') return <span key={place}>{piece.text.slice(mark.length)}</span>
+          const next = pieces[place + 1]
           return (
-            <Token
-              key={piece.id}
-              id={piece.id}
-              text={piece.text}
-              label={piece.label}
-              off={piece.kind === 'token' ? piece.off : undefined}
-              bad={problemOf(problems, piece.id)}
-              className={piece.kind === 'add' ? 'add' : ''}
-            />
+            <span key={piece.id} className="phrase">
+              <Token
+                id={piece.id}
+                text={piece.text}
+                label={piece.label}
+                off={piece.kind === 'token' ? piece.off : undefined}
+                bad={problemOf(problems, piece.id)}
+                className={piece.kind === 'add' ? 'add' : ''}
+              />
+              {next?.kind === 'text' ? leadingMark(next.text) : ''}
+            </span>
           )
         })}
       </p>
