@@ -93,7 +93,8 @@ export function noiseFromTrials(trials: readonly Float64Array[], samplingRateHz:
       `trials must be longer for a noise spectrum (from 2/T to ${FIT_TO_HZ} Hz there must be ${FEWEST_BANDS} bands), were ${seconds} s`,
     )
   }
-  if (!(fitted[0].density > 0)) throw new RangeError('trials must differ from one another to have noise, were all equal')
+  if (!(fitted[0].density > 0))
+    throw new RangeError('trials must differ from one another to have noise, were all equal')
   const { exponent, level } = fitPowerLaw(fitted)
   const lowest = 2 / seconds
   const hz: number[] = []
@@ -268,7 +269,8 @@ function meanOf(trials: readonly Float64Array[]): Float64Array {
 function checkTrials(trials: readonly Float64Array[]): { count: number; samples: number } {
   if (trials.length < 2) throw new RangeError(`trials must be at least 2, were ${trials.length}`)
   const samples = trials[0].length
-  if (samples < FEWEST_SAMPLES) throw new RangeError(`trials must hold at least ${FEWEST_SAMPLES} samples, had ${samples}`)
+  if (samples < FEWEST_SAMPLES)
+    throw new RangeError(`trials must hold at least ${FEWEST_SAMPLES} samples, had ${samples}`)
   trials.forEach((trial, i) => {
     if (trial.length !== samples) {
       throw new RangeError(`trials must be of one length (${samples} samples), trials[${i}] had ${trial.length}`)

@@ -41,3 +41,60 @@ export {
 } from './trace-by-component.ts'
 export { type StageRow, type StageTrace, traceByStage } from './trace-by-stage.ts'
 export { type TraceBack, traceBack, type TraceTrust, traceTrust, UNSEEN_THRESHOLD } from './trace-back.ts'
+
+export { extrapolatedShare } from './extrapolated-share.ts'
+export {
+  drawFilteredNoise,
+  type FilteredNoise,
+  filteredNoise,
+  type NoisePassed,
+  type NoisePath,
+  noisePath,
+  spectrumAfter,
+} from './filtered-noise.ts'
+export {
+  BATCH_DRAWS,
+  type Estimate,
+  type ScoreSimulation,
+  scoreSimulation,
+  simulateBatch,
+  type SimulatedFigures,
+  simulatedFigures,
+  type SimulationQuestion,
+  type SimulationState,
+  simulationStart,
+} from './simulated-score.ts'
+export { type ComponentRanges, type Range, waveformSample } from './waveform-sample.ts'
+export {
+  type Candidate,
+  type CandidatePlace,
+  candidateSpec,
+  chainWithCandidate,
+  logCutoffs,
+} from './trade-off-candidate.ts'
+export {
+  type CellScore,
+  computeCell,
+  computeCells,
+  type MapCell,
+  type MapPlan,
+  type MapQuestion,
+  type MapScore,
+  type MapWaveform,
+  mergeCells,
+  planMap,
+  type PreparedMap,
+  prepareMap,
+} from './trade-off-map.ts'
+export { type CellFigures, cellFigures, type FiguresQuestion, type OverWaveforms } from './trade-off-figures.ts'
+export { paretoFront } from './pareto-front.ts'
+export {
+  CLOSE,
+  type CutoffRun,
+  keepsLimits,
+  type LimitName,
+  type LimitVerdict,
+  type TradeOffAnswer,
+  tradeOffAnswer,
+  type TradeOffLimits,
+} from './trade-off-answer.ts'

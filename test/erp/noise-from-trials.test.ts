@@ -90,8 +90,7 @@ describe('noiseFromTrials', () => {
       const mean = sum.reduce((s, v) => s + v, 0) / n
       const slope = sum.reduce((s, v, i) => s + v * (i - middle), 0) / ((n * (n * n - 1)) / 12)
       const { re, im } = realTransform(sum.map((v, i) => taper[i] * (v - mean - slope * (i - middle))))
-      for (let k = 0; k < expected.length; k++)
-        expected[k] += (6 * 2 * (re[k] ** 2 + im[k] ** 2)) / (fs * squares) / 20
+      for (let k = 0; k < expected.length; k++) expected[k] += (6 * 2 * (re[k] ** 2 + im[k] ** 2)) / (fs * squares) / 20
     }
     expect(choices).toBe(20)
     // the table's lowest bands hold one frequency each
@@ -159,7 +158,9 @@ describe('noiseFromTrials', () => {
         fc.double({ min: -10, max: 10, noNaN: true }),
         (offset, slope) => {
           const trials = draws(white, 100, 200, 5, 3)
-          const moved = trials.map((trial, t) => trial.map((v, i) => v + offset * (t - 1) + slope * i * (t % 3) + Math.sin(i)))
+          const moved = trials.map((trial, t) =>
+            trial.map((v, i) => v + offset * (t - 1) + slope * i * (t % 3) + Math.sin(i)),
+          )
           const a = noiseFromTrials(trials, 100).noise.uv2PerHz
           const b = noiseFromTrials(moved, 100).noise.uv2PerHz
           a.forEach((v, i) => expect(Math.abs(b[i] / v - 1)).toBeLessThan(1e-5))
@@ -179,11 +180,7 @@ describe('noiseFromTrials', () => {
     ['equal trials', () => noiseFromTrials([new Float64Array(100), new Float64Array(100)], 100), /were all equal/],
     ['short trials', () => noiseFromTrials(draws(white, 250, 30, 4, 1), 250), /trials must be longer/],
     ['a bad rate', () => noiseFromTrials(draws(white, 250, 300, 4, 1), 0), /samplingRateHz must be positive/],
-    [
-      'a gap',
-      () => noiseFromTrials([new Float64Array(100), new Float64Array(100).fill(NaN)], 100),
-      /trials\[1\]/,
-    ],
+    ['a gap', () => noiseFromTrials([new Float64Array(100), new Float64Array(100).fill(NaN)], 100), /trials\[1\]/],
   ])('refuses %s', (_, act, message) => {
     expect(act).toThrow(RangeError)
     expect(act).toThrow(message)
