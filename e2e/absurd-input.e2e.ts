@@ -32,6 +32,7 @@ test('a cutoff above half the sampling rate is refused in words at its token, un
   await workbench.field('cutoff').fill('300')
   await expectProblem(workbench, 'stage 2, cutoff', /cutoff must lie between 0 and 250 .*was 300/, firstSight())
   expect(await workbench.sentenceText()).toContain('half-amplitude 300 Hz after both passes')
+  await expect(workbench.editor()).not.toContainText('Design cutoff')
   for (const absurd of ['0', '-2', '250', '1e9']) {
     await workbench.field('cutoff').fill(absurd)
     await expectProblem(workbench, 'stage 2, cutoff', /cutoff must lie between 0 and 250/, firstSight())

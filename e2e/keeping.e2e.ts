@@ -202,6 +202,8 @@ test('work goes on where a second waveform is opened: the chain stays for the ne
   await workbench.openFile(table)
   await expect(workbench.editor()).toContainText('2 channels, 2 conditions')
   await workbench.closeEditor()
+  // Asked for early: a key is faster than the browser's promise to hand the dialog over.
+  const chooser = workbench.page.waitForEvent('filechooser')
   await workbench.token('add a stage to the chain').click()
   await workbench.editor().getByRole('button', { name: 'add Butterworth low-pass' }).click()
   await workbench.field('cutoff').fill('20')
@@ -209,7 +211,6 @@ test('work goes on where a second waveform is opened: the chain stays for the ne
   const { name } = await workbench.saved(() => workbench.page.keyboard.press('Control+S'))
   expect(name).toBe('two-conditions-csv.sidelobe.json')
   const after = (await workbench.readout()).map((line) => line.after)
-  const chooser = workbench.page.waitForEvent('filechooser')
   await workbench.page.keyboard.press('Control+O')
   await (await chooser).setFiles({ ...table, name: 'second.csv' })
   await expect(workbench.token('scenario or file in use')).toHaveText('second.csv')

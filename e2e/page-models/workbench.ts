@@ -76,8 +76,8 @@ export class Workbench {
 
   /** The sentence as a reader has it, without the page's own "+ add a stage". */
   async sentenceText(): Promise<string> {
-    const text = await this.sentence().innerText()
-    return text.replace(/\s+/g, ' ').replace(/ ?\+ add a stage ?/, '')
+    const text = await this.sentence().textContent()
+    return (text ?? '').replace(/\s+/g, ' ').replace(/ ?\+ add a stage ?/, '')
   }
 
   /** A phrase of the sentence (or of header, figure and readout) by what it is: "stage 2, cutoff", "score window". */

@@ -49,7 +49,8 @@ export function StageEditor({ workspace, samplingRateHz, index, part, problems, 
   const set = (stage: StageSpec, group?: string) =>
     say((w) => ({ ...w, chain: replaceStage(w.chain, index, stage) }), group && `stage:${index}:${group}`)
   const problem = problems.find((entry) => entry.at.startsWith(`stage:${index}`))?.message
-  const parts: Parts = { spec, set, samplingRateHz, problem, designHz }
+  // of a cutoff that cannot be designed there is no design cutoff to state
+  const parts: Parts = { spec, set, samplingRateHz, problem, designHz: problem ? null : designHz }
   return (
     <Editor
       title={stageName(spec)}
