@@ -58,6 +58,7 @@ test('during the drag sentence and readout already follow, and Escape puts back 
   await expect(workbench.token('score window')).toHaveText('80 to 140 ms')
   await workbench.page.mouse.up()
   await workbench.expectReadout(readoutOf(firstSight()))
+  await expect(workbench.button('Undo')).toBeDisabled()
   // That Escape was the drag's: the editor stays, a second one closes it.
   await expect(workbench.field('to')).toHaveValue('140')
   await workbench.closeEditor()
@@ -85,7 +86,24 @@ test('the keyboard moves a window by a sample, with shift by ten, and to the end
   await workbench.expectReadout(readoutOf({ ...withScore(922, 1000), baseline: { fromMs: -400, toMs: 0 } }))
 })
 
+test('a drag in which the hand rests for seconds is still one step of undo', async ({ workbench }) => {
+  const { page } = workbench
+  const whole = workbench.slider('score window, whole')
+  const { x, y } = await workbench.gripOf(whole)
+  await page.clock.setFixedTime('2026-01-01T12:00:00Z')
+  await workbench.startDrag(whole, 60)
+  await expect(workbench.token('score window')).not.toHaveText('80 to 140 ms')
+  await page.clock.setFixedTime('2026-01-01T12:00:30Z')
+  await page.mouse.move(x + 120, y, { steps: 4 })
+  await page.mouse.up()
+  await workbench.button('Undo').click()
+  await expect(workbench.token('score window')).toHaveText('80 to 140 ms')
+  await expect(workbench.button('Undo')).toBeDisabled()
+})
+
 test('two drags of one window are two steps of undo', async ({ workbench }) => {
+  // however quickly they follow one another
+  await workbench.page.clock.setFixedTime('2026-01-01T12:00:00Z')
   await workbench.drag(workbench.slider('score window, whole'), 60)
   const first = await workbench.token('score window').textContent()
   await workbench.drag(workbench.slider('score window, whole'), 60)
