@@ -6,7 +6,7 @@ import { protocolOf } from '../state/protocol.ts'
 import { redo, say, undo } from '../state/store.ts'
 import { look, viewStore } from '../state/view.ts'
 import { startWorkspace, type Workspace } from '../state/workspace.ts'
-import { protocolLine, protocolText } from '../words/index.ts'
+import { list, protocolLine, protocolText } from '../words/index.ts'
 import { ChainTable } from './chain-table.tsx'
 import { closeEditor } from './editors/editor.tsx'
 import { TokenEditor } from './editors/token-editor.tsx'
@@ -46,7 +46,9 @@ export function Page() {
   const caption = () => {
     const of = shown.of ?? workspace
     const drawn = protocolOf(of, evaluation?.samplingRateHz ?? samplingRateHz)
-    return protocolText(protocolLine(drawn))
+    const pinned = evaluation?.pins.flatMap((pin) => ('reason' in pin ? [] : [pin.name])) ?? []
+    const beside = pinned.length > 0 ? ` Quiet curves: pinned for comparison, ${list(pinned)}.` : ''
+    return protocolText(protocolLine(drawn)) + beside
   }
 
   return (

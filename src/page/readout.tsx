@@ -9,6 +9,8 @@ import { type Verdict, verdictOf } from '../state/verdict.ts'
 import type { Workspace } from '../state/workspace.ts'
 import { brief, changeWords, exact, fixed, rowWords, signed, valueWords, windowWords } from '../words/index.ts'
 import { MultiplesAxis, MultiplesDot } from './multiples.tsx'
+import { type DrawnPin, drawnPins } from './pin-line.tsx'
+import { FailedPins, PinCells, PinColumns, PinHeads } from './readout-pins.tsx'
 import { Token } from './token.tsx'
 
 const GROUP_WORDS = {
@@ -26,6 +28,7 @@ interface ReadoutProps {
 
 export function Readout({ evaluation, workspace }: ReadoutProps) {
   const { rows, precision } = evaluation
+  const pins = drawnPins(evaluation)
   const [failed, setFailed] = useState<string | null>(null)
   const save = () => {
     try {
@@ -38,13 +41,14 @@ export function Readout({ evaluation, workspace }: ReadoutProps) {
   }
   return (
     <section className="scroll-x" aria-label="Readout">
-      <table className="readout">
+      <table className={pins.length > 0 ? 'readout pinned' : 'readout'}>
         <caption className="visually-hidden">What the chain did to the waveform, held against the limits</caption>
         <colgroup>
           <col className="col-question" />
           <col className="col-name" />
           <col className="col-number" />
           <col className="col-number" />
+          <PinColumns pins={pins} />
           <col className="col-number" />
           <col className="col-percent" />
           <col className="col-limit" />
@@ -58,6 +62,7 @@ export function Readout({ evaluation, workspace }: ReadoutProps) {
             </th>
             <th scope="col">before</th>
             <th scope="col">after</th>
+            <PinHeads pins={pins} />
             <th scope="col">change</th>
             <th scope="col">in per cent</th>
             <th scope="col">limit</th>
@@ -80,6 +85,7 @@ export function Readout({ evaluation, workspace }: ReadoutProps) {
               row={row}
               limits={workspace.limits}
               begins={rows[place - 1]?.group !== row.group}
+              pins={pins}
               recorded={workspace.source.kind === 'recorded'}
             />
           ))}
@@ -92,6 +98,7 @@ export function Readout({ evaluation, workspace }: ReadoutProps) {
               <>
                 <Cell value={valueWords(precision.before, precision.unit)} unit={precision.unit} />
                 <Cell value={valueWords(precision.after, precision.unit)} unit={precision.unit} />
+                <PinCells pins={pins} unit={precision.unit} valueOf={(result) => result.precision?.after} />
                 <Cell value={changeWords(precision.change, precision.unit)} unit={precision.unit} />
                 <td className="percent">{signed((100 * precision.change) / precision.before, 0)} %</td>
                 <td className="quiet">no limit</td>
@@ -102,7 +109,7 @@ export function Readout({ evaluation, workspace }: ReadoutProps) {
                 </td>
               </>
             ) : (
-              <td colSpan={7} className="verdict quiet">
+              <td colSpan={7 + pins.length} className="verdict quiet">
                 a latency’s noise needs simulation; there is no exact figure
               </td>
             )}
@@ -112,6 +119,7 @@ export function Readout({ evaluation, workspace }: ReadoutProps) {
       {rows.some((row) => row.percentOf === 'largest') ? (
         <p className="footnote">* per cent of the waveform’s largest value, since the value before is small beside it.</p>
       ) : null}
+      <FailedPins pins={evaluation.pins} />
     </section>
   )
 }
@@ -126,8 +134,8 @@ function Cell({ value, unit }: { value: string; unit: string }) {
   )
 }
 
-function Row(props: { row: FidelityRow; limits: Limits; begins: boolean; recorded: boolean }) {
-  const { row, limits, begins, recorded } = props
+function Row(props: { row: FidelityRow; limits: Limits; begins: boolean; pins: DrawnPin[]; recorded: boolean }) {
+  const { row, limits, begins, pins, recorded } = props
   const limit = limits[row.id]
   const { name, where } = rowWords(row)
   const verdict = verdictOf(row, limit)
@@ -142,6 +150,7 @@ function Row(props: { row: FidelityRow; limits: Limits; begins: boolean; recorde
       </th>
       <Cell value={valueWords(row.before, row.unit)} unit={row.unit} />
       <Cell value={valueWords(row.after, row.unit)} unit={row.unit} />
+      <PinCells pins={pins} unit={row.unit} valueOf={({ rows }) => rows.find(({ id }) => id === row.id)?.after} />
       {row.change === null ? <td className="quiet">–</td> : <Cell value={changeWords(row.change, row.unit)} unit={row.unit} />}
       <td className="percent" title={row.percentOf === 'largest' ? 'of the waveform’s largest value, since the value before is small' : undefined}>
         {row.percent === null ? '' : `${signed(row.percent, 0)} %${row.percentOf === 'largest' ? '*' : ''}`}

@@ -1,5 +1,6 @@
 import { tableToCsv } from '../files/index.ts'
 import { protocolLine, protocolText, rowWords } from '../words/index.ts'
+import type { NoiseRow } from '../evidence/precision.ts'
 import type { Evaluation } from './evaluation.ts'
 import { protocolOf } from './protocol.ts'
 import { verdictOf } from './verdict.ts'
@@ -7,12 +8,14 @@ import type { Workspace } from './workspace.ts'
 
 /** The readout with full digits, one row per figure, and the protocol line that the numbers belong to. */
 export function readoutCsv(evaluation: Evaluation, workspace: Workspace): string {
+  const pins = evaluation.pins.flatMap((pin, place) => ('reason' in pin ? [] : [{ ...pin, place }]))
   const header = [
     'figure',
     'where',
     'unit',
     'before',
     'after',
+    ...pins.map((pin) => `after the pinned ${pin.name}`),
     'change',
     'change in per cent',
     'per cent of',
@@ -29,6 +32,7 @@ export function readoutCsv(evaluation: Evaluation, workspace: Workspace): string
       row.unit,
       row.before,
       row.after,
+      ...pins.map(({ rows }) => rows.find(({ id }) => id === row.id)?.after ?? ''),
       row.change ?? '',
       row.percent ?? '',
       row.percentOf ?? '',
@@ -38,6 +42,15 @@ export function readoutCsv(evaluation: Evaluation, workspace: Workspace): string
     ]
   })
   const { precision } = evaluation
+  const factorRow = (name: string, factor: (row: NoiseRow) => number | string) => [
+    name,
+    '',
+    '',
+    '',
+    precision ? finite(factor(precision)) : '',
+    ...pins.map((pin) => (pin.precision ? finite(factor(pin.precision)) : '')),
+    ...Array<string>(6).fill(''),
+  ]
   if (precision)
     rows.push(
       [
@@ -46,6 +59,7 @@ export function readoutCsv(evaluation: Evaluation, workspace: Workspace): string
         precision.unit,
         precision.before,
         precision.after,
+        ...pins.map((pin) => pin.precision?.after ?? ''),
         precision.change,
         '',
         '',
@@ -53,11 +67,17 @@ export function readoutCsv(evaluation: Evaluation, workspace: Workspace): string
         '',
         '',
       ],
-      ['precision factor', '', '', '', finite(precision.precisionFactor), '', '', '', '', '', ''],
-      ['equal-trials factor', '', '', '', finite(precision.equalTrialsFactor), '', '', '', '', '', ''],
+      factorRow('precision factor', ({ precisionFactor }) => precisionFactor),
+      factorRow('equal-trials factor', ({ equalTrialsFactor }) => equalTrialsFactor),
     )
   const line = protocolText(protocolLine(protocolOf(workspace, evaluation.samplingRateHz)))
-  return tableToCsv(header, [...rows, ['protocol', line, '', '', '', '', '', '', '', '', '']])
+  const chains = pins.map(({ name, place }) => {
+    const { chain, extent } = workspace.pins[place]
+    const withIt = protocolOf({ ...workspace, chain, extent }, evaluation.samplingRateHz)
+    return [`pinned ${name}`, protocolText(protocolLine(withIt))]
+  })
+  const notes = [['protocol', line], ...chains].map((note) => [...note, ...Array<string>(header.length - 2).fill('')])
+  return tableToCsv(header, [...rows, ...notes])
 }
 
 /** A filter that leaves no noise has an infinite factor. */
