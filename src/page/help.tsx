@@ -8,6 +8,8 @@ const KEYS: readonly [string, string][] = [
   ['arrow keys', 'on a band or handle: one sample or one per cent; in a number field: one step'],
   ['Shift + arrow keys', 'ten steps'],
   ['Home, End', 'on a band or handle: as far as it goes'],
+  ['T', 'on the cursor of the time figure: traces the value there back'],
+  ['Delete', 'on a boundary of the trace-back desk: joins the two stretches'],
   ['Ctrl+Z, Ctrl+Shift+Z', 'undo and redo'],
   ['Ctrl+O, Ctrl+S', 'open a table or a workspace; save the workspace'],
   ['?', 'this help'],

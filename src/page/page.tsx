@@ -4,10 +4,13 @@ import { useStore } from 'zustand'
 import { dataStore, recordedData, rereadTable } from '../state/recorded-data.ts'
 import { protocolOf } from '../state/protocol.ts'
 import { redo, say, undo } from '../state/store.ts'
+import { showsFalseDeflection } from '../state/trace-actions.ts'
 import { look, viewStore } from '../state/view.ts'
 import { startWorkspace, type Workspace } from '../state/workspace.ts'
 import { list, protocolLine, protocolText } from '../words/index.ts'
 import { ChainTable } from './chain-table.tsx'
+import { Desks } from './desks/desks.tsx'
+import { openTrace } from './desks/trace/open-trace.ts'
 import { closeEditor } from './editors/editor.tsx'
 import { TokenEditor } from './editors/token-editor.tsx'
 import { FrequencyFigure } from './frequency-figure.tsx'
@@ -110,7 +113,17 @@ export function Page() {
             <div className={`figures grid${shown.stale ? ' stale' : ''}`} aria-busy={shown.working}>
               <div className="figure-body">
                 <TimeFigures evaluation={evaluation} workspace={shown.of} caption={caption} />
-                <p className="remark">{evaluation.remark}</p>
+                <p className="remark">
+                  {evaluation.remark}
+                  {showsFalseDeflection(shown.of, evaluation) ? (
+                    <>
+                      {' '}
+                      <button type="button" className="word" onClick={() => openTrace('score')}>
+                        The trace-back desk shows where it came from.
+                      </button>
+                    </>
+                  ) : null}
+                </p>
               </div>
               <div className="figure-body">
                 <FrequencyFigure evaluation={evaluation} workspace={shown.of} caption={caption} height={178} />
@@ -120,6 +133,7 @@ export function Page() {
             <div className={shown.stale ? 'stale' : undefined} aria-busy={shown.working}>
               <Readout evaluation={evaluation} workspace={shown.of} />
             </div>
+            <Desks workspace={workspace} shown={shown} caption={caption} />
           </>
         ) : (
           <p className="remark">

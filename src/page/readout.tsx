@@ -8,6 +8,7 @@ import { readoutCsv } from '../state/readout-csv.ts'
 import { type Verdict, verdictOf } from '../state/verdict.ts'
 import type { Workspace } from '../state/workspace.ts'
 import { brief, changeWords, exact, fixed, rowWords, signed, valueWords, windowWords } from '../words/index.ts'
+import { openTrace } from './desks/trace/open-trace.ts'
 import { MultiplesAxis, MultiplesDot } from './multiples.tsx'
 import { type DrawnPin, drawnPins } from './pin-line.tsx'
 import { FailedPins, PinCells, PinColumns, PinHeads } from './readout-pins.tsx'
@@ -169,6 +170,16 @@ function Row(props: { row: FidelityRow; limits: Limits; begins: boolean; pins: D
       </td>
       <td className="verdict">
         <VerdictWords verdict={verdict} />
+        {row.change === null && row.id === 'false-deflection' ? null : (
+          <button
+            type="button"
+            className="word quiet-word trace-row"
+            aria-label={`trace ${name} ${where} back`}
+            onClick={() => openTrace(row.id)}
+          >
+            trace
+          </button>
+        )}
       </td>
     </tr>
   )

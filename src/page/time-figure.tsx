@@ -2,6 +2,7 @@
 import { useRef } from 'react'
 import { FigureFrame } from '../plot/index.ts'
 import { windowWords } from '../words/index.ts'
+import { useAskMoment } from './desks/trace/ask-moment.ts'
 import { useView } from './hooks.ts'
 import { scoreText } from './score-mark.ts'
 import { cursorAt, MARGIN, type SharedAxis } from './shared-axis.ts'
@@ -25,7 +26,8 @@ export function TimeFigure(props: TimeFigureProps) {
   return (
     <>
       <TimeHead {...{ evaluation, workspace, takenOut, onDelayed, svg, caption }} />
-      <div className="time-hanging">
+      {/* biome-ignore lint/a11y/noStaticElementInteractions: the cursor in it is what has the keyboard */}
+      <div {...useAskMoment(svg, axis, cursor)}>
         <FigureFrame
           title="Waveform over time"
           description={descriptionOf(props, polarity)}

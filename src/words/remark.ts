@@ -41,6 +41,17 @@ export function remarkWords(facts: RemarkFacts): string {
   return [effectWords(facts), unseenWords(facts)].filter((sentence) => sentence !== '').join(' ')
 }
 
+/**
+ * A deflection that the chain made: the score has a value after it, and before it as good as none, or one of the other sign. The first
+ * sentence of the remark then says that it was not in the input.
+ */
+export function isFalseDeflection({ unit, before, after, largestUv, noFilter }: RemarkFacts): boolean {
+  if (noFilter || unit !== 'µV' || typeof before === 'string' || typeof after === 'string' || largestUv === 0)
+    return false
+  const noteworthy = NOTEWORTHY * Math.max(largestUv * NOTHING, Math.abs(before))
+  return Math.abs(after - before) >= noteworthy && Math.abs(before) < NOTHING * largestUv && isNew(before, after)
+}
+
 function effectWords(facts: RemarkFacts): string {
   const { score, unit, before, after, largestUv, noFilter } = facts
   if (noFilter) return 'No filter is applied here: before and after are the same.'
@@ -62,8 +73,8 @@ function effectWords(facts: RemarkFacts): string {
   const scale = unit === 'µV' ? largestUv : Math.max(Math.abs(before), Math.abs(after))
   if (scale === 0 || Math.abs(change) < NOTEWORTHY * Math.max(scale * (unit === 'µV' ? NOTHING : 1), Math.abs(before)))
     return `The chain leaves the score nearly as it was: ${said(before)} before, ${said(after)} after.`
-  if (unit === 'µV' && Math.abs(before) < NOTHING * scale && isNew(before, after))
-    return `The deflection of ${said(after)} at ${where} was not in the input: before the chain the same score is ${said(before)}.`
+  if (isFalseDeflection(facts))
+    return `The deflection of ${said(after)} at ${where} was not in the input.`
   if (before * after < 0 && Math.abs(after) >= NOTEWORTHY * Math.abs(before))
     return `The chain turns the sign of the score: ${said(before)} before, ${said(after)} after.`
   const percent = Math.min(100, Math.round((100 * Math.abs(change)) / Math.abs(before)))

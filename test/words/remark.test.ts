@@ -1,7 +1,7 @@
 import fc from 'fast-check'
 import { describe, expect, test } from 'vitest'
 import { parseNumber } from '../../src/words/number.ts'
-import { type RemarkFacts, remarkWords } from '../../src/words/remark.ts'
+import { isFalseDeflection, type RemarkFacts, remarkWords } from '../../src/words/remark.ts'
 
 const facts: RemarkFacts = {
   score: { kind: 'mean', fromMs: 80, toMs: 140, polarity: 'negative' },
@@ -17,7 +17,7 @@ const facts: RemarkFacts = {
 describe('remarkWords', () => {
   test.each<[Partial<RemarkFacts>, string]>([
     [{ noFilter: true }, 'No filter is applied here: before and after are the same.'],
-    [{}, 'The deflection of −1.18 µV at 80–140 ms was not in the input: before the chain the same score is 0.06 µV.'],
+    [{}, 'The deflection of −1.18 µV at 80–140 ms was not in the input.'],
     [{ before: 6.5, after: 6.4 }, 'The chain leaves the score nearly as it was: 6.50 µV before, 6.40 µV after.'],
     [{ before: -4.5, after: -1.1 }, 'The chain takes 76 % of the score: −4.50 µV before, −1.10 µV after.'],
     [{ before: 4, after: -2 }, 'The chain turns the sign of the score: 4.00 µV before, −2.00 µV after.'],
@@ -89,7 +89,8 @@ describe('remarkWords', () => {
       fc.property(amplitudes, (change) => {
         const sentence = remarkWords({ ...facts, ...change })
         const said = [...sentence.matchAll(/([−+]?[\d.]+) µV/g)].map((match) => parseNumber(match[1]))
-        expect(said.length).toBeGreaterThanOrEqual(2)
+        // what was as good as nothing before needs no number
+        expect(said.length).toBeGreaterThanOrEqual(sentence.includes('was not in the input') ? 1 : 2)
         const allowed = [change.before, change.after, change.after - change.before]
         for (const number of said)
           expect(
@@ -99,6 +100,19 @@ describe('remarkWords', () => {
       }),
       { numRuns: 500 },
     )
+  })
+
+  test('says that a deflection was not in the input exactly where isFalseDeflection tells so', () => {
+    fc.assert(
+      fc.property(amplitudes, fc.boolean(), (change, noFilter) => {
+        const given = { ...facts, ...change, noFilter }
+        expect(remarkWords(given).includes('was not in the input')).toBe(isFalseDeflection(given))
+      }),
+      { numRuns: 500 },
+    )
+    expect(isFalseDeflection(facts)).toBe(true)
+    expect(isFalseDeflection({ ...facts, unit: 'ms' })).toBe(false)
+    expect(isFalseDeflection({ ...facts, before: 'no peak' })).toBe(false)
   })
 
   test('is true in every branch', () => {
