@@ -98,3 +98,10 @@ export {
   tradeOffAnswer,
   type TradeOffLimits,
 } from './trade-off-answer.ts'
+
+export { type LateOnlyFit, fitLateOnly, lateOnlyFit } from './late-only-fit.ts'
+export { type LateOnlyModel, type LateOnlyOptions, lateOnlyModel } from './late-only-model.ts'
+export type { LateOnlyVerdict, VerdictConditions, VerdictGrounds } from './late-only-verdict.ts'
+export { robustOf, robustOptions, type RobustVariant, type RobustVerdict, robustVerdict } from './robust-verdict.ts'
+export { latestOnset, type OnsetRow, type OnsetScan, type ScanProgress, scanOnsets } from './onset-scan.ts'
+export { type BumpOptions, type BumpRow, type BumpScan, scanBumps } from './bump-scan.ts'
