@@ -47,10 +47,16 @@ const SLOW_TURNS = 4
  * with the hat functions of a grid. The hats multiply C by sinc²(πk/L), which is divided out again, and the images of C
  * that a grid brings from lags L, 2L … by next to nothing; for the smooth densities of EEG the error is below 1e-8 of C[0].
  *
- * @param lags  how many; k from 0 to lags − 1.
+ * @param lags          how many; k from 0 to lags − 1.
+ * @param oversampling  L in multiples of the lags; 8 is right to 1e-5, quicker.
  * @throws RangeError for a sampling rate or a number of lags that is not positive, or more than 2¹⁸ lags.
  */
-export function noiseAutocovariance(spectrum: NoiseSpectrum, samplingRateHz: number, lags: number): Float64Array {
+export function noiseAutocovariance(
+  spectrum: NoiseSpectrum,
+  samplingRateHz: number,
+  lags: number,
+  oversampling: 8 | 32 = 32,
+): Float64Array {
   if (!(samplingRateHz > 0) || !Number.isFinite(samplingRateHz)) {
     throw new RangeError(`samplingRateHz must be positive and finite, was ${samplingRateHz}`)
   }
@@ -58,10 +64,10 @@ export function noiseAutocovariance(spectrum: NoiseSpectrum, samplingRateHz: num
     throw new RangeError(`lags must be a whole number from 1 to ${LARGEST_SIZE / 4}, was ${lags}`)
   }
   const nyquist = samplingRateHz / 2
-  const size = Math.min(LARGEST_SIZE, nextPowerOfTwo(Math.max(4096, 32 * lags)))
+  const size = Math.min(LARGEST_SIZE, nextPowerOfTwo(Math.max(4096, oversampling * lags)))
   const stepHz = samplingRateHz / size
   const half = size / 2
-  const first = Math.min(half, Math.max(128, Math.ceil((SLOW_TURNS * size) / Math.max(1, lags - 1))))
+  const first = Math.min(half, Math.max(32, Math.ceil((SLOW_TURNS * size) / Math.max(1, lags - 1))))
   const breaks = spectrum.breaksHz.filter((hz) => hz > 0 && hz < nyquist).sort((a, b) => a - b)
 
   const covariance = slowPart(spectrum, breaks, first * stepHz, samplingRateHz, lags)

@@ -13,7 +13,7 @@ export interface NoiseSource {
 }
 
 const LARGEST_CIRCULANT = 2 ** 18
-/** Largest error of the covariance that is let pass, as a part of how far the covariance falls over the stretch. */
+/** Largest error of the covariance that is let pass by default, as a part of how far the covariance falls over the stretch. */
 const TOLERANCE = 1e-5
 
 /**
@@ -21,20 +21,25 @@ const TOLERANCE = 1e-5
  * Newsam, SIAM J. Sci. Comput. 18, 1088–1107, 1997): exact for every pair of samples, whatever lies below the stretch's own
  * lowest frequency.
  *
- * Negative eigenvalues are taken as 0; the circulant is doubled until that leaves the covariance right to 1e-5 of how far it falls
+ * Negative eigenvalues are taken as 0; the circulant is doubled until that leaves the covariance right to 1e-5 (`tolerance`) of how far it falls
  * over the stretch (a steady level, which it also holds, is taken off by any baseline).
  *
  * @throws RangeError for a bad noise or rate, fewer than 2 or more than 131 072 samples, or a noise so steep that it cannot be
  *   embedded.
  */
-export function noiseSource(noise: NoiseSpec | NoiseSpectrum, samplingRateHz: number, samples: number): NoiseSource {
+export function noiseSource(
+  noise: NoiseSpec | NoiseSpectrum,
+  samplingRateHz: number,
+  samples: number,
+  tolerance = TOLERANCE,
+): NoiseSource {
   if (!Number.isInteger(samples) || samples < 2 || samples > LARGEST_CIRCULANT / 2) {
     throw new RangeError(`samples must be a whole number from 2 to ${LARGEST_CIRCULANT / 2}, was ${samples}`)
   }
   const spectrum = 'kind' in noise ? noiseSpectrum(noise) : noise
   const lines = spectrum.lines.filter(({ hz }) => hz < samplingRateHz / 2)
   for (let size = nextPowerOfTwo(Math.max(32, 2 * samples)); ; size *= 2) {
-    const covariance = noiseAutocovariance(spectrum, samplingRateHz, size / 2 + 1)
+    const covariance = noiseAutocovariance(spectrum, samplingRateHz, size / 2 + 1, tolerance > 1e-4 ? 8 : 32)
     const eigenvalues = circulantEigenvalues(covariance, size)
     let clipped = 0
     for (let k = 0; k < eigenvalues.length; k++) {
@@ -45,7 +50,7 @@ export function noiseSource(noise: NoiseSpec | NoiseSpectrum, samplingRateHz: nu
     // no covariance is off by more than the mean of what was clipped
     let fall = 0
     for (let k = 1; k < samples; k++) fall = Math.max(fall, covariance[0] - covariance[k])
-    const passes = clipped / size <= TOLERANCE * fall
+    const passes = clipped / size <= tolerance * fall
     if (passes || size >= LARGEST_CIRCULANT) {
       if (!passes) {
         throw new RangeError(

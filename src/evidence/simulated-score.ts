@@ -1,6 +1,7 @@
 import { correctBaseline, type Baseline } from '../erp/baseline.ts'
 import type { NoiseSpec } from '../erp/noise.ts'
 import { type NoScore, type Score, scoreOf } from '../erp/score.ts'
+import { samplesInWindow, stepMs } from '../erp/time-axis.ts'
 import { seededRandom } from '../erp/seeded-random.ts'
 import type { Extent } from '../filter/apply-chain.ts'
 import type { Chain } from '../filter/chain.ts'
@@ -180,4 +181,22 @@ export function scoreWithNoise(
 ): number | NoScore {
   const noisy = waveform.map((value, i) => value + noise[i])
   return scoreOf(correctBaseline(noisy, timesMs, baseline), timesMs, score)
+}
+
+/** A peak's neighbours are looked at this far outside its window, with room to spare. */
+const MARGIN_MS = 25
+
+/**
+ * The samples from … to − 1 that a score looks at: many draws on a long epoch need not pass over all of it. Only a peak's plateaus,
+ * which noise has none of, are judged by the range of the whole.
+ *
+ * @throws RangeError for a window that leaves the epoch.
+ */
+export function scoreStretch(score: Score, timesMs: Float64Array): { from: number; to: number } {
+  const { first, last } = samplesInWindow(timesMs, score, 'score window')
+  const margin = Math.ceil(MARGIN_MS / stepMs(timesMs)) + 2
+  return {
+    from: score.kind === 'onset-latency' ? 0 : Math.max(0, first - margin),
+    to: Math.min(timesMs.length, last + 1 + margin),
+  }
 }

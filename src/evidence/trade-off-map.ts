@@ -20,7 +20,7 @@ import {
   spectrumAfter,
 } from './filtered-noise.ts'
 import { lockedLineContribution, scoreVarianceOfResponse } from './score-noise.ts'
-import { addDraw, BATCH_DRAWS, emptySums, mergeSums, type SimulatedSums } from './simulated-score.ts'
+import { addDraw, BATCH_DRAWS, emptySums, mergeSums, scoreStretch, type SimulatedSums } from './simulated-score.ts'
 import { type Candidate, type CandidatePlace, chainWithCandidate } from './trade-off-candidate.ts'
 import { varianceOfWeights } from './variance-of-weights.ts'
 
@@ -148,6 +148,7 @@ interface Shared {
   /** Under epochs: waveforms after the amplifier stages, and the noise at their output. */
   readonly onEpoch: readonly Float64Array[] | null
   readonly epochNoise: FilteredNoise | null
+  readonly rawDraws: Map<number, Float64Array[]>
   readonly amplifiers: readonly Stage[]
   readonly design: typeof designStage
 }
@@ -217,6 +218,7 @@ export function prepareMap(question: MapQuestion, draws = 4 * BATCH_DRAWS): Prep
       epochs && simulated
         ? filteredNoise({ continuous: path.continuous, onEpoch: [] }, noise, samplingRateHz, n)
         : null,
+    rawDraws: new Map(),
     amplifiers,
     design,
   }
@@ -363,17 +365,40 @@ function noiseDraws(
   when: 'before' | 'after',
   batches: { from: number; to: number },
 ): Float64Array[] {
-  const ready: FilteredNoise =
-    extent === 'epochs' && when === 'after'
-      ? { source: (shared.epochNoise as FilteredNoise).source, onEpoch: offline }
-      : filteredNoise(noisePath(chain, extent, noisePassed), noise, samplingRateHz, timesMs.length)
   const draws: Float64Array[] = []
-  for (let batch = batches.from; batch < batches.to; batch++) {
-    const random = seededRandom(seed, batch)
-    for (let pair = 0; pair < BATCH_DRAWS / 2; pair++) {
-      for (const drawn of drawFilteredNoise(ready, random, trials))
-        draws.push(correctBaseline(drawn, timesMs, baseline))
+  if (extent === 'epochs' && when === 'after') {
+    for (let batch = batches.from; batch < batches.to; batch++) {
+      for (const raw of rawDraws(shared, seed, batch, trials)) {
+        draws.push(correctBaseline(applyEpochs(offline, raw), timesMs, baseline))
+      }
     }
+    return draws
+  }
+  const ready = filteredNoise(noisePath(chain, extent, noisePassed), noise, samplingRateHz, timesMs.length)
+  for (let batch = batches.from; batch < batches.to; batch++) {
+    for (const drawn of drawBatch(ready, seed, batch, trials)) draws.push(correctBaseline(drawn, timesMs, baseline))
+  }
+  return draws
+}
+
+function drawBatch(source: FilteredNoise, seed: number, batch: number, trials: number): Float64Array[] {
+  const random = seededRandom(seed, batch)
+  const draws: Float64Array[] = []
+  for (let pair = 0; pair < BATCH_DRAWS / 2; pair++) draws.push(...drawFilteredNoise(source, random, trials))
+  return draws
+}
+
+/** Batches of unfiltered epochs that are kept for the next filter, as long as they take no more than 64 MB. */
+const KEPT_VALUES = 2 ** 23
+
+/** Noise as it comes to the cut-out epochs, the same for every filter. */
+function rawDraws(shared: Shared, seed: number, batch: number, trials: number): Float64Array[] {
+  let draws = shared.rawDraws.get(batch)
+  if (!draws) {
+    const source = shared.epochNoise as FilteredNoise
+    draws = drawBatch(source, seed, batch, trials)
+    if ((shared.rawDraws.size + 1) * BATCH_DRAWS * source.source.samples > KEPT_VALUES) shared.rawDraws.clear()
+    shared.rawDraws.set(batch, draws)
   }
   return draws
 }
@@ -386,15 +411,17 @@ function nonlinearScore(
   draws: readonly Float64Array[],
 ): CellScore {
   const after = new Float64Array(filtered.length)
-  const noisy = new Float64Array(timesMs.length)
+  const { from, to } = scoreStretch(score, timesMs)
+  const times = timesMs.subarray(from, to)
+  const noisy = new Float64Array(to - from)
   const simulated = filtered.map((y, w) => {
     const clean = scoreOf(y, timesMs, score)
     after[w] = typeof clean === 'number' ? clean : NaN
     let sums = emptySums(typeof clean === 'number' ? clean : 0)
     if (withNoise === 'without noise') return sums
     for (const drawn of draws) {
-      for (let i = 0; i < noisy.length; i++) noisy[i] = y[i] + drawn[i]
-      sums = addDraw(sums, scoreOf(noisy, timesMs, score))
+      for (let i = from; i < to; i++) noisy[i - from] = y[i] + drawn[i]
+      sums = addDraw(sums, scoreOf(noisy, times, score))
     }
     return sums
   })
