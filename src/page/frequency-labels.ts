@@ -19,8 +19,8 @@ export function frequencyLabels(courses: FrequencyCourses): FigureLabel[] {
     ...points.filter(({ strong, stated }) => strong && !stated).map(pointWish),
     ...points.filter(({ strong }) => !strong).map(pointWish),
     inRow(chainWish(courses), row),
-    ...(courses.pins ?? []).map((_, which) => pinWish(courses, which)),
     ...spectrumWishes(courses),
+    ...(courses.pins ?? []).map((_, which) => pinWish(courses, which)),
   ]
   const last = [...points.filter(({ stated }) => stated).map(pointWish), noiseWish(courses), ...halfWishes(courses)]
   // which stage chooses first makes a difference, and no order is the best for all chains
@@ -115,17 +115,36 @@ function pinWish({ pins = [], chain, stages, before, left, top, bottom }: Freque
     for (const other of others) least = Math.min(least, Math.abs(other[column] - heights[column]))
     return least / 14
   }
-  const apart = (column: number) => Math.abs(chain[column] - heights[column]) / (bottom - top)
+  // where the two chains do the same, the name would be taken for that of both
+  const apart = (column: number) => {
+    const px = Math.abs(chain[column] - heights[column])
+    return px < HEIGHT ? -2.5 : px / (bottom - top)
+  }
   const along = placesAlong(heights, size, left, (column) => 6 - 3 * alone(column) - 3 * Math.min(1, apart(column)))
   // A slope is steep on this axis: beside it, too, since above and below it the name would stand far off.
   const beside: LabelPlace[] = []
   for (let column = 4; column < heights.length; column += 4) {
     const y = heights[column]
     if (!(y > top + HEIGHT && y < bottom - HEIGHT / 2)) continue
-    const cost = 5.5 - 3 * alone(column) - 3 * Math.min(1, apart(column))
-    beside.push({ x: left + column - 7, y, anchor: 'end', cost }, { x: left + column + 7, y, anchor: 'start', cost })
+    for (const side of [-1, 1] as const) {
+      // behind another line it would be taken for that one's name
+      const behind = others.some((other) => runsThrough(other, column + side * 2, column + side * (7 + size.width), y))
+      const cost = 5.5 - 3 * alone(column) - 3 * Math.min(1, apart(column)) + (behind ? 4 : 0)
+      beside.push({ x: left + column + side * 7, y, anchor: side < 0 ? 'end' : 'start', cost })
+    }
   }
   return wish(name, 'quiet', false, [...along, ...beside], 20)
+}
+
+/** Whether a line crosses the height of a label's text between two columns. */
+function runsThrough(heights: Float64Array, from: number, to: number, y: number): boolean {
+  const first = Math.max(1, Math.floor(Math.min(from, to)))
+  const last = Math.min(heights.length - 1, Math.ceil(Math.max(from, to)))
+  for (let i = first; i <= last; i++) {
+    const [low, high] = [Math.min(heights[i - 1], heights[i]), Math.max(heights[i - 1], heights[i])]
+    if (low < y + HEIGHT / 2 && high > y - HEIGHT / 2) return true
+  }
+  return false
 }
 
 function noiseWish({ noise, left }: FrequencyCourses): Wish {

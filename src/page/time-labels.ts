@@ -5,6 +5,7 @@ import {
   around,
   type DrawnLabel,
   drawnLabels,
+  firstThatFits,
   type LabelText,
   labelSize,
   placesBeside,
@@ -148,16 +149,7 @@ export function cursorLabels(
     const place = order.indexOf(reading)
     return place === 0 ? -1 : place === order.length - 1 ? 1 : 0
   }
-  const elsewhere = ({ name, text, along }: CursorReading): LabelPlace[] => {
-    if (!along) return []
-    const size = labelSize({ id: '', tone: 'quiet', rows: [{ strong: name, plain: text }] })
-    const rivals = courses.filter((course) => course.heights !== along)
-    return placesAlong(along, size, frame.left, (column) => {
-      // beside its own curve more than beside any other
-      const apart = Math.min(14, ...rivals.map((rival) => Math.abs(rival.heights[column] - along[column])))
-      return 24 + 2 * (14 - apart) + Math.abs(frame.left + column - cursorPx) * 0.03
-    })
-  }
+  const beside = (reading: CursorReading) => placesBeside(cursorPx, reading.y, lean(reading))
   const rows = [0, 1, 2, 3, 4].flatMap((row): LabelPlace[] => {
     const y = frame.top + 10 + row * ROW_PX
     return [
@@ -167,15 +159,41 @@ export function cursorLabels(
   })
   const wanted: WantedText[] = [
     { id: 'moment', tone: 'ink', rows: [{ plain: moment }], places: rows },
-    ...readings.map((reading) => ({
-      id: reading.id,
-      tone: reading.tone,
-      rows: [{ strong: reading.name, plain: reading.text }],
-      places: [...placesBeside(cursorPx, reading.y, lean(reading)), ...elsewhere(reading)],
-    })),
+    ...readings.flatMap((reading) => (reading.along ? [] : [{ ...readingText(reading), places: beside(reading) }])),
   ]
-  const dots = readings.map(({ y }) => around(cursorPx, y, 5))
-  return drawnLabels(wanted, frame, courses, [...still, ...dots])
+  const inTheWay = [...still, ...readings.map(({ y }) => around(cursorPx, y, 5))]
+  const labels = drawnLabels(wanted, frame, courses, inTheWay)
+  for (const reading of readings) {
+    if (!reading.along) continue
+    const atCursor = { ...readingText(reading), places: beside(reading), maxCost: FAR }
+    // a value far from the cursor would be read as that of another moment
+    const alone = { ...readingText({ ...reading, text: '' }), places: [] as LabelPlace[] }
+    const wordings = [atCursor, { ...alone, places: placesApart(reading.along, labelSize(alone), courses, frame) }]
+    const taken = [...inTheWay, ...labels.map((label) => label.box)]
+    labels.push(...firstThatFits(wordings, (wording) => drawnLabels([wording], frame, courses, taken)))
+  }
+  return labels
+}
+
+/** What a place at the cursor may cost before a curve is named elsewhere. */
+const FAR = 62
+
+function readingText({ id, tone, name, text }: CursorReading): LabelText {
+  return { id, tone, rows: [text === '' ? { strong: name } : { strong: name, plain: text }] }
+}
+
+/** Along a curve, where it runs apart from every other one. */
+function placesApart(
+  heights: ArrayLike<number>,
+  size: { width: number; height: number },
+  courses: readonly CurveCourse[],
+  frame: Frame,
+): LabelPlace[] {
+  const rivals = courses.filter((course) => course.heights !== heights)
+  return placesAlong(heights, size, frame.left, (column) => {
+    const apart = Math.min(14, ...rivals.map((rival) => Math.abs(rival.heights[column] - heights[column])))
+    return 2 * (14 - apart)
+  })
 }
 
 /** The mark's extent in pixels. */
