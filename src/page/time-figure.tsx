@@ -26,7 +26,6 @@ export function TimeFigure(props: TimeFigureProps) {
   return (
     <>
       <TimeHead {...{ evaluation, workspace, takenOut, onDelayed, svg, caption }} />
-      {/* biome-ignore lint/a11y/noStaticElementInteractions: the cursor in it is what has the keyboard */}
       <div {...useAskMoment(svg, axis, cursor)}>
         <FigureFrame
           title="Waveform over time"

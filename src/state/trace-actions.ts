@@ -25,7 +25,7 @@ export function askingMoment(workspace: Workspace, atMs: number): Workspace {
 
 /** @param stretches null for those that suggest themselves. */
 export function withStretches(workspace: Workspace, stretches: Stretches | null): Workspace {
-  const own = stretches && stretches.map(({ sample, atMs }) => ({ sample, atMs }))
+  const own = stretches === null ? null : stretches.map(({ sample, atMs }) => ({ sample, atMs }))
   return { ...workspace, trace: { ...workspace.trace, stretches: own } }
 }
 

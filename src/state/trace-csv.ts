@@ -16,7 +16,12 @@ const cell = (value: number | null) => (value === null || !Number.isFinite(value
  *
  * @param asked the value that is traced: "the score after".
  */
-export function sharesCsv({ traced, back, trust }: Tracing, asked: string, workspace: Workspace, rateHz: number): string {
+export function sharesCsv(
+  { traced, back, trust }: Tracing,
+  asked: string,
+  workspace: Workspace,
+  rateHz: number,
+): string {
   const { moments, rows } = back
   const header = ['stretch', 'from (ms)', 'to (ms)', 'waveform, mean (µV)', 'weight', 'share', 'unit']
   header.push('of the value (%)', 'running total')

@@ -36,8 +36,7 @@ export function useAskMoment(svg: RefObject<SVGSVGElement | null>, axis: TimeAxi
       if (Math.hypot(event.clientX - from.x, event.clientY - from.y) > STILL_PX) return
       const frame = makeFrame(svg.current.clientWidth, svg.current.clientHeight, MARGIN, '')
       const point = svgPoint(svg.current, event.clientX, event.clientY)
-      const inside =
-        point.x >= frame.left && point.x <= frame.right && point.y >= frame.top && point.y <= frame.bottom
+      const inside = point.x >= frame.left && point.x <= frame.right && point.y >= frame.top && point.y <= frame.bottom
       if (inside) ask(cursorAt(point, frame, axis))
     },
     onKeyDown: (event: KeyboardEvent) => {

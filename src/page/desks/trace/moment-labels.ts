@@ -3,7 +3,7 @@ import type { MomentRow } from '../../../evidence/trace-by-moment.ts'
 import type { Frame, Scale } from '../../../plot/index.ts'
 import type { CurveCourse, LabelBox, LabelPlace } from '../../../plot/place-labels.ts'
 import { shareWords, spanWords } from '../../../words/index.ts'
-import { type DrawnLabel, drawnLabels, type LabelText, type WantedText } from '../../placed-labels.ts'
+import { type DrawnLabel, drawnLabels, type LabelText, labelSize, type WantedText } from '../../placed-labels.ts'
 import type { TimeAxis } from '../../time-axis.ts'
 import { cutOut, type Density, labelledRows, placeOf } from './moment-shape.ts'
 
@@ -18,6 +18,8 @@ export interface MomentLabels {
   /** What the value is measured in, at a moment or in a window. */
   own: string
   courses: readonly CurveCourse[]
+  /** Edges of the windows in pixels, on which a label reads badly. */
+  edges: readonly number[]
   taken: readonly LabelBox[]
 }
 
@@ -25,7 +27,12 @@ export function momentLabels(wish: MomentLabels): DrawnLabel[] {
   const { frame, rows, axis, courses, taken } = wish
   const wanted = labelledRows(rows, axis).map((i): WantedText => {
     const text = textOf(wish, i)
-    return { ...text, places: placesNear(wish, rows[i]), maxCost: 60 }
+    const { width } = labelSize(text)
+    const places = placesNear(wish, rows[i]).map((place) => ({
+      ...place,
+      cost: place.cost + onEdges(place, width, wish.edges),
+    }))
+    return { ...text, places, maxCost: 60 }
   })
   return drawnLabels(wanted, frame, courses, taken)
 }
@@ -36,8 +43,19 @@ function textOf({ rows, unit, own }: MomentLabels, i: number): LabelText {
   const id = `stretch ${i}`
   if (row.kind === 'score') return { id, tone: 'after', rows: [{ strong: `${share} from ${own}` }] }
   const where =
-    row.kind === 'before' ? 'before the epoch' : row.kind === 'after' ? 'after the epoch' : spanWords(row.fromMs, row.toMs)
+    row.kind === 'before'
+      ? 'before the epoch'
+      : row.kind === 'after'
+        ? 'after the epoch'
+        : spanWords(row.fromMs, row.toMs)
   return { id, tone: 'after', rows: [{ plain: where }, { strong: share }] }
+}
+
+const ON_EDGE = 9
+
+function onEdges({ x, anchor }: LabelPlace, width: number, edges: readonly number[]): number {
+  const left = anchor === 'start' ? x : anchor === 'end' ? x - width : x - width / 2
+  return ON_EDGE * edges.filter((edge) => edge > left - 3 && edge < left + width + 3).length
 }
 
 /** Everywhere around the stretch, the nearer to its area the better. */

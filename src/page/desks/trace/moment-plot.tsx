@@ -53,15 +53,22 @@ export function MomentPlot({ tracing, axis, baseline, polarity, marked, ...props
     [density, frame, x, y],
   )
   const window = traced.atMs === null ? traced.window : null
+  const edges = useMemo(
+    () =>
+      [window, baseline === 'none' ? null : baseline].flatMap((some) =>
+        some ? [x.toPixel(some.fromMs), x.toPixel(some.toMs)] : [],
+      ),
+    [window, baseline, x],
+  )
   const labels = useMemo(
     () =>
       momentLabels({
-        ...{ frame, x, y, axis, density, rows, courses },
+        ...{ frame, x, y, axis, density, rows, courses, edges },
         unit: traced.unit,
         own: traced.atMs === null ? 'the score window' : `around ${momentWords(traced.atMs)}`,
         taken: stretches.map(({ sample }) => around(x.toPixel(moments.timesMs[sample]), frame.bottom, 8)),
       }),
-    [frame, x, y, axis, density, rows, courses, traced, stretches, moments],
+    [frame, x, y, axis, density, rows, courses, edges, traced, stretches, moments],
   )
   const band = window ? ([x.toPixel(window.fromMs), x.toPixel(window.toMs)] as const) : undefined
   return (

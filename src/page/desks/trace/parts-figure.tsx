@@ -4,6 +4,7 @@ import { FigureFrame, type Frame, linearScale, textWidth } from '../../../plot/i
 import type { PartTrace } from '../../../evidence/trace-by-component.ts'
 import { fixed, traceValueWords } from '../../../words/index.ts'
 import { FigureHead } from '../../figure-head.tsx'
+import { Unspoken } from '../../label-text.tsx'
 
 interface PartsFigureProps {
   title: string
@@ -41,7 +42,9 @@ export function PartsFigure({ title, parts, asked, caption, fileName }: PartsFig
   const svg = useRef<SVGSVGElement>(null)
   const bars = barsOf(parts)
   const { value, unit } = parts
-  const said = bars.map(({ name, share, percent }) => `${name} ${digits(share, unit)} ${unit}${percentWords(percent, ', ')}`)
+  const said = bars.map(
+    ({ name, share, percent }) => `${name} ${digits(share, unit)} ${unit}${percentWords(percent, ', ')}`,
+  )
   return (
     <>
       <FigureHead title={title} svg={svg} caption={caption} fileName={fileName}>
@@ -107,12 +110,17 @@ function Bars({ frame, bars, value, unit, asked, hasPercent }: BarsProps) {
     </g>
   )
   return (
-    <g aria-hidden="true">
+    <Unspoken>
       {bars.map((bar, i) => row(bar, frame.top + ROW * i, false))}
       {row({ name: total, share: value, percent: 100 }, sumTop, true)}
-      <path d={`M${frame.left},${sumTop - 2.5}H${frame.right}`} stroke="var(--rule-strong)" strokeWidth={1.5} fill="none" />
+      <path
+        d={`M${frame.left},${sumTop - 2.5}H${frame.right}`}
+        stroke="var(--rule-strong)"
+        strokeWidth={1.5}
+        fill="none"
+      />
       <path d={`M${zero},${frame.top}V${frame.bottom}`} stroke="var(--quiet)" strokeWidth={1} fill="none" />
-    </g>
+    </Unspoken>
   )
 }
 

@@ -1,5 +1,6 @@
 /** Trace-back: where a value comes from, by moment, by component or condition, and by stage. */
 import { useMemo, useState } from 'react'
+import type { PartTrace } from '../../../evidence/trace-by-component.ts'
 import type { Evaluation } from '../../../state/evaluation.ts'
 import type { Tracing } from '../../../state/evaluate-trace.ts'
 import { sharesCsv, stagesCsv } from '../../../state/trace-csv.ts'
@@ -29,7 +30,7 @@ export function TraceDesk({ workspace, shown, caption }: DeskProps) {
   const { evaluation, of } = shown
   if (!evaluation || !of) return null
   return (
-    <div className={shown.stale ? 'desk trace-desk stale' : 'desk trace-desk'} aria-busy={shown.working}>
+    <div className={shown.stale ? 'desk trace-desk wraps stale' : 'desk trace-desk wraps'} aria-busy={shown.working}>
       <Account {...{ evaluation, of, workspace, caption }} />
     </div>
   )
@@ -140,15 +141,25 @@ function Traced(props: TracedProps) {
         </div>
         <div className="figure-body">
           {components ? (
-            <PartsFigure title="By component" parts={components} fileName="trace-back-by-component" {...{ asked, caption }} />
+            <PartsFigure
+              title="By component"
+              parts={components}
+              fileName="trace-back-by-component"
+              {...{ asked, caption }}
+            />
           ) : null}
           {conditions ? (
-            <PartsFigure title="By condition" parts={conditions} fileName="trace-back-by-condition" {...{ asked, caption }} />
+            <PartsFigure
+              title="By condition"
+              parts={signedNames(conditions, of)}
+              fileName="trace-back-by-condition"
+              {...{ asked, caption }}
+            />
           ) : null}
           <p className="small quiet desk-hint">
             {components ? null : 'A built waveform has components; a recorded one has moments only. '}
-            To trace another value, change the phrase in the question above, or click a point on the time figure (by keyboard:
-            T on its cursor).
+            To trace another value, change the phrase in the question above, or click a point on the time figure (by
+            keyboard: T on its cursor).
           </p>
         </div>
       </div>
@@ -180,4 +191,12 @@ function Traced(props: TracedProps) {
       <StageTable {...{ tracing, asked }} csv={() => stagesCsv(tracing, asked, of, samplingRateHz)} />
     </>
   )
+}
+
+/** The condition that is subtracted says so. */
+export function signedNames(conditions: PartTrace, { shown }: Workspace): PartTrace {
+  const rows = conditions.rows.map((row, i) =>
+    i === 1 && row.name === shown.difference?.second ? { ...row, name: `minus ${row.name}` } : row,
+  )
+  return { ...conditions, rows }
 }
