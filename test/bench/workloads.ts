@@ -1,6 +1,7 @@
-import { correctBaseline, scoreOf, scoreWeights } from '../../src/erp/index.ts'
+import { correctBaseline, defaultNoise, scoreOf, scoreWeights } from '../../src/erp/index.ts'
 import type { Score } from '../../src/erp/index.ts'
 import { effectiveWindow } from '../../src/evidence/effective-window.ts'
+import { computeCell, prepareMap } from '../../src/evidence/trade-off-map.ts'
 import { applyChain } from '../../src/filter/apply-chain.ts'
 import { chainResponse, designChain } from '../../src/filter/index.ts'
 import type { Pass, StageSpec } from '../../src/filter/index.ts'
@@ -136,6 +137,37 @@ export function sweepByAdjoint(averages: readonly Float64Array[]): Float64Array 
       let sum = 0
       for (let i = 0; i < EPOCH; i++) sum += g[i - start]! * x[i]!
       scores[f * averages.length + a] = sum
+    }
+  }
+  return scores
+}
+
+/** W5 as the page asks it: two trade-off maps, high- and low-pass, the exact noise of every filter included. */
+export function sweepByMap(averages: readonly Float64Array[]): Float64Array {
+  const scores = new Float64Array(FILTERS * averages.length)
+  for (const [p, pass] of (['high', 'low'] as const).entries()) {
+    const prepared = prepareMap({
+      samplingRateHz: RATE,
+      timesMs: TIMES_MS,
+      chain: [],
+      place: { at: 0, replaces: false },
+      candidate: { design: 'butterworth', pass, meaning: 'design', direction: 'both' },
+      cutoffsHz: Array.from({ length: 40 }, (_, i) => (pass === 'high' ? 0.1 : 5) * 20 ** (i / 39)),
+      rollOffs: [1, 2, 3, 4],
+      extent: 'epochs',
+      baseline: BASELINE,
+      scores: [{ score: MEAN, noise: 'with noise' }],
+      waveforms: averages.map((values) => ({ kind: 'recorded', values })),
+      noise: defaultNoise(),
+      noisePassed: 'nothing',
+      trials: 40,
+      seed: 1,
+    })
+    for (let index = 0; index < FILTERS / 2; index++) {
+      const cell = computeCell(prepared, index)
+      // sweepFilter counts passes fastest, then orders, then cutoffs
+      const f = 2 * (4 * cell.cutoffIndex + cell.rollOffIndex) + p
+      scores.set(cell.scores[0]!.after, f * averages.length)
     }
   }
   return scores
