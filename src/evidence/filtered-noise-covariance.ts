@@ -3,7 +3,7 @@ import type { NoiseSpec } from '../erp/noise.ts'
 import { forwardTransform, inverseTransform, nextPowerOfTwo, realTransform } from '../filter/fourier.ts'
 import { type ActingStages, beforeEpochStages } from './acting-stages.ts'
 import { spectrumAfter } from './filtered-noise.ts'
-import { rowProducts } from './row-products.ts'
+import { symmetricProducts } from './row-products.ts'
 import { varianceOfWeights } from './variance-of-weights.ts'
 
 /**
@@ -62,7 +62,7 @@ export function noiseMatrix(
     before.set(beforeEpochStages(stages, row), k * n)
   }
   const middle = toeplitzTimesRows(lags, before, count)
-  return symmetrised(rowProducts(before, count, middle, count, n), count)
+  return symmetricProducts(before, middle, count, n)
 }
 
 function toeplitz(lags: Float64Array): Float64Array {
@@ -100,16 +100,4 @@ function toeplitzTimesRows(lags: Float64Array, rows: Float64Array, count: number
     if (k + 1 < count) out.set(product.im.subarray(0, n), (k + 1) * n)
   }
   return out
-}
-
-/** Rounding leaves the two triangles apart by next to nothing. */
-function symmetrised(matrix: Float64Array, n: number): Float64Array {
-  for (let i = 0; i < n; i++) {
-    for (let j = 0; j < i; j++) {
-      const mean = (matrix[i * n + j] + matrix[j * n + i]) / 2
-      matrix[i * n + j] = mean
-      matrix[j * n + i] = mean
-    }
-  }
-  return matrix
 }

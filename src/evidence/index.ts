@@ -105,3 +105,5 @@ export type { LateOnlyVerdict, VerdictConditions, VerdictGrounds } from './late-
 export { robustOf, robustOptions, type RobustVariant, type RobustVerdict, robustVerdict } from './robust-verdict.ts'
 export { latestOnset, type OnsetRow, type OnsetScan, type ScanProgress, scanOnsets } from './onset-scan.ts'
 export { type BumpOptions, type BumpRow, type BumpScan, scanBumps } from './bump-scan.ts'
+export type { CalibrationRow } from './calibration-row.ts'
+export { CALIBRATION } from './calibration-table.ts'

@@ -25,9 +25,16 @@ export function rowProducts(
 
 /** a·aᵀ, rows × rows values: half the work. */
 export function gramOfRows(a: Float64Array, rows: number, length: number): Float64Array {
-  if (a.length < rows * length) throw new RangeError(`a must hold ${rows} rows of ${length} values, had ${a.length}`)
+  return symmetricProducts(a, a, rows, length)
+}
+
+/** a·bᵀ where that is known to be symmetric, rows × rows values: half the work, and symmetric to the last bit. */
+export function symmetricProducts(a: Float64Array, b: Float64Array, rows: number, length: number): Float64Array {
+  if (a.length < rows * length || b.length < rows * length) {
+    throw new RangeError(`matrices must hold ${rows} rows of ${length} values, had ${a.length} and ${b.length} values`)
+  }
   const out = new Float64Array(rows * rows)
-  for (let i = 0; i < rows; i += 2) for (let j = 0; j <= i; j += 2) tile(a, rows, a, rows, length, i, j, out)
+  for (let i = 0; i < rows; i += 2) for (let j = 0; j <= i; j += 2) tile(a, rows, b, rows, length, i, j, out)
   for (let i = 0; i < rows; i++) for (let j = 0; j < i; j++) out[j * rows + i] = out[i * rows + j]
   return out
 }
