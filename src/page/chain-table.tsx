@@ -60,7 +60,9 @@ export function ChainTable({ evaluation, children }: { evaluation: Evaluation; c
             <Sample whole />
             whole chain
           </td>
-          <td colSpan={3}>{table.some((row) => !row.inData) ? `reach ${reachText(reach)}${unseen}` : 'no filter is applied'}</td>
+          <td colSpan={3}>
+            {table.some((row) => !row.inData) ? `reach ${reachText(reach)}${unseen}` : 'no filter is applied'}
+          </td>
         </tr>
       </tbody>
       {children}

@@ -65,9 +65,7 @@ export function frequencyInWords(evaluation: Evaluation, shows: View['frequencyS
     `The whole chain passes half the amplitude ${points(halfAmplitudeHz)} and half the power ${points(halfPowerHz)}`,
     `and at most ${fixed(100 * largest(frequency.gain), 0)} % of the amplitude.`,
     names.length > 0 ? `Stages: ${list(names)}.` : 'There is no stage.',
-    ...pins.flatMap((pin) =>
-      'reason' in pin ? [] : [`Pinned ${pin.name}: ${halvesOf(frequency.hz, pin.gain)}.`],
-    ),
+    ...pins.flatMap((pin) => ('reason' in pin ? [] : [`Pinned ${pin.name}: ${halvesOf(frequency.hz, pin.gain)}.`])),
     'Behind it the amplitude spectra of the waveform before and after, and of the noise, to their own scales.',
   ].join(' ')
 }
@@ -81,5 +79,7 @@ function halvesOf(hz: Float64Array, gain: Float64Array): string {
     found.push(hz[i - 1] * (hz[i] / hz[i - 1]) ** (a / (a - b)))
   }
   if (found.length === 0) return 'half the amplitude nowhere on the axis'
-  return found.length > 4 ? `half the amplitude at ${found.length} points` : `half the amplitude at ${list(found.map(hzText))}`
+  return found.length > 4
+    ? `half the amplitude at ${found.length} points`
+    : `half the amplitude at ${list(found.map(hzText))}`
 }

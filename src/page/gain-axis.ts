@@ -23,11 +23,7 @@ export interface GainAxis {
 }
 
 /** @param pinned  gains of pinned chains, which are drawn as well. */
-export function gainAxis(
-  frequency: FrequencyFigure,
-  unit: GainUnit,
-  pinned: readonly Float64Array[] = [],
-): GainAxis {
+export function gainAxis(frequency: FrequencyFigure, unit: GainUnit, pinned: readonly Float64Array[] = []): GainAxis {
   const drawn = [frequency.gain, ...frequency.stages.map((stage) => stage.gain), ...pinned]
   const highest = Math.max(1, ...drawn.map(largest))
   if (unit === 'percent') {

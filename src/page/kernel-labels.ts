@@ -1,5 +1,12 @@
 import { textWidth } from '../plot/axis-layout.ts'
-import { type LabelBox, type LabelPlace, type LabelWish, type PlacedLabel, placeLabels, placesAlong } from '../plot/place-labels.ts'
+import {
+  type LabelBox,
+  type LabelPlace,
+  type LabelWish,
+  type PlacedLabel,
+  placeLabels,
+  placesAlong,
+} from '../plot/place-labels.ts'
 import type { KernelWords } from './kernel-shape.ts'
 
 /** What is said at the right end of a step response. */
@@ -25,7 +32,11 @@ interface WordsRoom {
 /** The words on the reach as one block where the curve leaves room, right before left, top before bottom; else line by line. */
 export function placeWords({ words, end, endX, endY, limits, course, others = [], taken }: WordsRoom) {
   const { left, right, top, bottom } = limits
-  const room = { limits, taken, courses: [course, ...others.map((other) => other.course)].map((heights) => ({ heights, weight: 3 })) }
+  const room = {
+    limits,
+    taken,
+    courses: [course, ...others.map((other) => other.course)].map((heights) => ({ heights, weight: 3 })),
+  }
   const lines = [words.reach, ...words.more].map((text, row) => ({ text, strong: row === 0 }))
   const widthOf = ({ text, strong }: { text: string; strong: boolean }) => textWidth(text) * (strong ? 1.06 : 1)
   const wishOf = (width: number, height: number): LabelWish => {
@@ -53,7 +64,9 @@ export function placeWords({ words, end, endX, endY, limits, course, others = []
   /** The names of the pinned curves, around what stands already. */
   const namesAround = (standing: readonly (PlacedLabel | null)[]) => {
     const boxes = standing.flatMap((place) => (place ? [place.box] : []))
-    const wishes = others.map((other, i) => nameWish(other, [course, ...others.filter((_, j) => j !== i).map((o) => o.course)], left))
+    const wishes = others.map((other, i) =>
+      nameWish(other, [course, ...others.filter((_, j) => j !== i).map((o) => o.course)], left),
+    )
     const placed = placeLabels(wishes, { ...room, taken: [...taken, ...boxes] })
     return placed.flatMap((place, i) => (place ? [{ text: others[i].name, ...place }] : []))
   }

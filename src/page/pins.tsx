@@ -29,7 +29,6 @@ export function PinRows({ workspace, evaluation, broken }: PinRowsProps) {
         const name = names[i]
         const result = evaluation.pins[i]
         return (
-          // biome-ignore lint/suspicious/noArrayIndexKey: a pin is its place: it keeps line and column there
           <PinRow key={i} index={i} name={name} present={isInUse(workspace, i)}>
             {result && 'reason' in result && pins.length === evaluation.pins.length ? result.reason : null}
           </PinRow>
@@ -42,7 +41,8 @@ export function PinRows({ workspace, evaluation, broken }: PinRowsProps) {
           </QuietAction>
         </td>
         <td colSpan={3} className="quiet" id={`${PIN}-why`}>
-          {why ?? (pins.length === 0 ? 'keeps its curves beside those of the next' : `${pins.length} of ${MAX_PINS} kept`)}
+          {why ??
+            (pins.length === 0 ? 'keeps its curves beside those of the next' : `${pins.length} of ${MAX_PINS} kept`)}
         </td>
       </tr>
     </tbody>

@@ -22,12 +22,12 @@ interface PinCellsProps {
   pins: readonly DrawnPin[]
   unit: FidelityRow['unit']
   /** The pin's value, or why there is none; undefined where the row has no counterpart. */
-  valueOf: (result: DrawnPin['result']) => FidelityRow['after'] | undefined
+  read: (result: DrawnPin['result']) => FidelityRow['after'] | undefined
 }
 
-export function PinCells({ pins, unit, valueOf }: PinCellsProps) {
+export function PinCells({ pins, unit, read }: PinCellsProps) {
   return pins.map(({ index, result }) => {
-    const value = valueOf(result)
+    const value = read(result)
     return (
       <td key={index} className="pin-cell">
         {value === undefined ? '–' : valueWords(value, unit)}
@@ -41,7 +41,6 @@ export function PinCells({ pins, unit, valueOf }: PinCellsProps) {
 export function FailedPins({ pins }: { pins: Evaluation['pins'] }) {
   return pins.map((pin, i) =>
     'reason' in pin ? (
-      // biome-ignore lint/suspicious/noArrayIndexKey: a pin is its place
       <p key={i} className="footnote">
         No column for the pinned {pin.name}: {pin.reason}
       </p>

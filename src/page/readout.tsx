@@ -99,7 +99,7 @@ export function Readout({ evaluation, workspace }: ReadoutProps) {
               <>
                 <Cell value={valueWords(precision.before, precision.unit)} unit={precision.unit} />
                 <Cell value={valueWords(precision.after, precision.unit)} unit={precision.unit} />
-                <PinCells pins={pins} unit={precision.unit} valueOf={(result) => result.precision?.after} />
+                <PinCells pins={pins} unit={precision.unit} read={(result) => result.precision?.after} />
                 <Cell value={changeWords(precision.change, precision.unit)} unit={precision.unit} />
                 <td className="percent">{signed((100 * precision.change) / precision.before, 0)} %</td>
                 <td className="quiet">no limit</td>
@@ -151,7 +151,7 @@ function Row(props: { row: FidelityRow; limits: Limits; begins: boolean; pins: D
       </th>
       <Cell value={valueWords(row.before, row.unit)} unit={row.unit} />
       <Cell value={valueWords(row.after, row.unit)} unit={row.unit} />
-      <PinCells pins={pins} unit={row.unit} valueOf={({ rows }) => rows.find(({ id }) => id === row.id)?.after} />
+      <PinCells pins={pins} unit={row.unit} read={({ rows }) => rows.find(({ id }) => id === row.id)?.after} />
       {row.change === null ? <td className="quiet">–</td> : <Cell value={changeWords(row.change, row.unit)} unit={row.unit} />}
       <td className="percent" title={row.percentOf === 'largest' ? 'of the waveform’s largest value, since the value before is small' : undefined}>
         {row.percent === null ? '' : `${signed(row.percent, 0)} %${row.percentOf === 'largest' ? '*' : ''}`}

@@ -83,7 +83,16 @@ function largest(values: Float64Array): number {
   return values.reduce((most, value) => Math.max(most, Math.abs(value)), 0)
 }
 
-export function WindowPlot({ window, workspace, axis, windows, cursor, scale, pins = NO_PINS, ...props }: WindowPlotProps) {
+export function WindowPlot({
+  window,
+  workspace,
+  axis,
+  windows,
+  cursor,
+  scale,
+  pins = NO_PINS,
+  ...props
+}: WindowPlotProps) {
   const frame = useFrame(props.frame)
   const { score } = workspace
   const x = useMemo(() => linearScale([axis.fromMs, axis.toMs], [frame.left, frame.right]), [axis, frame])

@@ -41,10 +41,7 @@ function DrawnWindow(props: SharedAxis & { window: WindowFigure }) {
     return [`; pinned ${name} ${weightText(pinnedWeight, score)}`]
   })
   const cursorMs = axis.firstMs + cursor * axis.stepMs
-  const [weight] = perHundredMs(
-    window.filtered.subarray(at, at + 1),
-    axis.stepMs,
-  )
+  const [weight] = perHundredMs(window.filtered.subarray(at, at + 1), axis.stepMs)
   const unit = score.kind === 'area' ? 'weight in s per 100 ms' : 'weight per 100 ms'
   const extent = evaluation.unseenBySample ? 'epochs' : 'continuous'
   const outside = outsideWords(window.shareOutside, extent)

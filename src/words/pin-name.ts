@@ -117,7 +117,11 @@ function placeOf(spec: StageSpec): string {
   }
 }
 
-const MEANING_WORD = { 'half-amplitude': 'half-amplitude', 'half-power': 'half-power', design: 'design cutoff' } as const
+const MEANING_WORD = {
+  'half-amplitude': 'half-amplitude',
+  'half-power': 'half-power',
+  design: 'design cutoff',
+} as const
 const DELAY_WORD = { compensated: 'zero-phase', causal: 'causal', 'minimum-phase': 'minimum-phase' } as const
 
 /** Two stages of one short name: the first one's name with what it has otherwise, at most two things. */
@@ -136,7 +140,8 @@ function otherwise(spec: StageSpec, other: StageSpec): string {
   if ('delay' in spec && 'delay' in other && spec.delay !== other.delay) parts.push(DELAY_WORD[spec.delay])
   if (spec.design === 'windowed-sinc' && other.design === 'windowed-sinc') {
     if (spec.transitionHz !== other.transitionHz) parts.push(`transition ${brief(spec.transitionHz, 4)} Hz`)
-    if (JSON.stringify(spec.window) !== JSON.stringify(other.window)) parts.push(`${WINDOW_WORD[spec.window.name]} window`)
+    if (JSON.stringify(spec.window) !== JSON.stringify(other.window))
+      parts.push(`${WINDOW_WORD[spec.window.name]} window`)
   }
   if (spec.design === 'notch' && other.design === 'notch') {
     if (spec.bandwidthHz !== other.bandwidthHz) parts.push(`${brief(spec.bandwidthHz, 4)} Hz wide`)
