@@ -136,5 +136,6 @@ describe('scoreVariance', () => {
         expect(Math.abs(square - exact), name).toBeLessThan(SDS * error + 1e-12)
       })
     },
+    600_000,
   )
 })
