@@ -23,7 +23,7 @@ interface MomentFigureProps {
   onMark: (row: number | null) => void
 }
 
-const HEIGHT = 196
+const HEIGHT = 204
 
 export function MomentFigure({ tracing, axis, baseline, question, caption, marked, onMark }: MomentFigureProps) {
   const svg = useRef<SVGSVGElement>(null)

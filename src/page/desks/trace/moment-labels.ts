@@ -51,7 +51,7 @@ function textOf({ rows, unit, own }: MomentLabels, i: number): LabelText {
   return { id, tone: 'after', rows: [{ plain: where }, { strong: share }] }
 }
 
-const ON_EDGE = 9
+const ON_EDGE = 14
 
 function onEdges({ x, anchor }: LabelPlace, width: number, edges: readonly number[]): number {
   const left = anchor === 'start' ? x : anchor === 'end' ? x - width : x - width / 2

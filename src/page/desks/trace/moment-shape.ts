@@ -74,7 +74,7 @@ export function labelledRows(rows: readonly MomentRow[], axis: TimeAxis): number
 }
 
 /** Room above and below the curve for labels, as a part of what it spans. */
-const ROOM = 0.14
+const ROOM = 0.2
 
 /** Values at the bottom and the top of the figure; upside down where negative is up. */
 export function densityDomain({ values }: Density, polarity: 'up' | 'down'): [number, number] {

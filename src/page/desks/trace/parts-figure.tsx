@@ -79,9 +79,12 @@ interface BarsProps {
 }
 
 function Bars({ frame, bars, value, unit, asked, hasPercent }: BarsProps) {
-  const total = asked.replace(/^the /, '')
+  const most = frame.plotWidth * 0.36
+  const full = asked.replace(/^the /, '')
+  // a long phrase stands in the question already
+  const total = textWidth(full) * 1.06 + 12 > most ? 'sum' : full
   const nameWidth = Math.min(
-    frame.plotWidth * 0.36,
+    most,
     Math.max(...[...bars.map(({ name }) => name), total].map((name) => textWidth(name) * 1.06)) + 12,
   )
   const percentWidth = hasPercent ? 54 : 0

@@ -176,13 +176,15 @@ function Traced(props: TracedProps) {
             {trust.exceeded ? 'Unseen share above the limit: see the warning. ' : `${trustWords(trust)} `}
             <span className="quiet">
               A share of weight, not of µV, so it is not summed. The page warns above{' '}
-              <Token
-                id="trace-threshold"
-                className="small"
-                text={`${exact(Number((trust.threshold * 100).toPrecision(10)))} %`}
-                label="unseen share that is too much"
-              />
-              .
+              <span className="phrase">
+                <Token
+                  id="trace-threshold"
+                  className="small"
+                  text={`${exact(Number((trust.threshold * 100).toPrecision(10)))} %`}
+                  label="unseen share that is too much"
+                />
+                .
+              </span>
             </span>
           </p>
           {editing === 'trace-threshold' ? <TraceThresholdEditor workspace={workspace} /> : null}
