@@ -9,6 +9,7 @@ export default defineConfig({
   test: {
     include: ['test/**/*.test.ts', 'test/**/*.test.tsx'],
     environment: 'node',
+    setupFiles: ['test/setup.ts'],
     testTimeout: 60_000,
   },
 })
