@@ -1,13 +1,13 @@
 import { gramOfRows, rowProducts } from './row-products.ts'
-import { symmetricEigen } from './symmetric-eigen.ts'
+import { fromTridiagonal, toTridiagonal, type Tridiagonal, tridiagonal } from './symmetric-eigen.ts'
 
 /**
  * Restricted maximum likelihood of two variance components s, a ≥ 0 in y = X·b + n, n of covariance I + s·Λ + a·VVᵀ with Λ
  * diagonal and V of few columns. The negative restricted log-likelihood (without constants, doubled) is
  * log|M| + log|XᵀM⁻¹X| + yᵀPy, P = M⁻¹ − M⁻¹X(XᵀM⁻¹X)⁻¹XᵀM⁻¹.
  *
- * For a given s the eigenvalues of Vᵀ(I + sΛ)⁻¹V make every a next to free, so that a is searched for on its whole range at each s, and s on
- * its own whole range.
+ * For a given s, G = Vᵀ(I + sΛ)⁻¹V in tridiagonal form makes every a next to free (I + aG is factored in as many steps as V has columns),
+ * so that a is searched for on its whole range at each s, and s on its own whole range.
  *
  * @see Patterson & Thompson, Biometrika 58, 545–554, 1971; Harville, J. Am. Stat. Assoc. 72, 320–338, 1977.
  */
@@ -28,9 +28,9 @@ export interface VarianceComponents {
 interface AtScale {
   readonly inverse: Float64Array
   readonly logDeterminant: number
-  readonly mu: Float64Array
-  readonly vectors: Float64Array
-  /** Vᵀ(I + sΛ)⁻¹ in the eigenvectors' coordinates times the two columns of X. */
+  /** G = Q·T·Qᵀ. */
+  readonly inner: Tridiagonal
+  /** Qᵀ·Vᵀ(I + sΛ)⁻¹ times the two columns of X. */
   readonly fixedParts: readonly [Float64Array, Float64Array]
 }
 
@@ -47,7 +47,7 @@ export interface RestrictedFit {
 
 /** Values of s that are looked at first: decades. */
 const SCALES = [0, ...Array.from({ length: 9 }, (_, k) => 10 ** (-4 + k))]
-/** Values of a that are looked at first, over 1/μ of the largest eigenvalue: half decades. */
+/** Values of a that are looked at first, over 1 by the largest diagonal element of T: half decades. */
 const RELATIVE = [0, ...Array.from({ length: 27 }, (_, k) => 10 ** (-3 + k / 2))]
 
 /** @throws RangeError where the first column of X cannot be told from nothing, or from the second. */
@@ -95,12 +95,12 @@ interface Trial {
 
 /** Every a at one s. */
 function trialsAt(problem: VarianceComponents, scale: AtScale, s: number, y: Float64Array): (a: number) => Trial {
-  const { inverse, mu, fixedParts, vectors } = scale
+  const { inverse, inner, fixedParts } = scale
   const { size, fixed, rank, columns } = problem
   const weighted = new Float64Array(size)
   for (let i = 0; i < size; i++) weighted[i] = inverse[i] * y[i]
-  const ofY = rowProducts(vectors, rank, rowProducts(columns, rank, weighted, 1, size), 1, rank)
-  const parts = [fixedParts[0], fixedParts[1], ofY]
+  const p2 = toTridiagonal(inner, rowProducts(columns, rank, weighted, 1, size))
+  const [p0, p1] = fixedParts
   const raw = [
     product(inverse, fixed[0], fixed[0]),
     product(inverse, fixed[0], fixed[1]),
@@ -108,38 +108,49 @@ function trialsAt(problem: VarianceComponents, scale: AtScale, s: number, y: Flo
     dot(fixed[0], weighted),
     dot(fixed[1], weighted),
     dot(y, weighted),
-  ]
-  const pairs = [
-    [0, 0],
-    [0, 1],
-    [1, 1],
-    [0, 2],
-    [1, 2],
-    [2, 2],
-  ].map(([i, j]) => Float64Array.from({ length: rank }, (_, r) => parts[i][r] * parts[j][r]))
+  ] as const
   return (a) => {
-    const products = raw.slice() as [number, number, number, number, number, number]
+    let [x00, x01, x11, x0y, x1y, yy] = raw
     let logDeterminant = scale.logDeterminant
     if (a > 0) {
+      // I + aT = L·D·Lᵀ, one row after another, with z = L⁻¹·p for the three columns
+      let pivot = 1
+      let [z0, z1, z2] = [0, 0, 0]
+      let determinant = 1
       for (let r = 0; r < rank; r++) {
-        const taken = a / (1 + a * mu[r])
-        logDeterminant += Math.log1p(a * mu[r])
-        for (let p = 0; p < 6; p++) products[p] -= taken * pairs[p][r]
+        const off = r === 0 ? 0 : a * inner.beside[r - 1]
+        const l = off / pivot
+        pivot = 1 + a * inner.diagonal[r] - l * off
+        z0 = p0[r] - l * z0
+        z1 = p1[r] - l * z1
+        z2 = p2[r] - l * z2
+        const taken = a / pivot
+        x00 -= taken * z0 * z0
+        x01 -= taken * z0 * z1
+        x11 -= taken * z1 * z1
+        x0y -= taken * z0 * z2
+        x1y -= taken * z1 * z2
+        yy -= taken * z2 * z2
+        determinant *= pivot
+        if (determinant > 1e200) {
+          logDeterminant += Math.log(determinant)
+          determinant = 1
+        }
       }
+      logDeterminant += Math.log(determinant)
     }
-    const [x00, x01, x11, x0y, x1y, yy] = products
     const determinant = x00 * x11 - x01 * x01
     const explained = (x11 * x0y * x0y - 2 * x01 * x0y * x1y + x00 * x1y * x1y) / determinant
-    return { value: logDeterminant + Math.log(determinant) + yy - explained, s, a, products }
+    const value = logDeterminant + Math.log(determinant) + yy - explained
+    return { value, s, a, products: [x00, x01, x11, x0y, x1y, yy] }
   }
 }
 
 function bestAt(problem: VarianceComponents, s: number, y: Float64Array, keep: boolean): Trial {
   const scale = atScale(problem, s, keep)
-  const { mu } = scale
   const trialAt = trialsAt(problem, scale, s, y)
   let largest = 0
-  for (let r = 0; r < mu.length; r++) largest = Math.max(largest, mu[r])
+  for (const value of scale.inner.diagonal) largest = Math.max(largest, value)
   let best = trialAt(0)
   if (largest === 0) return best
   let k = 0
@@ -172,19 +183,12 @@ function atScale(problem: VarianceComponents, s: number, keep: boolean): AtScale
   const weighted = new Float64Array(rank * size)
   for (let r = 0; r < rank; r++)
     for (let i = 0; i < size; i++) weighted[r * size + i] = roots[i] * columns[r * size + i]
-  const inner = gramOfRows(weighted, rank, size)
-  const { values, vectors } = symmetricEigen(inner, rank)
+  const inner = tridiagonal(gramOfRows(weighted, rank, size), rank)
   const turned = (x: Float64Array) => {
     const rooted = x.map((value, i) => roots[i] * value)
-    return rowProducts(vectors, rank, rowProducts(weighted, rank, rooted, 1, size), 1, rank)
+    return toTridiagonal(inner, rowProducts(weighted, rank, rooted, 1, size))
   }
-  const made: AtScale = {
-    inverse,
-    logDeterminant,
-    mu: values.map((value) => Math.max(0, value)),
-    vectors,
-    fixedParts: [turned(fixed[0]), turned(fixed[1])],
-  }
+  const made: AtScale = { inverse, logDeterminant, inner, fixedParts: [turned(fixed[0]), turned(fixed[1])] }
   if (keep) problem.kept.set(s, made)
   return made
 }
@@ -209,17 +213,25 @@ function leastSquares({ s, a, products }: Trial): RestrictedFit {
 
 /** M⁻¹·v with M = I + sΛ + aVVᵀ. */
 export function solveComponents(problem: VarianceComponents, s: number, a: number, v: Float64Array): Float64Array {
-  const { inverse, mu, vectors } = atScale(problem, s, false)
+  const { inverse, inner } = atScale(problem, s, false)
   const { size, columns, rank } = problem
   const out = new Float64Array(size)
   for (let i = 0; i < size; i++) out[i] = inverse[i] * v[i]
   if (a === 0) return out
-  const parts = rowProducts(vectors, rank, rowProducts(columns, rank, out, 1, size), 1, rank)
-  for (let r = 0; r < rank; r++) parts[r] *= a / (1 + a * mu[r])
-  const back = new Float64Array(rank)
-  for (let r = 0; r < rank; r++) for (let q = 0; q < rank; q++) back[q] += parts[r] * vectors[r * rank + q]
+  const parts = toTridiagonal(inner, rowProducts(columns, rank, out, 1, size))
+  // (I + aT)⁻¹ by its factors
+  const pivots = new Float64Array(rank)
+  for (let r = 0; r < rank; r++) {
+    const off = r === 0 ? 0 : a * inner.beside[r - 1]
+    pivots[r] = 1 + a * inner.diagonal[r] - (r === 0 ? 0 : (off * off) / pivots[r - 1])
+    if (r > 0) parts[r] -= (off / pivots[r - 1]) * parts[r - 1]
+  }
+  for (let r = rank - 1; r >= 0; r--) {
+    parts[r] = (parts[r] - (r + 1 < rank ? a * inner.beside[r] * parts[r + 1] : 0)) / pivots[r]
+  }
+  const back = fromTridiagonal(inner, parts)
   for (let q = 0; q < rank; q++) {
-    for (let i = 0; i < size; i++) out[i] -= back[q] * inverse[i] * columns[q * size + i]
+    for (let i = 0; i < size; i++) out[i] -= a * back[q] * inverse[i] * columns[q * size + i]
   }
   return out
 }

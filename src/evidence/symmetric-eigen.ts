@@ -22,13 +22,53 @@ export function symmetricEigen(matrix: Float64Array, size: number): SymmetricEig
   for (let i = 0; i < matrix.length; i++) {
     if (!Number.isFinite(matrix[i])) throw new RangeError(`matrix must be finite, value ${i} was ${matrix[i]}`)
   }
-  const a = matrix.slice()
-  const diagonal = new Float64Array(size)
-  const beside = new Float64Array(size)
-  const scales = tridiagonalise(a, size, diagonal, beside)
-  const vectors = reflections(a, size, scales)
+  const { diagonal, beside, reflectors, scales } = tridiagonal(matrix, size)
+  const vectors = reflections(reflectors, size, scales)
   implicitQl(diagonal, beside, vectors, size)
   return { size, values: diagonal, vectors }
+}
+
+/** A = Q·T·Qᵀ, T tridiagonal and Q a product of reflections. */
+export interface Tridiagonal {
+  readonly size: number
+  readonly diagonal: Float64Array
+  /** beside[k] lies between diagonal[k] and diagonal[k + 1]. */
+  readonly beside: Float64Array
+  /** Row k holds the vector of reflection k, from k + 1 on, and `scales` its factor 2/vᵀv. */
+  readonly reflectors: Float64Array
+  readonly scales: Float64Array
+}
+
+/** Householder's reduction alone, where T serves as well as eigenvalues. The matrix must be finite and is not changed. */
+export function tridiagonal(matrix: Float64Array, size: number): Tridiagonal {
+  const reflectors = matrix.slice()
+  const diagonal = new Float64Array(size)
+  const beside = new Float64Array(size)
+  const scales = tridiagonalise(reflectors, size, diagonal, beside)
+  return { size, diagonal, beside, reflectors, scales }
+}
+
+/** Qᵀ·v. */
+export function toTridiagonal(t: Tridiagonal, v: Float64Array): Float64Array {
+  const out = v.slice()
+  for (let k = 0; k < t.size; k++) reflect(t, k, out)
+  return out
+}
+
+/** Q·v. */
+export function fromTridiagonal(t: Tridiagonal, v: Float64Array): Float64Array {
+  const out = v.slice()
+  for (let k = t.size - 1; k >= 0; k--) reflect(t, k, out)
+  return out
+}
+
+function reflect({ size, reflectors, scales }: Tridiagonal, k: number, v: Float64Array): void {
+  if (scales[k] === 0) return
+  const row = k * size
+  let inner = 0
+  for (let i = k + 1; i < size; i++) inner += reflectors[row + i] * v[i]
+  inner *= scales[k]
+  for (let i = k + 1; i < size; i++) v[i] -= inner * reflectors[row + i]
 }
 
 /** Leaves the reflections' vectors in the rows of `a` (row k from k + 1 on); returns their factors 2/vᵀv. */

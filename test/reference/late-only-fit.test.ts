@@ -37,7 +37,7 @@ const named = (c: FitCase) =>
   `${c.extent}, white ${c.noise.kind === 'model' && c.noise.whiteUv2PerHz}, ${JSON.stringify(c.stages)}`
 
 // s and a lie at the top of a hill that is flat over 1e-5 of them, and the rest hangs on them
-againstReference<FitCase>('late-only-fit.json', 'make_late_only_fit.py', 8, {
+againstReference<FitCase>('late-only-fit.json', 'make_late_only_fit.py', 6, {
   'β, its standard error and c are those of dense matrices in SciPy to 1e-4 standard errors': (cases) => {
     const worst = new Worst()
     for (const c of cases) {
@@ -48,12 +48,12 @@ againstReference<FitCase>('late-only-fit.json', 'make_late_only_fit.py', 8, {
     }
     worst.expectWithinBounds()
   },
-  's and a are those of dense matrices and another optimiser to 1e-4': (cases) => {
+  's and a are those of dense matrices and another optimiser to 1e-4 (a also to 0.001 µV²/Hz)': (cases) => {
     const worst = new Worst()
     for (const c of cases) {
       const { noiseScale, alphaScale } = fitted(c)
       worst.see(Math.abs(noiseScale - c.noiseScale), 1e-4 * c.noiseScale, () => `s of ${named(c)}`)
-      worst.see(Math.abs(alphaScale - c.alphaScale), 1e-4 * c.alphaScale + 1e-4, () => `a of ${named(c)}`)
+      worst.see(Math.abs(alphaScale - c.alphaScale), 1e-4 * c.alphaScale + 1e-3, () => `a of ${named(c)}`)
     }
     worst.expectWithinBounds()
   },
