@@ -1,4 +1,5 @@
 import { notchWarpedEdges } from './notch.ts'
+import { checkCutoffs } from './spec-error.ts'
 import type { ButterworthSpec, CutoffMeaning, StageSpec } from './stage.ts'
 import { edgesHz, passesOf, scaleEdges, type WarpedEdges, warpedEdges, warpedRatio } from './warped-axis.ts'
 import { nominalCutoffsHz } from './windowed-sinc.ts'
@@ -23,11 +24,12 @@ export function butterworthDesignEdges(spec: ButterworthSpec, samplingRateHz: nu
  *
  * @param spec            a valid stage; see `designStage` for the checks.
  * @param samplingRateHz  samples per second.
- * @throws RangeError     where a windowed sinc cannot meet its cutoffs.
+ * @throws RangeError     for cutoffs outside 0 to half the sampling rate, or where a windowed sinc cannot meet them.
  */
 export function designCutoffsHz(spec: StageSpec, samplingRateHz: number): number[] {
   switch (spec.design) {
     case 'butterworth':
+      checkCutoffs(spec.pass, spec.cutoffsHz, samplingRateHz)
       if (spec.meaning === 'design') return [...spec.cutoffsHz]
       return edgesHz(spec.pass, butterworthDesignEdges(spec, samplingRateHz), samplingRateHz)
     case 'windowed-sinc':

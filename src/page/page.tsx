@@ -131,7 +131,7 @@ export function Page() {
               </div>
             </div>
             <div className={shown.stale ? 'stale' : undefined} aria-busy={shown.working}>
-              <Readout evaluation={evaluation} workspace={shown.of} />
+              <Readout evaluation={evaluation} workspace={shown.of} problems={shown.problems} />
             </div>
             <Desks workspace={workspace} shown={shown} caption={caption} />
           </>

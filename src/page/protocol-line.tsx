@@ -20,7 +20,7 @@ const leadingMark = (words: string) => /^[,.;:]/.exec(words)?.[0] ?? ''
 const messageId = (place: number) => `problem-${place}`
 
 /** Id of the message about a token; undefined where there is none. */
-function problemOf(problems: readonly Problem[], id: string): string | undefined {
+export function problemOf(problems: readonly Problem[], id: string): string | undefined {
   const place = problems.findIndex((problem) => concerns(problem, id))
   return place < 0 ? undefined : messageId(place)
 }

@@ -3,7 +3,7 @@ import { useState } from 'react'
 import type { FigureId, Limits } from '../erp/figure.ts'
 import type { FidelityRow } from '../evidence/fidelity.ts'
 import { downloadBlob } from '../plot/index.ts'
-import type { Evaluation } from '../state/evaluation.ts'
+import type { Evaluation, Problem } from '../state/evaluation.ts'
 import { readoutCsv } from '../state/readout-csv.ts'
 import { type Verdict, verdictOf } from '../state/verdict.ts'
 import type { Workspace } from '../state/workspace.ts'
@@ -12,6 +12,7 @@ import { openTrace } from './desks/trace/open-trace.ts'
 import { MultiplesAxis, MultiplesDot } from './multiples.tsx'
 import { type DrawnPin, drawnPins } from './pin-line.tsx'
 import { FailedPins, PinCells, PinColumns, PinHeads } from './readout-pins.tsx'
+import { problemOf } from './protocol-line.tsx'
 import { Token } from './token.tsx'
 
 const GROUP_WORDS = {
@@ -25,9 +26,10 @@ const GROUP_WORDS = {
 interface ReadoutProps {
   evaluation: Evaluation
   workspace: Workspace
+  problems: readonly Problem[]
 }
 
-export function Readout({ evaluation, workspace }: ReadoutProps) {
+export function Readout({ evaluation, workspace, problems }: ReadoutProps) {
   const { rows, precision } = evaluation
   const pins = drawnPins(evaluation)
   const [failed, setFailed] = useState<string | null>(null)
@@ -88,6 +90,7 @@ export function Readout({ evaluation, workspace }: ReadoutProps) {
               begins={rows[place - 1]?.group !== row.group}
               pins={pins}
               recorded={workspace.source.kind === 'recorded'}
+              problems={problems}
             />
           ))}
           <tr>
@@ -135,8 +138,16 @@ function Cell({ value, unit }: { value: string; unit: string }) {
   )
 }
 
-function Row(props: { row: FidelityRow; limits: Limits; begins: boolean; pins: DrawnPin[]; recorded: boolean }) {
-  const { row, limits, begins, pins, recorded } = props
+interface RowProps {
+  row: FidelityRow
+  limits: Limits
+  begins: boolean
+  pins: DrawnPin[]
+  recorded: boolean
+  problems: readonly Problem[]
+}
+
+function Row({ row, limits, begins, pins, recorded, problems }: RowProps) {
   const limit = limits[row.id]
   const { name, where } = rowWords(row)
   const verdict = verdictOf(row, limit)
@@ -147,7 +158,7 @@ function Row(props: { row: FidelityRow; limits: Limits; begins: boolean; pins: D
         <span className={begins ? undefined : 'visually-hidden'}>{GROUP_WORDS[row.group]}</span>
       </th>
       <th scope="row">
-        {name} <Where row={row} where={where} recorded={recorded} />
+        {name} <Where row={row} where={where} recorded={recorded} problems={problems} />
       </th>
       <Cell value={valueWords(row.before, row.unit)} unit={row.unit} />
       <Cell value={valueWords(row.after, row.unit)} unit={row.unit} />
@@ -192,7 +203,8 @@ const MEASURE_TOKEN: Partial<Record<FigureId, string>> = {
 }
 
 /** Where the row is measured; a token once for each window that can be changed. */
-function Where({ row, where, recorded }: { row: FidelityRow; where: string; recorded: boolean }) {
+function Where(props: { row: FidelityRow; where: string; recorded: boolean; problems: readonly Problem[] }) {
+  const { row, where, recorded, problems } = props
   if (row.id === 'false-deflection' && recorded) {
     const stated = row.before !== 'onset not given'
     const { toMs } = row.label.window
@@ -209,7 +221,9 @@ function Where({ row, where, recorded }: { row: FidelityRow; where: string; reco
     )
   }
   const token = MEASURE_TOKEN[row.id]
-  if (token && row.id !== 'score') return <Token id={token} className="small" text={where} label="window of this row" />
+  if (token && row.id !== 'score') {
+    return <Token id={token} className="small" text={where} label="window of this row" bad={problemOf(problems, token)} />
+  }
   return <>{where}</>
 }
 
