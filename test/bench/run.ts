@@ -6,6 +6,7 @@ import { fileURLToPath } from 'node:url'
 import { Worker } from 'node:worker_threads'
 import { applyChain } from '../../src/filter/apply-chain.ts'
 import { chainResponse, designChain } from '../../src/filter/index.ts'
+import { pageStep, traceStep } from './page-steps.ts'
 import {
   AVERAGES,
   BROAD_BAND,
@@ -173,6 +174,15 @@ async function benchSlider(
   row('', '  first call in a fresh process', show(first), '', '', '≤ 33 ms', first <= 33)
 }
 
+/** What the page does on its own thread, against the share of a frame that it may take (or, for epochs, what the trace may). */
+function benchPage(id: string, work: string, step: (position: number) => number, goalMs: number): void {
+  for (let i = 0; i < 60; i++) step((i * 0.077) % 1)
+  const ours = Array.from({ length: 300 }, (_, i) => timed(() => step((i * 0.0137) % 1)))
+  const us = median(ours)
+  row(id, `${work}: median`, show(us), '', '', `≤ ${goalMs} ms`, us <= goalMs)
+  row('', '  99th percentile', show(quantile(ours, 0.99)), '', '', '', null)
+}
+
 async function main() {
   const scipy = process.env.BENCH_PYTHON ? await startScipy(process.env.BENCH_PYTHON) : null
   const began = ms()
@@ -197,6 +207,12 @@ async function main() {
   }
   if (selected('W4f')) {
     await benchSlider('W4f', 'slider step, 3301 taps', FINITE_SLIDER, 'w4f', { median: 5, p99: null }, scipy)
+  }
+
+  if (selected('page')) {
+    benchPage('page', 'slider step of the whole page, first sight: evaluation', pageStep, 8)
+    benchPage('', '  trace-back, continuous, 1500 samples', (at) => traceStep('continuous', at), 8)
+    benchPage('', '  trace-back, epochs of 1500 samples', (at) => traceStep('epochs', at), 50)
   }
 
   if (selected('W3')) {

@@ -54,8 +54,8 @@ export const LONG_FIR: StageSpec[] = [
 
 /** Milliseconds of the epochs of W4 and W5: −500 to 2498. */
 export const TIMES_MS = Float64Array.from({ length: EPOCH }, (_, i) => -500 + (i * 1000) / RATE)
-const BASELINE = { fromMs: -200, toMs: 0 }
-const MEAN: Score = { kind: 'mean', fromMs: 300, toMs: 500, polarity: 'positive' }
+export const BASELINE = { fromMs: -200, toMs: 0 }
+export const MEAN: Score = { kind: 'mean', fromMs: 300, toMs: 500, polarity: 'positive' }
 
 /** W4 and W4f: everything that one move of a cutoff asks for. */
 export interface Slider {
