@@ -1,0 +1,36 @@
+import { nextPowerOfTwo, realTransform } from '../filter/fourier.ts'
+import type { Stage } from '../filter/stage.ts'
+import { designCutoffsHz } from '../filter/cutoff-meaning.ts'
+
+/** How far a windowed sinc departs from 1 in its pass band and from 0 in its stop band, outside its transitions. */
+export interface BandErrors {
+  /** Largest departure of the gain from 1; null where the transitions leave no pass band. */
+  readonly passDeviation: number | null
+  /** Largest gain; null where the transitions leave no stop band. */
+  readonly stopGain: number | null
+}
+
+/** Points of the response for each tap: 8 a side lobe. */
+const POINTS_PER_TAP = 16
+
+/** Measured on the designed kernel; a transition is the stated width about its nominal centre. Null for any other design. */
+export function bandErrors(stage: Stage): BandErrors | null {
+  const { spec, taps, samplingRateHz } = stage
+  if (spec.design !== 'windowed-sinc' || taps === null) return null
+  const centres = designCutoffsHz(spec, samplingRateHz)
+  const size = Math.max(4096, nextPowerOfTwo(POINTS_PER_TAP * taps.length))
+  const { re, im } = realTransform(taps, size)
+  let passDeviation: number | null = null
+  let stopGain: number | null = null
+  for (let k = 0; k <= size / 2; k++) {
+    const frequency = (k * samplingRateHz) / size
+    if (centres.some((centre) => Math.abs(frequency - centre) < spec.transitionHz / 2)) continue
+    const gain = Math.sqrt(re[k] * re[k] + im[k] * im[k])
+    const inside = centres.length === 2 && frequency > centres[0] && frequency < centres[1]
+    const passes =
+      centres.length === 2 ? inside === (spec.pass === 'band') : frequency < centres[0] === (spec.pass === 'low')
+    if (passes) passDeviation = Math.max(passDeviation ?? 0, Math.abs(gain - 1))
+    else stopGain = Math.max(stopGain ?? 0, gain)
+  }
+  return { passDeviation, stopGain }
+}
