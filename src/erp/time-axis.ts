@@ -1,3 +1,5 @@
+import { allFinite } from '../filter/missing-values.ts'
+
 /**
  * Conventions of this room: times in ms with 0 at the event, amplitudes in µV, areas in µV·s, a waveform is a
  * Float64Array beside a Float64Array of evenly spaced sample times of the same length. Windows are closed intervals, and their
@@ -80,10 +82,9 @@ export function checkValues(y: Float64Array, timesMs: Float64Array): void {
   if (y.length !== timesMs.length) {
     throw new RangeError(`y must hold one value per time (${timesMs.length}), had ${y.length}`)
   }
-  for (let i = 0; i < y.length; i++) {
-    if (!Number.isFinite(y[i]))
-      throw new RangeError(`y must hold finite numbers, y[${i}] (at ${round(timesMs[i])} ms) was ${y[i]}`)
-  }
+  if (allFinite(y)) return
+  const i = y.findIndex((value) => !Number.isFinite(value))
+  throw new RangeError(`y must hold finite numbers, y[${i}] (at ${round(timesMs[i])} ms) was ${y[i]}`)
 }
 
 /** For messages only: 3 decimals at most. */

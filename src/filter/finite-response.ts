@@ -1,4 +1,4 @@
-import { forwardTransform, inverseTransform, nextPowerOfTwo } from './fourier.ts'
+import { nextPowerOfTwo, planOf } from './fourier.ts'
 
 /**
  * Full linear convolution with the taps of a FIR stage: direct where one side is short, else block by block through the
@@ -52,28 +52,27 @@ function addBlocks(x: Float64Array, from: number, to: number, taps: Float64Array
   const size = transformSize(to - from, taps.length)
   const block = size - taps.length + 1
   const kernel = kernelSpectrum(taps, size)
-  const re = new Float64Array(size)
-  const im = new Float64Array(size)
+  const { transform, inverse, input, output } = planOf(size)
   for (let first = from; first < to; first += 2 * block) {
     const second = Math.min(first + block, to)
     const end = Math.min(second + block, to)
-    re.fill(0)
-    im.fill(0)
-    re.set(x.subarray(first, second))
-    im.set(x.subarray(second, end))
-    const z = forwardTransform(re, im)
-    for (let k = 0; k < size; k++) {
-      const a = z.re[k]
-      const b = z.im[k]
-      z.re[k] = a * kernel.re[k] - b * kernel.im[k]
-      z.im[k] = a * kernel.im[k] + b * kernel.re[k]
+    const [firstLength, secondLength] = [second - first, end - second]
+    input.fill(0)
+    for (let i = 0; i < firstLength; i++) input[2 * i] = x[first + i]
+    for (let i = 0; i < secondLength; i++) input[2 * i + 1] = x[second + i]
+    transform(output, input)
+    for (let k = 0; k < 2 * size; k += 2) {
+      const a = output[k]
+      const b = output[k + 1]
+      input[k] = a * kernel[k] - b * kernel[k + 1]
+      input[k + 1] = a * kernel[k + 1] + b * kernel[k]
     }
-    const y = inverseTransform(z.re, z.im)
-    const length = second - first + taps.length - 1
-    for (let i = 0; i < length; i++) result[first + i] += y.re[i]
-    if (end > second) {
-      const rest = end - second + taps.length - 1
-      for (let i = 0; i < rest; i++) result[second + i] += y.im[i]
+    inverse(output, input)
+    const length = firstLength + taps.length - 1
+    for (let i = 0; i < length; i++) result[first + i] += output[2 * i]
+    if (secondLength > 0) {
+      const rest = secondLength + taps.length - 1
+      for (let i = 0; i < rest; i++) result[second + i] += output[2 * i + 1]
     }
   }
 }
@@ -94,16 +93,17 @@ function transformSize(samples: number, taps: number): number {
   return best
 }
 
-/** One spectrum is kept for each kernel, that of the transform size used last; it goes with the taps. */
-const spectra = new WeakMap<Float64Array, { size: number; re: Float64Array; im: Float64Array }>()
+/** One spectrum (interleaved) is kept for each kernel, that of the transform size used last; it goes with the taps. */
+const spectra = new WeakMap<Float64Array, Float64Array>()
 
-function kernelSpectrum(taps: Float64Array, size: number): { re: Float64Array; im: Float64Array } {
+function kernelSpectrum(taps: Float64Array, size: number): Float64Array {
   const kept = spectra.get(taps)
-  if (kept?.size === size) return kept
-  const padded = new Float64Array(size)
-  padded.set(taps)
-  const { re, im } = forwardTransform(padded, new Float64Array(size))
-  const spectrum = { size, re, im }
+  if (kept?.length === 2 * size) return kept
+  const { transform, input } = planOf(size)
+  const spectrum = new Float64Array(2 * size)
+  input.fill(0)
+  for (let i = 0; i < taps.length; i++) input[2 * i] = taps[i]
+  transform(spectrum, input)
   spectra.set(taps, spectrum)
   return spectrum
 }

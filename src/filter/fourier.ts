@@ -11,17 +11,22 @@ export interface Complex {
   readonly im: Float64Array
 }
 
-/** fft.js with its buffers of interleaved complex values. Its scratch pointers live on the instance: one at a time. */
-interface Plan {
+/**
+ * A transform of one power of two with buffers of its own, of interleaved complex values (re, im, re, im …). The buffers are shared by all
+ * who ask for that size: write `input`, transform, read `output`, and keep nothing.
+ */
+export interface TransformPlan {
   readonly transform: (out: Float64Array, data: Float64Array) => void
+  /** With the factor 1/N. */
   readonly inverse: (out: Float64Array, data: Float64Array) => void
   readonly input: Float64Array
   readonly output: Float64Array
 }
 
-const plans = new Map<number, Plan>()
+const plans = new Map<number, TransformPlan>()
 
-function planOf(size: number): Plan {
+/** The plan of a size, a power of two above 1; for loops that cannot afford to copy. */
+export function planOf(size: number): TransformPlan {
   let plan = plans.get(size)
   if (!plan) {
     const fft = new FFT(size)

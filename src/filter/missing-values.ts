@@ -6,6 +6,13 @@
  * @throws RangeError naming the first index whose value is NaN or infinite.
  */
 export function requireFinite(name: string, values: Float64Array): void {
+  if (allFinite(values)) return
+  const index = values.findIndex((value) => !Number.isFinite(value))
+  throw new RangeError(`${name}[${index}] must be a finite number, was ${values[index]}`)
+}
+
+/** Whether every value is a finite number. */
+export function allFinite(values: Float64Array): boolean {
   // 0 times a number is 0, 0 times anything else is NaN; four sums at once, since one would wait for itself
   const whole = values.length - (values.length % 4)
   let a = 0
@@ -19,7 +26,5 @@ export function requireFinite(name: string, values: Float64Array): void {
     d += 0 * values[i + 3]
   }
   for (let i = whole; i < values.length; i++) a += 0 * values[i]
-  if (a + b + c + d === 0) return
-  const index = values.findIndex((value) => !Number.isFinite(value))
-  throw new RangeError(`${name}[${index}] must be a finite number, was ${values[index]}`)
+  return a + b + c + d === 0
 }
