@@ -16,9 +16,7 @@ test('first sight shows the false early deflection with the numbers of the core'
   expect(await workbench.sentenceText()).toContain('half-amplitude 1 Hz after both passes')
 
   // The sentence under the figure says that it was not in the input.
-  await expect(
-    workbench.page.getByText(`The deflection of ${after} at 80–140 ms was not in the input.`),
-  ).toBeVisible()
+  await expect(workbench.page.getByText(`The deflection of ${after} at 80–140 ms was not in the input.`)).toBeVisible()
 
   // The cursor rests where the waveform is largest and reads the curves there.
   const { before, after: filtered, takenOut } = curves[chosen]

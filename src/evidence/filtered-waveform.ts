@@ -61,7 +61,10 @@ function onWholeAxis(
   }
   const tones = components.filter((component) => component.shape === 'tone')
   if (tones.length > 0) {
-    const { re, im } = stagesResponse(stages, Float64Array.from(tones, (tone) => tone.frequencyHz))
+    const { re, im } = stagesResponse(
+      stages,
+      Float64Array.from(tones, (tone) => tone.frequencyHz),
+    )
     const filtered = tones.map(
       (tone, i): ToneComponent => ({
         ...tone,

@@ -104,13 +104,24 @@ interface SliderFieldProps {
 }
 
 /** A slider over a linear or a logarithmic range, its ticks written under it. */
-export function SliderField({ label, unit, value, min, max, scale, ticks, step = 1, onChange, onEnd }: SliderFieldProps) {
+export function SliderField({
+  label,
+  unit,
+  value,
+  min,
+  max,
+  scale,
+  ticks,
+  step = 1,
+  onChange,
+  onEnd,
+}: SliderFieldProps) {
   const steps = 1000
-  const toShare = (v: number) =>
-    scale === 'log' ? Math.log(v / min) / Math.log(max / min) : (v - min) / (max - min)
+  const toShare = (v: number) => (scale === 'log' ? Math.log(v / min) / Math.log(max / min) : (v - min) / (max - min))
   const fromShare = (share: number) =>
     scale === 'log' ? roundTo(min * (max / min) ** share, 3) : Math.round((min + share * (max - min)) / step) * step
-  const share = Number.isFinite(value) && (scale === 'linear' || value > 0) ? Math.min(1, Math.max(0, toShare(value))) : 0
+  const share =
+    Number.isFinite(value) && (scale === 'linear' || value > 0) ? Math.min(1, Math.max(0, toShare(value))) : 0
   return (
     <div className="slider">
       <input
@@ -188,13 +199,7 @@ export function Actions({ children }: { children: ReactNode }) {
 
 export function WordButton(props: { onPress: () => void; children: ReactNode; disabled?: boolean; label?: string }) {
   return (
-    <button
-      type="button"
-      className="word"
-      onClick={props.onPress}
-      disabled={props.disabled}
-      aria-label={props.label}
-    >
+    <button type="button" className="word" onClick={props.onPress} disabled={props.disabled} aria-label={props.label}>
       {props.children}
     </button>
   )

@@ -72,7 +72,14 @@ export function Header({ title, kind, onOpen, onSave, onNew, onCopyLink }: Heade
 
 function Plain(props: { id?: string; onPress: () => void; disabled?: boolean; hint?: string; children: string }) {
   return (
-    <button type="button" id={props.id} className="plain" onClick={props.onPress} disabled={props.disabled} title={props.hint}>
+    <button
+      type="button"
+      id={props.id}
+      className="plain"
+      onClick={props.onPress}
+      disabled={props.disabled}
+      title={props.hint}
+    >
       {props.children}
     </button>
   )

@@ -144,8 +144,8 @@ export function Page() {
         )}
       </main>
       <footer className="caution">
-        For research planning, not for diagnosis. Clinical recordings follow the local laboratory’s standards and the responsible
-        clinician.
+        For research planning, not for diagnosis. Clinical recordings follow the local laboratory’s standards and the
+        responsible clinician.
       </footer>
       {files.dragging ? <div className="drop-veil">Drop a table or a workspace to open it</div> : null}
       <input {...files.input} />
@@ -214,4 +214,3 @@ function useStoredFile(workspace: Workspace, report: (text: string) => void): vo
     )
   }, [source, files, asked, report])
 }
-

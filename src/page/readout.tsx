@@ -97,7 +97,9 @@ export function Readout({ evaluation, workspace, problems }: ReadoutProps) {
             <th scope="row" className="question">
               {GROUP_WORDS.precision}
             </th>
-            <th scope="row">noise of the score, {workspace.trials === 1 ? '1 trial' : `${exact(workspace.trials)} trials`}</th>
+            <th scope="row">
+              noise of the score, {workspace.trials === 1 ? '1 trial' : `${exact(workspace.trials)} trials`}
+            </th>
             {precision ? (
               <>
                 <Cell value={valueWords(precision.before, precision.unit)} unit={precision.unit} />
@@ -121,7 +123,9 @@ export function Readout({ evaluation, workspace, problems }: ReadoutProps) {
         </tbody>
       </table>
       {rows.some((row) => row.percentOf === 'largest') ? (
-        <p className="footnote">* per cent of the waveform’s largest value, since the value before is small beside it.</p>
+        <p className="footnote">
+          * per cent of the waveform’s largest value, since the value before is small beside it.
+        </p>
       ) : null}
       <FailedPins pins={evaluation.pins} />
     </section>
@@ -163,15 +167,28 @@ function Row({ row, limits, begins, pins, recorded, problems }: RowProps) {
       <Cell value={valueWords(row.before, row.unit)} unit={row.unit} />
       <Cell value={valueWords(row.after, row.unit)} unit={row.unit} />
       <PinCells pins={pins} unit={row.unit} read={({ rows }) => rows.find(({ id }) => id === row.id)?.after} />
-      {row.change === null ? <td className="quiet">–</td> : <Cell value={changeWords(row.change, row.unit)} unit={row.unit} />}
-      <td className="percent" title={row.percentOf === 'largest' ? 'of the waveform’s largest value, since the value before is small' : undefined}>
+      {row.change === null ? (
+        <td className="quiet">–</td>
+      ) : (
+        <Cell value={changeWords(row.change, row.unit)} unit={row.unit} />
+      )}
+      <td
+        className="percent"
+        title={
+          row.percentOf === 'largest' ? 'of the waveform’s largest value, since the value before is small' : undefined
+        }
+      >
         {row.percent === null ? '' : `${signed(row.percent, 0)} %${row.percentOf === 'largest' ? '*' : ''}`}
       </td>
       <td>
         <Token
           id={`limit:${row.id}`}
           className="small"
-          text={limit ? `±${limit.unit === 'ms' || limit.unit === '%' ? exact(limit.value) : fixed(limit.value, limit.value < 0.1 ? 3 : 2)}` : 'no limit'}
+          text={
+            limit
+              ? `±${limit.unit === 'ms' || limit.unit === '%' ? exact(limit.value) : fixed(limit.value, limit.value < 0.1 ? 3 : 2)}`
+              : 'no limit'
+          }
           label={`limit of ${name}`}
         />
         <span className="unit">{limit?.unit ?? ''}</span>
@@ -222,7 +239,9 @@ function Where(props: { row: FidelityRow; where: string; recorded: boolean; prob
   }
   const token = MEASURE_TOKEN[row.id]
   if (token && row.id !== 'score') {
-    return <Token id={token} className="small" text={where} label="window of this row" bad={problemOf(problems, token)} />
+    return (
+      <Token id={token} className="small" text={where} label="window of this row" bad={problemOf(problems, token)} />
+    )
   }
   return <>{where}</>
 }

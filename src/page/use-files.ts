@@ -27,7 +27,9 @@ export function useFiles() {
     let keepMine = () => undefined as void
     const tell = (state: KeepingState) => {
       if (state.kind === 'no storage')
-        report('This browser keeps nothing (its storage is full or shut off): save the workspace as a file before you leave.')
+        report(
+          'This browser keeps nothing (its storage is full or shut off): save the workspace as a file before you leave.',
+        )
       if (state.kind === 'other tab')
         setMessage({
           kind: 'problem',
@@ -70,7 +72,9 @@ export function useFiles() {
             const named = { name: enclosed.fileName, text: () => Promise.resolve(enclosed.text) }
             const table = await openTable(named, workspace.source.reading)
             if (!table.ok || table.source.fileId !== workspace.source.fileId)
-              return report(`${file.name} was not opened: the table inside is damaged. The work on screen is as it was.`)
+              return report(
+                `${file.name} was not opened: the table inside is damaged. The work on screen is as it was.`,
+              )
           }
           say(() => workspace)
           look({ open: null })
@@ -107,7 +111,10 @@ export function useFiles() {
         )
       } catch (error) {
         if (error instanceof DOMException && error.name === 'AbortError')
-          return setMessage({ kind: 'note', text: `Reading ${file.name} was cancelled. The work on screen is as it was.` })
+          return setMessage({
+            kind: 'note',
+            text: `Reading ${file.name} was cancelled. The work on screen is as it was.`,
+          })
         report(`${file.name} could not be read: ${error instanceof Error ? error.message : String(error)}`)
       }
     },
@@ -127,8 +134,12 @@ export function useFiles() {
       const { source } = workspace
       const text = encloseTable && source.kind === 'recorded' ? await fileText(source.fileId) : undefined
       const enclosed = text !== undefined && source.kind === 'recorded' ? { fileName: source.fileName, text } : null
-      if (encloseTable && !enclosed) return report('The table is not at hand: open the file again before saving it inside.')
-      downloadBlob(new Blob([workspaceToText(workspace, enclosed)], { type: 'application/json' }), `${name}.sidelobe.json`)
+      if (encloseTable && !enclosed)
+        return report('The table is not at hand: open the file again before saving it inside.')
+      downloadBlob(
+        new Blob([workspaceToText(workspace, enclosed)], { type: 'application/json' }),
+        `${name}.sidelobe.json`,
+      )
     },
     copyLink: async () => {
       const { workspace } = workspaceStore.getState()
@@ -137,7 +148,10 @@ export function useFiles() {
         return report('The workspace is too large for a link: save it as a file instead.')
       try {
         await navigator.clipboard.writeText(link)
-        const needs = workspace.source.kind === 'recorded' ? ` It holds no data: who opens it needs ${workspace.source.fileName}.` : ''
+        const needs =
+          workspace.source.kind === 'recorded'
+            ? ` It holds no data: who opens it needs ${workspace.source.fileName}.`
+            : ''
         setMessage({ kind: 'note', text: `The link to this workspace is copied.${needs}` })
       } catch {
         history.replaceState(null, '', workspaceToFragment(workspace))

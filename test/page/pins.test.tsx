@@ -169,7 +169,9 @@ test('the kernel figure draws and names the pinned kernel', () => {
 
 describe('the readout', () => {
   const cellsOf = (workspace: Workspace) => {
-    const html = plain(renderToStaticMarkup(<Readout evaluation={evaluated(workspace)} workspace={workspace} problems={[]} />))
+    const html = plain(
+      renderToStaticMarkup(<Readout evaluation={evaluated(workspace)} workspace={workspace} problems={[]} />),
+    )
     return html.split('<tr').slice(1)
   }
   const pinned = (row: string) =>
@@ -205,7 +207,9 @@ describe('the readout', () => {
   })
 
   test('says why a pin has no column', () => {
-    const html = plain(renderToStaticMarkup(<Readout evaluation={evaluated(failed)} workspace={failed} problems={[]} />))
+    const html = plain(
+      renderToStaticMarkup(<Readout evaluation={evaluated(failed)} workspace={failed} problems={[]} />),
+    )
     expect(html).toContain('No column for the pinned too fast: ')
     expect(html.match(/<th[^>]*pin-head/g)).toHaveLength(1)
   })

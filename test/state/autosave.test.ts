@@ -61,7 +61,11 @@ describe('keeping changes', () => {
     const { keepMine } = keepChanges(0, (state) => told.push(state.kind))
     setTrials(50)
     await vi.advanceTimersByTimeAsync(1000)
-    const other = { workspace: { ...store.workspaceStore.getState().workspace, trials: 999 }, tab: 'another', savedAt: Date.now() + 5000 }
+    const other = {
+      workspace: { ...store.workspaceStore.getState().workspace, trials: 999 },
+      tab: 'another',
+      savedAt: Date.now() + 5000,
+    }
     kept.record = structuredClone(other)
     setTrials(51)
     await vi.advanceTimersByTimeAsync(1000)
@@ -80,7 +84,11 @@ describe('keeping changes', () => {
     const told: string[] = []
     keepChanges(0, (state) => told.push(state.kind))
     setTrials(60)
-    kept.record = { workspace: structuredClone(store.workspaceStore.getState().workspace), tab: 'another', savedAt: Date.now() + 9000 }
+    kept.record = {
+      workspace: structuredClone(store.workspaceStore.getState().workspace),
+      tab: 'another',
+      savedAt: Date.now() + 9000,
+    }
     await vi.advanceTimersByTimeAsync(1000)
     expect(told).toEqual([])
     expect(record().tab).not.toBe('another')

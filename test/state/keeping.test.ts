@@ -125,10 +125,13 @@ describe('a workspace file with a table inside', () => {
     expect(workspaceFromText(workspaceToText(workspace))).toEqual({ ok: true, workspace, enclosed: null })
   })
 
-  test.each([[null], [3], [{ fileName: 'a.csv' }], [{ fileName: 1, text: '' }]])('is refused when it is %j', (enclosed) => {
-    const text = JSON.stringify({ ...startWorkspace(), enclosed })
-    expect(workspaceFromText(text)).toEqual({ ok: false, reason: expect.stringContaining('enclosed') })
-  })
+  test.each([[null], [3], [{ fileName: 'a.csv' }], [{ fileName: 1, text: '' }]])(
+    'is refused when it is %j',
+    (enclosed) => {
+      const text = JSON.stringify({ ...startWorkspace(), enclosed })
+      expect(workspaceFromText(text)).toEqual({ ok: false, reason: expect.stringContaining('enclosed') })
+    },
+  )
 })
 
 describe('taking up work', () => {

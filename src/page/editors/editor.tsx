@@ -21,12 +21,13 @@ export function closeEditor(): void {
 export function Editor({ title, subtitle, error, children }: EditorProps) {
   const frame = useRef<HTMLElement>(null)
   useEffect(() => {
-    const first = frame.current?.querySelector<HTMLElement>('.editor-body :is(input:checked, input:not([type=radio]), select, button)')
+    const first = frame.current?.querySelector<HTMLElement>(
+      '.editor-body :is(input:checked, input:not([type=radio]), select, button)',
+    )
     first?.focus({ preventScroll: true })
     if (first instanceof HTMLInputElement && first.type !== 'range' && first.type !== 'radio') first.select()
   }, [])
   return (
-    // biome-ignore lint/a11y/noNoninteractiveElementInteractions: Escape closes from anywhere inside
     <section
       ref={frame}
       className="editor"

@@ -144,7 +144,8 @@ export function ReadingEditor({ source, table, onOpenFile }: ReadingEditorProps)
       {refusal ? (
         <p className="field-error" role="alert">
           Read that way it is no table: {refusal.reason}
-          {refusal.line ? ` (line ${refusal.line}${refusal.column ? `, column ${refusal.column}` : ''})` : ''}. {refusal.todo}
+          {refusal.line ? ` (line ${refusal.line}${refusal.column ? `, column ${refusal.column}` : ''})` : ''}.{' '}
+          {refusal.todo}
         </p>
       ) : null}
       <Actions>

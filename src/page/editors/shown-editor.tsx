@@ -41,7 +41,10 @@ export function ShownEditor({ workspace, conditions, channels }: ShownEditorProp
         value={shown.chosen}
         options={choices.map((value) => ({
           value,
-          text: value === DIFFERENCE && shown.difference ? `${shown.difference.first} minus ${shown.difference.second}` : value,
+          text:
+            value === DIFFERENCE && shown.difference
+              ? `${shown.difference.first} minus ${shown.difference.second}`
+              : value,
         }))}
         onChange={(chosen) =>
           set({
@@ -61,7 +64,8 @@ export function ShownEditor({ workspace, conditions, channels }: ShownEditorProp
               .filter((name) => name !== shown.chosen)
               .map((name) => (
                 <label key={name}>
-                  <input type="checkbox" checked={shown.conditions.includes(name)} onChange={() => toggle(name)} /> {name}
+                  <input type="checkbox" checked={shown.conditions.includes(name)} onChange={() => toggle(name)} />{' '}
+                  {name}
                 </label>
               ))}
           </fieldset>

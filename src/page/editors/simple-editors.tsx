@@ -23,10 +23,7 @@ export function RateEditor({ workspace, samplingRateHz, error }: EditorProps) {
       </Editor>
     )
   const change = (hz: number) =>
-    say(
-      (w) => (w.source.kind === 'built' ? { ...w, source: { ...w.source, samplingRateHz: hz } } : w),
-      'rate',
-    )
+    say((w) => (w.source.kind === 'built' ? { ...w, source: { ...w.source, samplingRateHz: hz } } : w), 'rate')
   return (
     <Editor title="Sampling rate" subtitle="of the built waveform" error={error}>
       <div className="editor-row">
@@ -67,7 +64,9 @@ export function ExtentEditor({ workspace, error }: EditorProps) {
         onChange={(extent) => say((w) => ({ ...w, extent }))}
       />
       {recorded ? (
-        <p className="quiet">A loaded average holds nothing outside its epoch, so the chain can only run on the epoch.</p>
+        <p className="quiet">
+          A loaded average holds nothing outside its epoch, so the chain can only run on the epoch.
+        </p>
       ) : null}
     </Editor>
   )
@@ -115,9 +114,7 @@ export function BaselineEditor({ workspace, samplingRateHz, error }: EditorProps
           { value: 'window', text: 'mean of a window' },
           { value: 'none', text: 'none' },
         ]}
-        onChange={(value) =>
-          say((w) => ({ ...w, baseline: value === 'none' ? 'none' : { fromMs: -200, toMs: 0 } }))
-        }
+        onChange={(value) => say((w) => ({ ...w, baseline: value === 'none' ? 'none' : { fromMs: -200, toMs: 0 } }))}
       />
       {baseline === 'none' ? null : (
         <WindowFields
@@ -330,7 +327,8 @@ export function OnsetEditor({ workspace, samplingRateHz, error }: EditorProps) {
         onChange={(onsetMs) => say((w) => ({ ...w, onsetMs }), 'onset')}
       />
       <p className="quiet">
-        What the filter adds before this moment counts as false activity. For a built waveform it follows from the components.
+        What the filter adds before this moment counts as false activity. For a built waveform it follows from the
+        components.
       </p>
     </Editor>
   )

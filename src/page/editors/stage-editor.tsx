@@ -365,7 +365,6 @@ function CutoffPart({ spec, set, samplingRateHz, designHz }: Parts) {
   return (
     <>
       {spec.cutoffsHz.map((value, edge) => (
-        // biome-ignore lint/suspicious/noArrayIndexKey: an edge is its place
         <div key={edge}>
           {slider(spec.cutoffsHz.length === 1 ? 'cutoff' : edge === 0 ? 'lower cutoff' : 'upper cutoff', value, (hz) =>
             setCutoff(edge, hz),
@@ -379,7 +378,11 @@ function CutoffPart({ spec, set, samplingRateHz, designHz }: Parts) {
         onChange={(meaning) => set({ ...spec, meaning })}
       />
       <p className="quiet">
-        {spec.meaning === 'design' ? 'The cutoff is stated as designed.' : both ? 'As applied, after both passes.' : 'As applied.'}
+        {spec.meaning === 'design'
+          ? 'The cutoff is stated as designed.'
+          : both
+            ? 'As applied, after both passes.'
+            : 'As applied.'}
         {designHz ? ` Design cutoff ${designHz.map((hz) => brief(hz, 5)).join(' and ')} Hz.` : ''}
       </p>
     </>
@@ -402,7 +405,14 @@ function SizePart({ spec, set, samplingRateHz, part }: Parts & { part: string })
           onChange={change}
           onEnd={endGesture}
         />
-        <NumberField label="transition width" hideLabel unit="Hz" value={spec.transitionHz} ratio={1.02} onChange={change} />
+        <NumberField
+          label="transition width"
+          hideLabel
+          unit="Hz"
+          value={spec.transitionHz}
+          ratio={1.02}
+          onChange={change}
+        />
       </div>
     )
   }

@@ -59,7 +59,8 @@ export function TokenEditor({ workspace, shown, onOpenFile, onSave }: TokenEdito
     case 'shown': {
       if (kind === 'waveform' && source.kind === 'built')
         return <BuiltWaveformEditor key={workspace.title} workspace={workspace} error={error} />
-      const conditions = source.kind === 'built' ? source.conditions.map((entry) => entry.name) : (table?.conditions ?? [])
+      const conditions =
+        source.kind === 'built' ? source.conditions.map((entry) => entry.name) : (table?.conditions ?? [])
       return <ShownEditor workspace={workspace} conditions={conditions} channels={table?.channels ?? []} />
     }
     case 'save':
@@ -103,7 +104,15 @@ export function TokenEditor({ workspace, shown, onOpenFile, onSave }: TokenEdito
     case 'limit': {
       const row = shown.evaluation?.rows.find((entry) => entry.id === first)
       if (!row) return null
-      return <LimitEditor key={first} workspace={workspace} row={first as FigureId} label={rowWords(row).name} unit={row.unit} />
+      return (
+        <LimitEditor
+          key={first}
+          workspace={workspace}
+          row={first as FigureId}
+          label={rowWords(row).name}
+          unit={row.unit}
+        />
+      )
     }
     default:
       return null

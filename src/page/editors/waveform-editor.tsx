@@ -69,7 +69,6 @@ export function BuiltWaveformEditor({ workspace, error }: { workspace: Workspace
         </thead>
         <tbody>
           {condition.components.map((entry, i) => (
-            // biome-ignore lint/suspicious/noArrayIndexKey: a component is its place
             <tr key={i}>
               <td>
                 <button
@@ -88,13 +87,21 @@ export function BuiltWaveformEditor({ workspace, error }: { workspace: Workspace
           ))}
         </tbody>
       </table>
-      {component ? <ComponentFields key={`${conditionIndex}:${index}`} component={component} onChange={setComponent} /> : null}
+      {component ? (
+        <ComponentFields key={`${conditionIndex}:${index}`} component={component} onChange={setComponent} />
+      ) : null}
       <Actions>
         <WordButton
           onPress={() => {
             setComponents([
               ...condition.components,
-              { shape: 'gaussian', name: `component ${condition.components.length + 1}`, amplitudeUv: 5, latencyMs: 300, widthMs: 100 },
+              {
+                shape: 'gaussian',
+                name: `component ${condition.components.length + 1}`,
+                amplitudeUv: 5,
+                latencyMs: 300,
+                widthMs: 100,
+              },
             ])
             setPlace(condition.components.length)
           }}
@@ -179,7 +186,13 @@ function freshName(taken: readonly string[]): string {
   for (let n = taken.length + 1; ; n++) if (!taken.includes(`condition ${n}`)) return `condition ${n}`
 }
 
-function ComponentFields({ component, onChange }: { component: Component; onChange: (next: Component, group?: string) => void }) {
+function ComponentFields({
+  component,
+  onChange,
+}: {
+  component: Component
+  onChange: (next: Component, group?: string) => void
+}) {
   const field = (key: string, label: string, unit: string, step: number) => {
     const value = (component as unknown as Record<string, number>)[key]
     return (
