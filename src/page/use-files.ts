@@ -24,7 +24,7 @@ export function useFiles() {
   const report = useCallback((text: string) => setMessage({ kind: 'problem', text }), [])
 
   useEffect(() => {
-    let keepMine = () => undefined as void
+    let keepMine: () => void = () => undefined
     const tell = (state: KeepingState) => {
       if (state.kind === 'no storage')
         report(
