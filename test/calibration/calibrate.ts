@@ -37,6 +37,8 @@ export function* drawsOf(setting: CalibrationSetting, seed: number): Generator<F
         setting.extent === 'continuous'
           ? runContinuous(chain.stages, x, AROUND, AROUND + SAMPLES)
           : applyEpochs(chain.stages, x.slice(AROUND, AROUND + SAMPLES))
+      const residualUv = setting.residualUv ?? 0
+      if (residualUv > 0) for (let i = 0; i < SAMPLES; i++) y[i] += residualUv * random.normal()
       yield correctBaseline(y, timesMs, BASELINE)
     }
   }

@@ -18,6 +18,8 @@ export interface CalibrationSetting {
   readonly noise: NoiseModel
   /** Added to every latency of the late positivity. */
   readonly shiftMs: number
+  /** White noise of the table itself, which the model takes to be 0.01 µV; 0 where absent: values that were never rounded. */
+  readonly residualUv?: number
 }
 
 export const SAMPLING_RATE_HZ = 250
@@ -124,6 +126,14 @@ export const SETTINGS: readonly CalibrationSetting[] = [
     id: 'as-assumed-low-pass',
     title: 'as assumed, 30 Hz low-pass of order 4 as well',
     kind: 'as assumed',
+    chain: [highPass(1, 'both'), LOW_PASS],
+    residualUv: 0.01,
+  },
+  {
+    ...BASE,
+    id: 'low-pass-exact',
+    title: '30 Hz low-pass of order 4 as well, values never rounded',
+    kind: 'misspecified',
     chain: [highPass(1, 'both'), LOW_PASS],
   },
   {
