@@ -3,6 +3,7 @@ import { useState } from 'react'
 import type { FigureId, Limits } from '../erp/figure.ts'
 import type { FidelityRow } from '../evidence/fidelity.ts'
 import { downloadBlob } from '../plot/index.ts'
+import { EXTRAPOLATED_MARK } from '../state/chosen-noise.ts'
 import type { Evaluation, Problem } from '../state/evaluation.ts'
 import { readoutCsv } from '../state/readout-csv.ts'
 import { type Verdict, verdictOf } from '../state/verdict.ts'
@@ -98,7 +99,13 @@ export function Readout({ evaluation, workspace, problems }: ReadoutProps) {
               {GROUP_WORDS.precision}
             </th>
             <th scope="row">
-              noise of the score, {workspace.trials === 1 ? '1 trial' : `${exact(workspace.trials)} trials`}
+              noise of the score, {workspace.trials === 1 ? '1 trial' : `${exact(workspace.trials)} trials`},{' '}
+              <Token
+                id="noise"
+                className="small"
+                text={evaluation.noiseOf.from === 'trials' ? 'estimated from the trials' : 'noise model'}
+                label="noise of single trials"
+              />
             </th>
             {precision ? (
               <>
@@ -112,6 +119,7 @@ export function Readout({ evaluation, workspace, problems }: ReadoutProps) {
                   {typeof precision.equalTrialsFactor === 'number'
                     ? `equal-trials factor ${brief(precision.equalTrialsFactor)}, precision factor ${brief(precision.precisionFactor)}`
                     : `${precision.equalTrialsFactor}; precision factor ${brief(precision.precisionFactor)}`}
+                  <Extrapolated part={evaluation.noiseOf.extrapolated} />
                 </td>
               </>
             ) : (
@@ -130,6 +138,12 @@ export function Readout({ evaluation, workspace, problems }: ReadoutProps) {
       <FailedPins pins={evaluation.pins} />
     </section>
   )
+}
+
+/** The mark of a noise that the trials are too short to show. */
+function Extrapolated({ part }: { part: number | null }) {
+  if (part === null || part <= EXTRAPOLATED_MARK) return null
+  return <span className="over">; rests on extrapolated noise ({fixed(100 * part, 0)} %)</span>
 }
 
 function Cell({ value, unit }: { value: string; unit: string }) {

@@ -2,7 +2,8 @@
 import { expose } from 'comlink'
 import { readTable } from '../files/index.ts'
 import { evaluate } from './evaluate.ts'
+import { mapSlice } from './map-worker.ts'
 
-const api = { readTable, evaluate }
+const api = { readTable, evaluate, mapSlice }
 export type BenchApi = typeof api
 expose(api)

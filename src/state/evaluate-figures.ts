@@ -1,6 +1,6 @@
 /** The part of evaluate() that makes the frequency figure, the kernel, the effective window and the chain table. */
 import type { Component } from '../erp/component.ts'
-import { noiseDensity } from '../erp/noise.ts'
+import { noiseDensity, type NoiseSpec } from '../erp/noise.ts'
 import { findPeak } from '../erp/peak.ts'
 import type { Score } from '../erp/score.ts'
 import { supportMs, waveformAt } from '../erp/waveform.ts'
@@ -18,6 +18,7 @@ import { stageResponse, stagesResponse } from '../filter/stage-response.ts'
 import { brief, fixed, windowWords } from '../words/index.ts'
 import type { RawCurves } from './evaluate-curves.ts'
 import type { FrequencyFigure, KernelFigure, ReachMs, WindowFigure } from './evaluation.ts'
+import type { ChosenNoise } from './chosen-noise.ts'
 import { memoised } from './memo.ts'
 import type { Workspace } from './workspace.ts'
 
@@ -132,6 +133,7 @@ const spectra = memoised((raw: RawCurves, chain: Chain, timesMs: Float64Array, e
 
 export function frequencyFigure(
   workspace: Workspace,
+  { noise }: ChosenNoise,
   chain: Chain,
   raw: RawCurves,
   extent: 'continuous' | 'epochs',
@@ -147,7 +149,7 @@ export function frequencyFigure(
     phaseRad,
     groupDelayMs,
     ...spectra(raw, chain, timesMs, extent),
-    noise: noiseOn(workspace.noise, hz),
+    noise: noiseOn(noise, hz),
     ...points,
   }
 }
@@ -164,7 +166,7 @@ export const kernelOf = memoised((chain: Chain, from: number, samples: number) =
   }
 })
 
-const noiseOn = memoised((noise: Workspace['noise'], hz: Float64Array) => noiseDensity(noise, hz).map(Math.sqrt))
+const noiseOn = memoised((noise: NoiseSpec, hz: Float64Array) => noiseDensity(noise, hz).map(Math.sqrt))
 
 /** How much more than the reach is drawn, and how far at most (in epochs): beyond that a kernel is a line at zero. */
 const KERNEL_MARGIN = 1.1

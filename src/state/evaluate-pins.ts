@@ -1,6 +1,7 @@
 /** The part of evaluate() that runs the same waveform and score through a pinned chain. */
 import { effectiveWindowOn } from '../evidence/effective-window.ts'
 import { inWords } from '../words/index.ts'
+import type { ChosenNoise } from './chosen-noise.ts'
 import { designedChain } from './evaluate-chain.ts'
 import { correctedCurves, rawCurves, type TimeAxis } from './evaluate-curves.ts'
 import { gainOn, kernelOf, stripMargin } from './evaluate-figures.ts'
@@ -22,6 +23,7 @@ export function pinnedResult(
   name: string,
   workspace: Workspace,
   data: RecordedData | null,
+  noise: ChosenNoise,
   { samplingRateHz, timesMs }: TimeAxis,
   hz: Float64Array,
   kernel: KernelFigure,
@@ -42,7 +44,7 @@ export function pinnedResult(
       gain: gainOn(chain, hz),
       ...kernelOf(chain, kernel.fromIndex, kernel.impulse.length),
       rows,
-      precision: weights && precisionOf(workspace, chain, weights, extent, rows[0], before),
+      precision: weights && precisionOf(workspace, noise, chain, weights, extent, rows[0], before),
     }
   } catch (error) {
     if (!(error instanceof RangeError)) throw error

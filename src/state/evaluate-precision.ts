@@ -1,14 +1,14 @@
 /** The part of evaluate() that makes the noise row: the score's noise with and without the chain. */
+import type { NoiseSpec } from '../erp/noise.ts'
 import { effectiveWindow } from '../evidence/effective-window.ts'
+import { extrapolatedShare } from '../evidence/extrapolated-share.ts'
+import type { NoisePassed } from '../evidence/filtered-noise.ts'
 import { responseBreaksHz } from '../evidence/response-breaks.ts'
 import { scoreVariance, scoreVarianceOfResponse } from '../evidence/score-noise.ts'
 import { appliedStages, type Chain } from '../filter/chain.ts'
 import { wholeResponse } from '../filter/kernel.ts'
 import { stagesResponse } from '../filter/stage-response.ts'
 import { memoised } from './memo.ts'
-import type { Workspace } from './workspace.ts'
-
-type Noise = Workspace['noise']
 
 export interface ScoreVariances {
   before: number
@@ -18,8 +18,8 @@ export interface ScoreVariances {
 const unfilteredVariance = memoised(scoreVariance)
 
 /**
- * Variance of a linear score over the stated trials, unfiltered and filtered. The model's noise is that of single trials before anything;
- * stages that are in the data have acted on it already, for both.
+ * Variance of a linear score over the stated trials, unfiltered and filtered. A model's noise is that of single trials before anything:
+ * stages that are in the data have acted on it already, for both. An estimate was measured behind them.
  */
 export const scoreVariances = memoised(
   (
@@ -27,11 +27,12 @@ export const scoreVariances = memoised(
     weightsBefore: Float64Array,
     weightsAfter: Float64Array,
     extent: 'continuous' | 'epochs',
-    noise: Noise,
+    noise: NoiseSpec,
+    passed: NoisePassed,
     trials: number,
   ): ScoreVariances => {
     const { samplingRateHz } = chain
-    const past = chain.stages.filter((stage) => stage.spec.inData)
+    const past = passed === 'nothing' ? chain.stages.filter((stage) => stage.spec.inData) : []
     if (extent === 'continuous' && past.length === 0) {
       const applied = appliedStages(chain)
       return {
@@ -59,4 +60,16 @@ export const scoreVariances = memoised(
       ),
     }
   },
+)
+
+/** The part of the filtered score's variance that rests on frequencies below what the trials' length can show. */
+export const extrapolatedPart = memoised(
+  (
+    chain: Chain,
+    weightsAfter: Float64Array,
+    extent: 'continuous' | 'epochs',
+    noise: NoiseSpec,
+    belowHz: number,
+  ): number =>
+    extrapolatedShare(effectiveWindow(chain, weightsAfter, extent).values, noise, chain.samplingRateHz, belowHz),
 )

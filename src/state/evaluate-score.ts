@@ -5,6 +5,7 @@ import { type FidelityRow, fidelityRows, largestAbsolute } from '../evidence/fid
 import { onsetOfBuilt } from '../evidence/onset-of-built.ts'
 import { type NoiseRow, noiseRow, varianceOfDifference } from '../evidence/precision.ts'
 import type { Chain } from '../filter/chain.ts'
+import type { ChosenNoise } from './chosen-noise.ts'
 import type { RawCurves } from './evaluate-curves.ts'
 import { scoreVariances } from './evaluate-precision.ts'
 import { memoised } from './memo.ts'
@@ -70,14 +71,15 @@ export function weightsOf(
 /** The noise row: what the chain did to the precision of the score. */
 export function precisionOf(
   workspace: Workspace,
+  { noise, passed }: ChosenNoise,
   chain: Chain,
   weights: Weights,
   extent: 'continuous' | 'epochs',
   scoreRow: FidelityRow,
   before: Float64Array,
 ): NoiseRow {
-  const { noise, trials, score } = workspace
-  let variances = scoreVariances(chain, weights.before, weights.after, extent, noise, trials)
+  const { trials, score } = workspace
+  let variances = scoreVariances(chain, weights.before, weights.after, extent, noise, passed, trials)
   if (workspace.shown.chosen === DIFFERENCE) {
     // Two conditions of as many trials each, independent of one another.
     const { before: b, after: a } = variances

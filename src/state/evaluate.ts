@@ -11,6 +11,7 @@ import { unseenShare, unseenShareBySample } from '../evidence/unseen-share.ts'
 import { appliedOfflineStages } from '../filter/apply-chain.ts'
 import { appliedStages, type Chain } from '../filter/chain.ts'
 import { inWords, partOfField, remarkWords } from '../words/index.ts'
+import { type ChosenNoise, chosenNoise } from './chosen-noise.ts'
 import { designedChain } from './evaluate-chain.ts'
 import { correctedCurves, drawnNames, type RawCurves, rawCurves, type TimeAxis, timeAxis } from './evaluate-curves.ts'
 import {
@@ -22,6 +23,7 @@ import {
   windowFigure,
 } from './evaluate-figures.ts'
 import { pinnedResult } from './evaluate-pins.ts'
+import { extrapolatedPart } from './evaluate-precision.ts'
 import { precisionOf, rowsOf, weightsOf } from './evaluate-score.ts'
 import { chainPoints, chainTable } from './evaluate-table.ts'
 import type { Curves, Evaluation, Outcome, Problem } from './evaluation.ts'
@@ -53,7 +55,8 @@ export function evaluate(workspace: Workspace, data: RecordedData | null): Outco
   )
   const chain = axis && attempt(stageAt, () => designedChain(workspace.chain, axis.samplingRateHz))
   attempt('trials', () => checkTrials(trials))
-  attempt('trials', () => checkNoise(workspace.noise))
+  attempt('noise', () => checkNoise(workspace.noise))
+  const noise = attempt('noise', () => chosenNoise(workspace, data))
   if (axis) {
     const flat = new Float64Array(axis.timesMs.length)
     attempt('baseline', () => baselineWeights(baseline, axis.timesMs))
@@ -61,7 +64,7 @@ export function evaluate(workspace: Workspace, data: RecordedData | null): Outco
     attempt('measure:mean', () => samplesInWindow(axis.timesMs, measure.mean, 'the window of the mean amplitude'))
     attempt('measure:peak', () => checkPeakWindow(axis.timesMs, measure.peak))
   }
-  if (!axis || !chain || problems.length > 0) return { ok: false, problems }
+  if (!axis || !chain || !noise || problems.length > 0) return { ok: false, problems }
 
   const { timesMs } = axis
   const extent = source.kind === 'recorded' ? 'epochs' : workspace.extent
@@ -73,13 +76,14 @@ export function evaluate(workspace: Workspace, data: RecordedData | null): Outco
   )
   if (!raw) return { ok: false, problems }
   // Nothing more to refuse is known; numbers too large for any sum must still not take the page down.
-  const evaluation = attempt('waveform', () => evaluationOf(workspace, data, axis, chain, extent, raw, names))
+  const evaluation = attempt('waveform', () => evaluationOf(workspace, data, noise, axis, chain, extent, raw, names))
   return evaluation ? { ok: true, evaluation } : { ok: false, problems }
 }
 
 function evaluationOf(
   workspace: Workspace,
   data: RecordedData | null,
+  noise: ChosenNoise,
   axis: TimeAxis,
   chain: Chain,
   extent: 'continuous' | 'epochs',
@@ -95,7 +99,7 @@ function evaluationOf(
   const rows = rowsOf(before, after, raw[chosen], timesMs, score, measure, workspace.onsetMs)
   const weights = weightsOf(score, baseline, timesMs, before, after)
   const unseen = weights && (extent === 'continuous' ? 0 : unseenOf(chain, weights.after))
-  const frequency = frequencyFigure(workspace, chain, raw[chosen], extent, timesMs, chainPoints(chain))
+  const frequency = frequencyFigure(workspace, noise, chain, raw[chosen], extent, timesMs, chainPoints(chain))
   const kernel = kernelFigure(chain, timesMs)
   const pinned = namesOfPins(workspace)
   return {
@@ -114,8 +118,15 @@ function evaluationOf(
     amplifierReach: amplifierReach(chain),
     unseenShare: unseen,
     rows,
-    precision: weights && precisionOf(workspace, chain, weights, extent, rows[0], before),
-    pins: workspace.pins.map((pin, i) => pinnedResult(pin, pinned[i], workspace, data, axis, frequency.hz, kernel)),
+    precision: weights && precisionOf(workspace, noise, chain, weights, extent, rows[0], before),
+    noiseOf: {
+      from: noise.estimate ? 'trials' : 'model',
+      extrapolated:
+        noise.estimate &&
+        weights &&
+        extrapolatedPart(chain, weights.after, extent, noise.noise, noise.estimate.extrapolatedBelowHz),
+    },
+    pins: workspace.pins.map((pin, i) => pinnedResult(pin, pinned[i], workspace, data, noise, axis, frequency.hz, kernel)),
     remark: remarkWords({
       score,
       unit: rows[0].unit,

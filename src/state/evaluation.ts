@@ -123,6 +123,9 @@ export interface Evaluation {
   rows: FidelityRow[]
   /** Null for a score that is no weighted sum. */
   precision: NoiseRow | null
+  /** What the noise row reckons with; `extrapolated` is the part (0 to 1) of the variance after the chain that rests on
+   * frequencies below what the trials can show, null for a model or where there is no noise row. */
+  noiseOf: { from: 'model' | 'trials'; extrapolated: number | null }
   /** Chains kept for comparison, in the workspace's order. */
   pins: (PinnedResult | FailedPin)[]
   /** What the chain did to the score, in a sentence or two. */

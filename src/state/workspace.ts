@@ -183,6 +183,57 @@ const START_TRACE = {
   threshold: 0.1,
 }
 
+/** Roll-offs of a map's rows: orders of one pass, or transition widths in Hz. */
+export const MAX_ROLL_OFFS = 12
+
+const tradeOffSchema = v.object({
+  /** The stage that the map varies: its place in the chain, a new one, or (null) the first that can be varied. */
+  stage: v.nullable(v.union([v.literal('insert'), v.pipe(finite, v.integer(), v.minValue(0))])),
+  pass: v.picklist(['low', 'high']),
+  design: v.picklist(['butterworth', 'windowed-sinc']),
+  direction: directionSchema,
+  fromHz: positive,
+  toHz: positive,
+  /** Null: those that suggest themselves for the design. */
+  rollOffs: v.nullable(v.pipe(v.array(positive), v.minLength(1), v.maxLength(MAX_ROLL_OFFS))),
+  /** The largest sizes accepted. A bias that is not given is the limit of the score in the readout. */
+  limits: v.partial(
+    v.object({
+      bias: v.union([positive, v.literal('none')]),
+      noise: positive,
+      totalError: positive,
+      latencyShiftMs: positive,
+    }),
+  ),
+  layer: v.picklist(['bias', 'noise', 'total error', 'equal-trials factor', 'latency shift']),
+  /** What is not known of each component: ± ms of latency, ± per cent of width and amplitude; null: the waveform as it stands. */
+  robust: v.nullable(
+    v.object({
+      latencyMs: v.pipe(finite, v.minValue(0), v.maxValue(1000)),
+      widthPercent: v.pipe(finite, v.minValue(0), v.maxValue(90)),
+      amplitudePercent: v.pipe(finite, v.minValue(0), v.maxValue(100)),
+    }),
+  ),
+  over: v.picklist(['worst', 'typical']),
+  /** Of a loaded table: the waveform that is shown, or the average over all its conditions. */
+  waveform: v.picklist(['chosen', 'average']),
+})
+
+const START_TRADE_OFF: v.InferOutput<typeof tradeOffSchema> = {
+  stage: null,
+  pass: 'high',
+  design: 'butterworth',
+  direction: 'both',
+  fromHz: 0.01,
+  toHz: 3,
+  rollOffs: null,
+  limits: {},
+  layer: 'bias',
+  robust: null,
+  over: 'worst',
+  waveform: 'chosen',
+}
+
 export const MAX_PINS = 3
 
 export const workspaceSchema = v.object({
@@ -222,6 +273,8 @@ export const workspaceSchema = v.object({
     }),
   ),
   noise: noiseSchema,
+  /** Whether the noise is that model or is estimated from the loaded single trials. */
+  noiseFrom: v.optional(v.picklist(['model', 'trials']), 'model'),
   /** Onset of a recorded waveform as the user states it; a built one's follows from its components. */
   onsetMs: v.nullable(finite),
   /** The question of the trace-back desk, its stretches (null: those that suggest themselves), and the unseen share that is too much. */
@@ -233,6 +286,8 @@ export const workspaceSchema = v.object({
     }),
     START_TRACE,
   ),
+  /** The trade-off desk: which filters are compared, for which waveforms, and what is accepted. */
+  tradeOff: v.optional(tradeOffSchema, START_TRADE_OFF),
   /** Chains kept for comparison. */
   pins: v.optional(
     v.pipe(
@@ -256,6 +311,7 @@ export type Source = Workspace['source']
 export type BuiltSource = Extract<Source, { kind: 'built' }>
 export type RecordedSource = Extract<Source, { kind: 'recorded' }>
 export type Question = Workspace['trace']['question']
+export type TradeOff = Workspace['tradeOff']
 export type Pin = Workspace['pins'][number]
 export type Reading = v.InferOutput<typeof readingSchema>
 
@@ -284,8 +340,10 @@ export function workspaceOf(scenario: Scenario): Workspace {
     measure: scenario.measure,
     limits: scenario.limits,
     noise: modelNoise(scenario.noise),
+    noiseFrom: 'model',
     onsetMs: null,
     trace: START_TRACE,
+    tradeOff: START_TRADE_OFF,
     pins: [],
   } satisfies Workspace)
 }

@@ -19,7 +19,7 @@ function problemsOf(workspace: Workspace, data: RecordedData | null = null): Pro
 function shownTokens(workspace: Workspace): string[] {
   const rate = workspace.source.kind === 'built' ? workspace.source.samplingRateHz : 250
   const line = protocolLine(protocolOf(workspace, rate)).flatMap((piece) => (piece.kind === 'token' ? [piece.id] : []))
-  return [...line, 'measure:mean', 'measure:peak']
+  return [...line, 'measure:mean', 'measure:peak', 'noise']
 }
 
 const start = startWorkspace()
@@ -161,7 +161,7 @@ describe('what cannot be computed is said in words at its token', () => {
     [
       'noise that cannot be',
       { ...start, noise: { ...start.noise, exponent: -1 } },
-      'trials',
+      'noise',
       /^The exponent of the noise must lie between 0 and 4, was −1\.$/,
     ],
   ])('%s', (_, workspace, at, words) => {

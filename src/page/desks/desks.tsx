@@ -6,6 +6,7 @@ import type { Shown } from '../use-evaluation.ts'
 import './desks.css'
 import { closeDesk, DESKS_ID, type DeskId, openDesk } from './open-desk.ts'
 import { TraceDesk } from './trace/trace-desk.tsx'
+import { TradeOffDesk } from './trade-off/trade-off-desk.tsx'
 
 export interface DeskProps {
   /** The workspace of the sentence. */
@@ -26,6 +27,7 @@ interface Desk {
 /** A desk is listed when it works. */
 const DESKS: readonly Desk[] = [
   { id: 'trace', title: 'Trace-back', question: 'Where does this value come from?', Body: TraceDesk },
+  { id: 'trade-off', title: 'Trade-off', question: 'Which cutoff and roll-off should I use?', Body: TradeOffDesk },
 ]
 
 export function Desks(props: DeskProps) {

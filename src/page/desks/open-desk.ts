@@ -18,5 +18,5 @@ export function openDesk(id: DeskId): void {
 export function closeDesk(): void {
   const { open } = viewStore.getState()
   // an editor of the desk goes with it
-  look({ desk: null, ...(open?.startsWith('trace-') ? { open: null } : {}) })
+  look({ desk: null, ...(open?.startsWith('trace-') || open?.startsWith('trade-off-') ? { open: null } : {}) })
 }

@@ -7,6 +7,7 @@ import type { Workspace } from '../../state/workspace.ts'
 import { rowWords } from '../../words/index.ts'
 import { useView } from '../hooks.ts'
 import type { Shown } from '../use-evaluation.ts'
+import { NoiseEditor } from './noise-editor.tsx'
 import { PinEditor } from './pin-editor.tsx'
 import { ReadingEditor } from './reading-editor.tsx'
 import { ShownEditor } from './shown-editor.tsx'
@@ -87,6 +88,8 @@ export function TokenEditor({ workspace, shown, onOpenFile, onSave }: TokenEdito
       return <ExtentEditor {...common} />
     case 'trials':
       return <TrialsEditor {...common} />
+    case 'noise':
+      return <NoiseEditor workspace={workspace} table={table} samplingRateHz={samplingRateHz} error={error} />
     case 'events':
       return <EventsEditor {...common} />
     case 'baseline':

@@ -1,0 +1,256 @@
+/** The map: every filter of the grid as a cell, the allowed region outlined, the front marked. */
+import { memo, useMemo, useRef, useState } from 'react'
+import { Axis, contourPath, FigureFrame, type Frame, hatchId } from '../../../plot/index.ts'
+import type { CellFigures } from '../../../evidence/trade-off-figures.ts'
+import { nearestComputed } from '../../../state/map-figures.ts'
+import { say } from '../../../state/store.ts'
+import type { TradeOff } from '../../../state/workspace.ts'
+import { brief } from '../../../words/index.ts'
+import { Choice } from '../../fields.tsx'
+import { FigureHead } from '../../figure-head.tsx'
+import { cutoffScale, movedCell, rowTop, type Shade, shadeOf } from './map-shape.ts'
+import { cellWords, layerUnit, type MapUnit } from './map-words.ts'
+import type { DrawnMap } from './use-map.ts'
+
+export const MAP_MARGIN = { top: 6, right: 10, bottom: 24, left: 54 }
+const ROW_PX = 25
+
+interface MapFigureProps {
+  map: DrawnMap
+  layer: TradeOff['layer']
+  unit: MapUnit
+  /** Cell under the cursor; of the filter in the chain. */
+  at: number
+  inChain: number | null
+  noiseErrorOf: (index: number) => number | null
+  caption: () => string
+  onMove: (index: number) => void
+  onPick: (index: number) => void
+}
+
+const LAYERS: readonly TradeOff['layer'][] = ['bias', 'noise', 'total error', 'equal-trials factor', 'latency shift']
+
+export function MapFigure({ map, layer, unit, at, inChain, noiseErrorOf, caption, onMove, onPick }: MapFigureProps) {
+  const svg = useRef<SVGSVGElement>(null)
+  const [pointed, setPointed] = useState<number | null>(null)
+  const { request, figures, limits } = map
+  const { cutoffsHz, rollOffs, candidate } = request.question
+  const columns = cutoffsHz.length
+  const rows = rollOffs.length
+  const cells = useMemo(() => nearestComputed(figures, columns, rows), [figures, columns, rows])
+  const shade = useMemo(() => shadeOf(figures.cells, layer), [figures, layer])
+  const words = (index: number) => cellWords(figures.cells[index], candidate, limits, unit, noiseErrorOf(index))
+  const height = Math.max(150, MAP_MARGIN.top + MAP_MARGIN.bottom + ROW_PX * rows)
+  const cellAt = (x: number, y: number, frame: Frame) => {
+    const c = Math.floor(((x - frame.left) / frame.plotWidth) * columns)
+    const r = Math.floor(((frame.bottom - y) / frame.plotHeight) * rows)
+    return c < 0 || r < 0 || c >= columns || r >= rows ? null : r * columns + c
+  }
+  const kept = figures.kept.filter(Boolean).length
+  return (
+    <>
+      <FigureHead title="Map" svg={svg} caption={caption} fileName="trade-off-map">
+        <Choice
+          label="what the map shows"
+          value={layer}
+          options={LAYERS.map((value) => ({ value, text: value }))}
+          onChange={(next) => say((w) => ({ ...w, tradeOff: { ...w.tradeOff, layer: next } }))}
+        />
+        <Legend shade={shade} layer={layer} unit={unit} />
+      </FigureHead>
+      <FigureFrame
+        title="Trade-off map"
+        description={`${layer} over ${columns} cutoffs and ${rows} roll-offs. ${kept} of ${columns * rows} filters keep the limits; ${figures.front.length} are on the front that no other beats in bias and noise. At the cursor: ${words(at)}.`}
+        height={height}
+        margin={MAP_MARGIN}
+        interactive
+        svgRef={svg}
+        onHover={(point, frame) => setPointed(point && cellAt(point.x, point.y, frame))}
+      >
+        {(frame) => (
+          <>
+            <Cells {...{ frame, cells, shade, columns, rows }} />
+            <Region {...{ frame, columns, rows }} multiples={figures.multiples} limited={Object.keys(limits).length > 0} />
+            <Marks {...{ frame, columns, rows, inChain }} front={figures.front} />
+            <Axis side="bottom" scale={cutoffScale(cutoffsHz, frame.left, frame.right)} at={frame.bottom} title="Cutoff, Hz" />
+            <RowLabels {...{ frame, rollOffs }} orders={candidate.design === 'butterworth'} />
+            {/* biome-ignore lint/a11y/useSemanticElements: a cell of an svg */}
+            <g
+              role="button"
+              tabIndex={0}
+              className="map-cursor plot-focus"
+              aria-label={`Cell of the map: ${words(at)}. Arrow keys move, Enter puts the filter into the chain.`}
+              onKeyDown={(event) => {
+                if (event.key === 'Enter' || event.key === ' ') {
+                  event.preventDefault()
+                  return onPick(at)
+                }
+                const next = movedCell(at, event.key, columns, rows, event.shiftKey)
+                if (next === null) return
+                event.preventDefault()
+                onMove(next)
+              }}
+              onClick={(event) => {
+                // a screen reader's press has no place: it means the cell at the cursor
+                if (event.detail === 0 || pointed === null) return onPick(at)
+                onMove(pointed)
+                onPick(pointed)
+              }}
+            >
+              <rect
+                x={frame.left}
+                y={frame.top}
+                width={frame.plotWidth}
+                height={frame.plotHeight}
+                fill="transparent"
+                data-save="omit"
+              />
+              {pointed === null || pointed === at ? null : (
+                <CellBox {...{ frame, columns, rows }} index={pointed} className="cell-pointed" />
+              )}
+              <CellBox {...{ frame, columns, rows }} index={at} className="cell-at" />
+            </g>
+          </>
+        )}
+      </FigureFrame>
+      <p className="small map-reading" role="status">
+        {words(pointed ?? at)}
+      </p>
+    </>
+  )
+}
+
+interface CellsProps {
+  frame: Frame
+  cells: readonly (CellFigures | null)[]
+  shade: Shade
+  columns: number
+  rows: number
+}
+
+const Cells = memo(function Cells({ frame, cells, shade, columns, rows }: CellsProps) {
+  const width = frame.plotWidth / columns
+  const height = frame.plotHeight / rows
+  return (
+    <g aria-hidden="true">
+      {cells.map((cell, index) => {
+        if (!cell) return null
+        const dark = shade.of(cell)
+        if (dark === null && cell.error === null) return null
+        const fill =
+          cell.error === null
+            ? { fill: 'var(--after)', fillOpacity: 0.04 + 0.66 * (dark as number) }
+            : { fill: `url(#${hatchId(frame, 'unseen')})` }
+        return (
+          <rect
+            // biome-ignore lint/suspicious/noArrayIndexKey: a cell is its place
+            key={index}
+            x={frame.left + (index % columns) * width}
+            y={rowTop(frame, Math.floor(index / columns), rows)}
+            // no seam between two cells
+            width={width + 0.3}
+            height={height - 1}
+            {...fill}
+          />
+        )
+      })}
+    </g>
+  )
+})
+
+interface RegionProps {
+  frame: Frame
+  columns: number
+  rows: number
+  multiples: readonly number[]
+  limited: boolean
+}
+
+/** The filters that keep every limit, as an outline; what lies outside is veiled. */
+const Region = memo(function Region({ frame, columns, rows, multiples, limited }: RegionProps) {
+  if (!limited) return null
+  const values = multiples.map((size) => (Number.isNaN(size) ? Number.NaN : -Math.log(Math.max(size, 1e-3))))
+  const x = (column: number) => frame.left + (column / columns) * frame.plotWidth
+  const y = (row: number) => frame.bottom - (row / rows) * frame.plotHeight
+  const inside = contourPath(values, columns, rows, 0, x, y)
+  const whole = `M${frame.left},${frame.top}H${frame.right}V${frame.bottom}H${frame.left}Z`
+  return (
+    <g aria-hidden="true" pointerEvents="none">
+      <path d={`${whole}${inside}`} fillRule="evenodd" fill="var(--sheet)" fillOpacity={0.42} />
+      {inside === '' ? null : (
+        <path className="allowed-region" d={inside} fill="none" stroke="var(--ink)" strokeWidth={1.8} strokeLinejoin="round" />
+      )}
+    </g>
+  )
+})
+
+interface MarksProps {
+  frame: Frame
+  columns: number
+  rows: number
+  front: readonly number[]
+  inChain: number | null
+}
+
+const Marks = memo(function Marks({ frame, columns, rows, front, inChain }: MarksProps) {
+  const centre = (index: number) => ({
+    cx: frame.left + (((index % columns) + 0.5) * frame.plotWidth) / columns,
+    cy: rowTop(frame, Math.floor(index / columns), rows) + frame.plotHeight / rows / 2,
+  })
+  return (
+    <g aria-hidden="true" pointerEvents="none">
+      {front.map((index) => (
+        <circle key={index} {...centre(index)} r={2.6} fill="var(--sheet)" stroke="var(--ink)" strokeWidth={1.1} />
+      ))}
+      {inChain === null ? null : (
+        <circle {...centre(inChain)} r={5} fill="var(--taken-out)" stroke="var(--sheet)" strokeWidth={2} />
+      )}
+    </g>
+  )
+})
+
+function CellBox(props: { frame: Frame; columns: number; rows: number; index: number; className: string }) {
+  const { frame, columns, rows, index, className } = props
+  return (
+    <rect
+      className={className}
+      x={frame.left + ((index % columns) * frame.plotWidth) / columns - 1}
+      y={rowTop(frame, Math.floor(index / columns), rows) - 1}
+      width={frame.plotWidth / columns + 2}
+      height={frame.plotHeight / rows + 1}
+      fill="none"
+      data-save="omit"
+    />
+  )
+}
+
+function RowLabels({ frame, rollOffs, orders }: { frame: Frame; rollOffs: readonly number[]; orders: boolean }) {
+  return (
+    <g aria-hidden="true" className="plot-text plot-number" fill="var(--quiet)">
+      {rollOffs.map((rollOff, row) => (
+        <text
+          key={rollOff}
+          x={frame.left - 8}
+          y={rowTop(frame, row, rollOffs.length) + frame.plotHeight / rollOffs.length / 2 + 4.5}
+          textAnchor="end"
+        >
+          {row === rollOffs.length - 1 && orders ? 'order ' : ''}
+          {brief(rollOff, 3)}
+          {row === rollOffs.length - 1 && !orders ? ' Hz' : ''}
+        </text>
+      ))}
+    </g>
+  )
+}
+
+function Legend({ shade, layer, unit }: { shade: Shade; layer: TradeOff['layer']; unit: MapUnit }) {
+  if (!shade.range) return <span className="told">no cell has this figure</span>
+  const [least, most] = shade.range
+  return (
+    <span className="told map-legend">
+      {brief(least, 3)}
+      <span className="map-ramp" aria-hidden="true" />
+      {brief(most, 3)} {layerUnit(layer, unit)}
+    </span>
+  )
+}

@@ -1,0 +1,280 @@
+/** The editors of the trade-off desk: which filter is varied, over which range, under which limits, for which waveforms. */
+import { useState } from 'react'
+import { scoreUnit } from '../../erp/score.ts'
+import { endGesture, say } from '../../state/store.ts'
+import { canVary, mapPlace, mapRollOffs, RANGE, varyingStage } from '../../state/trade-off.ts'
+import { MAX_ROLL_OFFS, type TradeOff, type Workspace } from '../../state/workspace.ts'
+import { exact, parseNumber, stageName } from '../../words/index.ts'
+import { Choice, NumberField } from '../fields.tsx'
+import { Editor } from './editor.tsx'
+
+interface EditorProps {
+  workspace: Workspace
+}
+
+const set = (change: Partial<TradeOff>, group?: string) =>
+  say((w) => ({ ...w, tradeOff: { ...w.tradeOff, ...change } }), group && `trade-off:${group}`)
+
+export function FilterKindEditor({ workspace }: EditorProps) {
+  const { tradeOff, chain } = workspace
+  const place = mapPlace(workspace)
+  const stages = chain.flatMap((spec, index) => (canVary(spec) ? [{ spec, index }] : []))
+  return (
+    <Editor title="Trade-off" subtitle="the filter that is varied">
+      <Choice
+        stacked
+        label="stage that is varied"
+        value={place.replaces ? String(place.at) : 'insert'}
+        options={[
+          ...stages.map(({ spec, index }) => ({
+            value: String(index),
+            text: `in place of stage ${index + 1}`,
+            hint: stageName(spec),
+          })),
+          { value: 'insert', text: 'a new stage', hint: 'at the end of the chain' },
+        ]}
+        onChange={(value) => say((w) => varyingStage(w, value === 'insert' ? 'insert' : Number(value)))}
+      />
+      <Choice
+        label="pass"
+        value={tradeOff.pass}
+        options={[
+          { value: 'high', text: 'high-pass' },
+          { value: 'low', text: 'low-pass' },
+        ]}
+        onChange={(pass) =>
+          set({ pass, ...RANGE[pass], rollOffs: null, ...(place.replaces && tradeOff.stage === null ? {} : { stage: place.replaces ? place.at : 'insert' }) })
+        }
+      />
+      <Choice
+        label="design"
+        value={tradeOff.design}
+        options={[
+          { value: 'butterworth', text: 'Butterworth' },
+          { value: 'windowed-sinc', text: 'windowed sinc' },
+        ]}
+        onChange={(design) => set({ design, rollOffs: null })}
+      />
+      <Choice
+        label="direction"
+        value={tradeOff.direction}
+        options={[
+          { value: 'both', text: 'zero-phase' },
+          { value: 'forward', text: 'causal' },
+        ]}
+        onChange={(direction) => set({ direction })}
+      />
+      <p className="quiet">The rest of the chain stays as it is.</p>
+    </Editor>
+  )
+}
+
+export function MapRangeEditor({ workspace }: EditorProps) {
+  const { tradeOff } = workspace
+  const { fromHz, toHz, design } = tradeOff
+  const orders = design === 'butterworth'
+  const [draft, setDraft] = useState(() => mapRollOffs(tradeOff).map(exact).join(', '))
+  const [bad, setBad] = useState<string | null>(null)
+  const type = (text: string) => {
+    setDraft(text)
+    const values = text
+      .split(/[;\s]+|,\s+/)
+      .filter((part) => part !== '')
+      .map((part) => parseNumber(part.replace(/,$/, '')))
+    const problem = rollOffProblem(values, orders)
+    setBad(problem)
+    if (!problem) set({ rollOffs: values }, 'roll-offs')
+  }
+  return (
+    <Editor title="Trade-off" subtitle="cutoffs and roll-offs of the map">
+      <div className="pair">
+        <NumberField
+          label="cutoffs from"
+          unit="Hz"
+          value={fromHz}
+          ratio={1.1}
+          onChange={(value) => {
+            if (value > 0 && value < toHz) set({ fromHz: value }, 'range')
+          }}
+        />
+        <NumberField
+          label="to"
+          unit="Hz"
+          value={toHz}
+          ratio={1.1}
+          onChange={(value) => {
+            if (value > fromHz) set({ toHz: value }, 'range')
+          }}
+        />
+      </div>
+      <div className="field">
+        <label className="field-label" htmlFor="map-roll-offs">
+          {orders ? 'orders of one pass' : 'transition widths, Hz'}
+        </label>
+        <input
+          id="map-roll-offs"
+          className="words"
+          value={draft}
+          autoComplete="off"
+          aria-invalid={bad ? true : undefined}
+          onChange={(event) => type(event.target.value)}
+        />
+        {bad ? (
+          <span className="field-error" role="alert">
+            {bad}
+          </span>
+        ) : null}
+      </div>
+      <p className="quiet">60 cutoffs, evenly spaced in log frequency. Filters that cannot be realised are hatched.</p>
+    </Editor>
+  )
+}
+
+/** What is wrong with the roll-offs of a map; null where they can be used. */
+export function rollOffProblem(values: readonly number[], orders: boolean): string | null {
+  if (values.length === 0) return 'write at least one number'
+  if (values.length > MAX_ROLL_OFFS) return `at most ${MAX_ROLL_OFFS} roll-offs`
+  if (values.some((value) => !(value > 0))) return 'numbers above 0, separated by spaces'
+  if (orders && values.some((value) => !Number.isInteger(value))) return 'orders are whole numbers'
+  return null
+}
+
+export function MapLimitsEditor({ workspace }: EditorProps) {
+  const { tradeOff, limits, score } = workspace
+  const unit = scoreUnit(score.kind)
+  const change = (next: TradeOff['limits'], group?: string) => set({ limits: next }, group)
+  const { bias } = tradeOff.limits
+  const own = limits.score
+  const sizes = [
+    { name: 'noise', label: 'noise of the score', unit, start: 1 },
+    { name: 'totalError', label: 'total error', unit, start: 1 },
+    { name: 'latencyShiftMs', label: 'shift of the peak latency', unit: 'ms', start: 10 },
+  ] as const
+  return (
+    <Editor title="Trade-off" subtitle="the largest sizes accepted">
+      <Choice
+        label="limit of the bias"
+        value={bias === undefined ? 'score' : bias === 'none' ? 'none' : 'own'}
+        options={[
+          { value: 'score', text: 'bias: the score’s limit', ...(own ? { hint: `${exact(own.value)} ${own.unit}` } : { hint: 'none set' }) },
+          { value: 'own', text: 'another' },
+          { value: 'none', text: 'none' },
+        ]}
+        onChange={(value) => {
+          const { bias: _, ...others } = tradeOff.limits
+          change(value === 'score' ? others : { ...others, bias: value === 'none' ? 'none' : (own?.value ?? 0.5) })
+        }}
+      />
+      {typeof bias === 'number' ? (
+        <NumberField
+          label="bias within"
+          unit={unit}
+          value={bias}
+          step={0.05}
+          onChange={(value) => {
+            if (value > 0) change({ ...tradeOff.limits, bias: value }, 'bias')
+          }}
+        />
+      ) : null}
+      {sizes.map(({ name, label, unit: of, start }) => {
+        const value = tradeOff.limits[name]
+        return (
+          <div key={name} className="pair">
+            <label className="small">
+              <input
+                type="checkbox"
+                checked={value !== undefined}
+                onChange={(event) => {
+                  const { [name]: _, ...others } = tradeOff.limits
+                  change(event.target.checked ? { ...others, [name]: start } : others)
+                }}
+              />{' '}
+              {label}
+            </label>
+            {value === undefined ? null : (
+              <NumberField
+                label={`${label} within`}
+                hideLabel
+                unit={of}
+                value={value}
+                step={of === 'ms' ? 1 : 0.05}
+                onChange={(next) => {
+                  if (next > 0) change({ ...tradeOff.limits, [name]: next }, name)
+                }}
+              />
+            )}
+          </div>
+        )
+      })}
+    </Editor>
+  )
+}
+
+const START_ROBUST = { latencyMs: 50, widthPercent: 20, amplitudePercent: 30 }
+
+export function MapWaveformsEditor({ workspace }: EditorProps) {
+  const { tradeOff, source, shown } = workspace
+  if (source.kind === 'recorded')
+    return (
+      <Editor title="Trade-off" subtitle="the waveform that the filters are judged on">
+        <Choice
+          stacked
+          label="waveform of the map"
+          value={tradeOff.waveform}
+          options={[
+            { value: 'average', text: 'the average over all conditions', hint: 'pooled: it does not favour the effect' },
+            { value: 'chosen', text: `the recorded ${shown.chosen}` },
+          ]}
+          onChange={(waveform) => set({ waveform })}
+        />
+        <p className="quiet">Ranges of latency, width and amplitude need a built waveform, whose components are known.</p>
+      </Editor>
+    )
+  const { robust } = tradeOff
+  const fields = [
+    { name: 'latencyMs', label: 'latency ±', unit: 'ms', most: 1000 },
+    { name: 'widthPercent', label: 'width ±', unit: '%', most: 90 },
+    { name: 'amplitudePercent', label: 'amplitude ±', unit: '%', most: 100 },
+  ] as const
+  return (
+    <Editor title="Trade-off" subtitle="what is not known of the components">
+      <Choice
+        stacked
+        label="waveforms of the map"
+        value={robust === null ? 'built' : tradeOff.over}
+        options={[
+          { value: 'built', text: 'the waveform as built', hint: 'a gamble if it turns out otherwise' },
+          { value: 'worst', text: 'the worst of 65 waveforms', hint: 'each figure on its own' },
+          { value: 'typical', text: 'the typical one of 65 waveforms', hint: 'the median' },
+        ]}
+        onChange={(value) =>
+          value === 'built' ? set({ robust: null }) : set({ over: value, robust: robust ?? START_ROBUST })
+        }
+      />
+      {robust === null ? null : (
+        <div className="pair">
+          {fields.map(({ name, label, unit, most }) => (
+            <NumberField
+              key={name}
+              label={label}
+              unit={unit}
+              value={robust[name]}
+              step={5}
+              onChange={(value) => {
+                if (value >= 0 && value <= most) {
+                  set({ robust: { ...robust, [name]: value } }, name)
+                  endGesture()
+                }
+              }}
+            />
+          ))}
+        </div>
+      )}
+      {robust === null ? null : (
+        <p className="quiet">
+          The waveform as built and 64 others that fill these ranges evenly, every component on its own.
+        </p>
+      )}
+    </Editor>
+  )
+}

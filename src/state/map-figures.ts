@@ -1,0 +1,150 @@
+/** What the trade-off desk reads off a map: the figures of its cells, its limits, its front. */
+import { scoreUnit } from '../erp/score.ts'
+import { paretoFront } from '../evidence/pareto-front.ts'
+import { simulatedFigures } from '../evidence/simulated-score.ts'
+import { keepsLimits, type TradeOffLimits } from '../evidence/trade-off-answer.ts'
+import { type CellFigures, cellFigures, type OverWaveforms } from '../evidence/trade-off-figures.ts'
+import type { PreparedMap } from '../evidence/trade-off-map.ts'
+import { tableToCsv } from '../files/index.ts'
+import { protocolLine, protocolText } from '../words/index.ts'
+import type { MapState } from './map-run.ts'
+import { protocolOf } from './protocol.ts'
+import { filterInChain, type MapRequest } from './trade-off.ts'
+import type { TradeOff, Workspace } from './workspace.ts'
+
+export interface MapFigures {
+  /** By cell; null where not computed yet. */
+  readonly cells: readonly (CellFigures | null)[]
+  /** Indices of filters that no other beats in both bias and noise, by ascending size of the bias. */
+  readonly front: readonly number[]
+  /** Whether each cell keeps every limit. */
+  readonly kept: readonly boolean[]
+  /** Multiples of the tightest limit: at most 1 inside the region; NaN where unknown. */
+  readonly multiples: readonly number[]
+}
+
+/** The worker keeps what only computing needs; figures need the question and the unfiltered scores. */
+const preparedOf = (request: MapRequest, before: PreparedMap['before']) =>
+  ({ question: request.question, before }) as unknown as PreparedMap
+
+export function overWaveforms(request: MapRequest, over: TradeOff['over']): OverWaveforms {
+  return request.question.waveforms.length === 1 ? 0 : over
+}
+
+/** @throws RangeError as `cellFigures` and `keepsLimits`. */
+export function mapFigures(
+  request: MapRequest,
+  state: MapState | undefined,
+  over: TradeOff['over'],
+  limits: TradeOffLimits,
+): MapFigures {
+  const { question, latency, trials, largest } = request
+  const count = question.cutoffsHz.length * question.rollOffs.length
+  const before = state?.before ?? null
+  const cells =
+    state && before
+      ? state.cells.map((cell) =>
+          cell === null
+            ? null
+            : cellFigures(preparedOf(request, before), cell, {
+                ...{ score: 0, latency, trials, largest },
+                over: overWaveforms(request, over),
+              }),
+        )
+      : new Array<null>(count).fill(null)
+  const verdicts = cells.map((cell) => cell && keepsLimits(cell, limits))
+  return {
+    cells,
+    front: paretoFront(cells.map((cell) => cell ?? { bias: null, noise: null })),
+    kept: verdicts.map((verdict) => verdict?.kept === true),
+    multiples: cells.map((cell, i) => {
+      const verdict = verdicts[i]
+      if (!cell || !verdict || cell.error !== null) return Number.NaN
+      return verdict.tightest?.multiples ?? (verdict.kept ? 0 : Number.NaN)
+    }),
+  }
+}
+
+/** Every cell with what is known of it: those not computed yet are shown as the nearest that is, so that a coarse map is complete. */
+export function nearestComputed(figures: MapFigures, cutoffs: number, rollOffs: number): (CellFigures | null)[] {
+  const { cells } = figures
+  if (cells.every((cell) => cell !== null)) return cells.slice()
+  const known = cells.flatMap((cell) => (cell ? [cell] : []))
+  return cells.map((cell, index) => {
+    if (cell || known.length === 0) return cell
+    const c = index % cutoffs
+    const r = Math.floor(index / cutoffs)
+    let nearest: CellFigures | null = null
+    let least = Number.POSITIVE_INFINITY
+    for (const other of known) {
+      const distance = Math.abs(other.cutoffIndex - c) / cutoffs + (2 * Math.abs(other.rollOffIndex - r)) / rollOffs
+      if (distance < least) {
+        least = distance
+        nearest = other
+      }
+    }
+    return nearest
+  })
+}
+
+/** A layer's value in a cell; null where it has none. */
+export function layerValue(cell: CellFigures | null, layer: TradeOff['layer']): number | null {
+  if (!cell) return null
+  switch (layer) {
+    case 'bias':
+      return cell.bias
+    case 'noise':
+      return cell.noise
+    case 'total error':
+      return cell.totalError
+    case 'equal-trials factor':
+      return cell.equalTrialsFactor
+    case 'latency shift':
+      return cell.latencyShiftMs
+  }
+}
+
+/** The simulation's own standard error of a cell's noise, for one waveform; null for exact figures. */
+export function noiseError(state: MapState | undefined, index: number): number | null {
+  const simulated = state?.cells[index]?.scores[0]?.simulated
+  if (!simulated || simulated.length !== 1) return null
+  return simulatedFigures(simulated[0], null, null)?.noise.standardError ?? null
+}
+
+/** The cell of the filter that stands in the chain, if its cutoff and roll-off lie on the map's grid; the nearest cutoff of its row. */
+export function cellInChain(workspace: Workspace, request: MapRequest): number | null {
+  const filter = filterInChain(workspace)
+  if (!filter) return null
+  const { cutoffsHz, rollOffs } = request.question
+  const row = rollOffs.indexOf(filter.rollOff)
+  if (row < 0 || filter.cutoffHz < 0.98 * cutoffsHz[0] || filter.cutoffHz > 1.02 * cutoffsHz[cutoffsHz.length - 1])
+    return null
+  const apart = (hz: number) => Math.abs(Math.log(hz / filter.cutoffHz))
+  const nearest = cutoffsHz.reduce((best, hz, i) => (apart(hz) < apart(cutoffsHz[best]) ? i : best), 0)
+  return row * cutoffsHz.length + nearest
+}
+
+/** The map as a table, a line a filter, with full digits and the sentence that it belongs to. */
+export function mapCsv(figures: MapFigures, request: MapRequest, workspace: Workspace): string {
+  const unit = scoreUnit(workspace.score.kind)
+  const { candidate, samplingRateHz } = request.question
+  const rollOff = candidate.design === 'butterworth' ? 'order of one pass' : 'transition width (Hz)'
+  const header = ['cutoff (Hz)', rollOff, `bias (${unit})`, `noise (${unit})`, `total error (${unit})`]
+  header.push('precision factor', 'equal-trials factor', 'latency shift (ms)', 'keeps the limits', 'on the front', 'problem')
+  const front = new Set(figures.front)
+  const cell = (value: number | null) => (value === null ? '' : value)
+  const lines = figures.cells.flatMap((of, i) =>
+    of === null
+      ? []
+      : [
+          [
+            ...[of.cutoffHz, of.rollOff, cell(of.bias), cell(of.noise), cell(of.totalError)],
+            ...[cell(of.precisionFactor), cell(of.equalTrialsFactor), cell(of.latencyShiftMs)],
+            ...[figures.kept[i] ? 'yes' : 'no', front.has(i) ? 'yes' : 'no', of.error ?? ''],
+          ],
+        ],
+  )
+  const words = protocolText(protocolLine(protocolOf(workspace, samplingRateHz)))
+  const last = ['protocol', words, ...Array<string>(header.length - 2).fill('')]
+  return tableToCsv(header, [...lines, last])
+}

@@ -1,0 +1,275 @@
+/** The question that the trade-off desk asks, as a function of the workspace; and what picking a filter makes of it. */
+import { type Score, scoreLinearity, scoreUnit } from '../erp/score.ts'
+import { waveformAt } from '../erp/waveform.ts'
+import { largestAbsolute, scoreReference } from '../evidence/fidelity.ts'
+import { correctBaseline } from '../erp/baseline.ts'
+import { type Candidate, type CandidatePlace, chainWithCandidate, logCutoffs } from '../evidence/trade-off-candidate.ts'
+import type { TradeOffLimits } from '../evidence/trade-off-answer.ts'
+import type { MapQuestion, MapWaveform } from '../evidence/trade-off-map.ts'
+import { type ComponentRanges, waveformSample } from '../evidence/waveform-sample.ts'
+import type { StageSpec } from '../filter/stage.ts'
+import { waveformOf } from '../files/index.ts'
+import { inWords } from '../words/index.ts'
+import { type ChosenNoise, chosenNoise } from './chosen-noise.ts'
+import { componentsOf, recordedValues, timeAxis } from './evaluate-curves.ts'
+import { memoised } from './memo.ts'
+import type { RecordedData } from './recorded-data.ts'
+import { DIFFERENCE, type TradeOff, type Workspace } from './workspace.ts'
+
+export const MAP_CUTOFFS = 60
+/** A worst case over fewer waveforms would miss it. */
+export const ROBUST_WAVEFORMS = 64
+const SEED = 1
+
+/** A stage with one cutoff and a roll-off of its own, applied here: what a map can vary. */
+export function canVary(spec: StageSpec | undefined): boolean {
+  return (
+    spec !== undefined &&
+    (spec.design === 'butterworth' || spec.design === 'windowed-sinc') &&
+    (spec.pass === 'low' || spec.pass === 'high') &&
+    spec.inData !== true
+  )
+}
+
+type ChainAndDesk = Pick<Workspace, 'chain' | 'tradeOff'>
+
+/** Where the varied filter stands: a place that the chain no longer has, or that cannot be varied, is chosen anew. */
+export function mapPlace({ chain, tradeOff }: ChainAndDesk): CandidatePlace {
+  const { stage, pass } = tradeOff
+  if (stage === 'insert') return { at: chain.length, replaces: false }
+  if (stage !== null && canVary(chain[stage])) return { at: stage, replaces: true }
+  const first = chain.findIndex(
+    (spec) => canVary(spec) && spec.enabled !== false && (spec as { pass?: string }).pass === pass,
+  )
+  return first < 0 ? { at: chain.length, replaces: false } : { at: first, replaces: true }
+}
+
+/** The kind of filter; a stage of the same design and pass hands on its window and the meaning of its cutoff. */
+export function mapCandidate(workspace: ChainAndDesk): Candidate {
+  const { design, pass, direction } = workspace.tradeOff
+  const place = mapPlace(workspace)
+  const present = place.replaces ? workspace.chain[place.at] : undefined
+  const like = present?.design === design ? present : undefined
+  const meaning = like && 'meaning' in like ? like.meaning : 'half-amplitude'
+  if (design === 'butterworth') return { design, pass, meaning, direction }
+  return {
+    design,
+    pass,
+    meaning,
+    window: like?.design === 'windowed-sinc' ? like.window : { name: 'hamming' },
+    delay: direction === 'both' ? 'compensated' : 'causal',
+  }
+}
+
+export const ORDERS = [1, 2, 3, 4, 5, 6, 7, 8]
+const WIDTHS_HZ = { high: [0.1, 0.2, 0.5, 1, 2, 4], low: [1, 2, 4, 7.5, 10, 15] }
+
+/** Rows of the map, ascending. */
+export function mapRollOffs({ rollOffs, design, pass }: TradeOff): readonly number[] {
+  if (rollOffs) return [...new Set(rollOffs)].sort((a, b) => a - b)
+  return design === 'butterworth' ? ORDERS : WIDTHS_HZ[pass]
+}
+
+/** The limits in force. The bias that is accepted is the limit of the score, unless the desk was given its own. */
+export function mapLimits({ tradeOff, limits, score }: Workspace, scoreBefore: number | null): TradeOffLimits {
+  const { bias, noise, totalError, latencyShiftMs } = tradeOff.limits
+  const of: { -readonly [K in keyof TradeOffLimits]: TradeOffLimits[K] } = {}
+  if (typeof bias === 'number') of.bias = bias
+  else if (bias === undefined && limits.score) {
+    const { value, unit } = limits.score
+    if (unit === scoreUnit(score.kind)) of.bias = value
+    else if (unit === '%' && scoreBefore !== null && scoreUnit(score.kind) !== 'ms')
+      of.bias = Number(((Math.abs(scoreBefore) * value) / 100).toPrecision(3))
+  }
+  if (noise !== undefined) of.noise = noise
+  if (totalError !== undefined) of.totalError = totalError
+  if (latencyShiftMs !== undefined) of.latencyShiftMs = latencyShiftMs
+  return of
+}
+
+export interface MapRequest {
+  readonly question: MapQuestion
+  /** What the map hangs on, as text: two equal keys are one map. */
+  readonly key: string
+  /** Of each waveform unfiltered, in the score's unit; null for latencies. */
+  readonly largest: readonly (number | null)[]
+  /** Index of the latency whose shift is asked for. */
+  readonly latency: number | null
+  /** N for the figures: of a difference half the trials of one condition, since the variance is twice as large. */
+  readonly trials: number
+  /** A score whose noise is drawn, not computed. */
+  readonly simulated: boolean
+}
+
+export type MapRequestOutcome = { ok: true; request: MapRequest } | { ok: false; reason: string }
+
+/** What the map computes for this workspace, or why it cannot be asked. */
+export function mapRequest(workspace: Workspace, data: RecordedData | null): MapRequestOutcome {
+  const { trials, shown, source, chain, extent, baseline, score, measure, tradeOff } = workspace
+  const effective = shown.chosen === DIFFERENCE ? trials / 2 : trials
+  if (!(effective >= 1)) return { ok: false, reason: 'A difference needs at least 2 trials of each condition.' }
+  const linear = scoreLinearity(score.kind) === 'linear'
+  try {
+    const noise = chosenNoise(workspace, data)
+    const parts = { source, shown, chain, extent, baseline, score, measure }
+    const asked = questionOf(...(Object.values(parts) as PartValues), data, noise, settingsOf(tradeOff), linear ? 1 : effective)
+    return { ok: true, request: { ...asked, trials: effective, simulated: !linear } }
+  } catch (error) {
+    if (!(error instanceof RangeError)) throw error
+    return { ok: false, reason: inWords(error.message) }
+  }
+}
+
+type PartValues = [
+  Workspace['source'],
+  Workspace['shown'],
+  Workspace['chain'],
+  Workspace['extent'],
+  Workspace['baseline'],
+  Score,
+  Workspace['measure'],
+]
+
+interface MapSettings extends TradeOff {
+  /** A latency is watched beside the score. */
+  watched: boolean
+}
+
+/** What the computation hangs on, as text: another limit or layer is no other question, unless it asks for a latency. */
+function settingsOf(tradeOff: TradeOff): string {
+  const watched = tradeOff.layer === 'latency shift' || tradeOff.limits.latencyShiftMs !== undefined
+  const settings: MapSettings = { ...tradeOff, limits: {}, over: 'worst', layer: 'bias', watched }
+  return JSON.stringify(settings)
+}
+
+const questionOf = memoised((...args: [...PartValues, RecordedData | null, ChosenNoise, string, number]) => {
+  const [source, shown, chain, extent, baseline, score, measure, data, { noise, passed }, settings, trials] = args
+  const tradeOff = JSON.parse(settings) as MapSettings
+  const workspace = { source, shown, chain, tradeOff }
+  const { samplingRateHz, timesMs } = timeAxis(source, data)
+  const waveforms = waveformsOf(workspace, data)
+  const difference = shown.chosen === DIFFERENCE
+  const place = mapPlace(workspace)
+  const question: MapQuestion = {
+    samplingRateHz,
+    timesMs,
+    // without the filter that is varied, so that picking another asks no other question
+    chain: chain.filter((_, i) => !(place.replaces && i === place.at)),
+    place: { at: place.at, replaces: false },
+    candidate: mapCandidate(workspace),
+    cutoffsHz: logCutoffs(tradeOff.fromHz, tradeOff.toHz, MAP_CUTOFFS),
+    rollOffs: mapRollOffs(tradeOff),
+    extent: source.kind === 'recorded' ? 'epochs' : extent,
+    baseline,
+    scores: [
+      { score, noise: 'with noise' },
+      ...(tradeOff.watched
+        ? [
+            {
+              score: { kind: 'peak-latency' as const, ...measure.peak, polarity: measure.polarity },
+              noise: 'without noise' as const,
+            },
+          ]
+        : []),
+    ],
+    waveforms,
+    // what is locked to the event is the same in both conditions of a difference
+    noise:
+      difference && noise.kind === 'model' ? { ...noise, lines: noise.lines.filter((line) => !line.locked) } : noise,
+    noisePassed: passed,
+    trials,
+    seed: SEED,
+  }
+  const largest = waveforms.map((waveform) => {
+    const values = waveform.kind === 'built' ? waveformAt(waveform.components, timesMs) : waveform.values
+    return scoreReference(score, largestAbsolute(correctBaseline(values, timesMs, baseline)))
+  })
+  const key = JSON.stringify(question, (_, value) => (ArrayBuffer.isView(value) ? Array.from(value as never) : value))
+  return {
+    question,
+    key,
+    largest,
+    latency: tradeOff.watched ? 1 : null,
+  }
+})
+
+function waveformsOf(
+  { source, shown, tradeOff }: Pick<Workspace, 'source' | 'shown' | 'tradeOff'>,
+  data: RecordedData | null,
+): MapWaveform[] {
+  if (source.kind === 'recorded') {
+    const values =
+      tradeOff.waveform === 'average' && data
+        ? averageOver(data, shown.channel)
+        : recordedValues(source, data, shown.chosen, shown.channel, shown.difference)
+    return [{ kind: 'recorded', values }]
+  }
+  const components = componentsOf(source, shown.chosen, shown.difference)
+  const { robust } = tradeOff
+  if (!robust) return [{ kind: 'built', components }]
+  const around = (value: number, by: number) => ({ from: value - by, to: value + by })
+  const ranges = components.map((entry, component): ComponentRanges => {
+    const amplitude = Math.abs(entry.amplitudeUv * robust.amplitudePercent) / 100
+    return {
+      component,
+      ...(amplitude > 0 ? { amplitudeUv: around(entry.amplitudeUv, amplitude) } : {}),
+      ...(entry.shape !== 'tone' && robust.latencyMs > 0 ? { latencyMs: around(entry.latencyMs, robust.latencyMs) } : {}),
+      ...(entry.shape !== 'tone' && robust.widthPercent > 0
+        ? { widthMs: around(entry.widthMs, (entry.widthMs * robust.widthPercent) / 100) }
+        : {}),
+    }
+  })
+  return waveformSample(components, ranges, ROBUST_WAVEFORMS, SEED).map((sample) => ({
+    kind: 'built',
+    components: sample,
+  }))
+}
+
+/** The mean over all conditions of a table, at the channel in use. */
+function averageOver(data: RecordedData, channel: string | null): Float64Array {
+  const all = data.conditions.map((condition) => waveformOf(data, condition, channel ?? data.channels[0]).values)
+  return all[0].map((_, i) => all.reduce((sum, values) => sum + values[i], 0) / all.length)
+}
+
+/** The workspace with a filter of the map in its chain. */
+export function withFilter(workspace: Workspace, cutoffHz: number, rollOff: number): Workspace {
+  const place = mapPlace(workspace)
+  const chain = chainWithCandidate(workspace.chain, place, mapCandidate(workspace), cutoffHz, rollOff)
+  // a filter that was put in is the one that the map goes on with
+  const tradeOff = place.replaces ? workspace.tradeOff : { ...workspace.tradeOff, stage: place.at }
+  return { ...workspace, chain, tradeOff }
+}
+
+/** The filter of the chain that stands where the map's filters would, if it is one of their kind. */
+export function filterInChain(workspace: Workspace): { cutoffHz: number; rollOff: number } | null {
+  const place = mapPlace(workspace)
+  const spec = place.replaces ? workspace.chain[place.at] : undefined
+  const candidate = mapCandidate(workspace)
+  if (!spec || spec.enabled === false) return null
+  if (spec.design === 'butterworth' && candidate.design === 'butterworth') {
+    if (spec.pass !== candidate.pass || spec.direction !== candidate.direction) return null
+    return { cutoffHz: spec.cutoffsHz[0], rollOff: spec.order }
+  }
+  if (spec.design === 'windowed-sinc' && candidate.design === 'windowed-sinc') {
+    if (spec.pass !== candidate.pass || spec.delay !== candidate.delay) return null
+    return { cutoffHz: spec.cutoffsHz[0], rollOff: spec.transitionHz }
+  }
+  return null
+}
+
+/** Another stage to vary brings its own pass, design and direction, and a range around its cutoff. */
+export function varyingStage(workspace: Workspace, stage: number | 'insert'): Workspace {
+  const { tradeOff, chain } = workspace
+  if (stage === 'insert') return { ...workspace, tradeOff: { ...tradeOff, stage } }
+  const spec = chain[stage]
+  if (!spec || (spec.design !== 'butterworth' && spec.design !== 'windowed-sinc')) return workspace
+  if (spec.pass !== 'high' && spec.pass !== 'low') return workspace
+  const direction =
+    spec.design === 'butterworth' ? spec.direction : spec.delay === 'compensated' ? 'both' : 'forward'
+  return {
+    ...workspace,
+    tradeOff: { ...tradeOff, ...RANGE[spec.pass], stage, pass: spec.pass, design: spec.design, direction, rollOffs: null },
+  }
+}
+
+export const RANGE = { high: { fromHz: 0.01, toHz: 3 }, low: { fromHz: 5, toHz: 100 } } as const
