@@ -1,5 +1,5 @@
 /** The noise that the page reckons with: the workspace's model, or the estimate from the loaded single trials. */
-import type { NoiseSpec } from '../erp/noise.ts'
+import { checkNoise, defaultNoise, noiseDensity, type NoiseSpec } from '../erp/noise.ts'
 import { seededRandom } from '../erp/seeded-random.ts'
 import { drawNoise, noiseSource } from '../erp/simulate-noise.ts'
 import { EXTRAPOLATED_MARK, type EstimatedNoise, noiseFromTrials } from '../erp/noise-from-trials.ts'
@@ -17,7 +17,7 @@ export interface ChosenNoise {
   readonly estimate: EstimatedNoise | null
 }
 
-export { EXTRAPOLATED_MARK }
+export { checkNoise, defaultNoise, EXTRAPOLATED_MARK, noiseDensity }
 
 const ofModel = memoised((noise: NoiseSpec): ChosenNoise => ({ noise, passed: 'nothing', estimate: null }))
 

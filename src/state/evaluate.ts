@@ -126,7 +126,9 @@ function evaluationOf(
         weights &&
         extrapolatedPart(chain, weights.after, extent, noise.noise, noise.estimate.extrapolatedBelowHz),
     },
-    pins: workspace.pins.map((pin, i) => pinnedResult(pin, pinned[i], workspace, data, noise, axis, frequency.hz, kernel)),
+    pins: workspace.pins.map((pin, i) =>
+      pinnedResult(pin, pinned[i], workspace, data, noise, axis, frequency.hz, kernel),
+    ),
     remark: remarkWords({
       score,
       unit: rows[0].unit,

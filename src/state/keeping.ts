@@ -39,7 +39,10 @@ export function workspaceFromText(
   const enclosed = (value as { enclosed?: unknown }).enclosed
   if (enclosed === undefined) return { ...result, enclosed: null }
   if (!isEnclosed(enclosed))
-    return { ok: false, reason: 'this is no workspace that the page can read: enclosed: a table has a fileName and a text' }
+    return {
+      ok: false,
+      reason: 'this is no workspace that the page can read: enclosed: a table has a fileName and a text',
+    }
   return { ...result, enclosed: { fileName: enclosed.fileName, text: enclosed.text } }
 }
 

@@ -9,7 +9,11 @@ const mapBench = courier<BenchApi>(
 )
 
 export const computeMap = (request: MapRequest, signal: AbortSignal) =>
-  runMap(request, (key, ...rest) => {
-    const [question, order, batches, budgetMs, stop] = rest
-    return mapBench.call('mapSlice', [key, question, order, batches, budgetMs], stop)
-  }, signal)
+  runMap(
+    request,
+    (key, ...rest) => {
+      const [question, order, batches, budgetMs, stop] = rest
+      return mapBench.call('mapSlice', [key, question, order, batches, budgetMs], stop)
+    },
+    signal,
+  )

@@ -2,7 +2,13 @@
 import { scoreUnit } from '../erp/score.ts'
 import { paretoFront } from '../evidence/pareto-front.ts'
 import { simulatedFigures } from '../evidence/simulated-score.ts'
-import { keepsLimits, type TradeOffLimits } from '../evidence/trade-off-answer.ts'
+import {
+  keepsLimits,
+  type LimitVerdict,
+  type TradeOffAnswer,
+  tradeOffAnswer,
+  type TradeOffLimits,
+} from '../evidence/trade-off-answer.ts'
 import { type CellFigures, cellFigures, type OverWaveforms } from '../evidence/trade-off-figures.ts'
 import type { PreparedMap } from '../evidence/trade-off-map.ts'
 import { tableToCsv } from '../files/index.ts'
@@ -63,6 +69,22 @@ export function mapFigures(
       return verdict.tightest?.multiples ?? (verdict.kept ? 0 : Number.NaN)
     }),
   }
+}
+
+export type { CellFigures, TradeOffLimits }
+
+/** A filter against the limits in force. */
+export const verdictOnLimits = (cell: CellFigures, limits: TradeOffLimits): LimitVerdict => keepsLimits(cell, limits)
+
+/** What the row of a cell answers; null while nothing of it is computed. */
+export function answerOfRow(
+  figures: MapFigures,
+  row: number,
+  columns: number,
+  limits: TradeOffLimits,
+): TradeOffAnswer | null {
+  const cells = figures.cells.slice(row * columns, (row + 1) * columns).filter((cell) => cell !== null)
+  return cells.length > 0 ? tradeOffAnswer(cells, limits) : null
 }
 
 /** Every cell with what is known of it: those not computed yet are shown as the nearest that is, so that a coarse map is complete. */
@@ -130,7 +152,14 @@ export function mapCsv(figures: MapFigures, request: MapRequest, workspace: Work
   const { candidate, samplingRateHz } = request.question
   const rollOff = candidate.design === 'butterworth' ? 'order of one pass' : 'transition width (Hz)'
   const header = ['cutoff (Hz)', rollOff, `bias (${unit})`, `noise (${unit})`, `total error (${unit})`]
-  header.push('precision factor', 'equal-trials factor', 'latency shift (ms)', 'keeps the limits', 'on the front', 'problem')
+  header.push(
+    'precision factor',
+    'equal-trials factor',
+    'latency shift (ms)',
+    'keeps the limits',
+    'on the front',
+    'problem',
+  )
   const front = new Set(figures.front)
   const cell = (value: number | null) => (value === null ? '' : value)
   const lines = figures.cells.flatMap((of, i) =>

@@ -16,6 +16,9 @@ import { memoised } from './memo.ts'
 import type { RecordedData } from './recorded-data.ts'
 import { DIFFERENCE, type TradeOff, type Workspace } from './workspace.ts'
 
+/** Unit of the score, and so of bias, noise and total error. */
+export const scoreUnitOf = ({ score }: Pick<Workspace, 'score'>) => scoreUnit(score.kind)
+
 export const MAP_CUTOFFS = 60
 /** A worst case over fewer waveforms would miss it. */
 export const ROBUST_WAVEFORMS = 64
@@ -112,7 +115,13 @@ export function mapRequest(workspace: Workspace, data: RecordedData | null): Map
   try {
     const noise = chosenNoise(workspace, data)
     const parts = { source, shown, chain, extent, baseline, score, measure }
-    const asked = questionOf(...(Object.values(parts) as PartValues), data, noise, settingsOf(tradeOff), linear ? 1 : effective)
+    const asked = questionOf(
+      ...(Object.values(parts) as PartValues),
+      data,
+      noise,
+      settingsOf(tradeOff),
+      linear ? 1 : effective,
+    )
     return { ok: true, request: { ...asked, trials: effective, simulated: !linear } }
   } catch (error) {
     if (!(error instanceof RangeError)) throw error
@@ -213,7 +222,9 @@ function waveformsOf(
     return {
       component,
       ...(amplitude > 0 ? { amplitudeUv: around(entry.amplitudeUv, amplitude) } : {}),
-      ...(entry.shape !== 'tone' && robust.latencyMs > 0 ? { latencyMs: around(entry.latencyMs, robust.latencyMs) } : {}),
+      ...(entry.shape !== 'tone' && robust.latencyMs > 0
+        ? { latencyMs: around(entry.latencyMs, robust.latencyMs) }
+        : {}),
       ...(entry.shape !== 'tone' && robust.widthPercent > 0
         ? { widthMs: around(entry.widthMs, (entry.widthMs * robust.widthPercent) / 100) }
         : {}),
@@ -264,11 +275,18 @@ export function varyingStage(workspace: Workspace, stage: number | 'insert'): Wo
   const spec = chain[stage]
   if (!spec || (spec.design !== 'butterworth' && spec.design !== 'windowed-sinc')) return workspace
   if (spec.pass !== 'high' && spec.pass !== 'low') return workspace
-  const direction =
-    spec.design === 'butterworth' ? spec.direction : spec.delay === 'compensated' ? 'both' : 'forward'
+  const direction = spec.design === 'butterworth' ? spec.direction : spec.delay === 'compensated' ? 'both' : 'forward'
   return {
     ...workspace,
-    tradeOff: { ...tradeOff, ...RANGE[spec.pass], stage, pass: spec.pass, design: spec.design, direction, rollOffs: null },
+    tradeOff: {
+      ...tradeOff,
+      ...RANGE[spec.pass],
+      stage,
+      pass: spec.pass,
+      design: spec.design,
+      direction,
+      rollOffs: null,
+    },
   }
 }
 

@@ -91,7 +91,10 @@ export function protocolLine(protocol: Protocol): Piece[] {
     token('rate', `${exact(protocol.samplingRateHz)} Hz`, 'sampling rate'),
   ]
   if (protocol.events)
-    pieces.push(text(', its events '), token('events', eventsWords(protocol.events), 'how the events follow one another'))
+    pieces.push(
+      text(', its events '),
+      token('events', eventsWords(protocol.events), 'how the events follow one another'),
+    )
   if (past.length > 0) pieces.push(text(', had passed '), ...joined(past))
   if (amplifiers.length > 0)
     pieces.push(text(past.length > 0 ? '. Here it passed ' : ', passed '), ...joined(amplifiers))

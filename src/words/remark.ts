@@ -73,8 +73,7 @@ function effectWords(facts: RemarkFacts): string {
   const scale = unit === 'µV' ? largestUv : Math.max(Math.abs(before), Math.abs(after))
   if (scale === 0 || Math.abs(change) < NOTEWORTHY * Math.max(scale * (unit === 'µV' ? NOTHING : 1), Math.abs(before)))
     return `The chain leaves the score nearly as it was: ${said(before)} before, ${said(after)} after.`
-  if (isFalseDeflection(facts))
-    return `The deflection of ${said(after)} at ${where} was not in the input.`
+  if (isFalseDeflection(facts)) return `The deflection of ${said(after)} at ${where} was not in the input.`
   if (before * after < 0 && Math.abs(after) >= NOTEWORTHY * Math.abs(before))
     return `The chain turns the sign of the score: ${said(before)} before, ${said(after)} after.`
   const percent = Math.min(100, Math.round((100 * Math.abs(change)) / Math.abs(before)))

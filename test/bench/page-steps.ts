@@ -37,7 +37,14 @@ export function traceStep(extent: 'continuous' | 'epochs', position: number): nu
     source.kind === 'built'
       ? filterBuiltWaveform(chain, source.components, TIMES_MS, extent)
       : filterRecordedWaveform(chain, source.values)
-  const traced = tracedWeights({ score: MEAN, of: 'after', baseline: BASELINE, timesMs: TIMES_MS, before: after, after })
+  const traced = tracedWeights({
+    score: MEAN,
+    of: 'after',
+    baseline: BASELINE,
+    timesMs: TIMES_MS,
+    before: after,
+    after,
+  })
   if (!isTraced(traced)) throw new Error('the mean must be there to be traced')
   const input = { chain, extent, timesMs: TIMES_MS, baseline: BASELINE, source, traced }
   return traceBack(input).moments.value + traceByStage(input).value + Number(scoreOf(after, TIMES_MS, MEAN))

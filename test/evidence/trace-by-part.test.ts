@@ -116,7 +116,7 @@ describe('the account by condition', () => {
             ])
             const value = weigh(traced.onAfter, wave.after) - weigh(traced.onBefore, wave.before)
             expect(Math.abs(account.value - value)).toBeLessThanOrEqual(
-              1e-9 * (size(parts) + 100) * weightOf(traced.onAfter),
+              1e-9 * (size(parts) + 100) * weightOf(traced.onAfter) + 1e-12,
             )
           }
         },

@@ -1,8 +1,17 @@
 /** The noise of single trials: a model's fields or the estimate from the loaded trials, as a spectrum and as one trial. */
 import { useMemo, useRef, useState } from 'react'
-import { checkNoise, defaultNoise, noiseDensity, type NoiseSpec } from '../../erp/noise.ts'
+import type { NoiseSpec } from '../../erp/noise.ts'
 import { Axis, Clipped, FigureFrame, GridLines, Line, linearScale, logScale, ZeroLine } from '../../plot/index.ts'
-import { type ChosenNoise, chosenNoise, hasTrials, simulatedTrial, trialsChosen } from '../../state/chosen-noise.ts'
+import {
+  type ChosenNoise,
+  checkNoise,
+  chosenNoise,
+  defaultNoise,
+  hasTrials,
+  noiseDensity,
+  simulatedTrial,
+  trialsChosen,
+} from '../../state/chosen-noise.ts'
 import type { RecordedData } from '../../state/recorded-data.ts'
 import { say } from '../../state/store.ts'
 import type { Workspace } from '../../state/workspace.ts'
@@ -60,9 +69,9 @@ function Estimated({ chosen, condition, channel }: { chosen: ChosenNoise; condit
   if (!estimate) return null
   return (
     <p className="quiet">
-      From {estimate.trials} trials of {brief(estimate.secondsOfTrial, 3)} s ({condition}, {channel}), what is evoked cancelled.
-      Below {brief(estimate.extrapolatedBelowHz, 2)} Hz (2/T, dashed) the trials are too short: a power law with exponent{' '}
-      {brief(estimate.exponent, 2)} goes on there. The estimate holds what the stages in the data left.
+      From {estimate.trials} trials of {brief(estimate.secondsOfTrial, 3)} s ({condition}, {channel}), what is evoked
+      cancelled. Below {brief(estimate.extrapolatedBelowHz, 2)} Hz (2/T, dashed) the trials are too short: a power law
+      with exponent {brief(estimate.exponent, 2)} goes on there. The estimate holds what the stages in the data left.
     </p>
   )
 }
@@ -170,7 +179,9 @@ function ModelFields({ noise }: { noise: Model }) {
           )
         })}
       </div>
-      <p className="quiet">Typical: for a resting adult’s scalp EEG, from memory; an estimate from own trials is better.</p>
+      <p className="quiet">
+        Typical: for a resting adult’s scalp EEG, from memory; an estimate from own trials is better.
+      </p>
       {noise.lines.map((line, i) => {
         const set = (next: Partial<typeof line>, label: string) =>
           change(label, { ...noise, lines: noise.lines.map((entry, k) => (k === i ? { ...entry, ...next } : entry)) })
@@ -217,12 +228,16 @@ function ModelFields({ noise }: { noise: Model }) {
       })}
       <Actions>
         <WordButton
-          onPress={() => change('mains', { ...noise, lines: [...noise.lines, { hz: 50, amplitudeUv: 2, locked: false }] })}
+          onPress={() =>
+            change('mains', { ...noise, lines: [...noise.lines, { hz: 50, amplitudeUv: 2, locked: false }] })
+          }
         >
           add mains
         </WordButton>
         <WordButton
-          onPress={() => change('refresh', { ...noise, lines: [...noise.lines, { hz: 60, amplitudeUv: 1, locked: true }] })}
+          onPress={() =>
+            change('refresh', { ...noise, lines: [...noise.lines, { hz: 60, amplitudeUv: 1, locked: true }] })
+          }
         >
           add display refresh
         </WordButton>
@@ -232,8 +247,8 @@ function ModelFields({ noise }: { noise: Model }) {
       </Actions>
       {noise.lines.some(({ locked }) => locked) ? (
         <p className="quiet">
-          Interference that is locked to the event does not average out. The trade-off map counts it as bias, and no number of
-          trials as noise. Mains is locked too when the event interval is a multiple of its period.
+          Interference that is locked to the event does not average out. The trade-off map counts it as bias, and no
+          number of trials as noise. Mains is locked too when the event interval is a multiple of its period.
         </p>
       ) : null}
     </>
@@ -330,7 +345,14 @@ function Trial({ noise, samplingRateHz }: { noise: NoiseSpec; samplingRateHz: nu
             <Line xs={{ start: 0, step: 1 / samplingRateHz }} ys={trial} {...{ x, y }} tone="before" weight="hair" />
             <Axis side="left" scale={y} at={frame.left} title="µV" />
             <Axis side="bottom" scale={x} at={frame.bottom} title="s" />
-            <text className="plot-text" x={frame.right} y={frame.top - 6} textAnchor="end" fill="var(--quiet)" aria-hidden="true">
+            <text
+              className="plot-text"
+              x={frame.right}
+              y={frame.top - 6}
+              textAnchor="end"
+              fill="var(--quiet)"
+              aria-hidden="true"
+            >
               one simulated trial of noise alone
             </text>
           </>

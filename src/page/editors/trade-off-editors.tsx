@@ -1,8 +1,7 @@
 /** The editors of the trade-off desk: which filter is varied, over which range, under which limits, for which waveforms. */
 import { useState } from 'react'
-import { scoreUnit } from '../../erp/score.ts'
 import { endGesture, say } from '../../state/store.ts'
-import { canVary, mapPlace, mapRollOffs, RANGE, varyingStage } from '../../state/trade-off.ts'
+import { canVary, mapPlace, mapRollOffs, RANGE, scoreUnitOf, varyingStage } from '../../state/trade-off.ts'
 import { MAX_ROLL_OFFS, type TradeOff, type Workspace } from '../../state/workspace.ts'
 import { exact, parseNumber, stageName } from '../../words/index.ts'
 import { Choice, NumberField } from '../fields.tsx'
@@ -43,7 +42,12 @@ export function FilterKindEditor({ workspace }: EditorProps) {
           { value: 'low', text: 'low-pass' },
         ]}
         onChange={(pass) =>
-          set({ pass, ...RANGE[pass], rollOffs: null, ...(place.replaces && tradeOff.stage === null ? {} : { stage: place.replaces ? place.at : 'insert' }) })
+          set({
+            pass,
+            ...RANGE[pass],
+            rollOffs: null,
+            ...(place.replaces && tradeOff.stage === null ? {} : { stage: place.replaces ? place.at : 'insert' }),
+          })
         }
       />
       <Choice
@@ -140,8 +144,8 @@ export function rollOffProblem(values: readonly number[], orders: boolean): stri
 }
 
 export function MapLimitsEditor({ workspace }: EditorProps) {
-  const { tradeOff, limits, score } = workspace
-  const unit = scoreUnit(score.kind)
+  const { tradeOff, limits } = workspace
+  const unit = scoreUnitOf(workspace)
   const change = (next: TradeOff['limits'], group?: string) => set({ limits: next }, group)
   const { bias } = tradeOff.limits
   const own = limits.score
@@ -156,7 +160,11 @@ export function MapLimitsEditor({ workspace }: EditorProps) {
         label="limit of the bias"
         value={bias === undefined ? 'score' : bias === 'none' ? 'none' : 'own'}
         options={[
-          { value: 'score', text: 'bias: the score’s limit', ...(own ? { hint: `${exact(own.value)} ${own.unit}` } : { hint: 'none set' }) },
+          {
+            value: 'score',
+            text: 'bias: the score’s limit',
+            ...(own ? { hint: `${exact(own.value)} ${own.unit}` } : { hint: 'none set' }),
+          },
           { value: 'own', text: 'another' },
           { value: 'none', text: 'none' },
         ]}
@@ -222,12 +230,18 @@ export function MapWaveformsEditor({ workspace }: EditorProps) {
           label="waveform of the map"
           value={tradeOff.waveform}
           options={[
-            { value: 'average', text: 'the average over all conditions', hint: 'pooled: it does not favour the effect' },
+            {
+              value: 'average',
+              text: 'the average over all conditions',
+              hint: 'pooled: it does not favour the effect',
+            },
             { value: 'chosen', text: `the recorded ${shown.chosen}` },
           ]}
           onChange={(waveform) => set({ waveform })}
         />
-        <p className="quiet">Ranges of latency, width and amplitude need a built waveform, whose components are known.</p>
+        <p className="quiet">
+          Ranges of latency, width and amplitude need a built waveform, whose components are known.
+        </p>
       </Editor>
     )
   const { robust } = tradeOff

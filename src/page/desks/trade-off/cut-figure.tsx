@@ -39,7 +39,12 @@ export function CutFigure({ map, unit, at, caption }: CutFigureProps) {
   const said = curves.map(({ name, values }) => `${name} ${brief(values[column], 3)} ${unit}`)
   return (
     <>
-      <FigureHead title={`Cut along ${rollOffWords(candidate, rollOffs[row])}`} svg={svg} caption={caption} fileName="trade-off-cut">
+      <FigureHead
+        title={`Cut along ${rollOffWords(candidate, rollOffs[row])}`}
+        svg={svg}
+        caption={caption}
+        fileName="trade-off-cut"
+      >
         <span className="told">size in {unit} over the cutoff; dashed levels: limits</span>
       </FigureHead>
       <FigureFrame
@@ -69,7 +74,6 @@ export function CutFigure({ map, unit, at, caption }: CutFigureProps) {
                 stroke="var(--quiet)"
                 strokeDasharray="1.5 3"
                 fill="none"
-                aria-hidden="true"
               />
               <Clipped frame={frame}>
                 {curves.map(({ name, tone, values, limit }) => (
@@ -86,7 +90,7 @@ export function CutFigure({ map, unit, at, caption }: CutFigureProps) {
                   </g>
                 ))}
               </Clipped>
-              <g aria-hidden="true">
+              <g>
                 {curves.map(({ name, tone, values }, i) =>
                   Number.isFinite(values[column]) ? (
                     <DirectLabel

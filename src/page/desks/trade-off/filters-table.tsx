@@ -1,8 +1,8 @@
 /** The filters that matter, side by side in numbers: at the cursor, in the chain, and the best of the cursor's row. */
 import type { TradeOffLimits } from '../../../evidence/trade-off-answer.ts'
-import { keepsLimits } from '../../../evidence/trade-off-answer.ts'
 import type { CellFigures } from '../../../evidence/trade-off-figures.ts'
 import type { Candidate } from '../../../evidence/trade-off-candidate.ts'
+import { verdictOnLimits } from '../../../state/map-figures.ts'
 import { brief, exact } from '../../../words/index.ts'
 import { WordButton } from '../../fields.tsx'
 import { TableHead } from '../table-head.tsx'
@@ -66,7 +66,10 @@ export function FiltersTable({ filters, candidate, limits, unit, inChain, csv, o
                   {index === inChain ? (
                     <span className="quiet">in the chain</span>
                   ) : cell && cell.error === null ? (
-                    <WordButton label={`put ${exact(cell.cutoffHz)} Hz, ${rollOffWords(candidate, cell.rollOff)}, into the chain`} onPress={() => onPick(index)}>
+                    <WordButton
+                      label={`put ${exact(cell.cutoffHz)} Hz, ${rollOffWords(candidate, cell.rollOff)}, into the chain`}
+                      onPress={() => onPick(index)}
+                    >
                       use
                     </WordButton>
                   ) : null}
@@ -95,7 +98,7 @@ function Size(props: { value: number | null | undefined; unit: MapUnit; words: (
 
 function Verdict({ cell, limits, limited }: { cell: CellFigures | null; limits: TradeOffLimits; limited: boolean }) {
   if (!cell || !limited) return <span className="quiet">–</span>
-  const { kept, tightest } = keepsLimits(cell, limits)
+  const { kept, tightest } = verdictOnLimits(cell, limits)
   if (kept) return <span className="kept">kept</span>
   const by = tightest && Number.isFinite(tightest.multiples) ? `, ${brief(tightest.multiples, 2)} ×` : ''
   return <span className="over">over limit{by}</span>

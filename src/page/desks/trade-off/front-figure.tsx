@@ -1,6 +1,15 @@
 /** Bias against noise: every filter a point, and the front of those that no other beats, from which one can be picked. */
 import { memo, useMemo, useRef, useState } from 'react'
-import { Axis, compressedScale, FigureFrame, type Frame, GridLines, linearScale, type Scale, ZeroLine } from '../../../plot/index.ts'
+import {
+  Axis,
+  compressedScale,
+  FigureFrame,
+  type Frame,
+  GridLines,
+  linearScale,
+  type Scale,
+  ZeroLine,
+} from '../../../plot/index.ts'
 import type { CellFigures } from '../../../evidence/trade-off-figures.ts'
 import { FigureHead } from '../../figure-head.tsx'
 import { cellWords, type MapUnit } from './map-words.ts'
@@ -81,7 +90,13 @@ export function FrontFigure({ map, unit, at, inChain, caption, onMove, onPick }:
                 ][i]
                 return (
                   // biome-ignore lint/suspicious/noArrayIndexKey: three marks, each its place
-                  <circle key={i} cx={x.toPixel(point.bias)} cy={y.toPixel(point.noise)} {...look} pointerEvents="none" />
+                  <circle
+                    key={i}
+                    cx={x.toPixel(point.bias)}
+                    cy={y.toPixel(point.noise)}
+                    {...look}
+                    pointerEvents="none"
+                  />
                 )
               })}
               <Axis side="left" scale={y} at={frame.left} />

@@ -70,9 +70,18 @@ export function MapFigure({ map, layer, unit, at, inChain, noiseErrorOf, caption
         {(frame) => (
           <>
             <Cells {...{ frame, cells, shade, columns, rows }} />
-            <Region {...{ frame, columns, rows }} multiples={figures.multiples} limited={Object.keys(limits).length > 0} />
+            <Region
+              {...{ frame, columns, rows }}
+              multiples={figures.multiples}
+              limited={Object.keys(limits).length > 0}
+            />
             <Marks {...{ frame, columns, rows, inChain }} front={figures.front} />
-            <Axis side="bottom" scale={cutoffScale(cutoffsHz, frame.left, frame.right)} at={frame.bottom} title="Cutoff, Hz" />
+            <Axis
+              side="bottom"
+              scale={cutoffScale(cutoffsHz, frame.left, frame.right)}
+              at={frame.bottom}
+              title="Cutoff, Hz"
+            />
             <RowLabels {...{ frame, rollOffs }} orders={candidate.design === 'butterworth'} />
             {/* biome-ignore lint/a11y/useSemanticElements: a cell of an svg */}
             <g
@@ -178,7 +187,14 @@ const Region = memo(function Region({ frame, columns, rows, multiples, limited }
     <g aria-hidden="true" pointerEvents="none">
       <path d={`${whole}${inside}`} fillRule="evenodd" fill="var(--sheet)" fillOpacity={0.42} />
       {inside === '' ? null : (
-        <path className="allowed-region" d={inside} fill="none" stroke="var(--ink)" strokeWidth={1.8} strokeLinejoin="round" />
+        <path
+          className="allowed-region"
+          d={inside}
+          fill="none"
+          stroke="var(--ink)"
+          strokeWidth={1.8}
+          strokeLinejoin="round"
+        />
       )}
     </g>
   )

@@ -1,7 +1,8 @@
 /** What the trade-off desk says of filters, limits and cells. */
-import { type LimitName, keepsLimits, type TradeOffLimits } from '../../../evidence/trade-off-answer.ts'
+import type { LimitName, TradeOffLimits } from '../../../evidence/trade-off-answer.ts'
 import type { CellFigures } from '../../../evidence/trade-off-figures.ts'
 import type { Candidate } from '../../../evidence/trade-off-candidate.ts'
+import { verdictOnLimits } from '../../../state/map-figures.ts'
 import type { TradeOff, Workspace } from '../../../state/workspace.ts'
 import { brief, exact, list, PASS_WORD, signed } from '../../../words/index.ts'
 
@@ -37,7 +38,10 @@ const LIMIT_WORD: Record<LimitName, string> = {
 export function limitWords(limits: TradeOffLimits, unit: MapUnit): string {
   const said = (Object.keys(LIMIT_WORD) as LimitName[])
     .filter((name) => limits[name] !== undefined)
-    .map((name) => `${LIMIT_WORD[name]} within ${exact(limits[name] as number)} ${name === 'latencyShiftMs' ? 'ms' : unit}`)
+    .map(
+      (name) =>
+        `${LIMIT_WORD[name]} within ${exact(limits[name] as number)} ${name === 'latencyShiftMs' ? 'ms' : unit}`,
+    )
   return said.length === 0 ? 'no limit' : list(said)
 }
 
@@ -72,7 +76,7 @@ export function cellWords(
   if (cell.equalTrialsFactor !== null) parts.push(`equal-trials factor ${brief(cell.equalTrialsFactor)}`)
   if (cell.latencyShiftMs !== null) parts.push(`latency shift ${changeText(cell.latencyShiftMs)} ms`)
   if (cell.missingShare > 0) parts.push(`no such score in ${brief(100 * cell.missingShare, 2)} % of the averages`)
-  const verdict = keepsLimits(cell, limits)
+  const verdict = verdictOnLimits(cell, limits)
   const limited = Object.keys(limits).length > 0
   return `${name}: ${parts.length > 0 ? parts.join(', ') : 'no such score'}${limited ? `; ${verdict.kept ? 'keeps the limits' : 'over a limit'}` : ''}`
 }

@@ -1,11 +1,9 @@
 /** Trade-off: which cutoff and roll-off keep the limits, and what each costs in bias and noise. */
 import { useState } from 'react'
-import { scoreUnit } from '../../../erp/score.ts'
-import { tradeOffAnswer } from '../../../evidence/trade-off-answer.ts'
 import type { Evaluation } from '../../../state/evaluation.ts'
-import { cellInChain, mapCsv, noiseError, overWaveforms } from '../../../state/map-figures.ts'
+import { answerOfRow, cellInChain, mapCsv, noiseError, overWaveforms } from '../../../state/map-figures.ts'
 import { endGesture, say } from '../../../state/store.ts'
-import { withFilter } from '../../../state/trade-off.ts'
+import { scoreUnitOf, withFilter } from '../../../state/trade-off.ts'
 import { DIFFERENCE, type Workspace } from '../../../state/workspace.ts'
 import { exact, scoreWords, tradeOffWords } from '../../../words/index.ts'
 import {
@@ -41,8 +39,6 @@ interface AskedProps {
   evaluation: Evaluation
   caption: () => string
 }
-
-const unitOf = (workspace: Workspace): MapUnit => scoreUnit(workspace.score.kind)
 
 function Asked({ workspace, evaluation, caption }: AskedProps) {
   const before = evaluation.rows[0].before
@@ -88,14 +84,13 @@ function Answered({ workspace, map, caption: pageCaption, editor }: AnsweredProp
   const { cutoffsHz, rollOffs, candidate, waveforms } = request.question
   const columns = cutoffsHz.length
   const count = columns * rollOffs.length
-  const unit = unitOf(workspace)
+  const unit: MapUnit = scoreUnitOf(workspace)
   const inChain = cellInChain(workspace, request)
   const [moved, setMoved] = useState<number | null>(null)
   const start = inChain ?? Math.min(count - 1, columns * Math.min(1, rollOffs.length - 1) + Math.floor(columns / 2))
   const at = moved !== null && moved < count ? moved : start
   const row = Math.floor(at / columns)
-  const cells = figures.cells.slice(row * columns, (row + 1) * columns).filter((cell) => cell !== null)
-  const answer = cells.length > 0 ? tradeOffAnswer(cells, limits) : null
+  const answer = answerOfRow(figures, row, columns, limits)
   const words = answer
     ? tradeOffWords({
         ...{ answer, candidate, limits, unit },
@@ -124,8 +119,13 @@ function Answered({ workspace, map, caption: pageCaption, editor }: AnsweredProp
       <div className="grid">
         <p className="desk-question">
           Which <Token id="trade-off-filter" text={candidateWords(candidate)} label="filter that is varied" /> from{' '}
-          <Token id="trade-off-range" text={rangeWords(candidate, workspace.tradeOff, rollOffs)} label="range of the map" />{' '}
-          keeps <Token id="trade-off-limits" text={limitWords(limits, unit)} label="limits of the map" /> in {scoreWords(workspace.score)} of{' '}
+          <Token
+            id="trade-off-range"
+            text={rangeWords(candidate, workspace.tradeOff, rollOffs)}
+            label="range of the map"
+          />{' '}
+          keeps <Token id="trade-off-limits" text={limitWords(limits, unit)} label="limits of the map" /> in{' '}
+          {scoreWords(workspace.score)} of{' '}
           <Token id="trade-off-waveforms" text={waveformsWords(workspace)} label="waveforms of the map" />?
         </p>
         <div className="side desk-side">{editor}</div>
@@ -150,8 +150,9 @@ function Answered({ workspace, map, caption: pageCaption, editor }: AnsweredProp
           <FrontFigure {...{ map, unit, at, inChain, caption }} onMove={setMoved} onPick={pick} />
           <TrialsSlider workspace={workspace} />
           <p className="small quiet desk-hint">
-            Outlined: filters that keep every limit. Ringed: no other filter beats them in both bias and noise. Filled: the
-            filter in the chain. Hatched: cannot be realised. A click or Enter puts a filter into the chain; undo takes it back.
+            Outlined: filters that keep every limit. Ringed: no other filter beats them in both bias and noise. Filled:
+            the filter in the chain. Hatched: cannot be realised. A click or Enter puts a filter into the chain; undo
+            takes it back.
           </p>
         </div>
       </div>
@@ -192,8 +193,7 @@ function Progress({ map, running }: { map: DrawnMap; running: boolean }) {
   if (state?.status === 'failed')
     return (
       <p className="small over" role="alert">
-        The map could not be computed: {state.reason}{' '}
-        <WordButton onPress={map.goOn}>try again</WordButton>
+        The map could not be computed: {state.reason} <WordButton onPress={map.goOn}>try again</WordButton>
       </p>
     )
   const drawn = request.simulated && state && state.draws > 0 ? `, ${exact(state.draws)} simulated averages each` : ''
