@@ -51,7 +51,7 @@ export function readoutOf(workspace: Workspace): ReadoutLine[] {
       change: row.change === null ? '–' : printedChange(row.change, DECIMALS[row.unit]) + row.unit,
     }
   })
-  const noise = `noise of the score, ${workspace.trials} trials`
+  const noise = `noise of the score, ${workspace.trials} trials, noise model`
   if (!precision)
     // a latency: no weighted sum, so no exact figure
     lines.push({

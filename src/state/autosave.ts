@@ -70,13 +70,13 @@ export async function recallWork(): Promise<{ workspace: unknown; savedAt: numbe
  */
 export function keepChanges(seenAt: number, tell: (state: KeepingState) => void): { keepMine: () => void } {
   let lastSeen = seenAt
-  let timer: ReturnType<typeof setTimeout> | undefined
+  let _timer: ReturnType<typeof setTimeout> | undefined
   let kept: Workspace | null = null
   let asking = false
   let complained = false
 
   const write = async () => {
-    timer = undefined
+    _timer = undefined
     const { workspace } = workspaceStore.getState()
     const present = await recall<unknown>(STORAGE_KEY)
     if (isRecord(present) && present.tab !== tab && present.savedAt > lastSeen) {
@@ -98,7 +98,7 @@ export function keepChanges(seenAt: number, tell: (state: KeepingState) => void)
     kept = workspace
   }
   const schedule = () => {
-    if (!asking) timer ??= setTimeout(() => void write(), AUTOSAVE_MS)
+    if (!asking) _timer ??= setTimeout(() => void write(), AUTOSAVE_MS)
   }
   workspaceStore.subscribe(schedule)
   schedule()

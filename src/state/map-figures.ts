@@ -129,7 +129,7 @@ export function layerValue(cell: CellFigures | null, layer: TradeOff['layer']): 
 /** The simulation's own standard error of a cell's noise, for one waveform; null for exact figures. */
 export function noiseError(state: MapState | undefined, index: number): number | null {
   const simulated = state?.cells[index]?.scores[0]?.simulated
-  if (!simulated || simulated.length !== 1) return null
+  if (simulated?.length !== 1) return null
   return simulatedFigures(simulated[0], null, null)?.noise.standardError ?? null
 }
 

@@ -17,6 +17,7 @@ import { say } from '../../state/store.ts'
 import type { Workspace } from '../../state/workspace.ts'
 import { brief, exact, inWords } from '../../words/index.ts'
 import { Actions, Choice, NumberField, WordButton } from '../fields.tsx'
+import { Unspoken } from '../label-text.tsx'
 import { Editor } from './editor.tsx'
 
 type Model = Workspace['noise']
@@ -345,16 +346,11 @@ function Trial({ noise, samplingRateHz }: { noise: NoiseSpec; samplingRateHz: nu
             <Line xs={{ start: 0, step: 1 / samplingRateHz }} ys={trial} {...{ x, y }} tone="before" weight="hair" />
             <Axis side="left" scale={y} at={frame.left} title="µV" />
             <Axis side="bottom" scale={x} at={frame.bottom} title="s" />
-            <text
-              className="plot-text"
-              x={frame.right}
-              y={frame.top - 6}
-              textAnchor="end"
-              fill="var(--quiet)"
-              aria-hidden="true"
-            >
-              one simulated trial of noise alone
-            </text>
+            <Unspoken>
+              <text className="plot-text" x={frame.right} y={frame.top - 6} textAnchor="end" fill="var(--quiet)">
+                one simulated trial of noise alone
+              </text>
+            </Unspoken>
           </>
         )
       }}

@@ -12,6 +12,7 @@ import {
 } from '../../../plot/index.ts'
 import type { CellFigures } from '../../../evidence/trade-off-figures.ts'
 import { FigureHead } from '../../figure-head.tsx'
+import { Unspoken } from '../../label-text.tsx'
 import { cellWords, type MapUnit } from './map-words.ts'
 import type { DrawnMap } from './use-map.ts'
 
@@ -89,7 +90,6 @@ export function FrontFigure({ map, unit, at, inChain, caption, onMove, onPick }:
                   { r: 6, fill: 'none', stroke: 'var(--quiet)', strokeWidth: 1.5 },
                 ][i]
                 return (
-                  // biome-ignore lint/suspicious/noArrayIndexKey: three marks, each its place
                   <circle
                     key={i}
                     cx={x.toPixel(point.bias)}
@@ -176,26 +176,28 @@ const Points = memo(function Points({ frame, points, front, x, y, limits }: Poin
   const biasAt = limits.bias === undefined ? null : x.toPixel(limits.bias)
   const noiseAt = limits.noise === undefined ? null : y.toPixel(limits.noise)
   return (
-    <g aria-hidden="true" pointerEvents="none">
-      <path d={dots} stroke="var(--before)" strokeWidth={2.4} strokeLinecap="round" fill="none" opacity={0.7} />
-      {biasAt === null ? null : (
-        <path d={`M${biasAt},${frame.top}V${frame.bottom}`} stroke="var(--over)" strokeDasharray="4 3" fill="none" />
-      )}
-      {noiseAt === null || noiseAt < frame.top || noiseAt > frame.bottom ? null : (
-        <path d={`M${frame.left},${noiseAt}H${frame.right}`} stroke="var(--over)" strokeDasharray="4 3" fill="none" />
-      )}
-      {front.map(({ index, bias, noise }) => (
-        <circle
-          key={index}
-          cx={x.toPixel(bias)}
-          cy={y.toPixel(noise)}
-          r={2.8}
-          fill="var(--sheet)"
-          stroke="var(--after)"
-          strokeWidth={1.4}
-        />
-      ))}
-    </g>
+    <Unspoken>
+      <g pointerEvents="none">
+        <path d={dots} stroke="var(--before)" strokeWidth={2.4} strokeLinecap="round" fill="none" opacity={0.7} />
+        {biasAt === null ? null : (
+          <path d={`M${biasAt},${frame.top}V${frame.bottom}`} stroke="var(--over)" strokeDasharray="4 3" fill="none" />
+        )}
+        {noiseAt === null || noiseAt < frame.top || noiseAt > frame.bottom ? null : (
+          <path d={`M${frame.left},${noiseAt}H${frame.right}`} stroke="var(--over)" strokeDasharray="4 3" fill="none" />
+        )}
+        {front.map(({ index, bias, noise }) => (
+          <circle
+            key={index}
+            cx={x.toPixel(bias)}
+            cy={y.toPixel(noise)}
+            r={2.8}
+            fill="var(--sheet)"
+            stroke="var(--after)"
+            strokeWidth={1.4}
+          />
+        ))}
+      </g>
+    </Unspoken>
   )
 })
 

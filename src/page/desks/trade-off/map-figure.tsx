@@ -8,6 +8,7 @@ import type { TradeOff } from '../../../state/workspace.ts'
 import { brief } from '../../../words/index.ts'
 import { Choice } from '../../fields.tsx'
 import { FigureHead } from '../../figure-head.tsx'
+import { Unspoken } from '../../label-text.tsx'
 import { cutoffScale, movedCell, rowTop, type Shade, shadeOf } from './map-shape.ts'
 import { cellWords, layerUnit, type MapUnit } from './map-words.ts'
 import type { DrawnMap } from './use-map.ts'
@@ -83,7 +84,6 @@ export function MapFigure({ map, layer, unit, at, inChain, noiseErrorOf, caption
               title="Cutoff, Hz"
             />
             <RowLabels {...{ frame, rollOffs }} orders={candidate.design === 'butterworth'} />
-            {/* biome-ignore lint/a11y/useSemanticElements: a cell of an svg */}
             <g
               role="button"
               tabIndex={0}
@@ -141,29 +141,30 @@ const Cells = memo(function Cells({ frame, cells, shade, columns, rows }: CellsP
   const width = frame.plotWidth / columns
   const height = frame.plotHeight / rows
   return (
-    <g aria-hidden="true">
-      {cells.map((cell, index) => {
-        if (!cell) return null
-        const dark = shade.of(cell)
-        if (dark === null && cell.error === null) return null
-        const fill =
-          cell.error === null
-            ? { fill: 'var(--after)', fillOpacity: 0.04 + 0.66 * (dark as number) }
-            : { fill: `url(#${hatchId(frame, 'unseen')})` }
-        return (
-          <rect
-            // biome-ignore lint/suspicious/noArrayIndexKey: a cell is its place
-            key={index}
-            x={frame.left + (index % columns) * width}
-            y={rowTop(frame, Math.floor(index / columns), rows)}
-            // no seam between two cells
-            width={width + 0.3}
-            height={height - 1}
-            {...fill}
-          />
-        )
-      })}
-    </g>
+    <Unspoken>
+      <g>
+        {cells.map((cell, index) => {
+          if (!cell) return null
+          const dark = shade.of(cell)
+          if (dark === null && cell.error === null) return null
+          const fill =
+            cell.error === null
+              ? { fill: 'var(--after)', fillOpacity: 0.04 + 0.66 * (dark as number) }
+              : { fill: `url(#${hatchId(frame, 'unseen')})` }
+          return (
+            <rect
+              key={index}
+              x={frame.left + (index % columns) * width}
+              y={rowTop(frame, Math.floor(index / columns), rows)}
+              // no seam between two cells
+              width={width + 0.3}
+              height={height - 1}
+              {...fill}
+            />
+          )
+        })}
+      </g>
+    </Unspoken>
   )
 })
 
@@ -184,19 +185,21 @@ const Region = memo(function Region({ frame, columns, rows, multiples, limited }
   const inside = contourPath(values, columns, rows, 0, x, y)
   const whole = `M${frame.left},${frame.top}H${frame.right}V${frame.bottom}H${frame.left}Z`
   return (
-    <g aria-hidden="true" pointerEvents="none">
-      <path d={`${whole}${inside}`} fillRule="evenodd" fill="var(--sheet)" fillOpacity={0.42} />
-      {inside === '' ? null : (
-        <path
-          className="allowed-region"
-          d={inside}
-          fill="none"
-          stroke="var(--ink)"
-          strokeWidth={1.8}
-          strokeLinejoin="round"
-        />
-      )}
-    </g>
+    <Unspoken>
+      <g pointerEvents="none">
+        <path d={`${whole}${inside}`} fillRule="evenodd" fill="var(--sheet)" fillOpacity={0.42} />
+        {inside === '' ? null : (
+          <path
+            className="allowed-region"
+            d={inside}
+            fill="none"
+            stroke="var(--ink)"
+            strokeWidth={1.8}
+            strokeLinejoin="round"
+          />
+        )}
+      </g>
+    </Unspoken>
   )
 })
 
@@ -214,14 +217,16 @@ const Marks = memo(function Marks({ frame, columns, rows, front, inChain }: Mark
     cy: rowTop(frame, Math.floor(index / columns), rows) + frame.plotHeight / rows / 2,
   })
   return (
-    <g aria-hidden="true" pointerEvents="none">
-      {front.map((index) => (
-        <circle key={index} {...centre(index)} r={2.6} fill="var(--sheet)" stroke="var(--ink)" strokeWidth={1.1} />
-      ))}
-      {inChain === null ? null : (
-        <circle {...centre(inChain)} r={5} fill="var(--taken-out)" stroke="var(--sheet)" strokeWidth={2} />
-      )}
-    </g>
+    <Unspoken>
+      <g pointerEvents="none">
+        {front.map((index) => (
+          <circle key={index} {...centre(index)} r={2.6} fill="var(--sheet)" stroke="var(--ink)" strokeWidth={1.1} />
+        ))}
+        {inChain === null ? null : (
+          <circle {...centre(inChain)} r={5} fill="var(--taken-out)" stroke="var(--sheet)" strokeWidth={2} />
+        )}
+      </g>
+    </Unspoken>
   )
 })
 
@@ -242,20 +247,22 @@ function CellBox(props: { frame: Frame; columns: number; rows: number; index: nu
 
 function RowLabels({ frame, rollOffs, orders }: { frame: Frame; rollOffs: readonly number[]; orders: boolean }) {
   return (
-    <g aria-hidden="true" className="plot-text plot-number" fill="var(--quiet)">
-      {rollOffs.map((rollOff, row) => (
-        <text
-          key={rollOff}
-          x={frame.left - 8}
-          y={rowTop(frame, row, rollOffs.length) + frame.plotHeight / rollOffs.length / 2 + 4.5}
-          textAnchor="end"
-        >
-          {row === rollOffs.length - 1 && orders ? 'order ' : ''}
-          {brief(rollOff, 3)}
-          {row === rollOffs.length - 1 && !orders ? ' Hz' : ''}
-        </text>
-      ))}
-    </g>
+    <Unspoken>
+      <g className="plot-text plot-number" fill="var(--quiet)">
+        {rollOffs.map((rollOff, row) => (
+          <text
+            key={rollOff}
+            x={frame.left - 8}
+            y={rowTop(frame, row, rollOffs.length) + frame.plotHeight / rollOffs.length / 2 + 4.5}
+            textAnchor="end"
+          >
+            {row === rollOffs.length - 1 && orders ? 'order ' : ''}
+            {brief(rollOff, 3)}
+            {row === rollOffs.length - 1 && !orders ? ' Hz' : ''}
+          </text>
+        ))}
+      </g>
+    </Unspoken>
   )
 }
 
