@@ -85,8 +85,7 @@ export function MapFigure({ map, layer, unit, at, inChain, noiseErrorOf, caption
             />
             <RowLabels {...{ frame, rollOffs }} orders={candidate.design === 'butterworth'} />
             <g
-              // biome-ignore lint/a11y/useSemanticElements: a part of an svg
-              role="button"
+              role="application"
               tabIndex={0}
               className="map-cursor plot-focus"
               aria-label={`Cell of the map: ${words(at)}. Arrow keys move, Enter puts the filter into the chain.`}
