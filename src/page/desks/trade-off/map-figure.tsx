@@ -85,7 +85,7 @@ export function MapFigure({ map, layer, unit, at, inChain, noiseErrorOf, caption
             />
             <RowLabels {...{ frame, rollOffs }} orders={candidate.design === 'butterworth'} />
             <g
-              role="application"
+              role="button"
               tabIndex={0}
               className="map-cursor plot-focus"
               aria-label={`Cell of the map: ${words(at)}. Arrow keys move, Enter puts the filter into the chain.`}
