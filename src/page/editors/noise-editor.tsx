@@ -188,7 +188,6 @@ function ModelFields({ noise }: { noise: Model }) {
           change(label, { ...noise, lines: noise.lines.map((entry, k) => (k === i ? { ...entry, ...next } : entry)) })
         const name = `line ${i + 1}`
         return (
-          // biome-ignore lint/suspicious/noArrayIndexKey: a line is its place
           <fieldset key={i} className="noise-line">
             <legend className="visually-hidden">{name}</legend>
             <NumberField
@@ -299,7 +298,6 @@ function Drawn({ chosen, samplingRateHz }: { chosen: ChosenNoise; samplingRateHz
                       .filter(({ hz }) => hz < nyquist)
                       .map((line, i) => (
                         <path
-                          // biome-ignore lint/suspicious/noArrayIndexKey: a line is its place
                           key={i}
                           d={`M${x.toPixel(line.hz)},${frame.bottom}V${frame.top + 6}`}
                           stroke="var(--taken-out)"

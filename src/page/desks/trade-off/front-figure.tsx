@@ -102,7 +102,6 @@ export function FrontFigure({ map, unit, at, inChain, caption, onMove, onPick }:
               <Axis side="left" scale={y} at={frame.left} />
               <Axis side="bottom" scale={x} at={frame.bottom} title={`|bias|, ${unit}`} />
               {front.length === 0 ? null : (
-                // biome-ignore lint/a11y/useSemanticElements: a point of an svg
                 <g
                   role="button"
                   tabIndex={0}

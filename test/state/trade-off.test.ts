@@ -1,0 +1,270 @@
+import { describe, expect, test } from 'vitest'
+import { BATCH_DRAWS } from '../../src/evidence/simulated-score.ts'
+import { computeCell, prepareMap } from '../../src/evidence/trade-off-map.ts'
+import { evaluate } from '../../src/state/evaluate.ts'
+import { cellInChain, mapCsv, mapFigures, nearestComputed, noiseError } from '../../src/state/map-figures.ts'
+import { mapStore, runMap } from '../../src/state/map-run.ts'
+import { mapSlice } from '../../src/state/map-worker.ts'
+import {
+  filterInChain,
+  mapCandidate,
+  mapLimits,
+  mapPlace,
+  mapRequest,
+  type MapRequest,
+  varyingStage,
+  withFilter,
+} from '../../src/state/trade-off.ts'
+import { DIFFERENCE, readWorkspace, startWorkspace, type TradeOff, type Workspace } from '../../src/state/workspace.ts'
+import { madeUpWorkspace } from './made-up-table.ts'
+
+const start: Workspace = {
+  ...startWorkspace(),
+  score: { kind: 'mean', fromMs: 300, toMs: 500, polarity: 'positive' },
+}
+const asking = (change: Partial<TradeOff>, workspace = start): Workspace => ({
+  ...workspace,
+  tradeOff: { ...workspace.tradeOff, ...change },
+})
+const small = asking({ rollOffs: [1, 2] })
+
+function requestOf(workspace: Workspace): MapRequest {
+  const outcome = mapRequest(workspace, null)
+  if (!outcome.ok) throw new Error(outcome.reason)
+  return outcome.request
+}
+
+const here = (...args: Parameters<typeof mapSlice>) => Promise.resolve(mapSlice(...args))
+
+async function mapOf(workspace: Workspace) {
+  const request = requestOf(workspace)
+  await runMap(request, here, new AbortController().signal)
+  const state = mapStore.getState().maps[request.key]
+  return { request, state, figures: mapFigures(request, state, workspace.tradeOff.over, mapLimits(workspace, null)) }
+}
+
+describe('what the map varies', () => {
+  test('is the first high-pass that is applied here, at its place', () => {
+    expect(mapPlace(start)).toEqual({ at: 1, replaces: true })
+    expect(mapCandidate(start)).toEqual({
+      ...{ design: 'butterworth', pass: 'high', meaning: 'half-amplitude', direction: 'both' },
+    })
+  })
+
+  test('is a new stage at the end where there is none, or where one is asked for', () => {
+    expect(mapPlace({ ...start, chain: [start.chain[0]] })).toEqual({ at: 1, replaces: false })
+    expect(mapPlace(asking({ stage: 'insert' }))).toEqual({ at: 3, replaces: false })
+    // a stage that is gone, and an amplifier, are chosen anew
+    expect(mapPlace(asking({ stage: 7 }))).toEqual({ at: 1, replaces: true })
+    expect(mapPlace(asking({ stage: 0 }))).toEqual({ at: 1, replaces: true })
+  })
+
+  test('a stage that is chosen brings its own design, pass and window', () => {
+    const low = varyingStage(start, 2)
+    expect(low.tradeOff).toMatchObject({ stage: 2, pass: 'low', design: 'windowed-sinc', direction: 'both' })
+    expect(mapCandidate(low)).toMatchObject({ window: { name: 'hamming' }, delay: 'compensated' })
+    expect(filterInChain(low)).toEqual({ cutoffHz: 30, rollOff: 7.5 })
+  })
+
+  test('a picked filter stands in the chain as the map has computed it, and asks no other map', () => {
+    const picked = withFilter(start, 0.15, 3)
+    expect(picked.chain[1]).toEqual({ ...start.chain[1], order: 3, cutoffsHz: [0.15] })
+    expect(filterInChain(picked)).toEqual({ cutoffHz: 0.15, rollOff: 3 })
+    expect(requestOf(picked).key).toBe(requestOf(start).key)
+    const inserted = withFilter(asking({ stage: 'insert' }), 0.15, 3)
+    expect(inserted.chain).toHaveLength(4)
+    // the next one that is picked takes its place
+    expect(withFilter(inserted, 0.2, 3).chain).toHaveLength(4)
+  })
+})
+
+describe('the question', () => {
+  test('stays the same for other limits, layers and trials of a linear score', () => {
+    const key = requestOf(start).key
+    expect(requestOf(asking({ limits: { noise: 1 }, layer: 'noise', over: 'typical' })).key).toBe(key)
+    expect(requestOf({ ...start, trials: 400 }).key).toBe(key)
+    expect(requestOf(asking({ layer: 'latency shift' })).key).not.toBe(key)
+    const peak: Workspace = { ...start, score: { ...start.score, kind: 'peak-latency' } }
+    expect(requestOf({ ...peak, trials: 400 }).key).not.toBe(requestOf(peak).key)
+  })
+
+  test('of a difference has twice the variance, and interference that is locked to the event cancels', () => {
+    const shown = {
+      ...start.shown,
+      chosen: DIFFERENCE,
+      difference: { first: 'rare targets', second: 'frequent standards' },
+    }
+    const noise = { ...start.noise, lines: [{ hz: 60, amplitudeUv: 1, locked: true }] }
+    const request = requestOf({ ...start, shown, noise })
+    expect(request.trials).toBe(start.trials / 2)
+    expect(request.question.noise).toMatchObject({ lines: [] })
+    expect(mapRequest({ ...start, shown, trials: 1 }, null)).toEqual({
+      ...{ ok: false, reason: 'A difference needs at least 2 trials of each condition.' },
+    })
+  })
+
+  test('of a robust map is over the waveform as built and 64 others', () => {
+    const request = requestOf(asking({ robust: { latencyMs: 50, widthPercent: 20, amplitudePercent: 30 } }))
+    expect(request.question.waveforms).toHaveLength(65)
+    expect(request.largest).toHaveLength(65)
+  })
+
+  test('of a loaded table can be the average over its conditions', () => {
+    const { workspace, table } = madeUpWorkspace()
+    const values = (of: TradeOff['waveform']) => {
+      const outcome = mapRequest(asking({ waveform: of }, workspace), table)
+      if (!outcome.ok) throw new Error(outcome.reason)
+      const [waveform] = outcome.request.question.waveforms
+      if (waveform.kind !== 'recorded') throw new Error('not recorded')
+      return waveform.values
+    }
+    const each = ['rare', 'frequent'].map((chosen) => {
+      const outcome = mapRequest({ ...workspace, shown: { ...workspace.shown, chosen } }, table)
+      if (!outcome.ok) throw new Error(outcome.reason)
+      const [waveform] = outcome.request.question.waveforms
+      return waveform.kind === 'recorded' ? waveform.values : new Float64Array()
+    })
+    values('average').forEach((value, i) => expect(value).toBeCloseTo((each[0][i] + each[1][i]) / 2, 12))
+  })
+
+  test('that cannot be asked says why', () => {
+    expect(mapRequest(asking({ fromHz: 3, toHz: 1 }), null)).toMatchObject({
+      ok: false,
+      reason: expect.stringMatching(/range upwards/),
+    })
+  })
+})
+
+describe('limits', () => {
+  test('the bias accepted is the limit of the score, unless the desk has its own or none', () => {
+    expect(mapLimits(start, 6.5)).toEqual({ bias: 0.2 })
+    expect(mapLimits(asking({ limits: { bias: 0.5, noise: 1 } }), 6.5)).toEqual({ bias: 0.5, noise: 1 })
+    expect(mapLimits(asking({ limits: { bias: 'none' } }), 6.5)).toEqual({})
+    const percent: Workspace = { ...start, limits: { score: { value: 10, unit: '%' } } }
+    expect(mapLimits(percent, 6.5)).toEqual({ bias: 0.65 })
+    expect(mapLimits({ ...start, limits: { score: { value: 10, unit: 'ms' } } }, 6.5)).toEqual({})
+  })
+})
+
+describe('a map that is computed', () => {
+  test('says of the filter in the chain what the readout says', async () => {
+    const { request, figures } = await mapOf(small)
+    const { cutoffsHz } = request.question
+    for (const [column, row] of [
+      [10, 0],
+      [40, 1],
+      [59, 1],
+    ]) {
+      const cell = figures.cells[row * cutoffsHz.length + column]
+      const outcome = evaluate(withFilter(small, cutoffsHz[column], row + 1), null)
+      if (!outcome.ok || !cell) throw new Error('nothing to compare')
+      const { rows, precision } = outcome.evaluation
+      expect(cell.bias).toBeCloseTo(rows[0].change as number, 6)
+      expect(cell.noise).toBeCloseTo(precision?.after as number, 4)
+      expect(cell.equalTrialsFactor).toBeCloseTo(precision?.equalTrialsFactor as number, 3)
+    }
+  })
+
+  test('knows the filter in the chain by its row and nearest cutoff, and none that it does not hold', async () => {
+    const { request } = await mapOf(small)
+    const { cutoffsHz } = request.question
+    const at = cellInChain(small, request) as number
+    expect(Math.floor(at / cutoffsHz.length)).toBe(1)
+    expect(cutoffsHz[at % cutoffsHz.length]).toBeCloseTo(1, 1)
+    expect(cellInChain(withFilter(small, 10, 2), request)).toBeNull()
+    expect(cellInChain(withFilter(small, 1, 5), request)).toBeNull()
+  })
+
+  test('is drawn whole from its first slice on, each cell as the nearest that is computed', async () => {
+    const request = requestOf(asking({ rollOffs: [3, 4] }))
+    const stop = new AbortController()
+    let calls = 0
+    await runMap(
+      request,
+      (key, question, order, batches) => {
+        if (++calls > 3) stop.abort()
+        return Promise.resolve(mapSlice(key, question, order.slice(0, 6), batches, 1e4))
+      },
+      stop.signal,
+    )
+    const state = mapStore.getState().maps[request.key]
+    expect(state.status).toBe('cancelled')
+    expect(state.done).toBe(18)
+    const figures = mapFigures(request, state, 'worst', {})
+    const drawn = nearestComputed(figures, 60, 2)
+    expect(drawn.every((cell) => cell !== null)).toBe(true)
+    figures.cells.forEach((cell, i) => {
+      if (cell) expect(drawn[i]).toBe(cell)
+    })
+    // and goes on where it was
+    let asked = 0
+    await runMap(
+      request,
+      (key, question, order, batches, budget) => {
+        asked ||= order.length
+        return here(key, question, order, batches, budget)
+      },
+      new AbortController().signal,
+    )
+    expect(asked).toBe(120 - 18)
+    expect(mapStore.getState().maps[request.key].status).toBe('complete')
+  })
+
+  test('that was seen before is not computed again', async () => {
+    const { request } = await mapOf(small)
+    await runMap(request, () => Promise.reject(new Error('asked again')), new AbortController().signal)
+    expect(mapStore.getState().maps[request.key].status).toBe('complete')
+  })
+
+  test('that fails says why', async () => {
+    const request = requestOf(asking({ rollOffs: [5] }))
+    await runMap(request, () => Promise.reject(new Error('no worker')), new AbortController().signal)
+    expect(mapStore.getState().maps[request.key]).toMatchObject({ status: 'failed', reason: 'no worker' })
+  })
+
+  test('of a simulated score gets more draws round by round, the same as at one go', async () => {
+    const peak: Workspace = asking(
+      { rollOffs: [2] },
+      { ...start, score: { kind: 'peak-latency', fromMs: 200, toMs: 700, polarity: 'positive' } },
+    )
+    const request = requestOf(peak)
+    const few: MapRequest = {
+      ...request,
+      question: { ...request.question, cutoffsHz: [0.1, 1] },
+      key: `${request.key} of two`,
+    }
+    const seen: number[] = []
+    const stop = mapStore.subscribe(({ maps }) => {
+      const draws = maps[few.key]?.draws
+      if (draws !== undefined && !seen.includes(draws)) seen.push(draws)
+    })
+    await runMap(few, here, new AbortController().signal)
+    stop()
+    expect(seen).toEqual([0, 200, 800, 2000])
+    const state = mapStore.getState().maps[few.key]
+    const whole = computeCell(prepareMap(few.question), 1, { from: 0, to: 2000 / BATCH_DRAWS })
+    const sums = state.cells[1]?.scores[0].simulated?.[0]
+    expect(sums?.found).toBe(whole.scores[0].simulated?.[0].found)
+    expect(sums?.powers[1]).toBeCloseTo(whole.scores[0].simulated?.[0].powers[1] as number, 6)
+    const error = noiseError(state, 1) as number
+    const noise = mapFigures(few, state, 'worst', {}).cells[1]?.noise as number
+    // of a standard deviation from n normal draws: σ/√(2n)
+    expect(error / noise).toBeGreaterThan(0.5 / Math.sqrt(2 * 2000))
+    expect(error / noise).toBeLessThan(4 / Math.sqrt(2 * 2000))
+  }, 30_000)
+
+  test('is saved with a line for every filter, and the sentence', async () => {
+    const { request, figures } = await mapOf(small)
+    const lines = mapCsv(figures, request, small).trim().split(/\r?\n/)
+    expect(lines).toHaveLength(1 + 120 + 1)
+    expect(lines[1].startsWith('0.01,1,')).toBe(true)
+    expect(lines[121].startsWith('protocol,')).toBe(true)
+  })
+})
+
+test('a workspace of before the desk reads with its defaults', () => {
+  const { tradeOff: _, noiseFrom: __, ...old } = startWorkspace()
+  const read = readWorkspace(JSON.parse(JSON.stringify(old)))
+  expect(read.ok && read.workspace.tradeOff).toEqual(startWorkspace().tradeOff)
+  expect(read.ok && read.workspace.noiseFrom).toBe('model')
+})
