@@ -176,13 +176,21 @@ interface RegionProps {
   limited: boolean
 }
 
+/** There is nothing between two roll-offs: each row is laid out several times, so that the outline goes in steps between them. */
+const STEPS = 5
+const inSteps = (values: readonly number[], columns: number, rows: number) =>
+  Array.from({ length: rows * STEPS }, (_, row) => {
+    const from = Math.floor(row / STEPS) * columns
+    return values.slice(from, from + columns)
+  }).flat()
+
 /** The filters that keep every limit, as an outline; what lies outside is veiled. */
 const Region = memo(function Region({ frame, columns, rows, multiples, limited }: RegionProps) {
   if (!limited) return null
   const values = multiples.map((size) => (Number.isNaN(size) ? Number.NaN : -Math.log(Math.max(size, 1e-3))))
   const x = (column: number) => frame.left + (column / columns) * frame.plotWidth
-  const y = (row: number) => frame.bottom - (row / rows) * frame.plotHeight
-  const inside = contourPath(values, columns, rows, 0, x, y)
+  const y = (row: number) => frame.bottom - (row / (rows * STEPS)) * frame.plotHeight
+  const inside = contourPath(inSteps(values, columns, rows), columns, rows * STEPS, 0, x, y)
   const whole = `M${frame.left},${frame.top}H${frame.right}V${frame.bottom}H${frame.left}Z`
   return (
     <Unspoken>

@@ -45,9 +45,9 @@ export function limitWords(limits: TradeOffLimits, unit: MapUnit): string {
   return said.length === 0 ? 'no limit' : list(said)
 }
 
-export function waveformsWords({ source, tradeOff, shown }: Workspace): string {
+export function waveformsWords({ source, tradeOff }: Workspace): string {
   if (source.kind === 'recorded')
-    return tradeOff.waveform === 'average' ? 'the average over all conditions' : `the recorded ${shown.chosen}`
+    return tradeOff.waveform === 'average' ? 'the average over all conditions' : 'the recorded waveform'
   const { robust } = tradeOff
   if (!robust) return 'the waveform as built'
   return tradeOff.over === 'worst' ? 'the worst of 65 waveforms' : 'the typical one of 65 waveforms'

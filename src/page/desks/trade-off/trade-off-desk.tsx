@@ -1,7 +1,9 @@
 /** Trade-off: which cutoff and roll-off keep the limits, and what each costs in bias and noise. */
 import { useState } from 'react'
+import { useStore } from 'zustand'
 import type { Evaluation } from '../../../state/evaluation.ts'
 import { answerOfRow, cellInChain, mapCsv, noiseError, overWaveforms } from '../../../state/map-figures.ts'
+import { dataStore, recordedData } from '../../../state/recorded-data.ts'
 import { endGesture, say } from '../../../state/store.ts'
 import { scoreUnitOf, withFilter } from '../../../state/trade-off.ts'
 import { DIFFERENCE, type Workspace } from '../../../state/workspace.ts'
@@ -117,24 +119,26 @@ function Answered({ workspace, map, caption: pageCaption, editor }: AnsweredProp
   return (
     <>
       <div className="grid">
-        <p className="desk-question">
-          Which <Token id="trade-off-filter" text={candidateWords(candidate)} label="filter that is varied" /> from{' '}
-          <Token
-            id="trade-off-range"
-            text={rangeWords(candidate, workspace.tradeOff, rollOffs)}
-            label="range of the map"
-          />{' '}
-          keeps <Token id="trade-off-limits" text={limitWords(limits, unit)} label="limits of the map" /> in{' '}
-          {scoreWords(workspace.score)} of{' '}
-          <Token id="trade-off-waveforms" text={waveformsWords(workspace)} label="waveforms of the map" />?
-        </p>
+        <div>
+          <p className="desk-question">
+            Which <Token id="trade-off-filter" text={candidateWords(candidate)} label="filter that is varied" /> from{' '}
+            <Token
+              id="trade-off-range"
+              text={rangeWords(candidate, workspace.tradeOff, rollOffs)}
+              label="range of the map"
+            />{' '}
+            keeps <Token id="trade-off-limits" text={limitWords(limits, unit)} label="limits of the map" /> in{' '}
+            {scoreWords(workspace.score)} of{' '}
+            <Token id="trade-off-waveforms" text={waveformsWords(workspace)} label="waveforms of the map" />?
+          </p>
+          <p className="remark summary" role="status">
+            {words}
+          </p>
+          <Notes workspace={workspace} />
+          <Progress map={map} running={running} />
+        </div>
         <div className="side desk-side">{editor}</div>
       </div>
-      <p className="remark summary" role="status">
-        {words}
-      </p>
-      <Notes workspace={workspace} />
-      <Progress map={map} running={running} />
       <div className={map.stale ? 'grid desk-figures stale' : 'grid desk-figures'} aria-busy={running}>
         <div className="figure-body">
           <MapFigure
@@ -223,6 +227,14 @@ function Progress({ map, running }: { map: DrawnMap; running: boolean }) {
 /** What the map leaves out, and what it must not be used for. */
 function Notes({ workspace }: { workspace: Workspace }) {
   const { source, shown, tradeOff } = workspace
+  const data = useStore(dataStore, (state) => recordedData(source, state.files))
+  if (source.kind === 'recorded' && tradeOff.waveform === 'chosen' && data?.conditions.length === 1)
+    return (
+      <p className="small map-note">
+        A filter that is chosen on the data under test inflates false positives. Choose on other data, or on a built
+        waveform (the first phrase of the page).
+      </p>
+    )
   if (source.kind === 'recorded' && tradeOff.waveform === 'chosen')
     return (
       <p className="small map-note">
