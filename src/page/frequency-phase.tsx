@@ -11,6 +11,7 @@ import { courseOf } from './curve-course.ts'
 import type { Pieces } from './frequency-pieces.ts'
 import { axisTitle } from './frequency-words.ts'
 import { DRAWN_GAIN } from './gain-axis.ts'
+import { PinLine, PinPath } from './pin-line.tsx'
 
 interface FrequencyPhaseProps {
   frequency: FrequencyFigure
@@ -19,11 +20,12 @@ interface FrequencyPhaseProps {
   x: Scale
   y: Scale
   pieces: Pieces
+  pinned: readonly { index: number; name: string; pieces: Pieces }[]
   /** Drawn over the curve: the cursor. */
   children: ReactNode
 }
 
-export function FrequencyPhase({ frequency, shows, frame, x, y, pieces, children }: FrequencyPhaseProps) {
+export function FrequencyPhase({ frequency, shows, frame, x, y, pieces, pinned, children }: FrequencyPhaseProps) {
   const { bottom, left, right, top } = frame
   const path = useMemo(() => linePath(pieces.hz, pieces.values, x, y), [pieces, x, y])
   const ticks = shows === 'phase' ? ticksAt(y, [-180, -90, 0, 90, 180]) : ticksFor(y, { lie: 'upright' })
@@ -66,8 +68,14 @@ export function FrequencyPhase({ frequency, shows, frame, x, y, pieces, children
       <Axis side="bottom" scale={x} at={bottom} title={axisTitle(x)} />
       <Axis side="left" scale={y} at={left} ticks={ticks} />
       <Clipped frame={frame}>
+        {pinned.map((pin) => (
+          <PinLine key={pin.index} index={pin.index} xs={pin.pieces.hz} ys={pin.pieces.values} x={x} y={y} />
+        ))}
         <PathLine d={path} tone="after" />
       </Clipped>
+      {pinned.map((pin, row) => (
+        <PinKey key={pin.index} index={pin.index} name={pin.name} right={right - 6} y={top + 10 + 16 * row} />
+      ))}
       {place ? (
         <DirectLabel
           x={place.x}
@@ -81,6 +89,19 @@ export function FrequencyPhase({ frequency, shows, frame, x, y, pieces, children
         </DirectLabel>
       ) : null}
       {children}
+    </>
+  )
+}
+
+/** Phases of zero-phase chains lie on one another: their names stand in a corner, each with a piece of its line. */
+function PinKey({ index, name, right, y }: { index: number; name: string; right: number; y: number }) {
+  const end = right - textWidth(name) * 1.06 - 6
+  return (
+    <>
+      <PinPath d={`M${end - 30},${y}H${end}`} index={index} />
+      <DirectLabel x={right} y={y} tone="quiet" anchor="end" ground="sheet">
+        {name}
+      </DirectLabel>
     </>
   )
 }

@@ -33,11 +33,24 @@ export function FrequencyPlot(props: FrequencyPlotProps) {
     const pinned = drawnPins(evaluation).map(({ result }) => result.gain)
     return gainAxis(evaluation.frequency, unit, pinned)
   }, [evaluation, unit])
-  const pieces = useMemo(() => (shows === 'phase' ? phasePieces : delayPieces)(frequency), [frequency, shows])
+  const piecesOf = shows === 'phase' ? phasePieces : delayPieces
+  const pieces = useMemo(() => piecesOf(frequency), [frequency, piecesOf])
+  const pinned = useMemo(
+    () =>
+      drawnPins(evaluation).map(({ index, name, result }) => {
+        const { gain, phaseRad, groupDelayMs } = result
+        return { index, name, pieces: piecesOf({ hz: frequency.hz, gain, phaseRad, groupDelayMs }) }
+      }),
+    [evaluation, frequency, piecesOf],
+  )
   const y = useMemo(() => {
-    const domain = { gain: axis.domain, phase: PHASE_DOMAIN, 'group delay': delayDomain(pieces.values) }[shows]
+    const domain = {
+      gain: axis.domain,
+      phase: PHASE_DOMAIN,
+      'group delay': delayDomain([pieces, ...pinned.map((pin) => pin.pieces)].flatMap(({ values }) => values)),
+    }[shows]
     return linearScale(domain, [bottom, top])
-  }, [shows, axis, pieces, bottom, top])
+  }, [shows, axis, pieces, pinned, bottom, top])
   const value =
     shows === 'gain'
       ? gainsIn(unit, [valueAt(frequency.hz, frequency.gain, at)], axis)[0]
@@ -59,7 +72,7 @@ export function FrequencyPlot(props: FrequencyPlotProps) {
   return shows === 'gain' ? (
     <FrequencyGain {...{ evaluation, unit, frame, x, y, axis, cutoffs, onDrag }}>{cursor}</FrequencyGain>
   ) : (
-    <FrequencyPhase {...{ frequency, shows, frame, x, y, pieces }}>{cursor}</FrequencyPhase>
+    <FrequencyPhase {...{ frequency, shows, frame, x, y, pieces, pinned }}>{cursor}</FrequencyPhase>
   )
 }
 

@@ -1,6 +1,7 @@
 /** What the kernel figure has to know before it draws: how far it reaches, how it is compressed, what is said beside it. */
 import type { Evaluation } from '../state/evaluation.ts'
 import { fixed } from '../words/number.ts'
+import { drawnPins } from './pin-line.tsx'
 
 export interface KernelRange {
   fromMs: number
@@ -17,14 +18,18 @@ const BEYOND = 0.08
 const LEAST_MS = 100
 
 /**
- * Lags to draw: the reach of the offline stages and a little more, or that of the amplifier where nothing else runs; never more than
- * the curve holds.
+ * Lags to draw: the reach of the offline stages and a little more, or that of the amplifier where nothing else runs, and that of the pinned
+ * chains; never more than the curve holds.
  */
-export function kernelRange({ kernel, reach, amplifierReach, chain }: Evaluation): KernelRange {
+export function kernelRange({ kernel, reach, amplifierReach, chain, pins }: Evaluation): KernelRange {
   const applied = chain.stages.filter(({ spec }) => spec.inData !== true)
-  if (applied.length === 0) return { fromMs: -LEAST_MS, toMs: LEAST_MS, reach: null, whole: true }
+  const pinned = drawnPins({ pins }).map(({ result }) => result.reach)
+  if (applied.length === 0 && pinned.length === 0)
+    return { fromMs: -LEAST_MS, toMs: LEAST_MS, reach: null, whole: true }
   const offline = applied.some(({ spec }) => spec.design !== 'amplifier')
-  const { beforeMs, afterMs } = offline || !amplifierReach ? reach : amplifierReach
+  const own = offline || !amplifierReach ? reach : amplifierReach
+  const beforeMs = Math.max(own.beforeMs, ...pinned.map((pin) => pin.beforeMs))
+  const afterMs = Math.max(own.afterMs, ...pinned.map((pin) => pin.afterMs))
   const heldFrom = kernel.fromIndex * kernel.stepMs
   const heldTo = (kernel.fromIndex + kernel.impulse.length - 1) * kernel.stepMs
   const room = Math.max(BEYOND * (beforeMs + afterMs), 6 * kernel.stepMs)
@@ -34,8 +39,8 @@ export function kernelRange({ kernel, reach, amplifierReach, chain }: Evaluation
   return {
     fromMs: Math.min(fromMs, -kernel.stepMs),
     toMs,
-    reach: { fromMs: -beforeMs || 0, toMs: afterMs },
-    whole: heldFrom <= -beforeMs + kernel.stepMs / 2 && heldTo >= afterMs - kernel.stepMs / 2,
+    reach: applied.length === 0 ? null : { fromMs: -own.beforeMs || 0, toMs: own.afterMs },
+    whole: heldFrom <= -own.beforeMs + kernel.stepMs / 2 && heldTo >= own.afterMs - kernel.stepMs / 2,
   }
 }
 
@@ -101,8 +106,10 @@ export interface KernelWords {
   more: string[]
 }
 
-export function kernelWords({ chain }: Evaluation, range: KernelRange): KernelWords | null {
-  if (range.reach === null) return null
+/** Null where there is nothing but a single impulse to draw. */
+export function kernelWords({ chain, pins }: Evaluation, range: KernelRange): KernelWords | null {
+  if (range.reach === null)
+    return drawnPins({ pins }).length === 0 ? null : { reach: 'no filter applied', more: ['a single impulse'] }
   const { fromMs, toMs } = range.reach
   const amplified = chain.stages.some(({ spec }) => spec.design === 'amplifier' && spec.inData !== true)
   const offline = chain.stages.some(({ spec }) => spec.design !== 'amplifier' && spec.inData !== true)

@@ -155,7 +155,20 @@ export function frequencyFigure(
 }
 
 /** The gain of a pinned chain on the present chain's frequencies. */
-export const gainOn = memoised((chain: Chain, hz: Float64Array) => gainOf(stagesResponse(appliedStages(chain), hz)))
+export const gainOn = memoised((chain: Chain, hz: Float64Array) => {
+  const applied = appliedStages(chain)
+  return {
+    gain: gainOf(stagesResponse(applied, hz)),
+    phaseRad: stagesPhaseRad(applied, hz),
+    groupDelayMs: stagesGroupDelaySeconds(applied, hz).map((seconds) => seconds * 1000),
+  }
+})
+
+/** The reach that a kernel figure is about: of the offline stages, or of the amplifier where nothing else runs. */
+export const drawnReach = memoised((chain: Chain): ReachMs => {
+  const offline = appliedOfflineStages(chain).length > 0
+  return (offline ? null : amplifierReach(chain)) ?? offlineReach(chain)
+}, 12)
 
 /** Impulse and step response of a pinned chain on the present kernel figure's lags. */
 export const kernelOf = memoised((chain: Chain, from: number, samples: number) => {
@@ -172,22 +185,26 @@ const noiseOn = memoised((noise: NoiseSpec, hz: Float64Array) => noiseDensity(no
 const KERNEL_MARGIN = 1.1
 const KERNEL_EPOCHS = 1.5
 
-export const kernelFigure = memoised((chain: Chain, timesMs: Float64Array): KernelFigure => {
-  const stages = appliedStages(chain)
-  const offline = appliedOfflineStages(chain)
-  const { beforeSamples, afterSamples } = reach(offline.length > 0 ? offline : stages)
-  const most = Math.ceil(timesMs.length * KERNEL_EPOCHS)
-  const least = Math.max(4, Math.ceil(0.02 * chain.samplingRateHz))
-  const drawn = (samples: number) => Math.min(most, Math.max(least, Math.ceil(samples * KERNEL_MARGIN)))
-  const from = -drawn(Math.max(beforeSamples, afterSamples / 8))
-  const to = drawn(Math.max(afterSamples, beforeSamples / 8)) + 1
-  return {
-    stepMs: 1000 / chain.samplingRateHz,
-    fromIndex: from,
-    impulse: kernelOn(stages, from, to).map((value) => value * chain.samplingRateHz),
-    step: stepResponseOn(stages, from, to),
-  }
-})
+/** @param beforeMs @param afterMs the longest reach of all pinned chains, so that theirs is drawn as well. */
+export const kernelFigure = memoised(
+  (chain: Chain, timesMs: Float64Array, beforeMs: number, afterMs: number): KernelFigure => {
+    const stages = appliedStages(chain)
+    const own = drawnReach(chain)
+    const beforeSamples = (Math.max(own.beforeMs, beforeMs) * chain.samplingRateHz) / 1000
+    const afterSamples = (Math.max(own.afterMs, afterMs) * chain.samplingRateHz) / 1000
+    const most = Math.ceil(timesMs.length * KERNEL_EPOCHS)
+    const least = Math.max(4, Math.ceil(0.02 * chain.samplingRateHz))
+    const drawn = (samples: number) => Math.min(most, Math.max(least, Math.ceil(samples * KERNEL_MARGIN)))
+    const from = -drawn(Math.max(beforeSamples, afterSamples / 8))
+    const to = drawn(Math.max(afterSamples, beforeSamples / 8)) + 1
+    return {
+      stepMs: 1000 / chain.samplingRateHz,
+      fromIndex: from,
+      impulse: kernelOn(stages, from, to).map((value) => value * chain.samplingRateHz),
+      step: stepResponseOn(stages, from, to),
+    }
+  },
+)
 
 function reachMs(stages: readonly Stage[], samplingRateHz: number): ReachMs {
   const { beforeSamples, afterSamples } = reach(stages)

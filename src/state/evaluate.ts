@@ -22,7 +22,7 @@ import {
   offlineReach,
   windowFigure,
 } from './evaluate-figures.ts'
-import { pinnedResult } from './evaluate-pins.ts'
+import { longestReach, pinnedResult } from './evaluate-pins.ts'
 import { extrapolatedPart } from './evaluate-precision.ts'
 import { precisionOf, rowsOf, weightsOf } from './evaluate-score.ts'
 import { chainPoints, chainTable } from './evaluate-table.ts'
@@ -100,7 +100,8 @@ function evaluationOf(
   const weights = weightsOf(score, baseline, timesMs, before, after)
   const unseen = weights && (extent === 'continuous' ? 0 : unseenOf(chain, weights.after))
   const frequency = frequencyFigure(workspace, noise, chain, raw[chosen], extent, timesMs, chainPoints(chain))
-  const kernel = kernelFigure(chain, timesMs)
+  const beside = longestReach(workspace.pins, axis.samplingRateHz)
+  const kernel = kernelFigure(chain, timesMs, beside.beforeMs, beside.afterMs)
   const pinned = namesOfPins(workspace)
   return {
     samplingRateHz: axis.samplingRateHz,

@@ -84,6 +84,10 @@ export interface PinnedResult {
   window: Float64Array | null
   /** On `FrequencyFigure`'s frequencies. */
   gain: Float64Array
+  phaseRad: Float64Array
+  groupDelayMs: Float64Array
+  /** Of its offline stages, or of its amplifier stages where there are no others. */
+  reach: ReachMs
   /** On `KernelFigure`'s lags. */
   impulse: Float64Array
   step: Float64Array

@@ -24,10 +24,11 @@ const amplifier: StageSpec = { design: 'amplifier', pass: 'high', order: 1, cuto
 /** An evaluation as far as the kernel figure reads it: samples of 2 ms. */
 function evaluation(chain: StageSpec[], reach: ReachMs, from: number, samples: number): Evaluation {
   const nothing = new Float64Array(samples)
-  const part: Pick<Evaluation, 'chain' | 'reach' | 'amplifierReach' | 'kernel'> = {
+  const part: Pick<Evaluation, 'chain' | 'reach' | 'amplifierReach' | 'kernel' | 'pins'> = {
     chain: designChain(chain, 500),
     reach,
     amplifierReach: chain.includes(amplifier) ? { beforeMs: 0, afterMs: 46_000 } : null,
+    pins: [],
     kernel: { stepMs: 2, fromIndex: from, impulse: nothing, step: nothing },
   }
   return part as Evaluation

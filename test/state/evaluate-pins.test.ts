@@ -1,6 +1,7 @@
 import Papa from 'papaparse'
 import { describe, expect, test } from 'vitest'
 import { SCENARIOS } from '../../src/erp/scenarios.ts'
+import type { StageSpec } from '../../src/filter/stage.ts'
 import { evaluate } from '../../src/state/evaluate.ts'
 import { isHeavy } from '../../src/state/evaluation-cost.ts'
 import type { Evaluation, PinnedResult } from '../../src/state/evaluation.ts'
@@ -154,5 +155,44 @@ describe('the readout as CSV', () => {
     const lines = rows.filter(([first]) => first === 'pinned ours').map(([, words]) => words)
     expect(lines[0]).toContain('half-amplitude 1 Hz')
     expect(lines[1]).toContain('half-amplitude 0.5 Hz')
+  })
+})
+
+describe('the figures beside a pinned chain', () => {
+  const highPass = (cutoffHz: number): StageSpec => ({
+    design: 'butterworth',
+    pass: 'high',
+    order: 2,
+    cutoffsHz: [cutoffHz],
+    meaning: 'half-amplitude',
+    direction: 'forward',
+  })
+  const withPin = (chain: StageSpec[], pinned: StageSpec[]) => {
+    const workspace = { ...startWorkspace(), chain, pins: [{ name: '', chain: pinned, extent: 'continuous' as const }] }
+    const outcome = evaluate(workspace, null)
+    if (!outcome.ok) throw new Error(outcome.problems[0].message)
+    const [pin] = outcome.evaluation.pins
+    if ('reason' in pin) throw new Error(pin.reason)
+    return { evaluation: outcome.evaluation, pin }
+  }
+
+  test('hold its kernel as far as it reaches, where the present one is shorter or none at all', () => {
+    for (const chain of [[], [highPass(10)]]) {
+      const { evaluation, pin } = withPin(chain, [highPass(2)])
+      const { fromIndex, impulse, stepMs } = evaluation.kernel
+      expect(pin.reach.afterMs).toBeGreaterThan(100)
+      expect((fromIndex + impulse.length) * stepMs).toBeGreaterThan(pin.reach.afterMs)
+      expect(pin.impulse).toHaveLength(impulse.length)
+    }
+  })
+
+  test('hold its phase and group delay, those of the same chain by itself', () => {
+    const { evaluation, pin } = withPin([], [highPass(2)])
+    const alone = withPin([highPass(2)], [highPass(2)])
+    const at = (hz: Float64Array, values: Float64Array) => values[hz.findIndex((value) => value >= 5)]
+    expect(evaluation.frequency.phaseRad.every((phase) => phase === 0)).toBe(true)
+    expect(alone.pin.phaseRad).toEqual(alone.evaluation.frequency.phaseRad)
+    expect(alone.pin.groupDelayMs).toEqual(alone.evaluation.frequency.groupDelayMs)
+    expect(at(evaluation.frequency.hz, pin.groupDelayMs)).toBeGreaterThan(0)
   })
 })
