@@ -8,11 +8,19 @@ export type Baseline = TimeWindow | 'none'
  *
  * @param y       µV, one value per time.
  * @param timesMs evenly spaced sample times.
- * @throws RangeError for values that are not finite, or a window that leaves the epoch or holds no sample.
+ * @param out     takes the result, as long as y; may be y itself. A sweep over thousands of epochs spares an array for each.
+ * @throws RangeError for values that are not finite, a window that leaves the epoch or holds no sample, or an `out` of another length.
  */
-export function correctBaseline(y: Float64Array, timesMs: Float64Array, baseline: Baseline): Float64Array {
+export function correctBaseline(
+  y: Float64Array,
+  timesMs: Float64Array,
+  baseline: Baseline,
+  out: Float64Array = new Float64Array(y.length),
+): Float64Array {
   checkValues(y, timesMs)
-  const corrected = y.slice()
+  if (out.length !== y.length) throw new RangeError(`out must hold ${y.length} values, had ${out.length}`)
+  const corrected = out
+  if (out !== y) out.set(y)
   if (baseline === 'none') return corrected
   const { first, last } = samplesInWindow(timesMs, baseline, 'baseline window')
   // the first sample is taken off before summing, so that a large electrode offset costs no digits

@@ -181,11 +181,13 @@ export function sweepByFiltering(
   to: number,
 ) {
   const scores = new Float64Array((to - from) * averages.length)
+  const y = new Float64Array(EPOCH)
+  const score: Score = { ...MEAN, kind }
   for (let f = from; f < to; f++) {
     const chain = designChain([sweepFilter(f)], RATE)
     averages.forEach((x, a) => {
-      const y = correctBaseline(applyChain(chain, x, 'epochs'), TIMES_MS, BASELINE)
-      const value = scoreOf(y, TIMES_MS, { ...MEAN, kind })
+      correctBaseline(applyChain(chain, x, 'epochs', y), TIMES_MS, BASELINE, y)
+      const value = scoreOf(y, TIMES_MS, score)
       scores[(f - from) * averages.length + a] = typeof value === 'number' ? value : NaN
     })
   }
