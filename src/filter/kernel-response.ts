@@ -57,7 +57,16 @@ export function trigonometricSums(
     sine[i] = 2 * s * c
   }
   const ends = new Float64Array(8)
+  let moments: Float64Array | null = null
   for (let i = 0; i < count; ) {
+    const turn = 2 * Math.abs(frequenciesHz[i]) * scale * (taps.length - 1)
+    if (turn <= 1) {
+      moments ??= momentsOf(taps)
+      cosine[i] = series(moments, turn, 0)
+      sine[i] = frequenciesHz[i] < 0 ? -series(moments, turn, 1) : series(moments, turn, 1)
+      i++
+      continue
+    }
     const lower = shifts[i] <= 0
     // four frequencies of one half at a time, since one recurrence waits for its own last step
     const width = i + 3 < count && [1, 2, 3].every((l) => shifts[i + l] <= 0 === lower) ? 4 : 1
@@ -75,6 +84,31 @@ export function trigonometricSums(
     i += width
   }
   return { cosine, sine }
+}
+
+/** So many terms of a series in up to one radian leave out less than 1e-18. */
+const TERMS = 20
+
+/** Σ taps[k]·(k/K)^m, K the last index, for m from 0: all that the response near 0 Hz hangs on. */
+function momentsOf(taps: Float64Array): Float64Array {
+  const moments = new Float64Array(TERMS)
+  const last = Math.max(1, taps.length - 1)
+  for (let k = taps.length - 1; k >= 0; k--) {
+    let term = taps[k]
+    for (let m = 0; m < TERMS; m++) {
+      moments[m] += term
+      term *= k / last
+    }
+  }
+  return moments
+}
+
+/** Power series of the cosine sum (from = 0) or the sine sum (from = 1) where the kernel turns by at most one radian. */
+function series(moments: Float64Array, turn: number, from: 0 | 1): number {
+  let sum = 0
+  // from the smallest term: 1 − z²/((m + 1)(m + 2))·(…), each bracket with its own moment
+  for (let m = TERMS - 2 + from; m >= 0; m -= 2) sum = moments[m] - ((turn * turn) / ((m + 1) * (m + 2))) * sum
+  return from === 0 ? sum : turn * sum
 }
 
 function recurOne(taps: Float64Array, shift: number, lower: boolean, ends: Float64Array): void {

@@ -1,5 +1,5 @@
 import fc from 'fast-check'
-import { expect, test } from 'vitest'
+import { describe, expect, test } from 'vitest'
 import { isSymmetric, symmetricAmplitude, trigonometricSums } from '../../src/filter/kernel-response.ts'
 
 test('sums of any kernel are the defining sums, at 0 Hz, half the sampling rate and between', () => {
@@ -44,4 +44,33 @@ test('symmetry asks for a middle tap', () => {
   expect(isSymmetric(Float64Array.of(1, 2, 1))).toBe(true)
   expect(isSymmetric(Float64Array.of(1, 1))).toBe(false)
   expect(isSymmetric(Float64Array.of(1, 2, 3))).toBe(false)
+})
+
+describe('near 0 Hz, where a kernel turns by less than a radian', () => {
+  test('both sums are the sums written out, on either side of the turn and for negative frequencies', () => {
+    const samplingRateHz = 500
+    const taps = Float64Array.from({ length: 400 }, (_, k) => Math.sin(1 + k * k) / (1 + k / 50))
+    let size = 0
+    for (const tap of taps) size += Math.abs(tap)
+    const turnHz = samplingRateHz / (2 * Math.PI * (taps.length - 1))
+    const hz = Float64Array.from([0, 1e-9, 0.1, 0.5, 0.99, 1.01, 1.5, -0.5, -1.5], (share) => share * turnHz)
+    const { cosine, sine } = trigonometricSums(taps, hz, samplingRateHz)
+    hz.forEach((frequency, i) => {
+      let c = 0
+      let s = 0
+      for (let k = 0; k < taps.length; k++) {
+        const angle = (2 * Math.PI * k * frequency) / samplingRateHz
+        c += taps[k] * Math.cos(angle)
+        s += taps[k] * Math.sin(angle)
+      }
+      expect(Math.abs(cosine[i] - c)).toBeLessThanOrEqual(1e-14 * size)
+      expect(Math.abs(sine[i] - s)).toBeLessThanOrEqual(1e-14 * size)
+    })
+  })
+
+  test('a single tap has no sine and its own cosine', () => {
+    const { cosine, sine } = trigonometricSums(Float64Array.of(3), Float64Array.of(0, 100, 250), 500)
+    expect([...cosine]).toEqual([3, 3, 3])
+    expect([...sine]).toEqual([0, 0, 0])
+  })
 })
