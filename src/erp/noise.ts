@@ -40,7 +40,7 @@ export type NoiseSpec = NoiseModel | NoiseTable
 /**
  * A resting adult's scalp EEG, for a first estimate; invented within these ranges:
  * exponent 1 to 2 for adults at rest (the form from Gerster et al. 2022; the range from memory, medium), single-trial
- * standard deviation 10 to 20 µV (from memory, medium to high), alpha about 10 Hz (lecture notes on signal
+ * standard deviation 10 to 20 µV (from memory, medium to high), alpha about 10 Hz (notes on signal
  * averaging, notes.milesaron.com, as reported). Slow drift is common practice. Its standard deviation at 500 Hz sampling is 15 µV.
  */
 export function defaultNoise(): NoiseModel {

@@ -55,7 +55,7 @@ describe('summariseTrials', () => {
   })
 
   test('the standard error falls as measured noise does: 4, 10 and 20 times for 16, 100 and 400 trials', () => {
-    // Source: lecture notes on signal averaging (notes.milesaron.com), as reported: σ/√N
+    // Source: notes on signal averaging (notes.milesaron.com), as reported: σ/√N
     for (const [count, times] of [
       [16, 4],
       [100, 10],

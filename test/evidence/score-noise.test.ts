@@ -110,7 +110,7 @@ describe('scoreVariance', () => {
 
   test('of an average falls with N: σ/√N, 4 times less from 16 trials, 10 times from 100', () => {
     const white = { ...silent, whiteUv2PerHz: (2 * 15 * 15) / 500 }
-    // Source: lecture notes on signal averaging (notes.milesaron.com), as reported; the second column is a simulation of ours
+    // Source: notes on signal averaging (notes.milesaron.com), as reported; the second column is a simulation of ours
     // with SD 15, good to 2 %
     const reported = [
       [4, 7.505, 2],
