@@ -236,8 +236,95 @@ const START_TRADE_OFF: v.InferOutput<typeof tradeOffSchema> = {
 
 export const MAX_PINS = 3
 
+const keptChain = {
+  name: text,
+  chain: v.pipe(v.array(stageSchema), v.maxLength(60)),
+  extent: v.picklist(['continuous', 'epochs']),
+}
+
+const amount = v.pipe(finite, v.minValue(0))
+
+/** Statements that another version of a filter may or may not make true as well. */
+const shownSchemas = [
+  v.object({
+    form: v.literal('change'),
+    row: v.picklist([
+      'score',
+      'mean-amplitude',
+      'peak-amplitude',
+      'signed-area',
+      'peak-latency',
+      'area-latency',
+      'onset-latency',
+    ]),
+    relation: v.picklist(['at least', 'at most']),
+    amount,
+    unit: v.picklist(['own', '%']),
+  }),
+  v.object({ form: v.literal('deflection'), window: windowLimits, amount, unit: v.picklist(['µV', '%']) }),
+  v.object({ form: v.literal('from-outside'), window: windowLimits, percent: amount }),
+  v.object({
+    form: v.literal('effect'),
+    first: text,
+    second: text,
+    window: windowLimits,
+    says: v.picklist(['exists without the filter', 'is absent without the filter', 'changes sign']),
+    leastUv: amount,
+  }),
+  v.object({ form: v.literal('onset'), direction: v.picklist(['earlier', 'later']), ms: amount }),
+] as const
+const shownSchema = v.variant('form', shownSchemas)
+
+const claimFormSchema = v.variant('form', [
+  ...shownSchemas,
+  v.object({ form: v.literal('attenuation'), hz: positive, db: finite }),
+  v.object({ form: v.literal('tone'), hz: positive, amplitudeUv: amount, belowUv: amount, locked: v.boolean() }),
+  v.object({ form: v.literal('twin'), twin: v.picklist(['causal', 'zero-phase']), shows: shownSchema }),
+  v.object({ form: v.literal('meaning'), stated: meaningSchema, other: meaningSchema, conclusion: shownSchema }),
+  v.object({ form: v.literal('late-only'), t0Ms: finite, early: windowLimits, slackMs: amount }),
+])
+
+const claimSchema = v.object({
+  /** Which of the claims it is, whatever their order. */
+  id: v.pipe(finite, v.integer(), v.minValue(1)),
+  says: claimFormSchema,
+  /** Where it was made, in the user's words ("Reviewer 2, comment 4"). */
+  madeIn: text,
+  /** The chain of the protocol line (null), or one kept by the claim. */
+  on: v.nullable(v.object(keptChain)),
+  taken: v.picklist(['as it stands', 'as measured']),
+  /** What is varied in the search for what would change the answer; null: the first cutoff that can be. */
+  varied: v.nullable(
+    v.object({
+      stage: v.pipe(finite, v.integer(), v.minValue(0)),
+      what: v.picklist(['cutoff', 'order', 'transition']),
+      cutoff: v.picklist([0, 1]),
+    }),
+  ),
+})
+
+export const MAX_CLAIMS = 30
+
+/** The claims of one paper or review. */
+const claimsSchema = v.object({
+  title: text,
+  /** Of a recording: whether the stages in the data are all that it has passed. */
+  filteredBefore: v.picklist(['as stated', 'not known']),
+  list: v.pipe(v.array(claimSchema), v.maxLength(MAX_CLAIMS)),
+})
+
+const START_CLAIMS: v.InferOutput<typeof claimsSchema> = { title: '', filteredBefore: 'not known', list: [] }
+
+/** What the user says of what the page cannot know, by the checklist's field ("resampling"); shown in the write-up. */
+const statementsSchema = v.pipe(
+  v.record(v.pipe(v.string(), v.maxLength(60)), v.pipe(v.string(), v.maxLength(1000))),
+  v.check((fields) => Object.keys(fields).length <= 60, 'more than 60 statements'),
+)
+
+export const VERSION = 2
+
 export const workspaceSchema = v.object({
-  version: v.literal(1),
+  version: v.literal(VERSION),
   title: text,
   /** One plain sentence of what to look at; empty for the user's own work. */
   remark: v.pipe(v.string(), v.maxLength(1000)),
@@ -289,19 +376,9 @@ export const workspaceSchema = v.object({
   /** The trade-off desk: which filters are compared, for which waveforms, and what is accepted. */
   tradeOff: v.optional(tradeOffSchema, START_TRADE_OFF),
   /** Chains kept for comparison. */
-  pins: v.optional(
-    v.pipe(
-      v.array(
-        v.object({
-          name: text,
-          chain: v.pipe(v.array(stageSchema), v.maxLength(60)),
-          extent: v.picklist(['continuous', 'epochs']),
-        }),
-      ),
-      v.maxLength(3),
-    ),
-    [],
-  ),
+  pins: v.optional(v.pipe(v.array(v.object(keptChain)), v.maxLength(MAX_PINS)), []),
+  claims: claimsSchema,
+  statements: statementsSchema,
 })
 
 export { SCENARIOS }
@@ -313,6 +390,8 @@ export type RecordedSource = Extract<Source, { kind: 'recorded' }>
 export type Question = Workspace['trace']['question']
 export type TradeOff = Workspace['tradeOff']
 export type Pin = Workspace['pins'][number]
+export type Claims = Workspace['claims']
+export type Claim = Claims['list'][number]
 export type Reading = v.InferOutput<typeof readingSchema>
 
 /** The name under which the difference wave is chosen. */
@@ -322,7 +401,7 @@ export const DIFFERENCE = 'difference wave'
 export function workspaceOf(scenario: Scenario): Workspace {
   const { conditions, samplingRateHz, epoch } = scenario.waveform
   return structuredClone({
-    version: 1 as const,
+    version: VERSION,
     title: scenario.title,
     remark: scenario.sentence,
     source: { kind: 'built', samplingRateHz, epoch, events: 'alone', conditions },
@@ -345,6 +424,8 @@ export function workspaceOf(scenario: Scenario): Workspace {
     trace: START_TRACE,
     tradeOff: START_TRADE_OFF,
     pins: [],
+    claims: START_CLAIMS,
+    statements: {},
   } satisfies Workspace)
 }
 
@@ -355,20 +436,34 @@ function modelNoise(noise: NoiseSpec): Workspace['noise'] {
 
 export const startWorkspace = (): Workspace => workspaceOf(SCENARIOS[0])
 
+/** What each version lacks that the next one has. Work that was kept by an older page is brought forward step by step. */
+const MIGRATIONS: Record<number, (older: object) => object> = {
+  // 1: no claims, nothing stated for the write-up
+  1: (older) => ({ ...older, version: 2, claims: START_CLAIMS, statements: {} }),
+}
+
 /**
- * What a workspace file, a link or the browser's storage holds, checked field by field.
+ * What a workspace file, a link or the browser's storage holds, checked field by field. Older versions are brought forward first.
  *
  * @returns the workspace, or a sentence that names the first field that is wrong.
  */
 export function readWorkspace(value: unknown): { ok: true; workspace: Workspace } | { ok: false; reason: string } {
-  if (typeof value === 'object' && value !== null && 'version' in value) {
-    const { version } = value
-    if (typeof version === 'number' && version > 1)
-      return { ok: false, reason: `this workspace has version ${version}, newer than this page can read (1)` }
+  let present = value
+  for (let version = versionOf(present); version !== null && version !== VERSION; version = versionOf(present)) {
+    if (version > VERSION)
+      return { ok: false, reason: `this workspace has version ${version}, newer than this page can read (${VERSION})` }
+    const forward = MIGRATIONS[version]
+    if (!forward) break
+    present = forward(present as object)
   }
-  const result = v.safeParse(workspaceSchema, value)
+  const result = v.safeParse(workspaceSchema, present)
   if (result.success) return { ok: true, workspace: result.output }
   const issue = result.issues[0]
   const field = v.getDotPath(issue) ?? 'the whole file'
   return { ok: false, reason: `this is no workspace that the page can read: ${field}: ${issue.message}` }
+}
+
+function versionOf(value: unknown): number | null {
+  if (typeof value !== 'object' || value === null || !('version' in value)) return null
+  return typeof value.version === 'number' && Number.isFinite(value.version) ? value.version : null
 }

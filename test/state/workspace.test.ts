@@ -142,8 +142,8 @@ describe('readWorkspace', () => {
   )
 
   test('refuses a newer version, and says so', () => {
-    expect(reason({ ...startWorkspace(), version: 2 })).toBe(
-      'this workspace has version 2, newer than this page can read (1)',
+    expect(reason({ ...startWorkspace(), version: 3 })).toBe(
+      'this workspace has version 3, newer than this page can read (2)',
     )
   })
 
