@@ -1,6 +1,7 @@
 /** Title line of a figure: name, what it shows as tokens or words, and saving it as SVG or PNG with its caption. */
-import { type ReactNode, type RefObject, useState } from 'react'
+import { type ReactNode, type RefObject, useContext, useEffect, useRef, useState } from 'react'
 import { downloadBlob, figureToPng, figureToSvg, fontFaceCss } from '../plot/index.ts'
+import { keep, type LiveFigure, MOST_KEPT, OnDesk, register } from './sheet-figures.ts'
 
 interface FigureHeadProps {
   title: string
@@ -15,6 +16,15 @@ interface FigureHeadProps {
 export function FigureHead({ title, children, svg, caption, fileName }: FigureHeadProps) {
   const [open, setOpen] = useState(false)
   const [failure, setFailure] = useState<string | null>(null)
+  const [kept, setKept] = useState(false)
+  const onDesk = useContext(OnDesk)
+  const figure = useLiveFigure({ id: fileName, title, svg, caption })
+  const putOnSheet = () => {
+    setOpen(false)
+    const done = keep(figure())
+    setKept(done)
+    setFailure(done ? null : `The sheet holds ${MOST_KEPT} figures from desks: take one off on the write-up desk.`)
+  }
   const save = async (kind: 'svg' | 'png') => {
     setOpen(false)
     if (!svg.current) return
@@ -39,6 +49,11 @@ export function FigureHead({ title, children, svg, caption, fileName }: FigureHe
             {failure}{' '}
           </span>
         ) : null}
+        {kept && !open ? (
+          <span role="status" className="quiet">
+            on the sheet of the write-up desk{' '}
+          </span>
+        ) : null}
         {open ? (
           <>
             <button type="button" className="word" onClick={() => void save('svg')} aria-label={`save ${title} as SVG`}>
@@ -47,6 +62,18 @@ export function FigureHead({ title, children, svg, caption, fileName }: FigureHe
             <button type="button" className="word" onClick={() => void save('png')} aria-label={`save ${title} as PNG`}>
               PNG
             </button>{' '}
+            {onDesk ? (
+              <>
+                <button
+                  type="button"
+                  className="word"
+                  onClick={putOnSheet}
+                  aria-label={`put ${title} on the sheet of the write-up desk`}
+                >
+                  on the sheet
+                </button>{' '}
+              </>
+            ) : null}
           </>
         ) : null}
         <button
@@ -61,6 +88,20 @@ export function FigureHead({ title, children, svg, caption, fileName }: FigureHe
       </span>
     </div>
   )
+}
+
+/** Lists the figure among those on the page for as long as it stands there; what is read of it is always the present. */
+function useLiveFigure(figure: Pick<LiveFigure, 'id' | 'title'> & Pick<FigureHeadProps, 'svg' | 'caption'>) {
+  const present = useRef(figure)
+  present.current = figure
+  const { id, title } = figure
+  const [live] = useState(() => (): LiveFigure => {
+    const { id: name, title: head } = present.current
+    return { id: name, title: head, svg: () => present.current.svg.current, caption: () => present.current.caption() }
+  })
+  // biome-ignore lint/correctness/useExhaustiveDependencies: another name is another entry
+  useEffect(() => register(live()), [live, id, title])
+  return live
 }
 
 /** A word in a figure's title line that switches between a few ways of looking. */

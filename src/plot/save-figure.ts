@@ -69,21 +69,9 @@ export function serializeFigure(
   text: SavedText,
   styleOf: (element: ReadElement) => ReadStyle,
 ): string {
-  const width = Number(attribute(svg, 'width'))
-  const height = Number(attribute(svg, 'height'))
-  if (!(width > 0 && height > 0))
-    throw new RangeError(`the figure must have a width and a height above 0, has ${width} × ${height}`)
-  const root = styleOf(svg)
-  const paper = root.getPropertyValue('--paper').trim()
-  const ink = root.getPropertyValue('--ink').trim()
+  const { width, height, paper, ink, fonts, body } = drawFigure(svg, styleOf)
   const lines = wrapText(text.caption, Math.max(20, Math.floor((width - 2 * PADDING) / 6.3)))
   const textHeight = PADDING + LINE_HEIGHT * (lines.length + 1) + PADDING / 2
-  const inherited = new Map(PROPERTIES.map(([name, initial]) => [name, initial]))
-  // the fonts of the whole file are stated once, on the root
-  const fonts = ['font-family', 'font-size'].map((name) => [name, root.getPropertyValue(name).trim()] as const)
-  for (const [name, value] of fonts) inherited.set(name, value)
-
-  const body = Array.from(svg.childNodes ?? [], (child) => serialize(child, inherited, styleOf)).join('')
   const captionText = [text.title, ...lines]
     .map((line, i) => {
       const y = height + PADDING + LINE_HEIGHT * (i + 0.7)
@@ -94,13 +82,55 @@ export function serializeFigure(
   return [
     '<?xml version="1.0" encoding="UTF-8"?>\n',
     `<svg xmlns="http://www.w3.org/2000/svg" width="${width}" height="${round(height + textHeight)}"`,
-    ` viewBox="0 0 ${width} ${round(height + textHeight)}" role="img"`,
-    ...fonts.filter(([, value]) => value !== '').map(([name, value]) => ` ${name}="${escapeXml(value)}"`),
+    ` viewBox="0 0 ${width} ${round(height + textHeight)}" role="img"${fonts}`,
     `><title>${escapeXml(text.title)}</title><desc>${escapeXml(text.caption)}</desc>`,
     text.fontCss ? `<style>${escapeXml(text.fontCss)}</style>` : '',
     paper && `<rect width="100%" height="100%" fill="${escapeXml(paper)}"/>`,
     `${body}<g class="caption">${captionText}</g></svg>\n`,
   ].join('')
+}
+
+/** A figure written out with its colours and fonts, free of the page: what a file is made of. */
+export type DrawnFigure = {
+  /** px */
+  readonly width: number
+  readonly height: number
+  /** Colours of the page that it was drawn on; '' where none is set. */
+  readonly paper: string
+  readonly ink: string
+  /** Attributes of the element that holds the body: family and size of its text. Each begins with a space. */
+  readonly fonts: string
+  /** Elements in the figure's own pixels, from 0 0. */
+  readonly body: string
+}
+
+/**
+ * A figure as it stands on the page now.
+ *
+ * @throws RangeError for a figure without size.
+ */
+export function drawFigure(svg: ReadElement, styleOf: (element: ReadElement) => ReadStyle): DrawnFigure {
+  const width = Number(attribute(svg, 'width'))
+  const height = Number(attribute(svg, 'height'))
+  if (!(width > 0 && height > 0))
+    throw new RangeError(`the figure must have a width and a height above 0, has ${width} × ${height}`)
+  const root = styleOf(svg)
+  const inherited = new Map(PROPERTIES.map(([name, initial]) => [name, initial]))
+  // the fonts of the whole file are stated once, on the root
+  const fonts = ['font-family', 'font-size'].map((name) => [name, root.getPropertyValue(name).trim()] as const)
+  for (const [name, value] of fonts) inherited.set(name, value)
+  return {
+    ...{ width, height },
+    paper: root.getPropertyValue('--paper').trim(),
+    ink: root.getPropertyValue('--ink').trim(),
+    fonts: fonts.flatMap(([name, value]) => (value === '' ? [] : [` ${name}="${escapeXml(value)}"`])).join(''),
+    body: Array.from(svg.childNodes ?? [], (child) => serialize(child, inherited, styleOf)).join(''),
+  }
+}
+
+/** drawFigure of a figure on the page. */
+export function drawnFigure(svg: SVGSVGElement): DrawnFigure {
+  return drawFigure(svg as unknown as ReadElement, (element) => getComputedStyle(element as unknown as Element))
 }
 
 const PADDING = 16
@@ -175,7 +205,8 @@ function attribute(element: ReadElement, name: string): string | undefined {
   return Array.from(element.attributes ?? []).find((a) => a.name === name)?.value
 }
 
-function round(v: number): number {
+/** To hundredths: a coordinate as it is written. */
+export function round(v: number): number {
   return Math.round(v * 100) / 100
 }
 

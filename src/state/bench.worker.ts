@@ -3,7 +3,8 @@ import { expose } from 'comlink'
 import { readTable } from '../files/index.ts'
 import { evaluate } from './evaluate.ts'
 import { mapSlice } from './map-worker.ts'
+import { exportedCode, writeUpWords } from './write-up.ts'
 
-const api = { readTable, evaluate, mapSlice }
+const api = { readTable, evaluate, mapSlice, exportedCode, writeUpWords }
 export type BenchApi = typeof api
 expose(api)

@@ -2,11 +2,13 @@
 import type { ReactNode } from 'react'
 import type { Workspace } from '../../state/workspace.ts'
 import { useView } from '../hooks.ts'
+import { OnDesk } from '../sheet-figures.ts'
 import type { Shown } from '../use-evaluation.ts'
 import './desks.css'
 import { closeDesk, DESKS_ID, type DeskId, openDesk } from './open-desk.ts'
 import { TraceDesk } from './trace/trace-desk.tsx'
 import { TradeOffDesk } from './trade-off/trade-off-desk.tsx'
+import { WriteUpDesk } from './write-up/write-up-desk.tsx'
 
 export interface DeskProps {
   /** The workspace of the sentence. */
@@ -28,6 +30,7 @@ interface Desk {
 const DESKS: readonly Desk[] = [
   { id: 'trace', title: 'Trace-back', question: 'Where does this value come from?', Body: TraceDesk },
   { id: 'trade-off', title: 'Trade-off', question: 'Which cutoff and roll-off should I use?', Body: TradeOffDesk },
+  { id: 'write-up', title: 'Write-up', question: 'How do I report this?', Body: WriteUpDesk },
 ]
 
 export function Desks(props: DeskProps) {
@@ -50,7 +53,7 @@ export function Desks(props: DeskProps) {
           </button>
         ))}
       </div>
-      {desk ? <desk.Body {...props} /> : null}
+      <OnDesk value={true}>{desk ? <desk.Body {...props} /> : null}</OnDesk>
     </section>
   )
 }

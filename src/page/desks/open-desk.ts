@@ -18,5 +18,6 @@ export function openDesk(id: DeskId): void {
 export function closeDesk(): void {
   const { open } = viewStore.getState()
   // an editor of the desk goes with it
-  look({ desk: null, ...(open?.startsWith('trace-') || open?.startsWith('trade-off-') ? { open: null } : {}) })
+  const own = open !== null && ['trace-', 'trade-off-', 'write-up-'].some((desk) => open.startsWith(desk))
+  look({ desk: null, ...(own ? { open: null } : {}) })
 }

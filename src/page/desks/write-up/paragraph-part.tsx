@@ -1,0 +1,35 @@
+/** The methods paragraph, as it reads or as the markup in which it is pasted. */
+import { useState } from 'react'
+import { PARAGRAPH_FILE, type WriteUpWords } from '../../../state/write-up.ts'
+import type { Markup } from '../../../words/index.ts'
+import { Choice } from '../../fields.tsx'
+import { TakeText } from './take-text.tsx'
+
+const MARKUPS: readonly { value: Markup; text: string }[] = [
+  { value: 'text', text: 'plain text' },
+  { value: 'markdown', text: 'Markdown' },
+  { value: 'latex', text: 'LaTeX' },
+]
+
+const TYPES: Record<Markup, string> = { text: 'text/plain', markdown: 'text/markdown', latex: 'application/x-tex' }
+
+export function ParagraphPart({ paragraph }: Pick<WriteUpWords, 'paragraph'>) {
+  const [markup, setMarkup] = useState<Markup>('text')
+  const text = paragraph[markup]
+  return (
+    <section aria-label="Methods paragraph" className="grid write-up-part">
+      <div>
+        <div className="figure-head">
+          <h2>Methods paragraph</h2>
+          <Choice label="markup of the methods paragraph" value={markup} options={MARKUPS} onChange={setMarkup} />
+          <TakeText what="the methods paragraph" text={text} fileName={PARAGRAPH_FILE[markup]} type={TYPES[markup]} />
+        </div>
+        <p className={markup === 'text' ? 'methods' : 'methods source'}>{text}</p>
+      </div>
+      <p className="small quiet write-up-aside">
+        Every number follows from the chain as designed. What the page cannot know is stated in the checklist below, and
+        joins the paragraph. What nobody has stated stays marked as such.
+      </p>
+    </section>
+  )
+}
