@@ -5,7 +5,7 @@ import { checklistCsv, fieldOf, type WriteUpWords } from '../../../state/write-u
 import type { ChecklistItem, PublishedSource } from '../../../words/index.ts'
 import { TableHead } from '../table-head.tsx'
 import { Statement } from './statement.tsx'
-import { shortSource } from './source-words.ts'
+import { markWords, shortSource } from './source-words.ts'
 
 interface ChecklistTableProps {
   words: WriteUpWords
@@ -16,7 +16,7 @@ export function ChecklistTable({ words, workspace }: ChecklistTableProps) {
   const { checklist } = words
   const sources = [...new Set(checklist.flatMap((item) => item.sources))]
   return (
-    <section aria-label="Reporting checklist" className="write-up-part">
+    <section aria-label="Reporting checklist" className="write-up-part" tabIndex={-1}>
       <TableHead
         title="Reporting checklist"
         told={countWords(checklist)}
@@ -63,7 +63,11 @@ function Row({ item, workspace }: { item: ChecklistItem; workspace: Workspace })
     <tr className={state === 'not stated' ? 'missing' : state === 'stated' ? undefined : 'idle'}>
       <th scope="row">{item.item}</th>
       <td>
-        {own ? null : <span className={state === 'not stated' ? 'not-stated' : undefined}>{words}</span>}{' '}
+        {own ? null : (
+          <span className={state === 'not stated' ? 'not-stated' : undefined}>
+            {state === 'does not apply' ? `does not apply: ${words}` : words}
+          </span>
+        )}
         {field ? <Statement field={field} said={said} /> : null}
         {token ? (
           <button
@@ -105,7 +109,7 @@ export function Sources({ sources }: { sources: readonly PublishedSource[] }) {
     <p className="small quiet sources">
       {sources
         .filter(({ words, mark }) => words !== mark)
-        .map(({ words, mark }) => `${words} (${mark}).`)
+        .map(({ words, mark }) => `${words} (${markWords(mark)}).`)
         .join(' ')}
     </p>
   )

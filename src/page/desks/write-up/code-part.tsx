@@ -52,7 +52,7 @@ export function CodePart({ facts }: { facts: WriteUpFacts }) {
   const code = value?.format === format ? value.code : null
   const shown = code === null ? '' : beginning(code)
   return (
-    <section aria-label="Code" className="write-up-part">
+    <section aria-label="Code" className="write-up-part" tabIndex={-1}>
       <div className="figure-head">
         <h2>Code</h2>
         <Choice label="language of the code" value={format} options={FORMATS} onChange={setFormat} />

@@ -17,18 +17,16 @@ export function ParagraphPart({ paragraph }: Pick<WriteUpWords, 'paragraph'>) {
   const [markup, setMarkup] = useState<Markup>('text')
   const text = paragraph[markup]
   return (
-    <section aria-label="Methods paragraph" className="grid write-up-part">
-      <div>
-        <div className="figure-head">
-          <h2>Methods paragraph</h2>
-          <Choice label="markup of the methods paragraph" value={markup} options={MARKUPS} onChange={setMarkup} />
-          <TakeText what="the methods paragraph" text={text} fileName={PARAGRAPH_FILE[markup]} type={TYPES[markup]} />
-        </div>
-        <p className={markup === 'text' ? 'methods' : 'methods source'}>{text}</p>
+    <section aria-label="Methods paragraph">
+      <div className="figure-head">
+        <h2>Methods paragraph</h2>
+        <Choice label="markup of the methods paragraph" value={markup} options={MARKUPS} onChange={setMarkup} />
+        <TakeText what="the methods paragraph" text={text} fileName={PARAGRAPH_FILE[markup]} type={TYPES[markup]} />
       </div>
-      <p className="small quiet write-up-aside">
+      <p className={markup === 'text' ? 'methods' : 'methods source'}>{text}</p>
+      <p className="small quiet">
         Every number follows from the chain as designed. What the page cannot know is stated in the checklist below, and
-        joins the paragraph. What nobody has stated stays marked as such.
+        joins the paragraph; what nobody has stated is said to be so.
       </p>
     </section>
   )

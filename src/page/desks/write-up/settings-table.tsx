@@ -2,11 +2,12 @@
 import { settingsCsv, type WriteUpWords } from '../../../state/write-up.ts'
 import type { PublishedSetting, PublishedSource } from '../../../words/index.ts'
 import { TableHead } from '../table-head.tsx'
+import { markWords } from './source-words.ts'
 
 export function SettingsTable({ words }: { words: WriteUpWords }) {
   const { settings, examples, caution } = words
   return (
-    <section aria-label="Published settings" className="write-up-part">
+    <section aria-label="Published settings" className="write-up-part" tabIndex={-1}>
       <TableHead
         title="Published settings"
         told="half-power points and slopes of all filters that the waveform has passed"
@@ -29,7 +30,7 @@ export function SettingsTable({ words }: { words: WriteUpWords }) {
           <tbody key={source.words}>
             <tr className="source-row">
               <th scope="rowgroup" colSpan={4}>
-                {source.words} <span className="quiet">({source.mark})</span>
+                {source.words} <span className="quiet">({markWords(source.mark)})</span>
               </th>
             </tr>
             {rows.map(({ id, about, requirement, stages, found, verdict, byHowMuch }) => (
@@ -51,7 +52,7 @@ export function SettingsTable({ words }: { words: WriteUpWords }) {
       </table>
       {examples.map(({ id, about, words: told, source }) => (
         <p key={id} className="small quiet sources">
-          For comparison, not checked ({about}): {told} {source.words} ({source.mark}).
+          For comparison, not checked ({about}): {told} {source.words} ({markWords(source.mark)}).
         </p>
       ))}
     </section>

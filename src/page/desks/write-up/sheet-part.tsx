@@ -56,12 +56,9 @@ export function SheetPart({ title, stale }: SheetPartProps) {
   const none = chosen.length === 0 || stale
   const place = (id: string) => chosen.findIndex((figure) => figure.id === id)
   return (
-    <section aria-label="Figures" className="write-up-part">
+    <section aria-label="Figures">
       <div className="figure-head">
         <h2>Figures</h2>
-        <span className="told">
-          on one sheet, in the colours of paper, with captions that name data, chain and score
-        </span>
         <span className="end take">
           <span role="status" className={said?.failed ? 'over' : 'quiet'}>
             {said?.words}
@@ -77,7 +74,10 @@ export function SheetPart({ title, stale }: SheetPartProps) {
           </WordButton>
         </span>
       </div>
-      <fieldset className="checks sheet-choice">
+      <p className="small quiet">
+        On one sheet, in the colours of paper, with captions that name data, chain and score.
+      </p>
+      <fieldset className="sheet-choice">
         <legend className="visually-hidden">Figures of the sheet</legend>
         {present.map(({ id, title: name }) => (
           <Tick key={id} name={name} letter={place(id)} onChange={() => toggle(id)} />
@@ -92,7 +92,7 @@ export function SheetPart({ title, stale }: SheetPartProps) {
         ))}
       </fieldset>
       <p className="small quiet">
-        A figure of another desk comes onto the sheet by “save” and “on the sheet” beside its title, as it is at that
+        A figure of another desk comes onto the sheet by “save”, “on the sheet” beside its title, as it is at that
         moment. The page to print is a file that the browser’s print dialog turns into a PDF.
       </p>
     </section>

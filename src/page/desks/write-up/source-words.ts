@@ -4,5 +4,8 @@ import type { PublishedSource } from '../../../words/index.ts'
 export function shortSource({ words, mark }: PublishedSource): string {
   if (words === mark) return words
   const name = /^.*?\b(?:19|20)\d\d\b/.exec(words)?.[0] ?? words
-  return `${name} (${mark.replace(/ \((.*)\)$/, ', $1')})`
+  return `${name} (${markWords(mark)})`
 }
+
+/** "from memory, high": a mark as it stands between brackets. */
+export const markWords = (mark: string) => mark.replace(/ \((.*)\)$/, ', $1')

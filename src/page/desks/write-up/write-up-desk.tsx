@@ -8,6 +8,7 @@ import type { Workspace } from '../../../state/workspace.ts'
 import { writeUpFacts, writeUpWords } from '../../../state/write-up.ts'
 import { askForWords } from '../../../state/write-up-bench.ts'
 import type { WriteUpFacts } from '../../../words/index.ts'
+import { WordButton } from '../../fields.tsx'
 import type { DeskProps } from '../desks.tsx'
 import { ChecklistTable, countWords } from './checklist-table.tsx'
 import { CodePart } from './code-part.tsx'
@@ -50,7 +51,11 @@ function Written({ workspace, of, evaluation, stale }: WrittenProps) {
           <p className="remark summary" role="status">
             Of what recommendations ask a paper to report about filters: {countWords(value.checklist)}.
           </p>
-          <ParagraphPart paragraph={value.paragraph} />
+          <Contents />
+          <div className="grid">
+            <ParagraphPart paragraph={value.paragraph} />
+            <SheetPart title={of.title || facts.waveform} stale={stale} />
+          </div>
           <ChecklistTable words={value} workspace={workspace} />
           <SettingsTable words={value} />
         </>
@@ -60,8 +65,28 @@ function Written({ workspace, of, evaluation, stale }: WrittenProps) {
         </p>
       )}
       <CodePart facts={facts} />
-      <SheetPart title={of.title || facts.waveform} stale={stale} />
     </div>
+  )
+}
+
+const PARTS = ['Reporting checklist', 'Published settings', 'Code'] as const
+
+/** The desk is long: its parts below the paragraph, to go there. */
+function Contents() {
+  const goTo = (name: string) => {
+    const part = document.querySelector<HTMLElement>(`.write-up-part[aria-label="${name}"]`)
+    part?.scrollIntoView({ block: 'start' })
+    part?.focus({ preventScroll: true })
+  }
+  return (
+    <p className="small write-up-contents">
+      <span className="quiet">further down:</span>
+      {PARTS.map((name) => (
+        <WordButton key={name} label={`go to ${name}`} onPress={() => goTo(name)}>
+          {name.toLowerCase()}
+        </WordButton>
+      ))}
+    </p>
   )
 }
 
