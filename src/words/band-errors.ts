@@ -1,4 +1,5 @@
 import { nextPowerOfTwo, realTransform } from '../filter/fourier.ts'
+import { movingAverageSamples } from '../filter/moving-average.ts'
 import type { Stage } from '../filter/stage.ts'
 import { designCutoffsHz } from '../filter/cutoff-meaning.ts'
 
@@ -12,6 +13,21 @@ export interface BandErrors {
 
 /** Points of the response for each tap: 8 a side lobe. */
 const POINTS_PER_TAP = 16
+
+/**
+ * Largest gain of a moving average above its first null, measured on the kernel; null where half the sampling rate is reached before.
+ */
+export function sideLobeGain(stage: Stage): number | null {
+  const { spec, taps, samplingRateHz } = stage
+  if (spec.design !== 'moving-average' || taps === null) return null
+  const samples = movingAverageSamples(spec.durationMs, samplingRateHz)
+  const size = Math.max(4096, nextPowerOfTwo(POINTS_PER_TAP * taps.length))
+  const { re, im } = realTransform(taps, size)
+  let largest: number | null = null
+  for (let k = Math.floor(size / samples) + 1; k <= size / 2; k++)
+    largest = Math.max(largest ?? 0, Math.sqrt(re[k] * re[k] + im[k] * im[k]))
+  return largest
+}
 
 /** Measured on the designed kernel; a transition is the stated width about its nominal centre. Null for any other design. */
 export function bandErrors(stage: Stage): BandErrors | null {

@@ -9,6 +9,8 @@ export interface ChainBand {
   readonly lowHz: number | null
   /** Half-power point in Hz at which the band ends; null where it reaches half the sampling rate. */
   readonly highHz: number | null
+  /** The lowest half-amplitude point in Hz (gain 1/2), where the gain at 0 Hz lies below it; else null. */
+  readonly lowHalfAmplitudeHz: number | null
   /** Whether the gain reaches half power anywhere. */
   readonly passes: boolean
 }
@@ -21,15 +23,17 @@ export function chainBand(stages: readonly Stage[], samplingRateHz: number): Cha
   const here = stages.map((stage) => ({ ...stage, spec: { ...stage.spec, inData: false } }))
   const chain: Chain = { samplingRateHz, stages: here }
   const applied = appliedStages(chain)
-  if (applied.length === 0) return { lowHz: null, highHz: null, passes: true }
-  const points = chainCutoffPoints(chain).halfPowerHz
+  if (applied.length === 0) return { lowHz: null, highHz: null, lowHalfAmplitudeHz: null, passes: true }
+  const { halfPowerHz: points, halfAmplitudeHz } = chainCutoffPoints(chain)
+  const lowHalfAmplitudeHz = gainAt(applied, 0) < 0.5 ? (halfAmplitudeHz[0] ?? null) : null
   const passesAt = (hz: number) => gainAt(applied, hz) >= Math.SQRT1_2
   const fromZero = passesAt(0)
   const toHalf = passesAt(samplingRateHz / 2)
-  if (points.length === 0) return { lowHz: null, highHz: null, passes: fromZero }
+  if (points.length === 0) return { lowHz: null, highHz: null, lowHalfAmplitudeHz, passes: fromZero }
   return {
     lowHz: fromZero ? null : points[0],
     highHz: toHalf ? null : points[points.length - 1],
+    lowHalfAmplitudeHz,
     passes: true,
   }
 }

@@ -1,5 +1,5 @@
 import type { Stage } from '../filter/stage.ts'
-import { bandErrors } from './band-errors.ts'
+import { bandErrors, sideLobeGain } from './band-errors.ts'
 import { brief } from './number.ts'
 import { stagePhrases } from './stage-report.ts'
 import { stageName } from './stage-words.ts'
@@ -28,8 +28,8 @@ export function tokenOf({ stage, index }: PlacedStage, part: string): string {
 
 export function amplifierWords(known: readonly PlacedStage[]): string {
   return each(known, ({ stage }) => {
-    const { name, order, beside, cutoffs, rollOff } = stagePhrases(stage)
-    return [`${name} of ${order}`, ...beside, cutoffs, rollOff].join(', ')
+    const { name, order, run, beside, cutoffs, rollOff } = stagePhrases(stage)
+    return [`${name} of ${order}`, run, ...beside, cutoffs, rollOff].join(', ')
   })
 }
 
@@ -60,11 +60,11 @@ export function rippleWords(stage: Stage): string {
   switch (stage.spec.design) {
     case 'butterworth':
     case 'amplifier':
-      return 'no ripple; attenuation grows with the roll-off'
+      return 'no ripple, attenuation growing with the roll-off'
     case 'notch':
-      return 'no ripple; the gain is 0 at the notch'
+      return 'no ripple, gain 0 at the notch'
     case 'moving-average':
-      return 'side lobes between its nulls, the first at −13 dB for a long kernel'
+      return sideLobeWords(stage)
     case 'windowed-sinc': {
       const errors = bandErrors(stage)
       const db = (gain: number) => brief(20 * Math.log10(gain), 3)
@@ -85,12 +85,28 @@ export function rippleWords(stage: Stage): string {
   }
 }
 
-export function phaseWords(applied: readonly PlacedStage[]): { state: 'stated'; words: string; token?: string } {
-  const causal = applied.filter(({ stage }) => stage.passes === 1 && !(stage.taps !== null && stage.leadSamples > 0))
-  if (causal.length === 0) return { state: 'stated', words: 'every filter applied here is zero-phase' }
+function sideLobeWords(stage: Stage): string {
+  const gain = sideLobeGain(stage)
+  return gain === null
+    ? 'no side lobe below half the sampling rate'
+    : `side lobes between its nulls, at most ${brief(20 * Math.log10(gain), 3)} dB`
+}
+
+/** Which filters leave their delay in a latency; those that the data had passed leave it too. */
+export function phaseWords(
+  passed: readonly PlacedStage[],
+  amplifierUnknown: boolean,
+): { state: 'stated'; words: string; token?: string } {
+  const causal = passed.filter(({ stage }) => stage.passes === 1 && !(stage.taps !== null && stage.leadSamples > 0))
+  const unknown = amplifierUnknown ? '; the amplifier’s own filters, which are causal, are not among the stages' : ''
+  if (causal.length === 0) return { state: 'stated', words: `every stage is zero-phase${unknown}` }
+  const names = causal.map(
+    ({ stage: { spec }, index }) =>
+      `stage ${index + 1} (${stageName(spec)}${spec.inData === true ? ', in the data' : ''})`,
+  )
   return {
     state: 'stated',
-    words: `causal, so that latencies contain their delay: ${causal.map(({ stage, index }) => `stage ${index + 1} (${stageName(stage.spec)})`).join(', ')}`,
+    words: `causal, so that latencies contain their delay: ${names.join(', ')}${unknown}`,
     token: tokenOf(causal[0], 'direction'),
   }
 }

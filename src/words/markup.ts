@@ -17,6 +17,11 @@ const LATEX: Readonly<Record<string, string>> = {
   '>': '\\textgreater{}',
   '|': '\\textbar{}',
   '"': "''",
+  '`': '\\textasciigrave{}',
+  '√': '$\\sqrt{\\ }$',
+  '√2': '$\\sqrt{2}$',
+  '…': '\\ldots{}',
+  '\u00a0': '~',
   '\u2212': '$-$',
   '\u00b5': '$\\mu$',
   '\u03bc': '$\\mu$',
@@ -36,20 +41,22 @@ const LATEX: Readonly<Record<string, string>> = {
 }
 
 /** A number stays on one line with its unit. */
-const NUMBER_AND_UNIT = /(\d) (Hz|ms|s|dB|µV|samples?|taps?|trials?|\\%)(?![A-Za-z])/g
+const NUMBER_AND_UNIT = /(\d) (Hz|ms|s|dB|µV|samples?|taps?|trials?|%)(?![A-Za-z])/g
+
+/** Characters without a shape that turn the direction of what follows: a user's words must not reorder the others. */
+const REORDERING = /[\u202a-\u202e\u2066-\u2069]/g
 
 /** The same words in another markup. Line breaks and control characters become spaces. */
 export function inMarkup(prose: string, markup: Markup): string {
-  const plain = prose.replace(/[\s\u0000-\u001f\u007f]+/g, ' ').trim()
+  const plain = prose
+    .replace(REORDERING, '')
+    .replace(/[\s\u0000-\u001f\u007f-\u009f]+/g, ' ')
+    .trim()
   if (markup === 'text') return plain
   // any ASCII punctuation may stand behind a backslash in Markdown
-  if (markup === 'markdown') return plain.replace(/[\\`*_{}[\]<>#|~$&]/g, '\\$&')
-  return plain
-    .replace(NUMBER_AND_UNIT, '$1\u00a0$2')
-    .replace(/√2/g, '\u221a')
-    .replace(/./gu, (character) => {
-      if (character === '\u00a0') return '~'
-      if (character === '\u221a') return '$\\sqrt{2}$'
-      return LATEX[character] ?? character
-    })
+  if (markup === 'markdown') return plain.replace(/[\\`*_{}[\]<>#|~$&^@]|-(?=-)/g, '\\$&')
+  return plain.replace(NUMBER_AND_UNIT, '$1\u00a0$2').replace(/√2(?!\d)|./gu, (piece, at: number, all: string) =>
+    // two hyphens would become a dash
+    piece === '-' && all[at + 1] === '-' ? '-{}' : (LATEX[piece] ?? piece),
+  )
 }

@@ -1,4 +1,5 @@
 import { chainCutoffPoints } from '../filter/cutoff-points.ts'
+import { epochPaddingSamples } from '../filter/epoch-rules.ts'
 import type { Score } from '../erp/score.ts'
 import { inMarkup, type Markup } from './markup.ts'
 import { exact } from './number.ts'
@@ -58,15 +59,19 @@ function sourceSentences({ source, waveform, samplingRateHz, epoch, events, tria
 /** What the data had passed before: in the pluperfect, and what is not known of it. */
 function historySentences(facts: WriteUpFacts, { inData, amplifiers }: DesignedProtocol): string[] {
   const sentences: string[] = []
-  if (inData.length > 0) sentences.push(`Before this analysis it had passed ${filterList(inData, () => 'none')}.`)
-  if (inData.some(({ stage }) => stage.spec.design !== 'amplifier') && statementOf(facts, 'earlier-edges') === '')
+  if (inData.length > 0)
+    sentences.push(`Before this analysis the waveform had passed ${filterList(inData, () => 'none')}.`)
+  const filtered = inData.some(({ stage }) => stage.spec.design !== 'amplifier')
+  if (filtered && statementOf(facts, 'earlier-edges') === '')
     sentences.push('How the ends of the data had been handled then was not stated.')
   if (facts.source === 'built') return sentences
   const amplifierKnown = [...inData, ...amplifiers].some(({ stage }) => stage.spec.design === 'amplifier')
   if (!amplifierKnown && statementOf(facts, 'amplifier') === '')
     sentences.push('The filters of the amplifier were not stated.')
   if (statementOf(facts, 'earlier-filters') === '')
-    sentences.push(`Whether it had passed any ${inData.length > 0 ? 'other ' : ''}filter before was not stated.`)
+    sentences.push(
+      `Whether the waveform had passed any ${filtered ? 'other filter' : 'filter besides the amplifier’s'} before this analysis was not stated.`,
+    )
   return sentences
 }
 
@@ -75,7 +80,7 @@ function filterSentences(facts: WriteUpFacts, { chain, inData, amplifiers, offli
   const { source, extent } = facts
   if (amplifiers.length > 0)
     sentences.push(
-      `The amplifier was modelled on the continuous waveform, before any epoch was cut, by ${filterList(amplifiers, () => 'none')}.`,
+      `The amplifier was modelled on ${amplifierInput(facts)}, by ${filterList(amplifiers, () => 'none')}.`,
     )
   const had = inData.some(({ stage }) => stage.spec.design !== 'amplifier')
   if (offline.length === 0) {
@@ -95,7 +100,8 @@ function filterSentences(facts: WriteUpFacts, { chain, inData, amplifiers, offli
       sentences.push(
         'The waveform was defined on the whole time axis and evaluated as far outside the epoch as the filters reached, so that no padding was needed.',
       )
-    else if (offline.length > 1) sentences.push('Each filter padded its input, ran, and was trimmed before the next.')
+    else if (offline.slice(0, -1).some(({ stage }) => epochPaddingSamples(stage) > 0))
+      sentences.push('What a filter had padded was trimmed off before the next filter ran.')
   }
   if (amplifiers.length + offline.length > 1) {
     const { halfAmplitudeHz, halfPowerHz } = chainCutoffPoints(chain)
@@ -106,8 +112,23 @@ function filterSentences(facts: WriteUpFacts, { chain, inData, amplifiers, offli
   return sentences
 }
 
+/** A recording's ends are unknown to its amplifier, which is taken to have rested on either side. */
+function amplifierInput({ source, extent }: WriteUpFacts): string {
+  if (source === 'built') return 'the continuous waveform, before any epoch was cut'
+  return extent === 'epochs'
+    ? 'the epoch, as if zeros stood before and after it'
+    : 'each uninterrupted stretch of the recording, as if zeros stood before and after it'
+}
+
+/** More points than these are not listed one by one. */
+const LISTED_POINTS = 8
+
 function together(name: string, hz: readonly number[]): string {
   if (hz.length === 0) return `no ${name} point`
+  if (hz.length > LISTED_POINTS) {
+    const [lowest, highest] = [hz[0], hz[hz.length - 1]].map((value) => cutoffList([value], []))
+    return `${exact(hz.length)} ${name} points, the lowest at ${lowest} Hz and the highest at ${highest} Hz`
+  }
   return `${hz.length === 1 ? `a ${name} point` : `${name} points`} at ${cutoffList(hz, [])} Hz`
 }
 
@@ -125,13 +146,12 @@ const COUNT = ['no', 'one', 'two', 'three', 'four', 'five', 'six', 'seven', 'eig
 function baselineSentence({ baseline, chain }: WriteUpFacts): string {
   if (baseline === 'none') return 'No baseline correction was made.'
   const filtered = chain.some(({ enabled, inData }) => enabled !== false && inData !== true)
-  const mean = `mean of the waveform over the baseline from ${windowWords(baseline.fromMs, baseline.toMs)}`
+  const mean = `mean of the waveform over the baseline ${span(baseline)}`
   return filtered ? `After filtering, the ${mean} was subtracted.` : `The ${mean} was subtracted.`
 }
 
 function scoreSentences({ score, source, trials }: WriteUpFacts): string[] {
-  const at = score.kind === 'moment' ? 'at' : 'from'
-  const defined = `The score was ${scoreWords(score)} ${at} ${windowWords(score.fromMs, score.toMs)} (${definition(score)}).`
+  const defined = `The score was ${scoreWords(score)} ${span(score)} (${definition(score)}).`
   return source === 'recorded'
     ? [defined]
     : [
@@ -142,26 +162,31 @@ function scoreSentences({ score, source, trials }: WriteUpFacts): string[] {
       ]
 }
 
+/** "from −200 to 0 ms", "at 120 ms" */
+function span({ fromMs, toMs }: { fromMs: number; toMs: number }): string {
+  return `${fromMs === toMs ? 'at' : 'from'} ${windowWords(fromMs, toMs)}`
+}
+
 /** How the number is computed, so that another program can give the same one. */
 function definition({ kind, polarity, fraction = 0.5 }: Score): string {
   const peak =
-    'the largest of the samples in this window that exceeded every other sample within ±10 ms, refined by a parabola through three samples'
+    'the largest of the samples in this window that exceeded every other sample within ±10 ms, inside or outside the window, refined by a parabola through three samples'
   const largest = polarity === 'negative' ? peak.replace('exceeded', 'lay below').replace('largest', 'lowest') : peak
   switch (kind) {
     case 'mean':
       return 'the mean of all samples whose time lay in this closed interval'
     case 'area':
-      return `by the trapezoidal rule, of the waveform clipped at zero on the ${polarity} side`
+      return `by the trapezoidal rule, over the ${polarity} values, all others set to zero`
     case 'peak-amplitude':
       return `the amplitude of ${largest}`
     case 'peak-latency':
       return `the latency of ${largest}`
     case 'area-latency':
-      return `the moment at which ${exact(fraction * 100)} % of the area of the waveform clipped at zero on the ${polarity} side was reached`
+      return `the moment at which ${exact(fraction * 100)} % of the area over the ${polarity} values, all others set to zero, was reached`
     case 'onset-latency':
       return `going back from the peak, the first crossing of ${exact(fraction * 100)} % of its amplitude, interpolated linearly; the peak was ${largest}`
     case 'moment':
-      return 'read at this moment'
+      return 'interpolated linearly between samples'
   }
 }
 

@@ -1,6 +1,15 @@
 import { chainBand, polesAtEnd } from './chain-band.ts'
 import { CAUTION, type PublishedSource } from './published-source.ts'
-import { type Finding, highCorner, type Looked, lowCorner, noNotch, orderAtMost, slopeAtMost } from './setting-check.ts'
+import {
+  type Finding,
+  highCorner,
+  type Looked,
+  lowCorner,
+  lowCornerOfUnsaidGain,
+  noNotch,
+  orderAtMost,
+  slopeAtMost,
+} from './setting-check.ts'
 import { designProtocol, type WriteUpFacts } from './write-up-facts.ts'
 
 /** One requirement of a published setting, held against the chain. */
@@ -52,7 +61,10 @@ export const PUBLISHED_EXAMPLES: readonly PublishedExample[] = [
     about: 'visual evoked potentials',
     words:
       'One published study in the style of the ISCEV standard: band 1 to 100 Hz, 200 sweeps, 250 ms analysed, peaks at 75, 100 and 145 ms, residual noise below 0.1 µV.',
-    source: { words: 'Invest Ophthalmol Vis Sci, iovs.arvojournals.org, article 2199757', mark: 'seen' },
+    source: {
+      words: 'Invest Ophthalmol Vis Sci, iovs.arvojournals.org, article 2199757 (year not noted)',
+      mark: 'seen',
+    },
   },
 ]
 
@@ -116,7 +128,7 @@ const RULES: readonly Rule[] = [
   rule('S5-baep-low', BAEP, 'band from 10–30 Hz (−3 dB)', ACNS_9, 'all filters', (l) => lowCorner(l, 10, 30)),
   rule('S5-baep-high', BAEP, 'band to 2500–3000 Hz (−3 dB)', ACNS_9, 'all filters', (l) => highCorner(l, 2500, 3000)),
   rule('S13', 'event-related potentials', 'high-pass of at most 0.1 Hz', ACUNZO, 'all filters', (l) =>
-    lowCorner(l, 0, 0.1),
+    lowCornerOfUnsaidGain(l, 0.1),
   ),
 ]
 

@@ -52,7 +52,7 @@ export function reportingChecklist(facts: WriteUpFacts): {
   const designed = designProtocol(facts)
   return {
     caution: CAUTION,
-    items: [...recordingItems(facts, designed), ...filterItems(facts, designed), ...otherItems(facts)],
+    items: [...recordingItems(facts, designed), ...filterItems(facts, designed), ...otherItems(facts, designed)],
   }
 }
 
@@ -115,7 +115,7 @@ function recordingItems(facts: WriteUpFacts, { inData, amplifiers }: DesignedPro
       'earlier-edges',
       'What earlier filters were applied to, and how they handled its ends',
       [widmann],
-      earlier.length > 0
+      earlier.length > 0 || saysFilters(statementOf(facts, 'earlier-filters'))
         ? saidOrNot(facts, 'earlier-edges')
         : { state: 'does not apply', words: 'no earlier filter is stated' },
     ),
@@ -125,7 +125,14 @@ function recordingItems(facts: WriteUpFacts, { inData, amplifiers }: DesignedPro
 function filterItems(facts: WriteUpFacts, { inData, amplifiers, offline, chain }: DesignedProtocol): ChecklistItem[] {
   const filters = [...inData.filter(({ stage }) => stage.spec.design !== 'amplifier'), ...offline]
   const applied = [...amplifiers, ...offline]
-  const none: Content = { state: 'does not apply', words: 'no filter is applied', token: 'add' }
+  const amplified = chain.stages.some(({ spec }) => spec.design === 'amplifier')
+  const none: Content = {
+    state: 'does not apply',
+    words: amplified ? 'no filter but the amplifier’s' : 'no filter is applied',
+    token: 'add',
+  }
+  const noneHere: Content = { ...none, words: 'no filter is applied here' }
+  const noneOffline: Content = { ...none, words: 'no filter is applied offline' }
   const about = (
     id: string,
     name: string,
@@ -154,7 +161,7 @@ function filterItems(facts: WriteUpFacts, { inData, amplifiers, offline, chain }
         ? none
         : { state: 'stated', words: orderWords({ inData, amplifiers, offline }), token: 'extent' },
     ),
-    about('type', 'Type of each filter', [pernet, widmann], filters, ({ stage }) => typeWords(stage), 'design'),
+    about('type', 'Type of each filter', [pernet, widmann, picton], filters, ({ stage }) => typeWords(stage), 'design'),
     about(
       'cutoffs',
       'Cutoffs with their definition (−3 or −6 dB)',
@@ -163,14 +170,7 @@ function filterItems(facts: WriteUpFacts, { inData, amplifiers, offline, chain }
       ({ stage }) => cutoffsAndDesign(stage),
       'cutoff',
     ),
-    about(
-      'order',
-      'Order or length',
-      [pernet, widmann],
-      filters,
-      ({ stage }) => stagePhrases(stage).order || 'second order for each notch',
-      'order',
-    ),
+    about('order', 'Order or length', [pernet, widmann], filters, ({ stage }) => stagePhrases(stage).order, 'order'),
     about(
       'roll-off',
       'Roll-off or transition width',
@@ -208,13 +208,17 @@ function filterItems(facts: WriteUpFacts, { inData, amplifiers, offline, chain }
       'latency-phase',
       'Zero-phase filters where latencies are measured',
       [picton],
-      latency ? phaseWords(applied) : { state: 'does not apply', words: 'the score is not a latency' },
+      !latency
+        ? { state: 'does not apply', words: 'the score is not a latency' }
+        : chain.stages.length === 0
+          ? none
+          : phaseWords([...inData, ...applied], facts.source === 'recorded' && !amplified),
     ),
     item(
       'extent',
       'Applied to the continuous recording or to epochs',
       [widmann],
-      offline.length === 0 ? none : { state: 'stated', words: extentWords(facts), token: 'extent' },
+      offline.length === 0 ? noneOffline : { state: 'stated', words: extentWords(facts), token: 'extent' },
     ),
     about(
       'edges',
@@ -224,23 +228,24 @@ function filterItems(facts: WriteUpFacts, { inData, amplifiers, offline, chain }
       ({ stage }) =>
         endsWords(stage, ends).join('') || 'nothing to pad: the waveform is defined on the whole time axis',
       'design',
+      noneOffline,
     ),
     item(
       'coefficients',
       'Coefficients that do not depend on software',
       [widmann],
-      applied.length === 0 ? none : saidOrNot(facts, 'coefficients'),
+      applied.length === 0 ? noneHere : saidOrNot(facts, 'coefficients'),
     ),
     item(
       'response-figure',
       'A plot of the impulse or step response',
       [decheveigne],
-      applied.length === 0 ? none : saidOrNot(facts, 'response-figure'),
+      applied.length === 0 ? noneHere : saidOrNot(facts, 'response-figure'),
     ),
   ]
 }
 
-function otherItems(facts: WriteUpFacts): ChecklistItem[] {
+function otherItems(facts: WriteUpFacts, { offline }: DesignedProtocol): ChecklistItem[] {
   const { baseline, trials, softwareVersion, events } = facts
   return [
     recordedOnly(facts, 'resampling', 'Resampling, with its anti-alias filter', [pernet]),
@@ -250,14 +255,14 @@ function otherItems(facts: WriteUpFacts): ChecklistItem[] {
       words:
         baseline === 'none'
           ? 'none'
-          : `the mean from ${windowWords(baseline.fromMs, baseline.toMs)} is subtracted after the filters`,
+          : `the mean from ${windowWords(baseline.fromMs, baseline.toMs)} is subtracted${offline.length > 0 ? ' after the filters' : ''}`,
       token: 'baseline',
     }),
     recordedOnly(facts, 'artifacts', 'Rejection or correction of artifacts', [practice]),
     recordedOnly(facts, 'processing-order', 'Order of the steps outside this workspace', [pernet]),
     item('trials', 'Number of epochs in each condition', [pernet], {
       state: 'stated',
-      words: `${counted(trials, 'trial')}${events ? `, events ${eventsWords(events)}` : ''}`,
+      words: `${counted(trials, 'trial')}${eventsPhrase(events)}`,
       token: 'trials',
     }),
     item('software', 'Software and version of the filters', [pernet], {
@@ -269,6 +274,16 @@ function otherItems(facts: WriteUpFacts): ChecklistItem[] {
       words: 'no spectral step among the scores',
     }),
   ]
+}
+
+function eventsPhrase(events: WriteUpFacts['events']): string {
+  if (!events) return ''
+  return events === 'alone' ? ', the event alone' : `, one event ${eventsWords(events)}`
+}
+
+/** Whether a statement about earlier filters speaks of any: "none" does not. */
+function saysFilters(statement: string): boolean {
+  return statement !== '' && !/^(no|none|nothing)\b/i.test(statement)
 }
 
 /** What only a recording can have. */

@@ -37,8 +37,8 @@ const isBelow = (value: number, limit: number) => value < limit * (1 - TOLERANCE
 const hz = (value: number) => `${brief(value, 5)} Hz`
 
 const UNKNOWN = {
-  low: 'no high-pass of the amplifier is stated',
-  high: 'no low-pass of the amplifier is stated',
+  low: 'the amplifier’s own high-pass is not among the stages',
+  high: 'the amplifier’s own low-pass is not among the stages',
 } as const
 
 const kept = (found: string): Finding => ({ verdict: 'kept', found, byHowMuch: null })
@@ -60,9 +60,19 @@ export function lowCorner({ band, unknown }: Looked, fromHz: number, toHz: numbe
   const low = band.lowHz ?? 0
   const found = band.lowHz === null ? 'no high-pass' : `half-power point at ${hz(low)}`
   if (isAbove(low, toHz)) return notKept(found, low - toHz, 'Hz', `${hz(low - toHz)} above ${hz(toHz)}`)
-  if (unknown.low) return cannotBeTold(`${found}, but ${UNKNOWN.low}`)
+  if (unknown.low) return cannotBeTold(`${found}; ${UNKNOWN.low}`)
   if (isBelow(low, fromHz)) return notKept(found, fromHz - low, 'Hz', `${hz(fromHz - low)} below ${hz(fromHz)}`)
   return kept(found)
+}
+
+/** As `lowCorner` up to a limit, for a source that does not say which gain its cutoff means. */
+export function lowCornerOfUnsaidGain(looked: Looked, toHz: number): Finding {
+  const finding = lowCorner(looked, 0, toHz)
+  const { lowHz, lowHalfAmplitudeHz } = looked.band
+  if (finding.verdict !== 'not kept' || lowHz === null || isAbove(lowHalfAmplitudeHz ?? 0, toHz)) return finding
+  const half =
+    lowHalfAmplitudeHz === null ? 'no half-amplitude point' : `half-amplitude point at ${hz(lowHalfAmplitudeHz)}`
+  return cannotBeTold(`${finding.found}, ${half}; the source does not say which of them it limits`)
 }
 
 /** A further filter can only lower the corner. Without a low-pass the sampling rate ends the band. */
@@ -74,7 +84,7 @@ export function highCorner({ band, halfRateHz, unknown }: Looked, fromHz: number
       ? `no low-pass below half the sampling rate (${hz(halfRateHz)})`
       : `half-power point at ${hz(high)}`
   if (isBelow(high, fromHz)) return notKept(found, fromHz - high, 'Hz', `${hz(fromHz - high)} below ${hz(fromHz)}`)
-  if (unknown.high) return cannotBeTold(`${found}, but ${UNKNOWN.high}`)
+  if (unknown.high) return cannotBeTold(`${found}; ${UNKNOWN.high}`)
   if (isAbove(high, toHz)) return notKept(found, high - toHz, 'Hz', `${hz(high - toHz)} above ${hz(toHz)}`)
   if (band.highHz === null && toHz < Infinity) return cannotBeTold(`${found}, which itself lies in the range`)
   return kept(found)
@@ -102,9 +112,9 @@ export function orderAtMost({ all, unknown }: Looked, end: 'low' | 'high', limit
     const value = (poles - limit) * DB_PER_POLE
     return notKept(found, value, 'dB/octave', `${brief(value, 4)} dB per octave steeper`)
   }
-  if (unknown[end]) return cannotBeTold(`${found}, but ${UNKNOWN[end]}`)
+  if (unknown[end]) return cannotBeTold(`${found}; ${UNKNOWN[end]}`)
   const finite = all.some((stage) => stage.taps !== null && bounds(stage, end))
-  if (finite) return cannotBeTold(`${found}, but a finite impulse response has no order in this sense`)
+  if (finite) return cannotBeTold(`${found}; a finite impulse response has no order in this sense`)
   return kept(found)
 }
 
@@ -123,8 +133,8 @@ export function noNotch({ all, unknown }: Looked): Finding {
       'a moving average, whose nulls are evenly spaced; whether that counts as a comb filter is not said',
     )
   if (unknown.low && unknown.high)
-    return cannotBeTold('no notch among the stages, but the filters of the amplifier are not stated')
-  return kept('no notch and no band-stop')
+    return cannotBeTold('no notch among the stages; the amplifier’s own filters are not among them')
+  return kept('no notch and no band-stop among the stages')
 }
 
 function isBandStop(spec: Stage['spec']): boolean {

@@ -35,7 +35,7 @@ export interface StagePhrases {
   readonly design: string | null
   /** Roll-off, transition width, bandwidth or nulls, by design. */
   readonly rollOff: string
-  /** What stands beside the cutoffs: an amplifier's time constant, a notch's bandwidth in a single pass. */
+  /** What stands beside the cutoffs: an amplifier's time constant. */
   readonly beside: readonly string[]
 }
 
@@ -43,7 +43,9 @@ export function stageReport(stage: Stage, ends: Ends): string {
   const { name, order, run, window, cutoffs, design, rollOff, beside } = stagePhrases(stage)
   const has = [window, ...beside, cutoffs, design, rollOff].filter((phrase) => phrase !== null)
   const all = `with ${has.slice(0, -1).join(', ')}, and ${has[has.length - 1]}`
-  return [order === '' ? name : `${name} of ${order}`, run, ...endsWords(stage, ends), all].join(', ')
+  // the name of a notch ends with its frequencies
+  const ordered = stage.spec.design === 'notch' ? `${name}, ${order}` : `${name} of ${order}`
+  return [ordered, run, ...endsWords(stage, ends), all].join(', ')
 }
 
 export function stagePhrases(stage: Stage): StagePhrases {
@@ -52,11 +54,12 @@ export function stagePhrases(stage: Stage): StagePhrases {
   switch (spec.design) {
     case 'butterworth': {
       const edge = spec.cutoffsHz.length === 2 ? ' per edge' : ''
+      const perPass = edge === '' ? ' per pass' : ' per edge and pass'
       return {
         name: `a Butterworth ${PASS_WORD[spec.pass]} filter`,
         order:
           passes === 2
-            ? `order ${exact(spec.order)}${edge} per pass (order ${exact(2 * spec.order)}${edge} as applied)`
+            ? `order ${exact(spec.order)}${perPass} (order ${exact(2 * spec.order)}${edge} as applied)`
             : `order ${exact(spec.order)}${edge} (one pass)`,
         run: directionWords(passes),
         window: null,
@@ -70,7 +73,7 @@ export function stagePhrases(stage: Stage): StagePhrases {
       const taps = (stage.taps as Float64Array).length
       return {
         name: `a windowed-sinc finite-impulse-response ${PASS_WORD[spec.pass]} filter`,
-        order: `${counted(taps, 'tap')} (order ${exact(taps - 1)})`,
+        order: `${counted(taps, 'tap')} (order ${exact(taps - 1)}, one pass)`,
         run: delayWords(stage, spec.delay),
         window: windowPhrase(spec.window),
         cutoffs: cutoffWords(points, spec.cutoffsHz, 1),
@@ -97,13 +100,15 @@ export function stagePhrases(stage: Stage): StagePhrases {
       const single = brief(notchDesignBandwidthHz(spec, samplingRateHz), DIGITS)
       return {
         name: notchWords(spec),
-        order: '',
+        order: `${spec.harmonics > 0 ? 'each ' : ''}of order 2${passes === 2 ? ' per pass (order 4 as applied)' : ' (one pass)'}`,
         run: directionWords(passes),
         window: null,
         cutoffs: notchCutoffs(points, spec, passes),
         design: null,
-        rollOff: `a half-power bandwidth of ${exact(spec.bandwidthHz)} Hz as applied`,
-        beside: passes === 2 ? [`a half-power bandwidth of ${single} Hz in a single pass`] : [],
+        rollOff: `a half-power bandwidth${spec.harmonics > 0 ? ' per notch' : ''} of ${exact(spec.bandwidthHz)} Hz as applied${
+          passes === 2 ? ` (${single} Hz in a single pass)` : ''
+        }`,
+        beside: [],
       }
     }
     case 'moving-average': {
@@ -111,7 +116,7 @@ export function stagePhrases(stage: Stage): StagePhrases {
       const taps = (stage.taps as Float64Array).length
       return {
         name: `a moving average over ${lengthWords(samples, samplingRateHz)}`,
-        order: `${counted(taps, 'tap')}${taps > samples ? ', the first and the last halved' : ''}`,
+        order: `${counted(taps, 'tap')} (order ${exact(taps - 1)}, one pass${taps > samples ? '; the first and the last tap halved' : ''})`,
         run: delayWords(stage, spec.delay),
         window: null,
         cutoffs: cutoffWords(points, [], 1),
@@ -128,12 +133,12 @@ const LISTED_NOTCHES = 4
 
 function notchWords({ frequencyHz, harmonics }: NotchSpec): string {
   const at = (k: number) => exact(frequencyHz * (k + 1))
-  if (harmonics === 0) return `a second-order notch filter at ${at(0)} Hz without harmonics`
+  if (harmonics === 0) return `a notch filter at ${at(0)} Hz without harmonics`
   if (harmonics < LISTED_NOTCHES) {
     const centres = Array.from({ length: harmonics + 1 }, (_, k) => at(k))
-    return `second-order notch filters at ${list(centres)} Hz (${counted(harmonics, 'harmonic')} of ${at(0)} Hz included)`
+    return `a set of notch filters at ${list(centres)} Hz (${at(0)} Hz and ${counted(harmonics, 'harmonic')})`
   }
-  return `second-order notch filters at ${at(0)} Hz and its ${counted(harmonics, 'harmonic')} up to ${at(harmonics)} Hz`
+  return `a set of notch filters at ${at(0)} Hz and its ${counted(harmonics, 'harmonic')} up to ${at(harmonics)} Hz`
 }
 
 function notchCutoffs(points: CutoffPoints, { harmonics }: NotchSpec, passes: 1 | 2): string {
@@ -170,7 +175,7 @@ function delayWords({ leadSamples, samplingRateHz, taps }: Stage, delay: 'compen
 }
 
 function slope({ rollOff }: CutoffPoints): string {
-  return rollOff.kind === 'dB/octave' ? brief(rollOff.value, DIGITS) : ''
+  return rollOff.kind === 'dB/octave' ? brief(rollOff.value, 4) : ''
 }
 
 /** Both readings of a cutoff, each with the gain that it means, after all passes. */

@@ -59,9 +59,9 @@ export function counted(count: number, noun: string): string {
   return `${exact(count)} ${noun}${count === 1 ? '' : 's'}`
 }
 
-/** A sentence ends once, whatever the user typed. */
+/** A sentence ends once, whatever the user typed; an end inside a closing quotation mark is one. */
 export function sentence(words: string): string {
-  return /[.!?]$/.test(words) ? words : `${words}.`
+  return /[.!?…]["'”’]?$/.test(words) ? words : `${words}.`
 }
 
 /** What a stage meets at the ends of its input: nothing, the ends of an epoch, or those of a recording's uninterrupted stretch. */
