@@ -25,8 +25,6 @@ export interface MapFigures {
   readonly front: readonly number[]
   /** Whether each cell keeps every limit. */
   readonly kept: readonly boolean[]
-  /** Multiples of the tightest limit: at most 1 inside the region; NaN where unknown. */
-  readonly multiples: readonly number[]
 }
 
 /** The worker keeps what only computing needs; figures need the question and the unfiltered scores. */
@@ -63,11 +61,6 @@ export function mapFigures(
     cells,
     front: paretoFront(cells.map((cell) => cell ?? { bias: null, noise: null })),
     kept: verdicts.map((verdict) => verdict?.kept === true),
-    multiples: cells.map((cell, i) => {
-      const verdict = verdicts[i]
-      if (!cell || !verdict || cell.error !== null) return Number.NaN
-      return verdict.tightest?.multiples ?? (verdict.kept ? 0 : Number.NaN)
-    }),
   }
 }
 

@@ -1,14 +1,16 @@
-/** The map: every filter of the grid as a cell, the allowed region outlined, the front marked. */
+/** The map: every filter of the grid as a cell, a line at each limit, the allowed region unveiled, the front marked. */
 import { memo, useMemo, useRef, useState } from 'react'
-import { Axis, contourPath, FigureFrame, type Frame, hatchId } from '../../../plot/index.ts'
+import { Axis, FigureFrame, type Frame, hatchId } from '../../../plot/index.ts'
 import type { CellFigures } from '../../../evidence/trade-off-figures.ts'
 import { nearestComputed } from '../../../state/map-figures.ts'
 import { say } from '../../../state/store.ts'
 import type { TradeOff } from '../../../state/workspace.ts'
-import { brief } from '../../../words/index.ts'
+import { brief, list } from '../../../words/index.ts'
 import { Choice } from '../../fields.tsx'
 import { FigureHead } from '../../figure-head.tsx'
 import { Unspoken } from '../../label-text.tsx'
+import { limitedMap, limitLabel, unlinedWords } from './limit-lines.ts'
+import { LimitMarks, LimitNames } from './limit-marks.tsx'
 import { cutoffScale, movedCell, rowTop, type Shade, shadeOf } from './map-shape.ts'
 import { cellWords, layerUnit, type MapUnit } from './map-words.ts'
 import type { DrawnMap } from './use-map.ts'
@@ -40,6 +42,10 @@ export function MapFigure({ map, layer, unit, at, inChain, noiseErrorOf, caption
   const rows = rollOffs.length
   const cells = useMemo(() => nearestComputed(figures, columns, rows), [figures, columns, rows])
   const shade = useMemo(() => shadeOf(figures.cells, layer), [figures, layer])
+  const limited = useMemo(() => limitedMap(cells, limits, columns, rows), [cells, limits, columns, rows])
+  const marks = useMemo(() => (inChain === null ? figures.front : [...figures.front, inChain]), [figures, inChain])
+  const lined = limited.limits.filter(({ lines }) => lines.length > 0).map((of) => limitLabel(of, unit))
+  const unlined = unlinedWords(limited, unit)
   const words = (index: number) => cellWords(figures.cells[index], candidate, limits, unit, noiseErrorOf(index))
   const height = Math.max(150, MAP_MARGIN.top + MAP_MARGIN.bottom + ROW_PX * rows)
   const cellAt = (x: number, y: number, frame: Frame) => {
@@ -61,7 +67,7 @@ export function MapFigure({ map, layer, unit, at, inChain, noiseErrorOf, caption
       </FigureHead>
       <FigureFrame
         title="Trade-off map"
-        description={`${layer} over ${columns} cutoffs and ${rows} roll-offs. ${kept} of ${columns * rows} filters keep the limits; ${figures.front.length} are on the front that no other beats in bias and noise. At the cursor: ${words(at)}.`}
+        description={`${layer} over ${columns} cutoffs and ${rows} roll-offs. ${kept} of ${columns * rows} filters keep the limits; ${figures.front.length} are on the front that no other beats in bias and noise.${lined.length > 0 ? ` Lines at the limits: ${list(lined)}.` : ''} At the cursor: ${words(at)}.`}
         height={height}
         margin={MAP_MARGIN}
         interactive
@@ -71,12 +77,9 @@ export function MapFigure({ map, layer, unit, at, inChain, noiseErrorOf, caption
         {(frame) => (
           <>
             <Cells {...{ frame, cells, shade, columns, rows }} />
-            <Region
-              {...{ frame, columns, rows }}
-              multiples={figures.multiples}
-              limited={Object.keys(limits).length > 0}
-            />
+            <LimitMarks {...{ frame, columns, rows, limited }} />
             <Marks {...{ frame, columns, rows, inChain }} front={figures.front} />
+            <LimitNames {...{ frame, columns, rows, limited, unit, marks }} />
             <Axis
               side="bottom"
               scale={cutoffScale(cutoffsHz, frame.left, frame.right)}
@@ -125,6 +128,7 @@ export function MapFigure({ map, layer, unit, at, inChain, noiseErrorOf, caption
       <p className="small map-reading" role="status">
         {words(pointed ?? at)}
       </p>
+      {unlined === '' ? null : <p className="small quiet map-unlined">{unlined}</p>}
     </>
   )
 }
@@ -163,49 +167,6 @@ const Cells = memo(function Cells({ frame, cells, shade, columns, rows }: CellsP
             />
           )
         })}
-      </g>
-    </Unspoken>
-  )
-})
-
-interface RegionProps {
-  frame: Frame
-  columns: number
-  rows: number
-  multiples: readonly number[]
-  limited: boolean
-}
-
-/** There is nothing between two roll-offs: each row is laid out several times, so that the outline goes in steps between them. */
-const STEPS = 5
-const inSteps = (values: readonly number[], columns: number, rows: number) =>
-  Array.from({ length: rows * STEPS }, (_, row) => {
-    const from = Math.floor(row / STEPS) * columns
-    return values.slice(from, from + columns)
-  }).flat()
-
-/** The filters that keep every limit, as an outline; what lies outside is veiled. */
-const Region = memo(function Region({ frame, columns, rows, multiples, limited }: RegionProps) {
-  if (!limited) return null
-  const values = multiples.map((size) => (Number.isNaN(size) ? Number.NaN : -Math.log(Math.max(size, 1e-3))))
-  const x = (column: number) => frame.left + (column / columns) * frame.plotWidth
-  const y = (row: number) => frame.bottom - (row / (rows * STEPS)) * frame.plotHeight
-  const inside = contourPath(inSteps(values, columns, rows), columns, rows * STEPS, 0, x, y)
-  const whole = `M${frame.left},${frame.top}H${frame.right}V${frame.bottom}H${frame.left}Z`
-  return (
-    <Unspoken>
-      <g pointerEvents="none">
-        <path d={`${whole}${inside}`} fillRule="evenodd" fill="var(--sheet)" fillOpacity={0.42} />
-        {inside === '' ? null : (
-          <path
-            className="allowed-region"
-            d={inside}
-            fill="none"
-            stroke="var(--ink)"
-            strokeWidth={1.8}
-            strokeLinejoin="round"
-          />
-        )}
       </g>
     </Unspoken>
   )

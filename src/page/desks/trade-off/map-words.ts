@@ -28,20 +28,19 @@ export function rangeWords(candidate: Candidate, { fromHz, toHz }: TradeOff, rol
   return `${exact(fromHz)} to ${exact(toHz)} Hz, ${name}`
 }
 
-const LIMIT_WORD: Record<LimitName, string> = {
+export const LIMIT_WORD: Record<LimitName, string> = {
   bias: 'bias',
   noise: 'noise',
   totalError: 'total error',
   latencyShiftMs: 'latency shift',
 }
 
+export const limitUnit = (limit: LimitName, unit: MapUnit) => (limit === 'latencyShiftMs' ? 'ms' : unit)
+
 export function limitWords(limits: TradeOffLimits, unit: MapUnit): string {
   const said = (Object.keys(LIMIT_WORD) as LimitName[])
     .filter((name) => limits[name] !== undefined)
-    .map(
-      (name) =>
-        `${LIMIT_WORD[name]} within ${exact(limits[name] as number)} ${name === 'latencyShiftMs' ? 'ms' : unit}`,
-    )
+    .map((name) => `${LIMIT_WORD[name]} within ${exact(limits[name] as number)} ${limitUnit(name, unit)}`)
   return said.length === 0 ? 'no limit' : list(said)
 }
 

@@ -154,9 +154,9 @@ function Answered({ workspace, map, caption: pageCaption, editor }: AnsweredProp
           <FrontFigure {...{ map, unit, at, inChain, caption }} onMove={setMoved} onPick={pick} />
           <TrialsSlider workspace={workspace} />
           <p className="small quiet desk-hint">
-            Outlined: filters that keep every limit. Ringed: no other filter beats them in both bias and noise. Filled:
-            the filter in the chain. Hatched: cannot be realised. A click or Enter puts a filter into the chain; undo
-            takes it back.
+            Unveiled: filters that keep every limit; a line at each limit. Ringed: no other filter beats them in both
+            bias and noise. Filled: the filter in the chain. Hatched: cannot be realised. A click or Enter puts a filter
+            into the chain; undo takes it back.
           </p>
         </div>
       </div>
