@@ -228,6 +228,20 @@ test('figures of the page and of a desk go on one sheet, saved as SVG, PNG and a
   expect(png.bytes.readUInt32BE(16)).toBe(Math.round(width * 2))
   expect(png.bytes.readUInt32BE(20)).toBe(Math.round(height * 2))
 
+  // text is drawn as well, in fonts that come with the file: none of the captions' lines is blank
+  const inked = await page.evaluate(async (base64) => {
+    const image = new Image()
+    image.src = `data:image/png;base64,${base64}`
+    await image.decode()
+    const canvas = document.createElement('canvas')
+    ;[canvas.width, canvas.height] = [image.width, image.height]
+    const context = canvas.getContext('2d')
+    context?.drawImage(image, 0, 0)
+    const { data } = context?.getImageData(300, image.height - 200, 600, 140) ?? { data: [] }
+    return Array.from({ length: data.length / 4 }, (_, i) => data[4 * i]).filter((red) => red < 120).length
+  }, png.bytes.toString('base64'))
+  expect(inked).toBeGreaterThan(1000)
+
   const html = await workbench.saved(() => workbench.button('save the sheet as a page to print').click())
   expect(html.name).toBe('sidelobe-figures.html')
   expectInside(html.bytes.toString('utf8'))

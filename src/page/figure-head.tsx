@@ -51,7 +51,7 @@ export function FigureHead({ title, children, svg, caption, fileName }: FigureHe
         ) : null}
         {kept && !open ? (
           <span role="status" className="quiet">
-            on the sheet of the write-up desk{' '}
+            on the sheet of the write-up desk ·{' '}
           </span>
         ) : null}
         {open ? (

@@ -47,23 +47,28 @@ export function withOwnIds(body: string, prefix: string): string {
 
 type Place = { x: number; y: number }
 
-/** Rows from the top, in order: a figure goes beside the one before it where the widest figure leaves room for both. */
+/** Two figures may share a row that is a little wider than the widest figure. */
+const WIDER = 1.1
+
+/** Rows from the top, in order: a figure goes beside the one before it where the widest figure leaves room for both, or nearly. */
 export function placesOnSheet(sizes: readonly { width: number; height: number }[]): {
   places: Place[]
   width: number
   height: number
 } {
-  const width = Math.max(0, ...sizes.map((size) => size.width))
+  const limit = WIDER * Math.max(0, ...sizes.map((size) => size.width))
   const places: Place[] = []
   let x = 0
   let top = 0
   let bottom = 0
+  let width = 0
   for (const size of sizes) {
-    if (places.length > 0 && x + size.width > width) {
+    if (places.length > 0 && x + size.width > limit) {
       x = 0
       top = bottom + GAP_Y
     }
     places.push({ x, y: top })
+    width = Math.max(width, x + size.width)
     x += size.width + GAP_X
     bottom = Math.max(bottom, top + HEAD + size.height)
   }
@@ -141,12 +146,15 @@ export function figureSheet(figures: readonly SheetFigure[], { title, fontCss }:
  */
 export function figurePage(figures: readonly SheetFigure[], { title, fontCss = '' }: SheetText): string {
   if (figures.length === 0) throw new RangeError('a page must have at least one figure, has 0')
+  // one scale for all, so that their text is of one size
+  const widest = Math.max(...figures.map(({ drawn }) => drawn.width))
   const parts = figures.map(({ title: name, caption, drawn }, i) => {
     const { width, height, fonts, body } = drawn
+    const share = ` style="width: ${round((100 * width) / widest)}%"`
     const size = `width="${round(width)}" height="${round(height)}" viewBox="0 0 ${round(width)} ${round(height)}"`
     return [
       '<figure>',
-      `<svg xmlns="http://www.w3.org/2000/svg" ${size} role="img" aria-label="${escapeXml(name)}"${fonts}>`,
+      `<svg xmlns="http://www.w3.org/2000/svg" ${size} role="img" aria-label="${escapeXml(name)}"${share}${fonts}>`,
       `${withOwnIds(body, `f${i + 1}-`)}</svg>`,
       `<figcaption><b>Figure ${i + 1}. ${escapeXml(name)}.</b> ${escapeXml(caption)}</figcaption>`,
       '</figure>',
@@ -175,7 +183,7 @@ const PAGE_CSS = `@page { margin: 18mm; }
 body { margin: 0 auto; max-width: 960px; padding: 24px; background: #fff; font-family: "Source Serif 4", Georgia, serif; font-size: 15px; line-height: 1.4; }
 h1 { font-size: 20px; font-weight: 600; margin: 0 0 18px; }
 figure { margin: 0 0 28px; break-inside: avoid; }
-svg { display: block; max-width: 100%; height: auto; overflow: visible; }
+svg { display: block; height: auto; overflow: visible; }
 figcaption { margin-top: 8px; max-width: 100ch; font-size: 13px; }
 @media print {
   body { max-width: none; padding: 0; font-size: 11pt; }

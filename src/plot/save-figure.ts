@@ -219,28 +219,76 @@ export function round(v: number): number {
  */
 export async function figureToPng(svgText: string, scale = 2): Promise<Blob> {
   if (!(scale > 0 && Number.isFinite(scale))) throw new RangeError(`scale must lie above 0, was ${scale}`)
-  const size = /<svg[^>]* width="([\d.]+)" height="([\d.]+)"/.exec(svgText)
-  if (size === null) throw new RangeError('svgText must state width and height in pixels on its svg element')
-  const address = URL.createObjectURL(new Blob([svgText], { type: 'image/svg+xml' }))
+  const { text, width, height, probes } = withFontProbes(svgText)
+  const drawing = document.createElement('canvas')
+  drawing.width = Math.round(width * scale)
+  drawing.height = Math.round((height + probes * PROBE_HEIGHT) * scale)
+  const context = drawing.getContext('2d', { willReadFrequently: true })
+  if (context === null) throw new Error('This browser gave no canvas to draw the figure on.')
+  const address = URL.createObjectURL(new Blob([text], { type: 'image/svg+xml' }))
   try {
-    const image = new Image()
-    image.src = address
-    await image.decode()
-    const canvas = document.createElement('canvas')
-    canvas.width = Math.round(Number(size[1]) * scale)
-    canvas.height = Math.round(Number(size[2]) * scale)
-    const context = canvas.getContext('2d')
-    if (context === null) throw new Error('This browser gave no canvas to draw the figure on.')
-    context.drawImage(image, 0, 0, canvas.width, canvas.height)
-    return await new Promise<Blob>((resolve, reject) => {
-      canvas.toBlob(
-        (blob) => (blob === null ? reject(new Error('The browser could not write the PNG.')) : resolve(blob)),
-        'image/png',
-      )
-    })
+    // A picture counts as loaded before the fonts inside it do, and text in a font that is still to come is left out.
+    for (let attempt = 0; ; attempt++) {
+      const image = new Image()
+      image.src = address
+      await image.decode()
+      context.clearRect(0, 0, drawing.width, drawing.height)
+      context.drawImage(image, 0, 0, drawing.width, drawing.height)
+      if (attempt === MOST_ATTEMPTS || showsProbes(context, height * scale, probes, scale)) break
+      await new Promise((resolve) => setTimeout(resolve, 25 * (attempt + 1)))
+    }
   } finally {
     URL.revokeObjectURL(address)
   }
+  const picture = document.createElement('canvas')
+  picture.width = drawing.width
+  picture.height = Math.round(height * scale)
+  picture.getContext('2d')?.drawImage(drawing, 0, 0)
+  return await new Promise<Blob>((resolve, reject) => {
+    picture.toBlob(
+      (blob) => (blob === null ? reject(new Error('The browser could not write the PNG.')) : resolve(blob)),
+      'image/png',
+    )
+  })
+}
+
+const PROBE_HEIGHT = 24
+const MOST_ATTEMPTS = 12
+
+/**
+ * A saved svg with a letter in each of its own fonts below it, a row each, by which it is seen whether they are there.
+ *
+ * @returns size of the figure without the rows, px.
+ * @throws  RangeError for an svg that does not state its size.
+ */
+export function withFontProbes(svgText: string): { text: string; width: number; height: number; probes: number } {
+  const size = /<svg[^>]* width="([\d.]+)" height="([\d.]+)"/.exec(svgText)
+  if (size === null) throw new RangeError('svgText must state width and height in pixels on its svg element')
+  const [width, height] = [Number(size[1]), Number(size[2])]
+  const faces = new Set(
+    [...svgText.matchAll(/@font-face\{font-family:(.*?);font-weight:([^;]*);font-style:([^;]*);/g)].map(
+      ([, family, weight, style]) => `font-family="${family}" font-weight="${weight}" font-style="${style}"`,
+    ),
+  )
+  const rows = [...faces].map(
+    (font, i) => `<text x="4" y="${round(height + PROBE_HEIGHT * (i + 0.8))}" font-size="20px" ${font}>H</text>`,
+  )
+  const tall = round(height + PROBE_HEIGHT * faces.size)
+  const text = svgText
+    .replace(size[0], size[0].replace(/ height="[^"]*"$/, ` height="${tall}"`))
+    .replace(/ viewBox="0 0 ([\d.]+) [\d.]+"/, ` viewBox="0 0 $1 ${tall}"`)
+    .replace(/<\/svg>\s*$/, `${rows.join('')}</svg>`)
+  return { text, width, height, probes: faces.size }
+}
+
+/** Whether every row of the probes holds more than its ground. */
+function showsProbes(context: CanvasRenderingContext2D, top: number, probes: number, scale: number): boolean {
+  const side = Math.floor(PROBE_HEIGHT * scale)
+  for (let row = 0; row < probes; row++) {
+    const { data } = context.getImageData(0, Math.ceil(top + row * PROBE_HEIGHT * scale), side, side - 1)
+    if (data.every((value, i) => value === data[i % 4])) return false
+  }
+  return true
 }
 
 /** Hands a file to the user under a name. */

@@ -72,6 +72,15 @@ describe('places', () => {
     expect(height).toBe(places[2].y + 26 + 180)
   })
 
+  test('a row may be a tenth wider than the widest figure, and no more', () => {
+    const wide = (width: number) =>
+      placesOnSheet([{ width: 900, height: 9 }, ...[width, width].map((w) => ({ width: w, height: 9 }))])
+    expect(wide(474).width).toBe(474 + 32 + 474)
+    expect(wide(474).places[2].y).toBe(wide(474).places[1].y)
+    expect(wide(480).width).toBe(900)
+    expect(wide(480).places[2].y).toBeGreaterThan(wide(480).places[1].y)
+  })
+
   test('no two figures ever overlap, none leaves the sheet, and they stay in order', () => {
     const size = fc.record({ width: fc.integer({ min: 1, max: 900 }), height: fc.integer({ min: 1, max: 400 }) })
     fc.assert(
@@ -150,6 +159,16 @@ describe('the page to print', () => {
     expect(html).toContain('<figcaption><b>Figure 1. Time.</b> High-pass 1 Hz.</figcaption>')
     expect(html).toContain('<figcaption><b>Figure 2. Kernel.</b> Low-pass &lt;30 Hz&gt;.</figcaption>')
     expect(html.match(/<figure>/g)).toHaveLength(2)
+  })
+
+  test('draws all figures to one scale, so that their text is of one size', () => {
+    const shares = [...html.matchAll(/width="(\d+)" height="\d+" [^>]*style="width: ([\d.]+)%"/g)].map((m) =>
+      m.slice(1).map(Number),
+    )
+    expect(shares).toEqual([
+      [880, 100],
+      [420, 47.73],
+    ])
   })
 
   test('cannot be left by what is put into its style', () => {

@@ -1,5 +1,5 @@
 import { describe, expect, test } from 'vitest'
-import { escapeXml, serializeFigure, wrapText } from '../../src/plot/save-figure.ts'
+import { escapeXml, serializeFigure, withFontProbes, wrapText } from '../../src/plot/save-figure.ts'
 import type { ReadElement } from '../../src/plot/save-figure.ts'
 
 type Fake = ReadElement & { style: Record<string, string>; childNodes: Fake[] }
@@ -156,5 +156,35 @@ describe('escapeXml', () => {
   test('escapes the five characters and replaces what XML cannot hold', () => {
     expect(escapeXml('<&>"\'\u0000\u001b')).toBe('&lt;&amp;&gt;&quot;&#39;\ufffd\ufffd')
     expect(escapeXml('µV − 1\n')).toBe('µV − 1\n')
+  })
+})
+
+describe('withFontProbes', () => {
+  const face = (family: string, weight: number) =>
+    `@font-face{font-family:${family};font-weight:${weight};font-style:normal;src:url(data:font/woff2;base64,AA)}`
+  const saved = (fontCss: string) => {
+    const root = element('svg', { width: '300', height: '100' }, theme)
+    return serializeFigure(root, { title: 'Time', caption: 'High-pass 1 Hz.', fontCss }, stylesOf(root))
+  }
+
+  test('adds a letter in each font of the file below the figure, each font once', () => {
+    const svg = saved([face('"A Face"', 400), face('"A Face"', 600), face('"A Face"', 400), face('B', 400)].join('\n'))
+    const { text, width, height, probes } = withFontProbes(svg)
+    expect(probes).toBe(3)
+    expect(svg).toContain(`width="${width}" height="${height}" viewBox="0 0 ${width} ${height}"`)
+    expect(text).toContain(`width="${width}" height="${height + 72}" viewBox="0 0 ${width} ${height + 72}"`)
+    const rows = [...text.matchAll(/<text x="4" y="([\d.]+)" font-size="20px" ([^>]*)>H<\/text>/g)]
+    expect(rows.map(([, , font]) => font)).toEqual([
+      'font-family="&quot;A Face&quot;" font-weight="400" font-style="normal"',
+      'font-family="&quot;A Face&quot;" font-weight="600" font-style="normal"',
+      'font-family="B" font-weight="400" font-style="normal"',
+    ])
+    for (const [, y] of rows) expect(Number(y)).toBeGreaterThan(height)
+  })
+
+  test('leaves a file without fonts as it is, and refuses one without a size', () => {
+    expect(withFontProbes(saved('')).probes).toBe(0)
+    expect(withFontProbes(saved('')).text.trim()).toBe(saved('').trim())
+    expect(() => withFontProbes('<svg/>')).toThrow(/must state width and height/)
   })
 })
