@@ -2,6 +2,7 @@ import { nextPowerOfTwo, realTransform } from '../filter/fourier.ts'
 import { movingAverageSamples } from '../filter/moving-average.ts'
 import type { Stage } from '../filter/stage.ts'
 import { designCutoffsHz } from '../filter/cutoff-meaning.ts'
+import { gainAt } from '../filter/stage-response.ts'
 
 /** How far a windowed sinc departs from 1 in its pass band and from 0 in its stop band, outside its transitions. */
 export interface BandErrors {
@@ -38,15 +39,22 @@ export function bandErrors(stage: Stage): BandErrors | null {
   const { re, im } = realTransform(taps, size)
   let passDeviation: number | null = null
   let stopGain: number | null = null
-  for (let k = 0; k <= size / 2; k++) {
-    const frequency = (k * samplingRateHz) / size
-    if (centres.some((centre) => Math.abs(frequency - centre) < spec.transitionHz / 2)) continue
-    const gain = Math.sqrt(re[k] * re[k] + im[k] * im[k])
-    const inside = centres.length === 2 && frequency > centres[0] && frequency < centres[1]
+  const look = (frequency: number, gain: number, between: boolean) => {
     const passes =
-      centres.length === 2 ? inside === (spec.pass === 'band') : frequency < centres[0] === (spec.pass === 'low')
+      centres.length === 2 ? between === (spec.pass === 'band') : frequency < centres[0] === (spec.pass === 'low')
     if (passes) passDeviation = Math.max(passDeviation ?? 0, Math.abs(gain - 1))
     else stopGain = Math.max(stopGain ?? 0, gain)
+  }
+  const isBetween = (frequency: number) => centres.length === 2 && frequency > centres[0] && frequency < centres[1]
+  const half = spec.transitionHz / 2
+  const isInside = (frequency: number) => centres.some((centre) => Math.abs(frequency - centre) < half * (1 - 1e-9))
+  for (let k = 0; k <= size / 2; k++) {
+    const frequency = (k * samplingRateHz) / size
+    if (!isInside(frequency)) look(frequency, Math.sqrt(re[k] * re[k] + im[k] * im[k]), isBetween(frequency))
+  }
+  // the gain is steep where a transition ends, which seldom lies on the grid
+  for (const end of centres.flatMap((centre) => [centre - half, centre + half])) {
+    if (end >= 0 && end <= samplingRateHz / 2 && !isInside(end)) look(end, gainAt([stage], end), isBetween(end))
   }
   return { passDeviation, stopGain }
 }
