@@ -38,6 +38,11 @@ export function TimeHead({ evaluation, workspace, takenOut, onDelayed, svg, capt
         label="conditions and channel shown"
         className="small"
       />
+      {evaluation.standardErrors ? (
+        <span className="quiet">
+          {evaluation.standardErrors.after ? 'bands: ±1 standard error' : 'band: ±1 standard error before'}
+        </span>
+      ) : null}
       <Switch
         value={takenOut ? 'shown' : 'hidden'}
         options={['shown', 'hidden']}

@@ -16,6 +16,7 @@ import {
 } from '../plot/index.ts'
 import type { Evaluation } from '../state/evaluation.ts'
 import { type DrawnPin, PinLine } from './pin-line.tsx'
+import type { ErrorBand } from './error-bands.ts'
 import { type TimeAxis, timeTicks } from './time-axis.ts'
 import type { Windows } from './time-bands.tsx'
 
@@ -60,11 +61,13 @@ type CurvesProps = PlaneProps & {
   axis: TimeAxis
   evaluation: Evaluation
   pins: readonly DrawnPin[]
+  /** One standard error on either side of the average. */
+  bands: readonly ErrorBand[] | null
   takenOut: boolean
 }
 
 export const TimeCurves = memo(function TimeCurves(props: CurvesProps) {
-  const { frame, x, y, axis, evaluation, pins, takenOut } = props
+  const { frame, x, y, axis, evaluation, pins, bands, takenOut } = props
   const { curves, chosen } = evaluation
   const main = curves[chosen]
   const on = { xs: { start: axis.firstMs, step: axis.stepMs }, x, y }
@@ -80,6 +83,9 @@ export const TimeCurves = memo(function TimeCurves(props: CurvesProps) {
         ),
       )}
       {takenOut ? <Line {...on} ys={main.takenOut} tone="taken-out" /> : null}
+      {bands?.map(({ lower, upper, tone }) => (
+        <Area key={tone} {...on} ys={upper} base={lower} tone={tone} opacity={0.2} />
+      ))}
       <Line {...on} ys={main.before} tone="before" />
       {pins.map(({ index, result }) => (
         <PinLine key={index} index={index} {...on} ys={result.after} />

@@ -5,6 +5,7 @@ import { Cursor, type Frame, linearScale, type Scale } from '../plot/index.ts'
 import type { Evaluation } from '../state/evaluation.ts'
 import { windowWords } from '../words/index.ts'
 import { LabelTexts, Unspoken } from './label-text.tsx'
+import { errorBands } from './error-bands.ts'
 import { drawnPins } from './pin-line.tsx'
 import { courseOf } from './placed-labels.ts'
 import { scoreMark, scoreText } from './score-mark.ts'
@@ -36,13 +37,15 @@ export function TimePlot(props: TimePlotProps) {
   const { curves, chosen } = evaluation
   const main = curves[chosen]
   const pins = useMemo(() => drawnPins(evaluation), [evaluation])
+  const bands = useMemo(() => errorBands(evaluation), [evaluation])
   const x = useMemo(() => linearScale([axis.fromMs, axis.toMs], [frame.left, frame.right]), [axis, frame])
   const [bottomUv, topUv] = useMemo(() => {
     const drawn = curves.flatMap(({ before, after }) => [before, after])
     if (takenOut) drawn.push(main.takenOut)
     drawn.push(...pins.map(({ result }) => result.after))
+    for (const { lower, upper } of bands ?? []) drawn.push(lower, upper)
     return amplitudeDomain(drawn, polarity)
-  }, [curves, main, pins, takenOut, polarity])
+  }, [curves, main, pins, bands, takenOut, polarity])
   // by its numbers, so that the curves' paths are kept while only the score's window is moved
   const y = useMemo(
     () => linearScale([bottomUv, topUv], [frame.bottom, frame.top]),
@@ -116,7 +119,7 @@ export function TimePlot(props: TimePlotProps) {
   return (
     <>
       <Grounds {...{ frame, x, y, axis, windows, unseen }} />
-      <TimeCurves {...{ frame, x, y, axis, evaluation, pins, takenOut }} />
+      <TimeCurves {...{ frame, x, y, axis, evaluation, pins, bands, takenOut }} />
       <TimeAxes {...{ frame, x, y }} />
       {mark && still.extent ? <ScoreMarkLine kind={mark.kind} {...still.extent} labels={still.labels} /> : null}
       <Cursor

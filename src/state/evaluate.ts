@@ -13,6 +13,7 @@ import { appliedStages, type Chain } from '../filter/chain.ts'
 import { inWords, partOfField, remarkWords } from '../words/index.ts'
 import { type ChosenNoise, chosenNoise } from './chosen-noise.ts'
 import { designedChain } from './evaluate-chain.ts'
+import { standardErrors } from './evaluate-errors.ts'
 import { correctedCurves, drawnNames, type RawCurves, rawCurves, type TimeAxis, timeAxis } from './evaluate-curves.ts'
 import {
   amplifierReach,
@@ -109,6 +110,7 @@ function evaluationOf(
     chain,
     curves,
     chosen,
+    standardErrors: standardErrors(workspace, data, chain),
     delayIncluded: appliedStages(chain).some(delays),
     unseenBySample: extent === 'epochs' ? unseenAtEachSample(chain, timesMs.length) : null,
     window: weights && windowFigure(chain, weights.after, extent, score, after, timesMs),

@@ -21,6 +21,13 @@ export interface Curves {
   takenOut: Float64Array
 }
 
+/** Standard errors of a recorded average at its samples, from its single trials, µV. */
+export interface StandardErrors {
+  before: Float64Array
+  /** Null where the trials are too many to be filtered in a frame. */
+  after: Float64Array | null
+}
+
 export interface WindowFigure {
   /** Sample i lies at (fromIndex + i) samples from the epoch's first; its time is `firstMs + (fromIndex + i)·stepMs`. */
   fromIndex: number
@@ -110,6 +117,8 @@ export interface Evaluation {
   curves: Curves[]
   /** Index into `curves`. */
   chosen: number
+  /** Of the chosen curve; null for what has no single trials. */
+  standardErrors: StandardErrors | null
   /** An applied stage is causal: before − after then contains its delay. */
   delayIncluded: boolean
   /** For epochs: share of each output sample's absolute kernel weight on samples that are not in the data. Null when continuous. */
