@@ -181,6 +181,28 @@ test('every language and both tables of coefficients can be had, and follow the 
   await expect(code(workbench).locator('pre')).toHaveText(coefficientsCsv(chainOf(changed)))
 })
 
+test('a kernel of many taps is written away from the page: what stands there is dimmed, and undo calls the work off', async ({
+  workbench,
+}) => {
+  await openDesk(workbench)
+  await expect(code(workbench)).toContainText('import numpy as np')
+  const before = await code(workbench).locator('pre').textContent()
+  await workbench.edit('stage 3, transition width')
+  await workbench.field('transition width').fill('0.02')
+  await expect(code(workbench)).toHaveAttribute('aria-busy', 'true')
+  await expect(workbench.button('copy the Python file')).toBeDisabled()
+  await expect(code(workbench)).toHaveAttribute('aria-busy', 'false', { timeout: 60_000 })
+  await expect(paragraph(workbench)).toContainText('82501 taps', { timeout: 60_000 })
+  await expect(part(workbench, 'Code')).toContainText(/The first \d+ of \d+ lines; copy and save take all of them/)
+  await workbench.field('transition width').fill('0.021')
+  await expect(code(workbench)).toHaveAttribute('aria-busy', 'true')
+  await workbench.closeEditor()
+  for (let i = 0; i < 2; i++)
+    if ((await workbench.sentenceText()).includes('0.02')) await workbench.button('Undo').click()
+  await expect(code(workbench).locator('pre')).toHaveText(before ?? '')
+  await expect(paragraph(workbench)).toHaveText(wordsOf(firstSight()).paragraph.text)
+})
+
 test('figures of the page and of a desk go on one sheet, saved as SVG, PNG and a page to print', async ({
   workbench,
   context,
@@ -209,7 +231,9 @@ test('figures of the page and of a desk go on one sheet, saved as SVG, PNG and a
       dead: references.filter((id) => !ids.includes(id)),
       references: references.length,
       words: parsed.querySelector('.caption')?.textContent ?? '',
-      heads: [...parsed.querySelectorAll('svg > g > text > tspan:first-child')].map((node) => node.textContent),
+      heads: [...parsed.querySelectorAll('svg > g:not(.caption) > text > tspan:first-child')].map(
+        (node) => node.textContent,
+      ),
       paper: parsed.querySelector('svg > rect')?.getAttribute('fill'),
     }
   }, sheet)

@@ -13,7 +13,12 @@ const MARKUPS: readonly { value: Markup; text: string }[] = [
 
 const TYPES: Record<Markup, string> = { text: 'text/plain', markdown: 'text/markdown', latex: 'application/x-tex' }
 
-export function ParagraphPart({ paragraph }: Pick<WriteUpWords, 'paragraph'>) {
+interface ParagraphPartProps extends Pick<WriteUpWords, 'paragraph'> {
+  /** It is not that of the sentence any more: it is not taken away until it is. */
+  stale: boolean
+}
+
+export function ParagraphPart({ paragraph, stale }: ParagraphPartProps) {
   const [markup, setMarkup] = useState<Markup>('text')
   const text = paragraph[markup]
   return (
@@ -21,7 +26,12 @@ export function ParagraphPart({ paragraph }: Pick<WriteUpWords, 'paragraph'>) {
       <div className="figure-head">
         <h2>Methods paragraph</h2>
         <Choice label="markup of the methods paragraph" value={markup} options={MARKUPS} onChange={setMarkup} />
-        <TakeText what="the methods paragraph" text={text} fileName={PARAGRAPH_FILE[markup]} type={TYPES[markup]} />
+        <TakeText
+          what="the methods paragraph"
+          text={stale ? null : text}
+          fileName={PARAGRAPH_FILE[markup]}
+          type={TYPES[markup]}
+        />
       </div>
       <p className={markup === 'text' ? 'methods' : 'methods source'}>{text}</p>
       <p className="small quiet">

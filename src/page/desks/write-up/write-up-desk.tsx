@@ -1,5 +1,5 @@
 /** Write-up: the methods paragraph, what a report must state, published settings, the chain as code, and the figures. */
-import { useDeferredValue, useMemo } from 'react'
+import { useDeferredValue, useMemo, useRef } from 'react'
 import { useStore } from 'zustand'
 import type { Evaluation } from '../../../state/evaluation.ts'
 import { isHeavy } from '../../../state/evaluation-cost.ts'
@@ -53,7 +53,7 @@ function Written({ workspace, of, evaluation, stale }: WrittenProps) {
           </p>
           <Contents />
           <div className="grid">
-            <ParagraphPart paragraph={value.paragraph} />
+            <ParagraphPart paragraph={value.paragraph} stale={stale || old} />
             <SheetPart title={of.title || facts.waveform} stale={stale} />
           </div>
           <ChecklistTable words={value} workspace={workspace} />
@@ -99,5 +99,9 @@ function useWords(
   const heavy = useMemo(() => isHeavy(of, data), [of, data])
   const direct = useMemo(() => (heavy ? null : writeUpWords(facts)), [heavy, facts])
   const answer = useAnswer(heavy ? JSON.stringify(facts) : null, (signal) => askForWords(facts, signal))
-  return direct ? { value: direct, stale: false, failure: null } : answer
+  const last = useRef(direct)
+  if (direct) last.current = direct
+  else if (answer.value && !answer.stale) last.current = answer.value
+  // what was said last stays, dimmed, while the worker writes
+  return direct ? { value: direct, stale: false, failure: null } : { ...answer, value: last.current }
 }
