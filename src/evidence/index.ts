@@ -107,3 +107,23 @@ export { latestOnset, type OnsetRow, type OnsetScan, type ScanProgress, scanOnse
 export { type BumpOptions, type BumpRow, type BumpScan, scanBumps } from './bump-scan.ts'
 export type { CalibrationRow } from './calibration-row.ts'
 export { CALIBRATION } from './calibration-table.ts'
+
+export { type NoiseProbe, type NoiseTerm, scoreCovariance } from './score-covariance.ts'
+export { type AnsweredForm, answerClaim, claimBounds } from './claims/answer-claim.ts'
+export { claimCurve, type CurveProgress } from './claims/claim-curve.ts'
+export { type VariedRange, variedByDefault, variedChain, variedRange } from './claims/varied-chain.ts'
+export type {
+  ClaimAnswer,
+  ClaimChain,
+  ClaimCurve,
+  ClaimFlip,
+  ClaimForm,
+  ClaimGrounds,
+  ClaimPoint,
+  ClaimRow,
+  ClaimSetting,
+  ClaimVerdict,
+  ShownAnswer,
+  ShownClaim,
+  Varied,
+} from './claims/claim.ts'

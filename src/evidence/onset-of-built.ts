@@ -2,7 +2,7 @@ import type { Component } from '../erp/component.ts'
 import { waveformAt } from '../erp/waveform.ts'
 
 /** The onset is where a waveform first reaches this part of its largest absolute value. */
-const ONSET_SHARE = 0.05
+export const ONSET_SHARE = 0.05
 
 /**
  * The onset of a built waveform: the earliest moment of the epoch at which noise-free |x| reaches 5 % of its largest value there, in

@@ -258,7 +258,7 @@ function join(pieces: readonly WeightedNodes[]): WeightedNodes {
 }
 
 /** Limits of the panels of `scoreVarianceOfResponse`: octaves to 0.002 Hz, quarter octaves above, the noise's kinks and its alpha peak. */
-function responseLimits(noise: NoiseSpec, nyquist: number): number[] {
+export function responseLimits(noise: NoiseSpec, nyquist: number): number[] {
   const limits = [0]
   for (let hz = LOWEST_HZ; hz < nyquist; hz *= hz < 0.002 ? 2 : 2 ** 0.25) limits.push(hz)
   return withKinks(limits, noise, nyquist)
@@ -305,7 +305,8 @@ function isColoured(noise: Extract<NoiseSpec, { kind: 'model' }>): boolean {
   return noise.levelAt1HzUv2PerHz > 0 || (noise.driftAt1HzUv2PerHz ?? 0) > 0 || (noise.alpha?.peakUv2PerHz ?? 0) > 0
 }
 
-function randomLines(noise: NoiseSpec, nyquist: number): NoiseLine[] {
+/** Lines of random phase that a recording can hold. */
+export function randomLines(noise: NoiseSpec, nyquist: number): NoiseLine[] {
   return noiseLines(noise).filter((line) => !line.locked && line.hz < nyquist)
 }
 
