@@ -485,6 +485,29 @@ describe('the methods paragraph', () => {
     expect(methodsParagraph({ ...FACTS, baseline: { fromMs: 0, toMs: 0 } })).toContain('over the baseline at 0 ms was')
   })
 
+  test('says how each score is computed, so that another program can give the same number', () => {
+    const of = (kind: WriteUpFacts['score']['kind'], polarity: 'positive' | 'negative', fraction?: number) => {
+      const toMs = kind === 'moment' ? 200 : 500
+      const score = { kind, fromMs: 200, toMs, polarity, ...(fraction === undefined ? {} : { fraction }) }
+      return /The score was (.*?\))\. The/.exec(methodsParagraph({ ...FACTS, score }))?.[1]
+    }
+    const refined = 'within ±10 ms, inside or outside the window, refined by a parabola through three samples'
+    expect(of('peak-amplitude', 'positive')).toBe(
+      `the positive peak amplitude from 200 to 500 ms (the amplitude of the largest of the samples in this window that exceeded every other sample ${refined})`,
+    )
+    expect(of('peak-latency', 'negative')).toBe(
+      `the negative peak latency from 200 to 500 ms (the latency of the lowest of the samples in this window that lay below every other sample ${refined})`,
+    )
+    expect(of('area-latency', 'positive', 0.3)).toBe(
+      'the 30 % latency of the positive area from 200 to 500 ms (the moment at which 30 % of the area over the positive values, all others set to zero, was reached)',
+    )
+    expect(of('onset-latency', 'negative')).toBe(
+      'the onset latency at 50 % of the negative peak from 200 to 500 ms (going back from the peak, the first crossing of 50 % of its amplitude, ' +
+        `interpolated linearly; the peak was the lowest of the samples in this window that lay below every other sample ${refined})`,
+    )
+    expect(of('moment', 'positive')).toBe('the value at 200 ms (interpolated linearly between samples)')
+  })
+
   test('says which side of an area counted', () => {
     const score = { kind: 'area', fromMs: 200, toMs: 500, polarity: 'negative' } as const
     expect(methodsParagraph({ ...FACTS, score })).toContain(

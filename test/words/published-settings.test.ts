@@ -151,6 +151,29 @@ describe('the published settings', () => {
     expect(gainAt(stages, hz), `${hz} Hz`).toBeCloseTo(Math.SQRT1_2, 5)
   }
 
+  test('change their verdict at each limit that the source prints, and nowhere beside it', () => {
+    const at = (id: string, spec: StageSpec) =>
+      settingOf({ ...BUILT, samplingRateHz: 20_000, chain: [spec] }, id).verdict
+    const low = (hz: number) => butterworth('high', 2, [hz])
+    const high = (hz: number) => butterworth('low', 2, [hz])
+    for (const [limits, filter] of [
+      [LOW, low],
+      [HIGH, high],
+    ] as const)
+      for (const [id, [from, to]] of Object.entries(limits)) {
+        if (from > 0)
+          expect(
+            [from * 0.99, from * 1.01].map((hz) => at(id, filter(hz))),
+            id,
+          ).toEqual(['not kept', 'kept'])
+        if (to < Number.POSITIVE_INFINITY)
+          expect(
+            [to * 0.99, to * 1.01].map((hz) => at(id, filter(hz))),
+            id,
+          ).toEqual(['kept', 'not kept'])
+      }
+  })
+
   test('keep a corner at the limit itself, and say by how much another misses it', () => {
     expect(built('S1-low', butterworth('high', 2, [1]))).toMatchObject({
       verdict: 'kept',
