@@ -112,6 +112,12 @@ export { type NoiseProbe, type NoiseTerm, scoreCovariance } from './score-covari
 export { type AnsweredForm, answerClaim, claimBounds } from './claims/answer-claim.ts'
 export { claimCurve, type CurveProgress } from './claims/claim-curve.ts'
 export { type VariedRange, variedByDefault, variedChain, variedRange } from './claims/varied-chain.ts'
+export {
+  type LateOnlyAnswer,
+  lateOnlyClaim,
+  lateOnlyCurve,
+  variedByDefaultOfFit,
+} from './claims/late-only-claim.ts'
 export type {
   ClaimAnswer,
   ClaimChain,

@@ -1,6 +1,6 @@
 import type { StageSpec } from '../../filter/stage.ts'
 import { type AnsweredForm, weighClaim } from './answer-claim.ts'
-import type { ClaimCurve, ClaimFlip, ClaimPoint, ClaimSetting, ClaimVerdict, Varied } from './claim.ts'
+import type { ClaimCurve, ClaimFlip, ClaimPoint, ClaimSetting, Varied } from './claim.ts'
 import { prepareClaim } from './claimed-waveform.ts'
 import { variedByDefault, variedChain, variedRange } from './varied-chain.ts'
 
@@ -91,11 +91,10 @@ export function* claimCurve(
     }
   }
   const flips: ClaimFlip[] = []
-  const located = ascending()
-  for (let i = 0; i + 1 < located.length; i++) {
-    const [below, above] = [located[i], located[i + 1]]
-    if (range.kind === 'orders') addFlip(flips, below, above, above.at)
-    else for (const flip of bisect(below, above, look)) flips.push(flip)
+  const known = ascending()
+  for (let i = 0; i + 1 < known.length; i++) {
+    const [below, above] = [known[i], known[i + 1]]
+    flips.push(...(range.kind === 'orders' ? located(below, above, true) : bisect(below, above, look)))
     if (below.verdict !== above.verdict) yield { done: ++done, total: Math.max(done, places.length) }
   }
   const points = drawn(ascending(), grid).map(({ at, number, verdict }) => ({ at, number, verdict }))
@@ -153,18 +152,20 @@ function approach(a: Seen, b: Seen, c: Seen, look: (at: number) => Seen): void {
 /** Every change of the verdict between two points, each to `CLOSE`. */
 function bisect(below: Seen, above: Seen, look: (at: number) => Seen): ClaimFlip[] {
   if (below.verdict === null || above.verdict === null || below.verdict === above.verdict) return []
-  if (above.at - below.at <= CLOSE * above.at) {
-    const flips: ClaimFlip[] = []
-    addFlip(flips, below, above, Math.sqrt(below.at * above.at))
-    return flips
-  }
+  if (above.at - below.at <= CLOSE * above.at) return located(below, above, false)
   const middle = look(Math.exp((below.x + above.x) / 2))
   return [...bisect(below, middle, look), ...bisect(middle, above, look)]
 }
 
-function addFlip(flips: ClaimFlip[], below: Seen, above: Seen, at: number): void {
-  if (below.verdict === null || above.verdict === null || below.verdict === above.verdict) return
-  flips.push({ at, below: below.verdict as ClaimVerdict, above: above.verdict as ClaimVerdict })
+/**
+ * The change of the verdict between two neighbouring points, if any.
+ *
+ * @param onUpper  it stands at the upper point (orders) rather than in the middle of the two on the axis of Hz.
+ */
+export function located(below: ClaimPoint, above: ClaimPoint, onUpper: boolean): ClaimFlip[] {
+  if (below.verdict === null || above.verdict === null || below.verdict === above.verdict) return []
+  const at = onUpper ? above.at : Math.sqrt(below.at * above.at)
+  return [{ at, below: below.verdict, above: above.verdict }]
 }
 
 /** The grid, and beside each change of the verdict its two nearest points: what a bisection passed on its way would only crowd the curve. */

@@ -21,7 +21,10 @@ export type ClaimRow =
   | 'area-latency'
   | 'onset-latency'
 
-/** The filter changes a score or latency by at least (at most) so much: in the row's own unit, or in per cent of its value before. */
+/**
+ * The filter changes a score or latency by at least (at most) so much: in the row's own unit, or in the readout's per cent, which is of its value before, or
+ * of the waveform's largest absolute value where that value is small against it. Latencies have no per cent.
+ */
 export interface ChangeClaim {
   readonly form: 'change'
   readonly row: ClaimRow
@@ -162,13 +165,21 @@ export type ClaimGrounds =
 /** Of one of the forms 1 to 5. */
 export interface ShownAnswer {
   readonly verdict: ClaimVerdict
-  /** What is held against the amount, in `unit`; null where there is none. */
+  /**
+   * What is held against the amount, in `unit`; null where there is none. Changes, deflections and effects are signed and held by their size; an onset's shift
+   * counts in the claimed direction; an effect's is the value before where that settles it, else the one after; a twin's claim has the twin's, where the filter
+   * shows it at all; a meaning's that of the stated one. `claimBounds` gives the numbers at which a verdict can turn.
+   */
   readonly number: number | null
   readonly unit: Unit
-  /** 95 % interval of the number under the noise of the trials; null where the waveform is taken as it stands. */
+  /** 95 % interval of the number under the noise of the trials; null where the waveform is taken as it stands, or the noise leaves none that ends. */
   readonly interval: readonly [number, number] | null
   readonly grounds: ClaimGrounds
-  /** Named values beside the number, in the order in which they are told: 'before', 'after' … */
+  /**
+   * Named values beside the number, in the order in which they are told: 'before', 'after', 'change', 'at', 'largest before' (the reference of a per cent of
+   * it), 'largest before in the window'; 'value', 'from inside', 'from outside'; 'gain', 'unfiltered'; 'as it is', 'twin'; 'as stated', 'other meaning';
+   * 'early activity', 'late share', 'noise scale', 'alpha'.
+   */
   readonly values: readonly { readonly name: string; readonly value: number; readonly unit: Unit }[]
 }
 
