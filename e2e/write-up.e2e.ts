@@ -278,6 +278,11 @@ test('figures of the page and of a desk go on one sheet, saved as SVG, PNG and a
     expect(caption).toContain('half-amplitude 1 Hz')
     expect(caption).toContain('80 to 140 ms')
   }
+  const face = await printed
+    .locator('figcaption')
+    .first()
+    .evaluate((node) => getComputedStyle(node).fontFamily)
+  expect(face).toContain('Source Serif 4')
   const pdf = await printed.pdf({ format: 'A4', preferCSSPageSize: true })
   expect(pdf.subarray(0, 5).toString()).toBe('%PDF-')
   await printed.close()

@@ -14,7 +14,7 @@ export type SheetFigure = {
 export type SheetText = {
   /** Name of the sheet: the file's title. */
   title: string
-  /** @font-face rules with data: addresses; see fontFaceCss. */
+  /** @font-face rules with data: addresses, see fontFaceCss; for a page to print also the rule that says in which its text is set. */
   fontCss?: string
 }
 
@@ -180,7 +180,7 @@ export function figurePage(figures: readonly SheetFigure[], { title, fontCss = '
 
 const PAGE_CSS = `@page { margin: 18mm; }
 * { box-sizing: border-box; }
-body { margin: 0 auto; max-width: 960px; padding: 24px; background: #fff; font-family: "Source Serif 4", Georgia, serif; font-size: 15px; line-height: 1.4; }
+body { margin: 0 auto; max-width: 960px; padding: 24px; font-size: 15px; line-height: 1.4; }
 h1 { font-size: 20px; font-weight: 600; margin: 0 0 18px; }
 figure { margin: 0 0 28px; break-inside: avoid; }
 svg { display: block; height: auto; overflow: visible; }

@@ -39,7 +39,8 @@ export function SheetPart({ title, stale }: SheetPartProps) {
   const save = async (kind: 'svg' | 'png' | 'html') => {
     try {
       const figures = drawn()
-      const text = { title, fontCss: await fontFaceCss() }
+      const faces = await fontFaceCss()
+      const text = { title, fontCss: kind === 'html' ? `${faces}\n${serifRule()}` : faces }
       const blob =
         kind === 'html'
           ? new Blob([figurePage(figures, text)], { type: 'text/html' })
@@ -97,6 +98,12 @@ export function SheetPart({ title, stale }: SheetPartProps) {
       </p>
     </section>
   )
+}
+
+/** Captions on paper are set in the page's serif face. */
+function serifRule(): string {
+  const serif = getComputedStyle(document.documentElement).getPropertyValue('--serif').trim()
+  return `body { font-family: ${serif}; }`
 }
 
 function Tick(props: { name: string; letter: number; onChange: () => void; hint?: string }) {
