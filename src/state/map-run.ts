@@ -22,16 +22,18 @@ export interface MapState {
   readonly reason: string | null
 }
 
-type Slice = (
+/** The worker's function. `before` asks for the unfiltered scores too, which one worker is enough for. */
+export type Slice = (
   key: string,
   question: MapRequest['question'],
   order: readonly number[],
   batches: { from: number; to: number },
   budgetMs: number,
+  before: boolean,
   signal: AbortSignal,
 ) => Promise<MapSlice>
 
-const KEPT_MAPS = 12
+const KEPT_MAPS = 16
 const SLICE_MS = 80
 /** Draws of the rounds after the first: their errors are half as large each time. */
 const ROUNDS: readonly number[] = [4, 16, 40]
@@ -54,41 +56,74 @@ const emptyMap = ({ key, question }: MapRequest): MapState => {
   }
 }
 
+interface Run {
+  /** Slices that are asked for at once; 1 unless said otherwise. */
+  readonly workers?: number
+  /** Rounds after which a simulated map is left as it is, still running; all of them unless said otherwise. */
+  readonly rounds?: number
+}
+
 /**
- * Computes a map, or what is left of it, until it is complete or the signal aborts.
- *
- * @param slice the worker's function.
+ * Computes a map, or what is left of it, until it is complete or the signal aborts. Cells are handed out in the order of the plan; what comes of them
+ * does not hang on how many workers there are.
  */
-export async function runMap(request: MapRequest, slice: Slice, signal: AbortSignal): Promise<void> {
+export async function runMap(request: MapRequest, slice: Slice, signal: AbortSignal, run: Run = {}): Promise<void> {
   const { key, question, simulated } = request
+  const { workers = 1, rounds = ROUNDS.length } = run
   let state: MapState = { ...(mapStore.getState().maps[key] ?? emptyMap(request)), status: 'running', reason: null }
-  if (state.done === state.total && (!simulated || state.draws >= ROUNDS[ROUNDS.length - 1] * BATCH_DRAWS)) {
+  if (state.done === state.total && (!simulated || state.draws >= drawsOf(ROUNDS[ROUNDS.length - 1]))) {
     keep({ ...state, status: 'complete' })
     return
   }
   const { order } = planMap(question.cutoffsHz.length, question.rollOffs.length)
   keep(state)
+  let keptAt = Date.now()
   try {
-    for (let round = 0; round < (simulated ? ROUNDS.length : 1); round++) {
+    for (let round = 0; round < (simulated ? rounds : 1); round++) {
       const batches = { from: round === 0 ? 0 : ROUNDS[round - 1], to: ROUNDS[round] }
-      if (simulated && state.draws >= batches.to * BATCH_DRAWS) continue
       const wanted = drawsOf(batches.to)
-      let left = order.filter((index) => !isDone(state.cells[index], wanted))
-      while (left.length > 0) {
-        const { before, cells } = await slice(key, question, left, batches, SLICE_MS, signal)
-        if (signal.aborted) throw new DOMException('the work was cancelled', 'AbortError')
-        const next = state.cells.slice()
-        for (const cell of cells) {
-          const earlier = next[cell.index]
-          next[cell.index] = earlier && round > 0 ? mergeCells(earlier, cell) : cell
+      if (simulated && state.draws >= wanted) continue
+      const left = order.filter((index) => !isDone(state.cells[index], wanted))
+      // one worker takes all that is left, and does what it has time for
+      let share = workers === 1 ? left.length : FIRST_SHARE
+      let underWay = 0
+      let asked = state.before !== null
+      let over = false
+      const work = async () => {
+        while (left.length > 0 && !over) {
+          const given = left.splice(0, share)
+          underWay += given.length
+          const before = !asked
+          asked = true
+          const done = await slice(key, question, given, batches, SLICE_MS, before, signal)
+          if (signal.aborted) throw new DOMException('the work was cancelled', 'AbortError')
+          if (over) return
+          const { cells } = done
+          underWay -= given.length
+          left.unshift(...given.slice(cells.length))
+          if (workers > 1) share = cells.length === given.length ? Math.max(share, 2 * given.length) : cells.length + 1
+          const next = state.cells.slice()
+          for (const cell of cells) {
+            const earlier = next[cell.index]
+            next[cell.index] = earlier && round > 0 ? mergeCells(earlier, cell) : cell
+          }
+          const finished = state.total - left.length - underWay
+          state = { ...state, before: state.before ?? done.before, cells: next, done: finished }
+          // many workers answer more often than there is anything new to see
+          if (Date.now() - keptAt < SLICE_MS / 2 && finished < state.total) continue
+          keep(state)
+          keptAt = Date.now()
         }
-        left = left.slice(cells.length)
-        state = { ...state, before, cells: next, done: state.total - left.length }
-        keep(state)
+      }
+      try {
+        await Promise.all(Array.from({ length: workers }, work))
+      } finally {
+        over = true
       }
       state = { ...state, draws: simulated ? wanted : 0 }
+      keep(state)
     }
-    keep({ ...state, status: 'complete' })
+    if (!simulated || rounds >= ROUNDS.length) keep({ ...state, status: 'complete' })
   } catch (error) {
     const cancelled = error instanceof DOMException && error.name === 'AbortError'
     keep({
@@ -96,6 +131,33 @@ export async function runMap(request: MapRequest, slice: Slice, signal: AbortSig
       status: cancelled ? 'cancelled' : 'failed',
       reason: cancelled ? null : error instanceof Error ? error.message : String(error),
     })
+  }
+}
+
+/** Cells of the first slice of each worker: few, so that the coarse map comes first. */
+const FIRST_SHARE = 4
+
+/**
+ * Computes several maps: the first round of each, then the next, so that all of them can be seen soon. Of two that are one map the second stands
+ * there at once.
+ */
+export async function runMaps(
+  requests: readonly MapRequest[],
+  slice: Slice,
+  signal: AbortSignal,
+  workers = 1,
+): Promise<void> {
+  for (let rounds = 1; rounds <= ROUNDS.length; rounds++) {
+    for (const request of requests) {
+      const state = mapStore.getState().maps[request.key]
+      if (rounds > 1 && (!request.simulated || state?.status === 'failed')) continue
+      if (!signal.aborted) await runMap(request, slice, signal, { workers, rounds })
+    }
+  }
+  if (!signal.aborted) return
+  for (const request of requests) {
+    const state = mapStore.getState().maps[request.key] ?? emptyMap(request)
+    if (state.status === 'running') keep({ ...state, status: 'cancelled' })
   }
 }
 

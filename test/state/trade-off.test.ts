@@ -1,9 +1,9 @@
 import { describe, expect, test } from 'vitest'
 import { BATCH_DRAWS } from '../../src/evidence/simulated-score.ts'
-import { computeCell, prepareMap } from '../../src/evidence/trade-off-map.ts'
+import { computeCell, planMap, prepareMap } from '../../src/evidence/trade-off-map.ts'
 import { evaluate } from '../../src/state/evaluate.ts'
 import { cellInChain, mapCsv, mapFigures, nearestComputed, noiseError } from '../../src/state/map-figures.ts'
-import { mapStore, runMap } from '../../src/state/map-run.ts'
+import { mapStore, runMap, runMaps, type Slice } from '../../src/state/map-run.ts'
 import { mapSlice } from '../../src/state/map-worker.ts'
 import {
   filterInChain,
@@ -34,7 +34,8 @@ function requestOf(workspace: Workspace): MapRequest {
   return outcome.request
 }
 
-const here = (...args: Parameters<typeof mapSlice>) => Promise.resolve(mapSlice(...args))
+const here: Slice = (key, question, order, batches, budgetMs, before) =>
+  Promise.resolve(mapSlice(key, question, order, batches, budgetMs, before))
 
 async function mapOf(workspace: Workspace) {
   const request = requestOf(workspace)
@@ -200,9 +201,9 @@ describe('a map that is computed', () => {
     let asked = 0
     await runMap(
       request,
-      (key, question, order, batches, budget) => {
-        asked ||= order.length
-        return here(key, question, order, batches, budget)
+      (...args) => {
+        asked ||= args[2].length
+        return here(...args)
       },
       new AbortController().signal,
     )
@@ -251,6 +252,81 @@ describe('a map that is computed', () => {
     // of a standard deviation from n normal draws: σ/√(2n)
     expect(error / noise).toBeGreaterThan(0.5 / Math.sqrt(2 * 2000))
     expect(error / noise).toBeLessThan(4 / Math.sqrt(2 * 2000))
+  }, 30_000)
+
+  test('is the same with three workers as with one, which are given its cells in the order of the plan', async () => {
+    const peak: Workspace = asking(
+      { rollOffs: [2] },
+      { ...start, score: { kind: 'peak-latency', fromMs: 200, toMs: 700, polarity: 'positive' } },
+    )
+    const request = requestOf(peak)
+    const of = (name: string): MapRequest => ({
+      ...request,
+      question: { ...request.question, cutoffsHz: request.question.cutoffsHz.slice(0, 16) },
+      key: `${request.key} ${name}`,
+    })
+    const signal = new AbortController().signal
+    await runMap(of('by one'), here, signal, { rounds: 1 })
+    const given: number[] = []
+    let asked = 0
+    let atOnce = 0
+    let most = 0
+    // slow workers that do only half of what they are given, the last given first
+    const slow: Slice = async (...args) => {
+      const [key, question, order, batches, , before] = args
+      if (before) asked++
+      given.push(order[0])
+      most = Math.max(most, ++atOnce)
+      await new Promise((resolve) => setTimeout(resolve, 20 - 3 * (given.length % 5)))
+      atOnce--
+      return mapSlice(key, question, order.slice(0, Math.ceil(order.length / 2)), batches, 1e4, before)
+    }
+    await runMap(of('by three'), slow, signal, { workers: 3, rounds: 1 })
+    const { maps } = mapStore.getState()
+    const [one, three] = ['by one', 'by three'].map((name) => maps[of(name).key])
+    expect(three.cells.every((cell) => cell !== null)).toBe(true)
+    expect(three.cells).toEqual(one.cells)
+    expect(three.before).toEqual(one.before)
+    expect(three.draws).toBe(200)
+    // the unfiltered scores are drawn once
+    expect(asked).toBe(1)
+    expect(most).toBe(3)
+    const { order } = planMap(16, 1)
+    expect(given.slice(0, 3)).toEqual([order[0], order[4], order[8]])
+  })
+
+  test('of several comes round by round, and all are stopped by one cancel', async () => {
+    const latency: Workspace = {
+      ...start,
+      score: { kind: 'peak-latency', fromMs: 200, toMs: 700, polarity: 'positive' },
+    }
+    const requests = [2, 3].map((order): MapRequest => {
+      const request = requestOf(asking({ rollOffs: [order] }, latency))
+      const question = { ...request.question, cutoffsHz: [0.1, 1] }
+      return { ...request, question, key: `${request.key} of several` }
+    })
+    const stop = new AbortController()
+    const asked: string[] = []
+    const states = () => requests.map(({ key }) => mapStore.getState().maps[key])
+    await runMaps(
+      requests,
+      (...args) => {
+        asked.push(`${requests.findIndex(({ key }) => key === args[0])} from ${args[3].from}`)
+        if (args[3].from === 4) stop.abort()
+        return here(...args)
+      },
+      stop.signal,
+    )
+    expect([...new Set(asked)]).toEqual(['0 from 0', '1 from 0', '0 from 4'])
+    expect(states().map(({ status, draws }) => [status, draws])).toEqual([
+      ['cancelled', 200],
+      ['cancelled', 200],
+    ])
+    await runMaps(requests, here, new AbortController().signal, 2)
+    expect(states().map(({ status, draws }) => [status, draws])).toEqual([
+      ['complete', 2000],
+      ['complete', 2000],
+    ])
   }, 30_000)
 
   test('is saved with a line for every filter, and the sentence', async () => {

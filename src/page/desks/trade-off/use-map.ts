@@ -2,7 +2,7 @@
 import { useEffect, useMemo, useRef, useState } from 'react'
 import { useStore } from 'zustand'
 import type { TradeOffLimits } from '../../../evidence/trade-off-answer.ts'
-import { computeMap } from '../../../state/map-bench.ts'
+import { computeMaps } from '../../../state/map-bench.ts'
 import { type MapFigures, mapFigures } from '../../../state/map-figures.ts'
 import { mapStore, type MapState } from '../../../state/map-run.ts'
 import { dataStore, recordedData } from '../../../state/recorded-data.ts'
@@ -41,7 +41,7 @@ export function useMap(
     if (!request) return
     const own = new AbortController()
     control.current = own
-    const timer = setTimeout(() => void computeMap(request, own.signal), REST_MS)
+    const timer = setTimeout(() => void computeMaps([request], own.signal), REST_MS)
     return () => {
       clearTimeout(timer)
       own.abort()
