@@ -7,6 +7,7 @@ import * as v from 'valibot'
 import { checkNoise, type NoiseSpec } from '../erp/noise.ts'
 import { SCENARIOS, type Scenario } from '../erp/scenarios.ts'
 import { inWords } from '../words/index.ts'
+import { broughtForward, VERSION } from './migrations.ts'
 
 const finite = v.pipe(v.number(), v.finite())
 const positive = v.pipe(finite, v.gtValue(0))
@@ -321,8 +322,6 @@ const statementsSchema = v.pipe(
   v.check((fields) => Object.keys(fields).length <= 60, 'more than 60 statements'),
 )
 
-export const VERSION = 2
-
 export const workspaceSchema = v.object({
   version: v.literal(VERSION),
   title: text,
@@ -436,10 +435,17 @@ function modelNoise(noise: NoiseSpec): Workspace['noise'] {
 
 export const startWorkspace = (): Workspace => workspaceOf(SCENARIOS[0])
 
-/** What each version lacks that the next one has. Work that was kept by an older page is brought forward step by step. */
-const MIGRATIONS: Record<number, (older: object) => object> = {
-  // 1: no claims, nothing stated for the write-up
-  1: (older) => ({ ...older, version: 2, claims: START_CLAIMS, statements: {} }),
+/** Longest part of a refusal that comes from the value refused. */
+const MAX_QUOTED = 160
+
+const quoted = (words: string) => (words.length > MAX_QUOTED ? `${words.slice(0, MAX_QUOTED)} …` : words)
+
+/** The first field that is wrong and why. Only the first: a hostile file can have millions. */
+function firstFault(value: unknown): { ok: true; workspace: Workspace } | { ok: false; fault: string } {
+  const result = v.safeParse(workspaceSchema, value, { abortEarly: true })
+  if (result.success) return { ok: true, workspace: result.output }
+  const issue = result.issues[0]
+  return { ok: false, fault: `${quoted(v.getDotPath(issue) ?? 'the whole file')}: ${quoted(issue.message)}` }
 }
 
 /**
@@ -448,22 +454,15 @@ const MIGRATIONS: Record<number, (older: object) => object> = {
  * @returns the workspace, or a sentence that names the first field that is wrong.
  */
 export function readWorkspace(value: unknown): { ok: true; workspace: Workspace } | { ok: false; reason: string } {
-  let present = value
-  for (let version = versionOf(present); version !== null && version !== VERSION; version = versionOf(present)) {
-    if (version > VERSION)
-      return { ok: false, reason: `this workspace has version ${version}, newer than this page can read (${VERSION})` }
-    const forward = MIGRATIONS[version]
-    if (!forward) break
-    present = forward(present as object)
-  }
-  const result = v.safeParse(workspaceSchema, present)
-  if (result.success) return { ok: true, workspace: result.output }
-  const issue = result.issues[0]
-  const field = v.getDotPath(issue) ?? 'the whole file'
-  return { ok: false, reason: `this is no workspace that the page can read: ${field}: ${issue.message}` }
+  const forward = broughtForward(value)
+  if (!forward.ok) return forward
+  const result = firstFault(forward.value)
+  if (result.ok) return result
+  return { ok: false, reason: `this is no workspace that the page can read: ${result.fault}` }
 }
 
-function versionOf(value: unknown): number | null {
-  if (typeof value !== 'object' || value === null || !('version' in value)) return null
-  return typeof value.version === 'number' && Number.isFinite(value.version) ? value.version : null
+/** Why a workspace, once kept, could not be read again: the first field and its fault; null where it can. */
+export function whyUnreadable(workspace: Workspace): string | null {
+  const result = firstFault(workspace)
+  return result.ok ? null : result.fault
 }
