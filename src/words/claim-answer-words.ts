@@ -14,10 +14,12 @@ import {
   decimalsAgainst,
   intervalWithUnit,
   sameNumber,
+  toneWithUnit,
   valueWithUnit,
 } from './claim-number.ts'
 import { CLAIM_MEANING_WORDS, CLAIM_ROW_WORDS } from './claim-words.ts'
 import { exact, fixed } from './number.ts'
+import { momentWords } from './trace-words.ts'
 
 /** What the reason of a verdict names besides the answer. */
 export interface ClaimAnswerContext {
@@ -99,13 +101,34 @@ function told(form: ClaimForm, answer: ShownAnswer, context: ClaimAnswerContext)
   const measured = numberWords(form, answer, context)
   const against = comparison(form, answer)
   const interval = answer.interval?.every(Number.isFinite)
-    ? ` (95 % interval with ${trialsWords(context.trials)} ${intervalWords(form, answer)})`
+    ? ` (95 % interval ${ofWhat(form, answer)}with ${trialsWords(context.trials)} ${intervalWords(form, answer)})`
     : ''
   const undecided =
     answer.verdict === 'cannot be told' && answer.number !== null && answer.grounds.kind === 'number'
       ? ', which does not decide it'
       : ''
-  return `${measured}${interval}${against}${undecided}`
+  return `${measured}${interval}${against}${undecided}${readAs(form, answer)}`
+}
+
+/** Which of several numbers an interval is of; '' where there is only one. */
+function ofWhat(form: ClaimForm, answer: ShownAnswer): string {
+  if (form.form === 'onset') return `of the shift towards ${form.direction} `
+  if (form.form !== 'effect') return ''
+  if (answer.number === named(answer, 'after')?.value) return 'of the effect with it '
+  return answer.number === named(answer, 'before')?.value ? 'of the effect without it ' : ''
+}
+
+/** What must be known to read the number. */
+function readAs(form: ClaimForm, answer: ShownAnswer): string {
+  const { number, unit } = answer
+  if (number === null) return ''
+  const reference = named(answer, 'largest before')
+  if (form.form === 'change' && unit === '%' && reference)
+    return `; the per cent is of ${valueWithUnit(reference.value, reference.unit)}, which stands for the whole unfiltered waveform, because the value before is small against it`
+  if (form.form !== 'from-outside') return ''
+  // a share below nothing or above all: the two sides work against one another
+  if (number < 0) return '; what comes from outside works against the value'
+  return number > 100 ? '; what comes from inside the window works against it' : ''
 }
 
 /** What was measured, as a clause. */
@@ -115,37 +138,35 @@ function numberWords(form: ClaimForm, answer: ShownAnswer, { filter, trials }: C
   const amounts = amountsOf(form)
   switch (form.form) {
     case 'change':
-      return `${CLAIM_ROW_WORDS[form.row]} changes by ${changeWithUnit(number, unit, amounts)}${unit === '%' ? ' of its value before' : ''}${fromTo(answer)}`
+      return `${CLAIM_ROW_WORDS[form.row]} changes by ${changeWithUnit(number, unit, amounts)}${unit === '%' && !named(answer, 'largest before') ? ' of its value before' : ''}${fromTo(answer)}`
     case 'deflection':
-      return `the deflection that ${filter} makes there is ${changeWithUnit(number, unit, amounts)}${unit === '%' ? ' of the whole unfiltered waveform’s largest absolute value' : ''}`
-    case 'from-outside': {
-      const share = valueWithUnit(number, unit, [...amounts, 0, 100])
-      const rest =
-        number < 0
-          ? ': activity outside the window works against it'
-          : number > 100
-            ? ': activity inside the window works against it'
-            : ''
-      return `${share} of the filtered mean amplitude comes from activity outside the window${rest}`
-    }
+      return `the deflection that ${filter} makes there is ${changeWithUnit(number, unit, amounts)}${unit === '%' ? ' of the whole unfiltered waveform’s largest absolute value' : ''}${atWords(answer)}`
+    case 'from-outside':
+      return `${valueWithUnit(number, unit, [...amounts, 0, 100])} of the filtered mean amplitude comes from outside the window`
     case 'effect':
       return effectWords(form, answer, filter)
     case 'onset': {
-      const shift = number
-      if (Math.abs(shift) < 0.5 * 10 ** -decimalsAgainst(shift, unit, amounts))
-        return `the onset does not move${fromTo(answer)}`
-      const size = valueWithUnit(Math.abs(shift), unit, amounts)
-      const where = shift < 0 ? 'earlier' : 'later'
-      return `the onset moves ${where} by ${size}${fromTo(answer)}${where === form.direction ? '' : `, not ${form.direction}`}`
+      // the number is counted in the direction claimed
+      const size = valueWithUnit(Math.abs(number), unit, amounts)
+      if (!(parseFloat(size) > 0)) return `the onset does not move${fromTo(answer)}`
+      if (number > 0) return `the onset moves ${form.direction} by ${size}${fromTo(answer)}`
+      const other = form.direction === 'earlier' ? 'later' : 'earlier'
+      return `the onset moves ${other} by ${size}${fromTo(answer)}, not ${form.direction}`
     }
     case 'attenuation':
       if (number === Infinity) return `${filter} lets nothing of ${exact(form.hz)} Hz through`
-      if (number < 0)
+      if (number >= MOST_DB)
+        return `${filter} attenuates ${exact(form.hz)} Hz by ${MOST_DB} dB, the most that is counted`
+      if (amplifies(number, unit))
         return `${filter} does not attenuate ${exact(form.hz)} Hz but amplifies it by ${valueWithUnit(-number, unit, [0, ...amounts.map((amount) => -amount)])}`
       return `${filter} attenuates ${exact(form.hz)} Hz by ${valueWithUnit(number, unit, amounts)}`
     case 'tone': {
-      const average = trials === 1 ? 'in the filtered trial' : `in the filtered average of ${trialsWords(trials)}`
-      return `${valueWithUnit(number, unit, amounts)} of the tone is left ${average}`
+      const left = toneWithUnit(number, unit, amounts)
+      if (form.locked)
+        return `${left} of the tone, which is locked to the event and does not average out, is left in the filtered average`
+      return trials === 1
+        ? `${left} of the tone is left in the filtered trial`
+        : `a root mean square amplitude of ${left} of the tone is left in the filtered average of ${trialsWords(trials)}`
     }
     case 'twin':
     case 'meaning':
@@ -158,6 +179,18 @@ function numberWords(form: ClaimForm, answer: ShownAnswer, { filter, trials }: C
       return `the fit estimates early activity of ${changeWithUnit(number, unit, [0])} in the unfiltered waveform`
   }
 }
+
+/** Where a gain is taken to be rounding. */
+const MOST_DB = 300
+
+/** ", at 112 ms" */
+function atWords(answer: ShownAnswer): string {
+  const at = named(answer, 'at')
+  return at ? `, at ${momentWords(at.value)}` : ''
+}
+
+/** Below nothing in what is printed. */
+const amplifies = (db: number, unit: Unit) => db < 0 && Number(db.toFixed(decimalsAgainst(db, unit, []))) !== 0
 
 /** ", from 0.10 to −1.09 µV", where both values are there. */
 function fromTo(answer: ShownAnswer): string {
@@ -180,11 +213,13 @@ function named({ values }: ShownAnswer, name: string) {
 function effectWords(form: EffectClaim, answer: ShownAnswer, filter: string): string {
   const before = named(answer, 'before')
   const after = named(answer, 'after')
-  const size = (value: number, unit: Unit) =>
-    `${changeWithUnit(value, unit, [form.leastUv, -form.leastUv, 0])}${Math.abs(value) < form.leastUv && !sameNumber(Math.abs(value), form.leastUv) ? `, less than ${exact(form.leastUv)} µV and so absent,` : ''}`
-  if (!before || !after) return `the effect is ${size(answer.number ?? 0, answer.unit)}`.replace(/,$/, '')
-  const words = `the effect is ${size(before.value, before.unit)} without ${filter} and ${size(after.value, after.unit)} with it`
-  return words
+  const least = form.leastUv
+  const size = (value: number, unit: Unit) => {
+    const absent = Math.abs(value) < least && !sameNumber(Math.abs(value), least)
+    return `${changeWithUnit(value, unit, [least, -least, 0])}${absent ? ` (absent: under ${exact(least)} µV)` : ''}`
+  }
+  if (!before || !after) return `the effect is ${size(answer.number ?? 0, answer.unit)}`
+  return `the effect is ${size(before.value, before.unit)} without ${filter} and ${size(after.value, after.unit)} with it`
 }
 
 /** Amounts whose sides matter in print. */
@@ -198,7 +233,7 @@ function amountsOf(form: ClaimForm): number[] {
     case 'effect':
       return [form.leastUv, -form.leastUv, 0]
     case 'onset':
-      return [form.ms, -form.ms]
+      return [form.ms]
     case 'attenuation':
       return [form.db]
     case 'tone':
@@ -227,6 +262,9 @@ function comparison(form: ClaimForm, { number, unit, verdict }: ShownAnswer): st
         ? size < amount || same
         : size < amount && !same
   if (keeps !== (verdict === 'holds')) return ''
+  // more than zero by what no print shows: nothing is compared
+  const printed = Number(size.toFixed(Math.min(100, decimalsAgainst(size, unit, amountsOf(form)))))
+  if (!same && Number.isFinite(size) && Math.sign(printed - amount) !== Math.sign(size - amount)) return ''
   if (same) return relation === 'below' ? `, not below ${claimed}` : `, exactly ${claimed}`
   if (relation === 'at least') return keeps ? `, more than ${claimed}` : `, short of ${claimed}`
   if (relation === 'at most') return keeps ? `, within ${claimed}` : `, more than ${claimed}`
@@ -246,11 +284,11 @@ function heldAgainst(
       return { size: number, amount: form.percent, relation: 'at least' }
     case 'onset':
       // the other direction is said in words
-      if (number !== 0 && number < 0 !== (form.direction === 'earlier')) return null
-      return { size: Math.abs(number), amount: form.ms, relation: 'at least' }
+      if (number < 0) return null
+      return { size: number, amount: form.ms, relation: 'at least' }
     case 'attenuation':
       // an amplification is said as one
-      if (number < 0) return null
+      if (amplifies(number, 'dB')) return null
       return { size: number, amount: form.db, relation: 'at least' }
     case 'tone':
       return { size: number, amount: form.belowUv, relation: 'below' }
@@ -269,23 +307,45 @@ function withinNoise(
   { trialsNeeded }: Extract<ClaimGrounds, { kind: 'within noise' }>,
   context: ClaimAnswerContext,
 ): string {
-  const { interval, unit } = answer
-  const settles =
-    trialsNeeded === null || !Number.isFinite(trialsNeeded)
-      ? 'No number of trials would settle it if the number stayed as it is.'
-      : `About ${trialsWords(trialsNeeded, aboutTrials(trialsNeeded))} would settle it if the number stayed as it is.`
-  const measured = capital(numberWords(form, answer, context)).replace(/,$/, '')
-  if (!interval?.every(Number.isFinite)) return `${measured}, but its noise does not let it be told. ${settles}`
-  const amounts = amountsOf(form).filter((amount) => interval[0] <= amount && amount <= interval[1])
-  const inside =
-    amounts.length === 0 ? ', too wide to tell' : `, and ${insideWords(form, amounts[0], unit)} lies within it`
-  return `${measured}, but with ${trialsWords(context.trials)} its 95 % interval is ${intervalWords(form, answer)}${inside}. ${settles}`
+  const { number, interval, unit } = answer
+  const measured = capital(numberWords(form, answer, context))
+  const settles = settledBy(trialsNeeded, context.trials, interval !== null)
+  if (!interval?.every(Number.isFinite))
+    return `${measured}, but the noise of ${trialsWords(context.trials)} does not let it be told.${settles}`
+  const inside = amountsOf(form)
+    .filter((amount) => interval[0] <= amount && amount <= interval[1])
+    .sort((a, b) => Math.abs(a - (number ?? 0)) - Math.abs(b - (number ?? 0)))
+  const range = `95 % interval ${ofWhat(form, answer)}with ${trialsWords(context.trials)} ${intervalWords(form, answer)}`
+  if (inside.length === 0) {
+    // a claim of several parts: the noise leaves another of them open
+    const open =
+      form.form === 'deflection'
+        ? 'whether the unfiltered waveform has none there'
+        : 'whether every part of the claim holds'
+    return `${measured} (${range}), but the noise does not let it be told ${open}.${settles}`
+  }
+  return (
+    `${measured}, but with ${trialsWords(context.trials)} the 95 % interval ${ofWhat(form, answer) || 'of that '}is ${intervalWords(form, answer)}, ` +
+    `and ${insideWords(form, inside[0], unit)} lies within it.${settles}`
+  )
+}
+
+function settledBy(trialsNeeded: number | null, trials: number, known: boolean): string {
+  if ((trialsNeeded === null || !Number.isFinite(trialsNeeded)) && !known)
+    return ' How many trials would settle it cannot be said.'
+  if (trialsNeeded === null || !Number.isFinite(trialsNeeded))
+    return ' No number of trials would settle it if the numbers stayed as they are.'
+  // so many there are already: then nothing was computed of more
+  if (trialsNeeded <= trials) return ''
+  return ` About ${trialsWords(trialsNeeded, aboutTrials(trialsNeeded))} would settle it if the numbers stayed as they are.`
 }
 
 function insideWords(form: ClaimForm, amount: number, unit: Unit): string {
   if (form.form === 'effect')
     return amount === 0 && form.leastUv !== 0 ? 'zero' : `the limit of ${exact(amount)} ${unit}`
-  return `the claimed ${exact(Math.abs(amount))} ${unit}${amount < 0 ? ' (as a fall)' : ''}`
+  return amount < 0 && form.form !== 'attenuation'
+    ? `${exact(amount)} ${unit}, of the size claimed,`
+    : `the claimed ${exact(amount)} ${unit}`
 }
 
 function unseen(
@@ -297,10 +357,7 @@ function unseen(
   const part = valueWithUnit(100 * share, '%', [100 * threshold])
   const limit = exact(Number((100 * threshold).toPrecision(6)))
   const more = share > threshold ? `, more than the ${limit} % allowed` : ''
-  const number =
-    answer.number === null
-      ? ''
-      : ` From the data that there are, ${numberWords(form, answer, context).replace(/,$/, '')}.`
+  const number = answer.number === null ? '' : ` From the data that there are, ${numberWords(form, answer, context)}.`
   const { furtherMs } = context
   const reach = [
     ...(furtherMs && furtherMs.back > 0 ? [`${reachWords(furtherMs.back)} ms further back`] : []),
@@ -347,12 +404,13 @@ function compared(
   { present, compared: other }: Extract<ClaimGrounds, { kind: 'compared' }>,
   context: ClaimAnswerContext,
 ): string {
-  const because = (inner: ClaimForm, answer: ShownAnswer) => lower(claimReason(inner, answer, context))
+  const because = (inner: ClaimForm, answer: ShownAnswer, of: ClaimAnswerContext) =>
+    lower(claimReason(inner, answer, of))
   if (form.form === 'twin') {
     const twin = `the ${form.twin} version`
     return (
-      `${shows(`${context.filter} as it is`, present.verdict, false)}: ${because(form.shows, present)} ` +
-      `${shows(twin, other.verdict, present.verdict === 'holds')}: ${because(form.shows, other)}`
+      `${shows(`${context.filter} as it is`, present.verdict, null)}: ${because(form.shows, present, context)} ` +
+      `${shows(twin, other.verdict, present.verdict)}: ${because(form.shows, other, { ...context, filter: twin })}`
     )
   }
   if (form.form !== 'meaning') return ''
@@ -363,20 +421,18 @@ function compared(
         ? ' The answer is the same.'
         : ' The answer is not the same.'
   return (
-    `With ${meaningShort(form.stated)} it ${verdictClause(present.verdict)}: ${because(form.conclusion, present)} ` +
-    `With ${meaningShort(form.other)} it ${verdictClause(other.verdict)}: ${because(form.conclusion, other)}${same}`
+    `With ${meaningShort(form.stated)} it ${present.verdict}: ${because(form.conclusion, present, context)} ` +
+    `With ${meaningShort(form.other)} it ${other.verdict}: ${because(form.conclusion, other, context)}${same}`
   )
 }
 
 const meaningShort = (meaning: keyof typeof CLAIM_MEANING_WORDS) => CLAIM_MEANING_WORDS[meaning].replace(/ \(.*/, '')
 
-function shows(what: string, verdict: ClaimVerdict, asWell: boolean): string {
+/** @param same  the verdict that was said before, where this one is said to be the same. */
+function shows(what: string, verdict: ClaimVerdict, same: ClaimVerdict | null): string {
   if (verdict === 'cannot be told') return `Whether ${what} shows it cannot be told`
-  return `${capital(what)} ${verdict === 'holds' ? `shows it${asWell ? ' as well' : ''}` : 'does not show it'}`
-}
-
-function verdictClause(verdict: ClaimVerdict): string {
-  return verdict
+  if (verdict === 'holds') return `${capital(what)} shows it${same === verdict ? ' as well' : ''}`
+  return `${capital(what)} does not show it${same === verdict ? ' either' : ''}`
 }
 
 function lateOnly(

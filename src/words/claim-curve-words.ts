@@ -1,6 +1,6 @@
 import type { ClaimCurve, ClaimForm, ClaimVerdict } from '../evidence/claims/claim.ts'
 import type { StageSpec } from '../filter/stage.ts'
-import { brief, list } from './number.ts'
+import { brief, exact, list } from './number.ts'
 import { stageName } from './stage-words.ts'
 
 /** A stretch of the varied quantity with one answer; null where there is none. */
@@ -16,7 +16,7 @@ interface Stretch {
  * @param chain  the chain of the claim, so that the stage can be named; without it the sentence says "the cutoff" alone.
  */
 export function curveSentence(form: ClaimForm, curve: ClaimCurve, chain: readonly StageSpec[] = []): string {
-  const names = namesOf(curve, chain[curve.varied.stage])
+  const names = namesOf(curve, chain)
   const { points } = curve
   if (points.length === 0) return `Other values of the ${names.long} were not looked at.`
   const all = stretches(curve)
@@ -32,35 +32,34 @@ export function curveSentence(form: ClaimForm, curve: ClaimCurve, chain: readonl
     return `Nothing can be said of the ${names.long} ${print.ends()}: there is no answer anywhere, ${because}.`
   const where = list(missing.map((stretch) => print.stretch(stretch)))
   const closing = missing.length === 0 ? '' : ` ${capital(where)} there is no answer, ${because}.`
-  return `${changes(curve, told, missing.length > 0, names, print)}${closing}`
+  // a fit takes long: few values are tried, and changes are not narrowed down far
+  const tried =
+    form.form === 'late-only' && curve.flips.length > 0 && curve.unit !== null
+      ? ` ${exact(points.length)} values were tried; a change lies somewhere between two of them.`
+      : ''
+  return `${changes(curve, told, missing.length > 0, names, print)}${closing}${tried}`
 }
 
 type Told = Stretch & { readonly verdict: ClaimVerdict }
 
 interface Names {
-  /** "cutoff" */
-  readonly short: string
-  /** "cutoff of the Butterworth high-pass" */
+  /** "cutoff"; "cutoff of the Butterworth high-pass" where the chain has several stages. */
   readonly long: string
+  readonly ofStage: boolean
 }
 
-function namesOf({ varied }: ClaimCurve, spec: StageSpec | undefined): Names {
-  const band = spec !== undefined && 'cutoffsHz' in spec && spec.cutoffsHz.length === 2
-  const short =
-    varied.what === 'order'
-      ? spec?.design === 'butterworth' && spec.direction === 'both'
-        ? 'order per pass'
-        : 'order'
-      : varied.what === 'transition'
-        ? 'transition width'
-        : spec?.design === 'notch'
-          ? 'frequency'
-          : varied.cutoff === 1
-            ? 'upper cutoff'
-            : band
-              ? 'lower cutoff'
-              : 'cutoff'
-  return { short, long: spec === undefined ? short : `${short} of the ${stageName(spec)}` }
+function namesOf({ varied }: Pick<ClaimCurve, 'varied'>, chain: readonly StageSpec[]): Names {
+  const spec: StageSpec | undefined = chain[varied.stage]
+  const short = quantityOf(varied, spec)
+  const ofStage = spec !== undefined && chain.filter(({ enabled }) => enabled !== false).length > 1
+  return { long: ofStage ? `${short} of the ${stageName(spec)}` : short, ofStage }
+}
+
+function quantityOf({ what, cutoff }: ClaimCurve['varied'], spec: StageSpec | undefined): string {
+  if (what === 'transition') return 'transition width'
+  if (what === 'order') return spec?.design === 'butterworth' && spec.direction === 'both' ? 'order per pass' : 'order'
+  if (cutoff === 1) return 'upper cutoff'
+  return spec !== undefined && 'cutoffsHz' in spec && spec.cutoffsHz.length === 2 ? 'lower cutoff' : 'cutoff'
 }
 
 interface Printer {
@@ -77,7 +76,9 @@ function printer({ points, flips, present, unit }: ClaimCurve, all: readonly Str
   let digits = 3
   while (digits < 12 && new Set(places.map((value) => brief(value, digits))).size < places.length) digits++
   const end = unit === null ? '' : ` ${unit}`
-  const bare = (value: number) => brief(value, digits)
+  const ends = [points[0].at, points[points.length - 1].at]
+  // 112.5 Hz is not to become 113 Hz, which was not looked at
+  const bare = (value: number) => brief(value, ends.includes(value) ? Math.max(4, digits) : digits)
   const value = (at: number) => `${bare(at)}${end}`
   const range = (from: number, to: number) => `${bare(from)} to ${bare(to)}${end}`
   const stretch = ({ from, to }: Pick<Stretch, 'from' | 'to'>) =>
@@ -118,12 +119,13 @@ function changes(curve: ClaimCurve, told: readonly Told[], gaps: boolean, names:
   const only = told.every(({ verdict }) => verdict === told[0].verdict)
   if (only) {
     const [{ verdict }] = told
-    const where = gaps ? `, as far as there is one: ${IS[verdict]} ${list(told.map(print.stretch))}` : ''
-    if (points.length === 1) return `Looked at with the ${names.long} ${print.ends()} only: it ${IS[verdict]}.`
-    if (!inRange) return `With the ${names.long} ${print.ends()} it ${IS[verdict]} throughout${where}.`
+    if (points.length === 1)
+      return `Only one ${names.long} was looked at, ${print.value(points[0].at)}: it ${IS[verdict]} there.`
+    const where = list(told.map(print.stretch))
+    if (!inRange) return `With the ${names.long} varied ${print.ends()}: it ${IS[verdict]} ${where}.`
     return gaps
-      ? `No ${names.long} ${print.ends()} changes the answer${where}.`
-      : `No ${names.long} ${print.ends()} changes the answer: it ${IS[verdict]} throughout.`
+      ? `No ${names.long} ${print.ends()} changes the answer where there is one: it ${IS[verdict]} ${where}.`
+      : `No ${names.long} ${print.ends()} changes the answer: it ${ALL[verdict]}.`
   }
   if (!gaps && told.length === 2 && inRange) {
     const [low, high] = told
@@ -137,7 +139,9 @@ function changes(curve: ClaimCurve, told: readonly Told[], gaps: boolean, names:
     const span =
       middle.from === middle.to
         ? `with the ${names.long} at ${print.value(middle.from)}`
-        : `with the ${names.long} between ${print.range(middle.from, middle.to).replace(' to ', ' and ')}`
+        : unit === null
+          ? `with the ${names.long} from ${print.range(middle.from, middle.to)}`
+          : `with the ${names.long} between ${print.range(middle.from, middle.to).replace(' to ', ' and ')}`
     if (middle.verdict === 'holds' && outer === 'does not hold') return `It holds ${span} and not outside${looked}.`
     return `It ${IS[middle.verdict]} ${span}, and ${IS[outer]} outside${looked}.`
   }
@@ -149,6 +153,11 @@ const IS: Record<ClaimVerdict, string> = {
   holds: 'holds',
   'does not hold': 'does not hold',
   'cannot be told': 'cannot be told',
+}
+const ALL: Record<ClaimVerdict, string> = {
+  holds: 'holds throughout',
+  'does not hold': 'does not hold anywhere',
+  'cannot be told': 'cannot be told anywhere',
 }
 const WOULD: Record<ClaimVerdict, string> = {
   holds: 'it would hold',
@@ -169,8 +178,14 @@ function beyond(
   const looked = border === end ? '' : ` (looked at ${side === 'above' ? 'up' : 'down'} to ${print.value(end)})`
   if (unit === null)
     return `With the ${names.long} at ${print.value(border)}${border === end ? '' : ` or ${side}`} ${WOULD[verdict]}${looked}.`
+  if (names.ofStage) return `With the ${names.long} ${side} ${print.value(border)} ${WOULD[verdict]}${looked}.`
   const article = /^[aeiou]/i.test(names.long) ? 'an' : 'a'
   return `${capital(side)} ${article} ${names.long} of ${print.value(border)} ${WOULD[verdict]}${looked}.`
 }
 
 const capital = (words: string) => words.charAt(0).toUpperCase() + words.slice(1)
+
+/** What is varied, as a phrase: "cutoff", or "cutoff of the Butterworth high-pass" in a chain of several stages. */
+export function variedWords(varied: ClaimCurve['varied'], chain: readonly StageSpec[]): string {
+  return namesOf({ varied }, chain).long
+}

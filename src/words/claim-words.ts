@@ -111,7 +111,7 @@ function clause(form: ClaimForm, context: ClaimSentenceContext, prefix: '' | 'in
         part('amount', `${exact(form.percent)} %`, 'share claimed'),
         text(' of the filtered mean amplitude '),
         ...fromTo(form.window, part),
-        text(' comes from activity outside that window'),
+        text(' comes from outside that window'),
       ]
     case 'effect':
       return [
@@ -184,8 +184,8 @@ function clause(form: ClaimForm, context: ClaimSentenceContext, prefix: '' | 'in
 
 const EFFECT_SAYS = {
   'exists without the filter': 'exists without the filter',
-  'is absent without the filter': 'is absent without the filter',
-  'changes sign': 'changes sign with the filter',
+  'is absent without the filter': 'is absent without the filter and present with it',
+  'changes sign': 'has opposite signs without and with the filter',
 } as const
 
 type Part = (id: string, words: string, label: string) => Piece

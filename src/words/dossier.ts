@@ -1,7 +1,7 @@
 import type { NoisePassed } from '../evidence/filtered-noise.ts'
 import type { ClaimAnswer, ClaimCurve, ClaimForm, ClaimSetting, Unit } from '../evidence/claims/claim.ts'
 import { type ClaimAnswerContext, claimReason, claimVerdictWords } from './claim-answer-words.ts'
-import { changeWithUnit, intervalWithUnit, valueWithUnit } from './claim-number.ts'
+import { changeWithUnit, intervalWithUnit, toneWithUnit, valueWithUnit } from './claim-number.ts'
 import { curveSentence } from './claim-curve-words.ts'
 import { claimText } from './claim-words.ts'
 import { inlineSvg } from './inline-svg.ts'
@@ -47,15 +47,7 @@ export interface DossierSetting {
   readonly facts: WriteUpFacts
   readonly setting: Pick<
     ClaimSetting,
-    | 'chosen'
-    | 'conditions'
-    | 'measure'
-    | 'noise'
-    | 'noisePassed'
-    | 'trials'
-    | 'taken'
-    | 'filteredBefore'
-    | 'unseenThreshold'
+    'chosen' | 'measure' | 'noise' | 'noisePassed' | 'trials' | 'taken' | 'filteredBefore' | 'unseenThreshold'
   > & { readonly conditions: readonly { readonly name: string }[] }
   /** Name of the file that the data came from; null for a built waveform. */
   readonly file: string | null
@@ -98,16 +90,32 @@ export const DOSSIER_CONVENTIONS: readonly Entry[] = [
     text: 'Where there is a baseline, its mean was subtracted after the chain. The unfiltered waveform had its own baseline mean subtracted.',
   },
   {
-    name: 'None',
-    text: 'The unfiltered waveform counts as having no deflection in a window where it stays under 5 % of its largest absolute value.',
+    name: 'Changes',
+    text: 'A change is the value after the filter minus the value before, and is held against the amount by its size. In per cent it is of the value before; where that is under 20 % of what the whole unfiltered waveform’s largest absolute value stands for, it is of the latter.',
+  },
+  {
+    name: 'Deflections',
+    text: 'The deflection that a filter makes in a window is the value after minus before that is largest in size there. The unfiltered waveform counts as having none where it stays under 5 % of its largest absolute value in the epoch.',
+  },
+  {
+    name: 'Outside a window',
+    text: 'What the trace-back does not find at the window’s own samples: other moments, neighbouring events, and what the padding of an epoch invented. Shares of opposite sign make numbers over 100 % or below 0.',
   },
   {
     name: 'Effects',
-    text: 'An effect is the first condition minus the second. It counts as absent where it is smaller than the amount that the claim names.',
+    text: 'An effect is the first condition minus the second, as a mean amplitude. It counts as absent where it is smaller in size than the amount that the claim names.',
   },
   {
-    name: 'Changes',
-    text: 'A change is the value after the filter minus the value before. Amounts of a change are sizes, whatever its sign. Latencies that become earlier have a negative change.',
+    name: 'Onsets',
+    text: 'The onset is the onset latency of the readout. A shift is counted in the direction that the claim names and is negative in the other.',
+  },
+  {
+    name: 'Frequencies',
+    text: 'An attenuation is −20·log10 of the gain of the stages applied here, counted up to 300 dB. A tone that is locked to the event keeps its amplitude in the average; of one that is not, the average holds the root mean square amplitude, which falls with the square root of the trials.',
+  },
+  {
+    name: 'Versions',
+    text: 'The causal version of a recursive stage that is run both ways is the same sections run forward twice; of a compensated windowed sinc its minimum-phase form; of a moving average its causal form. The zero-phase version of a forward stage has the same order per pass and the same cutoffs as applied, and is run both ways, so that its roll-off doubles; of a causal windowed sinc or moving average it is the compensated one. Amplifier stages stay as they are.',
   },
   {
     name: 'Intervals',
@@ -115,7 +123,7 @@ export const DOSSIER_CONVENTIONS: readonly Entry[] = [
   },
   {
     name: 'What would change it',
-    text: 'One quantity of one stage was varied and everything else was kept. Only the range named was looked at, point by point, with each change of the verdict narrowed down between its neighbours; a change and its reversal between two neighbouring points would have been missed.',
+    text: 'One quantity of one stage was varied and everything else was kept. Only the range named was looked at, point by point, with each change of the verdict narrowed down between its neighbours; a change and its reversal between two neighbouring points could have been missed. Of the late-only fit few points were tried.',
   },
 ]
 
@@ -256,13 +264,30 @@ function claimEntries(dossier: Dossier, claim: DossierClaim): Entry[] {
   ]
 }
 
-/** A share, an attenuation or what is left of a tone has no plus sign. */
-function numberText(form: ClaimForm, { number, unit, interval }: ClaimAnswer): string {
+/** The number of an answer, or both numbers of a comparison. */
+function numberText(form: ClaimForm, answer: ClaimAnswer): string {
+  const { grounds } = answer
+  if (grounds.kind === 'compared' && form.form === 'twin')
+    return `as it is ${numberOf(form.shows, grounds.present)}; ${form.twin} version ${numberOf(form.shows, grounds.compared)}`
+  if (grounds.kind === 'compared' && form.form === 'meaning')
+    return `as stated ${numberOf(form.conclusion, grounds.present)}; with the other meaning ${numberOf(form.conclusion, grounds.compared)}`
+  return numberOf(form.form === 'twin' ? form.shows : form.form === 'meaning' ? form.conclusion : form, answer)
+}
+
+function numberOf(form: ClaimForm, { number, unit, interval }: ClaimAnswer): string {
   if (number === null || Number.isNaN(number)) return 'none'
   if (number === Infinity) return 'without limit'
-  const range = interval?.every(Number.isFinite) ? `, 95 % interval ${intervalWithUnit(interval, unit, [0])}` : ''
-  const size = form.form === 'from-outside' || form.form === 'attenuation' || form.form === 'tone'
-  return `${size ? valueWithUnit(number, unit) : changeWithUnit(number, unit, [0])}${range}`
+  const range = interval?.every(Number.isFinite) ? ` (95 % interval ${intervalWithUnit(interval, unit, [0])})` : ''
+  const towards = form.form === 'onset' ? ` towards ${form.direction}` : ''
+  return `${sized(form, number, unit)}${towards}${range}`
+}
+
+/** A share, an attenuation or what is left of a tone has no plus sign. */
+function sized(form: ClaimForm, number: number, unit: Unit): string {
+  if (form.form === 'tone') return toneWithUnit(number, unit)
+  return form.form === 'from-outside' || form.form === 'attenuation'
+    ? valueWithUnit(number, unit)
+    : changeWithUnit(number, unit, [0])
 }
 
 /** A, B, … Z, AA. */

@@ -1,4 +1,5 @@
 import type { TimeWindow } from '../erp/time-axis.ts'
+import type { BumpScan } from '../evidence/bump-scan.ts'
 import type { LateOnlyFit } from '../evidence/late-only-fit.ts'
 import type { LateOnlyVerdict } from '../evidence/late-only-verdict.ts'
 import type { OnsetScan } from '../evidence/onset-scan.ts'
@@ -194,4 +195,15 @@ function scanWords({ rows, latestMs, beyond }: NonNullable<LateOnlyFacts['scan']
   const next = rows.find(({ t0Ms }) => t0Ms > latestMs)
   const until = next ? `; at the next, ${momentWords(next.t0Ms)}, late activity alone is ruled out` : ''
   return `${range}, the latest that the data allow is ${momentWords(latestMs)}${until}.`
+}
+
+/** The strongest early component anywhere before the late activity, and how often noise alone finds one as strong. */
+export function bumpScanWords({ strongest, level, draws, criticalZ }: Pick<BumpScan, 'strongest' | 'level' | 'draws' | 'criticalZ'>): string {
+  const { fromMs, toMs, amplitudeUv, z } = strongest
+  const often = level <= 0.05 ? 'so that something early is likely somewhere' : 'so that chance alone may have made it'
+  return (
+    `Of early components of several widths and places, the strongest lies from ${spanWords(fromMs, toMs)}: ` +
+    `${changeWithUnit(amplitudeUv, 'µV', [0])} (|z| = ${fixed(Math.abs(z), 1)}). In ${exact(draws)} simulated waveforms without early activity, ` +
+    `${fixed(100 * level, level < 0.01 ? 2 : 1)} % had one at least as strong (5 % exceed |z| = ${fixed(criticalZ, 1)}), ${often}.`
+  )
 }

@@ -161,10 +161,11 @@ export function verdictOf(form: ClaimForm, number: number, before = 0, after = 0
         return number >= form.percent
       case 'effect':
         if (form.says === 'exists without the filter') return Math.abs(before) >= form.leastUv
-        if (form.says === 'is absent without the filter') return Math.abs(before) < form.leastUv
+        if (form.says === 'is absent without the filter')
+          return Math.abs(before) < form.leastUv && Math.abs(after) >= form.leastUv
         return before * after < 0 && Math.min(Math.abs(before), Math.abs(after)) >= form.leastUv
       case 'onset':
-        return (form.direction === 'earlier' ? -number : number) >= form.ms
+        return number >= form.ms
       case 'attenuation':
         return number >= form.db
       case 'tone':
@@ -185,77 +186,112 @@ const noAnswer = (form: ClaimForm, verdict: ClaimVerdict, grounds: ClaimGrounds)
   values: [],
 })
 
+/** Where the verdict may change as the number moves. */
+export function boundsOf(form: ClaimForm): number[] {
+  switch (form.form) {
+    case 'change':
+    case 'deflection':
+      return [form.amount, -form.amount]
+    case 'from-outside':
+      return [form.percent]
+    case 'effect':
+      return [form.leastUv, -form.leastUv]
+    case 'onset':
+      return [form.ms]
+    case 'attenuation':
+      return [form.db]
+    case 'tone':
+      return [form.belowUv]
+    default:
+      return [0]
+  }
+}
+
+const noisyForm = (form: ClaimForm) => form.form !== 'attenuation' && form.form !== 'tone'
+
 /** Answers of one of the forms 1 to 6. */
 function plainAnswers(form: ClaimForm): fc.Arbitrary<ShownAnswer> {
   const unit = unitOf(form)
-  const values = fc.tuple(numbers, numbers, fc.boolean())
   const measured: fc.Arbitrary<ShownAnswer> = fc
-    .tuple(numbers, values, fc.option(sizes))
-    .map(([drawn, [before, after, named], half]) => {
-      const positive = form.form === 'tone'
-      const number = form.form === 'effect' ? after : positive ? Math.abs(drawn) : drawn
-      const told = form.form === 'effect' || named
-      const low = half === null ? null : number - half
+    .record({ drawn: numbers, start: numbers, named: fc.boolean(), noisy: fc.boolean() })
+    .map(({ drawn, start, named, noisy }) => {
+      // an attenuation is counted up to 300 dB, what is left of a tone has no sign
+      const number =
+        form.form === 'tone'
+          ? Math.abs(drawn)
+          : form.form === 'attenuation'
+            ? Math.max(-300, Math.min(300, drawn))
+            : drawn
+      const before = start
+      const shift = form.form === 'onset' && form.direction === 'earlier' ? -number : number
+      const after = form.form === 'effect' ? number : start + shift
+      const nearest = Math.min(...boundsOf(form).map((bound) => Math.abs(number - bound)))
+      const interval = [number - 0.9 * nearest, number + 0.9 * nearest] as const
+      const told = form.form === 'effect' || (named && unit !== '%' && noisyForm(form))
       return {
         verdict: verdictOf(form, number, before, after),
         number,
         unit,
-        interval: low === null || half === null ? null : ([low, number + half] as const),
+        interval: noisy && noisyForm(form) ? interval : null,
         grounds: { kind: 'number' as const },
         values: told
           ? [
-              { name: 'before', value: before, unit: unit === '%' ? ('µV' as const) : unit },
-              { name: 'after', value: after, unit: unit === '%' ? ('µV' as const) : unit },
+              { name: 'before', value: before, unit },
+              { name: 'after', value: after, unit },
             ]
           : [],
       }
     })
-  const without: fc.Arbitrary<ShownAnswer> = fc.oneof(
+  const without: fc.Arbitrary<ShownAnswer>[] = [
     fc.constant(noAnswer(form, 'cannot be told', { kind: 'filtered before' })),
-    fc
-      .record({
-        missing: fc.constantFrom('no peak' as const, 'no area' as const, 'no onset' as const),
-        where: fc.constantFrom('before' as const, 'after' as const),
-      })
-      .map((grounds) => noAnswer(form, 'cannot be told', { kind: 'no value', ...grounds })),
-    fc
-      .tuple(fc.double({ min: 0.0501, max: 1, noNaN: true }), fc.option(numbers))
-      .map(([share, number]) => ({
-        ...noAnswer(form, 'cannot be told', { kind: 'unseen', share, threshold: 0.05 }),
-        number,
-      })),
-    ...(form.form === 'change' || form.form === 'from-outside'
-      ? [
-          fc
-            .constantFrom(0, 0.001, -0.004)
-            .map((valueUv) => noAnswer(form, 'cannot be told', { kind: 'about zero', valueUv })),
-        ]
-      : []),
-    ...(form.form === 'deflection'
-      ? [
-          fc
-            .tuple(sizes, fc.constantFrom(1.01, -3, 40))
-            .map(([limitUv, times]) =>
-              noAnswer(form, 'does not hold', { kind: 'already there', largestUv: (limitUv + 0.01) * times, limitUv }),
-            ),
-        ]
-      : []),
-  )
-  const noisy: fc.Arbitrary<ShownAnswer> = fc
-    .tuple(numbers, sizes, fc.option(fc.constantFrom(1, 41, 157, 1e6, 1.5e22)))
-    .map(([number, half, trialsNeeded]) => ({
-      verdict: 'cannot be told' as const,
+    fc.tuple(fc.double({ min: 0.0501, max: 1, noNaN: true }), fc.option(numbers)).map(([share, number]) => ({
+      ...noAnswer(form, 'cannot be told', { kind: 'unseen', share, threshold: 0.05 }),
       number,
-      unit,
-      interval: [number - half, number + half] as const,
-      grounds: { kind: 'within noise' as const, trialsNeeded },
-      values: [],
-    }))
-  const endless: fc.Arbitrary<ShownAnswer> = fc.constant({
-    ...noAnswer(form, 'holds', { kind: 'number' }),
-    number: Infinity,
-  })
-  return fc.oneof({ weight: 4, arbitrary: measured }, without, noisy, ...(form.form === 'attenuation' ? [endless] : []))
+    })),
+  ]
+  if (form.form === 'change' || form.form === 'onset')
+    without.push(
+      fc
+        .record({
+          missing: fc.constantFrom('no peak' as const, 'no area' as const, 'no onset' as const),
+          where: fc.constantFrom('before' as const, 'after' as const),
+        })
+        .map((grounds) => noAnswer(form, 'cannot be told', { kind: 'no value', ...grounds })),
+    )
+  if (form.form === 'from-outside' || (form.form === 'change' && form.unit === '%'))
+    without.push(
+      fc
+        .constantFrom(0, 0.001, -0.004)
+        .map((valueUv) => noAnswer(form, 'cannot be told', { kind: 'about zero', valueUv })),
+    )
+  if (form.form === 'deflection')
+    without.push(
+      fc
+        .tuple(sizes, fc.constantFrom(1.01, -3, 40))
+        .map(([limitUv, times]) =>
+          noAnswer(form, 'does not hold', { kind: 'already there', largestUv: (limitUv + 0.01) * times, limitUv }),
+        ),
+    )
+  const noisy: fc.Arbitrary<ShownAnswer> = fc
+    .tuple(numbers, fc.option(fc.constantFrom(1001, 1570, 1e6, 1.5e22)))
+    .map(([number, trialsNeeded]) => {
+      const half = 1.1 * Math.min(...boundsOf(form).map((bound) => Math.abs(number - bound))) + 0.01
+      return {
+        verdict: 'cannot be told' as const,
+        number,
+        unit,
+        interval: [number - half, number + half] as const,
+        grounds: { kind: 'within noise' as const, trialsNeeded },
+        values: [],
+      }
+    })
+  // as much as is ever counted, and more than that
+  const endless: fc.Arbitrary<ShownAnswer> = fc
+    .constantFrom(300, Infinity)
+    .map((number) => ({ ...noAnswer(form, verdictOf(form, number), { kind: 'number' }), number }))
+  if (form.form === 'attenuation') return fc.oneof({ weight: 4, arbitrary: measured }, endless)
+  if (form.form === 'tone') return measured
+  return fc.oneof({ weight: 4, arbitrary: measured }, ...without, noisy)
 }
 
 /** Answers that the form can have. */
