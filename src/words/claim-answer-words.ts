@@ -312,7 +312,9 @@ function withinNoise(
   const settles = settledBy(trialsNeeded, context.trials, interval !== null)
   if (!interval?.every(Number.isFinite))
     return `${measured}, but the noise of ${trialsWords(context.trials)} does not let it be told.${settles}`
+  const signMatters = form.form !== 'effect' || form.says === 'changes sign'
   const inside = amountsOf(form)
+    .filter((amount) => signMatters || amount !== 0)
     .filter((amount) => interval[0] <= amount && amount <= interval[1])
     .sort((a, b) => Math.abs(a - (number ?? 0)) - Math.abs(b - (number ?? 0)))
   const range = `95 % interval ${ofWhat(form, answer)}with ${trialsWords(context.trials)} ${intervalWords(form, answer)}`

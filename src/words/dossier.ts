@@ -9,7 +9,7 @@ import { type LateOnlyFacts, lateOnlyWords } from './late-only-words.ts'
 import { inMarkup } from './markup.ts'
 import { methodsParagraph } from './methods-paragraph.ts'
 import { noiseWords } from './noise-words.ts'
-import { exact } from './number.ts'
+import { exact, list } from './number.ts'
 import { inWords } from './problem.ts'
 import { windowWords } from './protocol-line.ts'
 import type { WriteUpFacts } from './write-up-facts.ts'
@@ -298,6 +298,9 @@ function letterOf(index: number): string {
 
 function settingEntries({ chainName, facts, setting, file, noiseFrom }: DossierSetting): Entry[] {
   const { chosen, measure, noise, noisePassed, trials, taken, filteredBefore, unseenThreshold, conditions } = setting
+  const measured = taken === 'as measured' || facts.source === 'recorded'
+  const all = list(conditions.map((one) => quoted(one.name)))
+  const others = conditions.length > 1 ? `; the conditions are ${all}` : ''
   const side = measure.polarity === 'negative' ? 'negative' : 'positive'
   const name = chainName === null ? '' : inMarkup(chainName, 'text')
   return [
@@ -307,8 +310,8 @@ function settingEntries({ chainName, facts, setting, file, noiseFrom }: DossierS
       name: 'Waveform',
       text:
         chosen.kind === 'condition'
-          ? `${quoted(chosen.name)}, of the conditions ${conditions.map((one) => quoted(one.name)).join(', ')}`
-          : `the difference ${quoted(chosen.first)} minus ${quoted(chosen.second)}, of the conditions ${conditions.map((one) => quoted(one.name)).join(', ')}`,
+          ? `condition ${quoted(chosen.name)}${others}`
+          : `the difference ${quoted(chosen.first)} minus ${quoted(chosen.second)}${others}`,
     },
     { name: 'Data', text: file === null ? 'built from components; no recording' : `file ${quoted(file)}` },
     {
@@ -324,10 +327,9 @@ function settingEntries({ chainName, facts, setting, file, noiseFrom }: DossierS
     { name: 'Trials', text: `${exact(trials)} per condition` },
     {
       name: 'Waveform taken',
-      text:
-        taken === 'as it stands'
-          ? 'as it stands: as known without noise, so that no number has an interval'
-          : 'as measured: numbers carry the noise of the trials, and an amount within their 95 % interval cannot be told from them',
+      text: !measured
+        ? 'as it stands: as known without noise, so that no number but the late-only fit’s has an interval'
+        : 'as measured: numbers carry the noise of the trials, and an amount within their 95 % interval cannot be told from them',
     },
     {
       name: 'Rows of the readout',
@@ -386,6 +388,9 @@ function verdictClass({ answer }: DossierClaim): string {
   return { holds: 'holds', 'does not hold': 'fails', 'cannot be told': 'open' }[answer.verdict]
 }
 
+/** A number stays on one line with its unit. */
+const NUMBER_AND_UNIT = /(\d) (?=(?:Hz|ms|s|dB|µV|%)(?![A-Za-z]))/g
+
 /** Text made safe for HTML, in content and in attributes. */
 function escapeHtml(words: string): string {
   return words
@@ -398,6 +403,7 @@ function escapeHtml(words: string): string {
     .replaceAll('>', '&gt;')
     .replaceAll('"', '&quot;')
     .replaceAll("'", '&#39;')
+    .replace(NUMBER_AND_UNIT, '$1\u00a0')
 }
 
 /** The page's own light palette; it stands alone, so the tokens are written out. */

@@ -37,7 +37,7 @@ function wellFormed(html: string): string {
   // nothing is left that could begin a tag or an entity of its own
   expect(text).not.toMatch(/[<>]/)
   expect(text).not.toMatch(/&(?!(?:amp|lt|gt|quot|#39);)/)
-  return text
+  return text.replaceAll('\u00a0', ' ')
 }
 
 const facts: WriteUpFacts = {
