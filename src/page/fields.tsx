@@ -144,6 +144,7 @@ export function SliderField({
         }}
         onPointerDown={beginGesture}
         onPointerUp={onEnd}
+        onPointerCancel={onEnd}
         onKeyUp={onEnd}
       />
       <div className="slider-ticks" aria-hidden="true">

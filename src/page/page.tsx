@@ -70,21 +70,16 @@ export function Page() {
         <section className="top grid" aria-label="Protocol line">
           <div>
             <ProtocolLine protocol={protocol} problems={shown.problems} />
-            {files.message ? (
-              <p className={`message ${files.message.kind}`} role={files.message.kind === 'note' ? 'status' : 'alert'}>
-                {files.message.text}
-                {files.message.answers?.map(({ words, run }) => (
+            {files.messages.map(({ kind, text, answers }) => (
+              <p key={text} className={`message ${kind}`} role={kind === 'note' ? 'status' : 'alert'}>
+                {text}
+                {(answers ?? [{ words: 'dismiss', run: files.dismiss }]).map(({ words, run }) => (
                   <button key={words} type="button" className="word" onClick={run}>
                     {words}
                   </button>
                 ))}
-                {files.message.answers ? null : (
-                  <button type="button" className="word" onClick={files.dismiss}>
-                    dismiss
-                  </button>
-                )}
               </p>
-            ) : null}
+            ))}
             <ReadingProgress />
           </div>
           <div className="side">

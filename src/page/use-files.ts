@@ -2,10 +2,10 @@
 import { type ChangeEvent, type DragEvent, useCallback, useEffect, useRef, useState } from 'react'
 import { downloadBlob } from '../plot/index.ts'
 import type { KeepingState } from '../state/autosave.ts'
-import { takeUpWork, workspaceFromText, workspaceToFragment, workspaceToText } from '../state/keeping.ts'
+import { type TakenUp, takeUpWork, workspaceFromText, workspaceToFragment, workspaceToText } from '../state/keeping.ts'
 import { workspaceOnTable } from '../state/open-table.ts'
 import { dataStore, fileText, openTable, recordedData, rereadTable } from '../state/recorded-data.ts'
-import { say, workspaceStore } from '../state/store.ts'
+import { onRefusal, say, workspaceStore } from '../state/store.ts'
 import { look } from '../state/view.ts'
 
 export interface Message {
@@ -17,45 +17,80 @@ export interface Message {
 
 const MAX_LINK_LENGTH = 8000
 
+/** The question which of two works is kept. It stands until it is answered: meanwhile nothing is overwritten. */
+function whichWork(state: Extract<KeepingState, { workspace: unknown }>, taken: () => TakenUp | null): Message {
+  const other = state.kind === 'other tab' ? 'the other tab’s work' : 'the work from last time'
+  const what =
+    state.kind === 'last time'
+      ? 'There is other work here from last time.'
+      : state.workspace
+        ? 'This workspace was changed in another tab meanwhile.'
+        : 'Another tab has kept work here that only a newer version of this page can read.'
+  const take = { words: `take ${other}`, run: () => void taken()?.takeOther() }
+  const keep = { words: 'keep what is on this screen', run: () => taken()?.keepMine() }
+  return {
+    kind: 'problem',
+    text: `${what} Nothing is overwritten until you choose.`,
+    answers: state.workspace ? [take, keep] : [keep],
+  }
+}
+
+/** Said once: where nothing at all is kept, that has been said. */
+function tableNotKept(
+  table: { kept: boolean; source: { fileName: string } },
+  said: { current: boolean },
+): Message | null {
+  if (table.kept || said.current) return null
+  said.current = true
+  return {
+    kind: 'note',
+    text: `This browser has no room to keep the table: after a reload, open ${table.source.fileName} again, or save the workspace with the table inside.`,
+  }
+}
+
+/** Work that this page cannot read is not thrown away by it. */
+function unreadWork({ text, drop }: NonNullable<TakenUp['unread']>, done: () => void): Message {
+  const save = () => downloadBlob(new Blob([text], { type: 'application/json' }), 'unread.sidelobe.json')
+  return {
+    kind: 'note',
+    text: 'Work that this page cannot read is kept aside.',
+    answers: [
+      { words: 'save it as a file', run: save },
+      {
+        words: 'drop it',
+        run: () => {
+          drop()
+          done()
+        },
+      },
+    ],
+  }
+}
+
 export function useFiles() {
   const [message, setMessage] = useState<Message | null>(null)
+  const [question, setQuestion] = useState<Message | null>(null)
+  const [unread, setUnread] = useState<Message | null>(null)
+  const storageSaid = useRef(false)
   const [dragging, setDragging] = useState(false)
   const inputRef = useRef<HTMLInputElement>(null)
   const report = useCallback((text: string) => setMessage({ kind: 'problem', text }), [])
 
   useEffect(() => {
-    let keepMine: () => void = () => undefined
+    onRefusal((fault) => report(`This was not taken, since it could not be kept: ${fault}.`))
+    let taken: TakenUp | null = null
     const tell = (state: KeepingState) => {
-      if (state.kind === 'no storage')
+      if (state.kind === 'no storage') {
+        storageSaid.current = true
         report(
           'This browser keeps nothing (its storage is full or shut off): save the workspace as a file before you leave.',
         )
-      if (state.kind === 'other tab')
-        setMessage({
-          kind: 'problem',
-          text: 'This workspace was changed in another tab meanwhile. Nothing is overwritten until you choose.',
-          answers: [
-            {
-              words: 'take the other tab’s work',
-              run: () => {
-                say(() => state.workspace)
-                keepMine()
-                setMessage(null)
-              },
-            },
-            {
-              words: 'keep what is on this screen',
-              run: () => {
-                keepMine()
-                setMessage(null)
-              },
-            },
-          ],
-        })
+      } else setQuestion(state.kind === 'kept' ? null : whichWork(state, () => taken))
     }
-    void takeUpWork(location.hash, tell).then((taken) => {
-      keepMine = taken.keepMine
-      if (taken.said) report(taken.said)
+    void takeUpWork(location.hash, tell).then((work) => {
+      taken = work
+      if (work.said) report(work.said)
+      if (work.unread) setUnread(unreadWork(work.unread, () => setUnread(null)))
       if (location.hash) history.replaceState(null, '', location.pathname + location.search)
     })
   }, [report])
@@ -68,6 +103,7 @@ export function useFiles() {
           if (!result.ok)
             return report(`${file.name} was not opened: ${sentence(result.reason)} The work on screen is as it was.`)
           const { enclosed, workspace } = result
+          let notKept: Message | null = null
           if (enclosed && workspace.source.kind === 'recorded') {
             const named = { name: enclosed.fileName, text: () => Promise.resolve(enclosed.text) }
             const table = await openTable(named, workspace.source.reading)
@@ -75,10 +111,11 @@ export function useFiles() {
               return report(
                 `${file.name} was not opened: the table inside is damaged. The work on screen is as it was.`,
               )
+            notKept = tableNotKept(table, storageSaid)
           }
+          setMessage(notKept)
           say(() => workspace)
-          look({ open: null })
-          return setMessage(null)
+          return look({ open: null })
         }
         const result = await openTable(file)
         if (!result.ok) {
@@ -97,18 +134,18 @@ export function useFiles() {
         if (waiting && waiting.fileId === result.source.fileId) {
           // The very file that the workspace asks for: everything that was said about it stands.
           const table = await rereadTable(waiting, waiting.reading)
-          if (table?.ok) return setMessage(null)
+          if (table?.ok) return setMessage(tableNotKept(result, storageSaid))
         }
-        say((w) => workspaceOnTable(w, result.source, result.table))
-        look({ open: 'scenario' })
         setMessage(
           waiting
             ? {
                 kind: 'note',
                 text: `${file.name} is not the file that this workspace was made on (${waiting.fileName}): its content differs. It was opened as new data; undo brings the workspace back.`,
               }
-            : null,
+            : tableNotKept(result, storageSaid),
         )
+        say((w) => workspaceOnTable(w, result.source, result.table))
+        look({ open: 'scenario' })
       } catch (error) {
         if (error instanceof DOMException && error.name === 'AbortError')
           return setMessage({
@@ -122,7 +159,8 @@ export function useFiles() {
   )
 
   return {
-    message,
+    /** What is to be read above the figures; what waits for an answer comes first, and stays. */
+    messages: [question, unread, message].filter((entry) => entry !== null),
     report,
     dismiss: () => setMessage(null),
     dragging,

@@ -1,8 +1,18 @@
 /** The workspace as a file and as a link, and taking it up again. Keeping it by itself is in `autosave.ts`. */
 import { strFromU8, strToU8, Unzlib, zlibSync } from 'fflate'
-import { type KeepingState, keepChanges, recallWork } from './autosave.ts'
+import {
+  type Answers,
+  dropUnread,
+  type KeepingStart,
+  type KeepingState,
+  keepChanges,
+  recallUnread,
+  recallWork,
+  setAside,
+} from './autosave.ts'
+import { sameWork } from './kept-record.ts'
 import { say, workspaceStore } from './store.ts'
-import { readWorkspace, type Workspace } from './workspace.ts'
+import { readWorkspace, SCENARIOS, type Workspace, workspaceOf } from './workspace.ts'
 
 const LINK_PREFIX = '#w='
 /** No workspace is that large; a longer fragment is hostile or broken. */
@@ -89,27 +99,57 @@ function unpacked(bytes: Uint8Array): Uint8Array {
   return whole.subarray(0, length)
 }
 
+export interface TakenUp extends Answers {
+  /** What is to be said about it, or null. */
+  said: string | null
+  /** Work that was kept and cannot be read by this page, as JSON: it is kept aside until it is dropped. */
+  unread: { text: string; drop: () => void } | null
+}
+
 /**
  * Takes up the workspace of the link, else the one that was kept, and from then on keeps every change.
  *
- * @param tell called when keeping meets another tab, or cannot keep.
- * @returns what is to be said about it, or null; and how to go on keeping after another tab was met.
+ * @param tell called when keeping meets other work, from another tab or from last time, or cannot keep.
  */
 export async function takeUpWork(
   fragment: string,
   tell: (state: KeepingState) => void = () => undefined,
-): Promise<{ said: string | null; keepMine: () => void }> {
+): Promise<TakenUp> {
+  const first = workspaceStore.getState().workspace
   const linked = workspaceFromFragment(fragment)
-  const found = await recallWork()
-  const stored = found === undefined ? null : readWorkspace(found.workspace)
-  let said: string | null = null
-  if (stored?.ok) start(stored.workspace)
+  const { recalled, unread } = await recallWork()
+  if (unread) await setAside(unread)
+  let from: KeepingStart = { seenAt: unread?.savedAt ?? 0 }
+  if (recalled) {
+    const { newest, workspace, other, settled } = recalled
+    from = { seenAt: newest.savedAt, other, settled }
+    // Where storage is slow the user may have begun already.
+    const begun = workspaceStore.getState().workspace !== first
+    if (!begun) start(workspace)
+    // Neither a link nor what was begun may take the place of work from last time without being asked.
+    const onScreen = linked?.ok ? linked.workspace : workspaceStore.getState().workspace
+    if ((begun || linked?.ok) && !isUntouched(workspace) && !sameWork(onScreen, workspace))
+      from = { seenAt: 0, other: newest }
+  }
   if (linked?.ok) say(() => linked.workspace)
-  else if (linked) said = linked.reason
-  else if (stored && !stored.ok) said = `What was kept from last time could not be read (${stored.reason}).`
-  const { keepMine } = keepChanges(found?.savedAt ?? 0, tell)
-  return { said, keepMine }
+  const aside = unread?.workspace ?? (await recallUnread())
+  let said: string | null = null
+  if (linked && !linked.ok) said = linked.reason
+  else if (unread) said = `What was kept from last time could not be read (${reasonOf(unread.workspace)}).`
+  return {
+    said,
+    unread: aside === undefined ? null : { text: `${JSON.stringify(aside, null, 2)}\n`, drop: () => void dropUnread() },
+    ...keepChanges(from, tell),
+  }
 }
+
+function reasonOf(workspace: unknown): string {
+  const result = readWorkspace(workspace)
+  return result.ok ? '' : result.reason
+}
+
+/** A scenario as it comes: nothing would be lost. */
+const isUntouched = (workspace: Workspace) => SCENARIOS.some((scenario) => sameWork(workspaceOf(scenario), workspace))
 
 /** The kept workspace is where undo begins. */
 function start(workspace: Workspace): void {

@@ -69,20 +69,21 @@ async function readWith(
 /**
  * Reads a file that the user opened or dropped.
  *
- * @returns the source and its table, or the reader's refusal; nothing on the page has changed yet.
+ * @returns the source and its table, and whether a reload will find the file again; or the reader's refusal. Nothing on the page has
+ * changed yet.
  * @throws DOMException 'AbortError' when the user cancels.
  */
 export async function openTable(
   file: { readonly name: string; text(): Promise<string> },
   reading: Reading = {},
-): Promise<{ ok: true; source: RecordedSource; table: Table } | (TableRefusal & { fileName: string })> {
+): Promise<{ ok: true; source: RecordedSource; table: Table; kept: boolean } | (TableRefusal & { fileName: string })> {
   const text = await file.text()
   const fileId = await sha256(text)
   const table = await readWith(fileId, file.name, text, reading)
   if (!table.ok) return { ...table, fileName: file.name }
   // Without storage the work goes on; only a reload will ask for the file again.
-  await remember(storageKey(fileId), text)
-  return { ok: true, source: { kind: 'recorded', fileName: file.name, fileId, reading }, table }
+  const kept = await remember(storageKey(fileId), text)
+  return { ok: true, source: { kind: 'recorded', fileName: file.name, fileId, reading }, table, kept }
 }
 
 /** The text of a file that is at hand; undefined where it is not. */

@@ -1,10 +1,11 @@
 /**
  * One store: the workspace and its history. `say` is the only way to change it. Changes that share a group and follow one another (a
- * drag, typing in one field, repeated arrow keys) are one step of undo, until `endGesture` or a pause.
+ * drag, typing in one field, repeated arrow keys) are one step of undo, until `endGesture` or a pause. The store never holds what could
+ * not be read again: after a reload such work would be lost.
  */
 import { temporal } from 'zundo'
 import { createStore } from 'zustand/vanilla'
-import { startWorkspace, type Workspace } from './workspace.ts'
+import { startWorkspace, whyUnreadable, type Workspace } from './workspace.ts'
 
 export const HISTORY_STEPS = 400
 /** Changes of one group that are further apart than this are two steps, as for two separate presses of an arrow key. */
@@ -37,11 +38,23 @@ export const workspaceStore = createStore<WorkspaceState>()(
   }),
 )
 
-/** Changes the workspace. With a `group`, consecutive changes of that group are one step of undo. */
+let refused: (fault: string) => void = () => undefined
+
+/** @param listener told why a change was not taken: the field and its fault. */
+export function onRefusal(listener: (fault: string) => void): void {
+  refused = listener
+}
+
+/**
+ * Changes the workspace. With a `group`, consecutive changes of that group are one step of undo. A change that the workspace's schema
+ * refuses leaves everything as it was, and is told to the listener.
+ */
 export function say(change: (workspace: Workspace) => Workspace, group?: string): void {
   const { workspace } = workspaceStore.getState()
   const next = change(workspace)
   if (next === workspace) return
+  const fault = whyUnreadable(next)
+  if (fault !== null) return refused(fault)
   asked = group
   workspaceStore.setState({ workspace: next })
 }

@@ -1,5 +1,5 @@
 import { afterEach, beforeEach, describe, expect, test, vi } from 'vitest'
-import { endGesture, redo, say, undo, workspaceStore } from '../../src/state/store.ts'
+import { endGesture, onRefusal, redo, say, undo, workspaceStore } from '../../src/state/store.ts'
 import { startWorkspace, type Workspace } from '../../src/state/workspace.ts'
 
 const trials = () => workspaceStore.getState().workspace.trials
@@ -130,5 +130,26 @@ describe('changes of one group', () => {
     expect(trials()).toBe(1)
     redo()
     expect(trials()).toBe(4)
+  })
+})
+
+describe('a change that could not be read again after a reload', () => {
+  test.each<[string, (w: Workspace) => Workspace, RegExp]>([
+    ['a number that is none', (w) => ({ ...w, trials: Number.NaN }), /^trials: /],
+    ['one stage too many', (w) => ({ ...w, chain: Array.from({ length: 61 }, () => w.chain[0]) }), /^chain: /],
+    [
+      'a name as long as a page',
+      (w) => ({ ...w, shown: { ...w.shown, channel: 'x'.repeat(401) } }),
+      /^shown.channel: /,
+    ],
+    ['noise that cannot be', (w) => ({ ...w, noise: { ...w.noise, exponent: 9 } }), /^noise: The exponent/],
+  ])('is not taken, and the reason is told: %s', (_, change, words) => {
+    const { workspace } = workspaceStore.getState()
+    const told: string[] = []
+    onRefusal((fault) => told.push(fault))
+    say(change)
+    expect(told).toEqual([expect.stringMatching(words)])
+    expect(workspaceStore.getState().workspace).toBe(workspace)
+    expect(steps()).toBe(0)
   })
 })
