@@ -2,7 +2,7 @@
 import { useMemo } from 'react'
 import type { Problem } from '../state/evaluation.ts'
 import { type Protocol, protocolLine, protocolText } from '../words/index.ts'
-import { Token } from './token.tsx'
+import { Phrases } from './phrases.tsx'
 
 interface ProtocolLineProps {
   protocol: Protocol
@@ -13,9 +13,6 @@ interface ProtocolLineProps {
 function concerns(problem: Problem, id: string): boolean {
   return problem.at === id || (problem.at.split(':').length === 2 && id === `${problem.at}:design`)
 }
-
-/** The comma or full stop that follows a token: it stays on the token's line. */
-const leadingMark = (words: string) => /^[,.;:]/.exec(words)?.[0] ?? ''
 
 const messageId = (place: number) => `problem-${place}`
 
@@ -41,25 +38,7 @@ export function ProtocolLine({ protocol, problems }: ProtocolLineProps) {
           event.preventDefault()
         }}
       >
-        {pieces.map((piece, place) => {
-          const mark =
-            piece.kind === 'text' && place > 0 && pieces[place - 1].kind !== 'text' ? leadingMark(piece.text) : ''
-          if (piece.kind === 'text') return <span key={place}>{piece.text.slice(mark.length)}</span>
-          const next = pieces[place + 1]
-          return (
-            <span key={piece.id} className="phrase">
-              <Token
-                id={piece.id}
-                text={piece.text}
-                label={piece.label}
-                off={piece.kind === 'token' ? piece.off : undefined}
-                bad={problemOf(problems, piece.id)}
-                className={piece.kind === 'add' ? 'add' : ''}
-              />
-              {next?.kind === 'text' ? leadingMark(next.text) : ''}
-            </span>
-          )
-        })}
+        <Phrases pieces={pieces} badOf={(id) => problemOf(problems, id)} />
       </p>
       {problems.map((problem, place) => (
         <p key={problem.at + problem.message} id={messageId(place)} className="message" role="alert">

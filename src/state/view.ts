@@ -13,7 +13,7 @@ export interface View {
   /** The token whose editor is open. */
   open: string | null
   /** The desk that is open under the readout. */
-  desk: 'trace' | 'trade-off' | 'write-up' | null
+  desk: 'trace' | 'trade-off' | 'claims' | 'write-up' | null
   help: boolean
 }
 
@@ -53,7 +53,7 @@ const CHOICES: { [K in (typeof KEPT)[number]]: readonly View[K][] } = {
   kernelShows: ['impulse response', 'step response'],
   kernelScale: ['compressed', 'linear'],
   windowScale: ['compressed', 'linear'],
-  desk: ['trace', 'trade-off', 'write-up', null],
+  desk: ['trace', 'trade-off', 'claims', 'write-up', null],
 }
 
 function kept(): Partial<View> {

@@ -53,7 +53,13 @@ export type { Verdict } from './setting-check.ts'
 export { STATEMENT_FIELDS, type StatementField } from './statement-fields.ts'
 export type { WriteUpFacts } from './write-up-facts.ts'
 export { type ClaimAnswerContext, claimReason, claimVerdictWords } from './claim-answer-words.ts'
-export { curveSentence } from './claim-curve-words.ts'
+export { curveSentence, variedWords } from './claim-curve-words.ts'
 export { type ClaimSentenceContext, claimFormName, claimRowUnit, claimSentence, claimText } from './claim-words.ts'
 export { type Dossier, type DossierClaim, type DossierSetting, dossierHtml, dossierMarkdown } from './dossier.ts'
-export { type LateOnlyFacts, type LateOnlyWords, lateOnlyVerdictWords, lateOnlyWords } from './late-only-words.ts'
+export {
+  bumpScanWords,
+  type LateOnlyFacts,
+  type LateOnlyWords,
+  lateOnlyVerdictWords,
+  lateOnlyWords,
+} from './late-only-words.ts'

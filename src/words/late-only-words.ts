@@ -198,7 +198,12 @@ function scanWords({ rows, latestMs, beyond }: NonNullable<LateOnlyFacts['scan']
 }
 
 /** The strongest early component anywhere before the late activity, and how often noise alone finds one as strong. */
-export function bumpScanWords({ strongest, level, draws, criticalZ }: Pick<BumpScan, 'strongest' | 'level' | 'draws' | 'criticalZ'>): string {
+export function bumpScanWords({
+  strongest,
+  level,
+  draws,
+  criticalZ,
+}: Pick<BumpScan, 'strongest' | 'level' | 'draws' | 'criticalZ'>): string {
   const { fromMs, toMs, amplitudeUv, z } = strongest
   const often = level <= 0.05 ? 'so that something early is likely somewhere' : 'so that chance alone may have made it'
   return (

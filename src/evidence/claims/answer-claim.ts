@@ -22,7 +22,7 @@ export type AnsweredForm = Exclude<ClaimForm, LateOnlyClaim>
  * @throws RangeError with what, rule and value for a form, a window or a chain that cannot be.
  */
 export function answerClaim(form: AnsweredForm, setting: ClaimSetting): ClaimAnswer {
-  const { decisions: _, ...answer } = weighClaim(prepareClaim(setting), form, setting.chain)
+  const { decisions: _, drawn: _drawn, ...answer } = weighClaim(prepareClaim(setting), form, setting.chain)
   return answer
 }
 

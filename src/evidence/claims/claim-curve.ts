@@ -1,5 +1,6 @@
 import type { StageSpec } from '../../filter/stage.ts'
 import { type AnsweredForm, weighClaim } from './answer-claim.ts'
+import type { Weighed } from './claim-parts.ts'
 import type { ClaimCurve, ClaimFlip, ClaimPoint, ClaimSetting, Varied } from './claim.ts'
 import { prepareClaim } from './claimed-waveform.ts'
 import { variedByDefault, variedChain, variedRange } from './varied-chain.ts'
@@ -12,8 +13,6 @@ export interface CurveProgress {
 
 /** Points of the grid over a whole axis. */
 const GRID = 80
-/** Draws of a number that is no weighted sum: the same for every point, so that they differ by their filters alone. */
-const DRAWS = 100
 /** Critical values are found to this part of themselves. */
 const CLOSE = 1e-4
 /** Steps towards a least distance between two points of the grid. */
@@ -47,7 +46,7 @@ export function* claimCurve(
   const of = varied ?? variedByDefault(setting.chain)
   const range = of && variedRange(setting.chain, of, setting.samplingRateHz)
   if (!of || !range) return null
-  const prepared = prepareClaim(setting, DRAWS)
+  const prepared = prepareClaim(setting)
   const answer = (chain: readonly StageSpec[]) => weighClaim(prepared, form, chain)
   const onAxis = range.kind === 'hz' ? Math.log : (at: number) => at
   const seen = new Map<number, Seen>()
@@ -56,7 +55,7 @@ export function* claimCurve(
   seen.set(present, {
     at: present,
     x: onAxis(present),
-    number: present0.number,
+    number: drawnNumber(present0),
     verdict: present0.verdict,
     decisions: present0.decisions,
   })
@@ -66,8 +65,8 @@ export function* claimCurve(
     const x = onAxis(at)
     let point: Seen
     try {
-      const { number, verdict, decisions } = answer(variedChain(setting.chain, of, at))
-      point = { at, x, number, verdict, decisions }
+      const weighed = answer(variedChain(setting.chain, of, at))
+      point = { at, x, number: drawnNumber(weighed), verdict: weighed.verdict, decisions: weighed.decisions }
     } catch (error) {
       // what is wrong with the form has been thrown by the chain as it stands
       if (!(error instanceof RangeError)) throw error
@@ -100,6 +99,8 @@ export function* claimCurve(
   const points = drawn(ascending(), grid).map(({ at, number, verdict }) => ({ at, number, verdict }))
   return { varied: of, unit: range.kind === 'hz' ? 'Hz' : null, present, points, flips }
 }
+
+const drawnNumber = ({ number, drawn }: Weighed) => (drawn === undefined ? number : drawn)
 
 function logGrid(fromHz: number, toHz: number): number[] {
   return Array.from({ length: GRID }, (_, i) => fromHz * (toHz / fromHz) ** (i / (GRID - 1)))

@@ -66,6 +66,8 @@ export function verdictOf(parts: readonly Part[]): { verdict: ClaimVerdict; grou
 /** An answer with what the search for changes needs. */
 export interface Weighed extends ShownAnswer {
   readonly decisions: readonly number[]
+  /** What a curve shows where it is not the answer's own number, so that a curve is one quantity throughout. */
+  readonly drawn?: number | null
 }
 
 /** number ± 1.96·SD, or null where there is no noise. */

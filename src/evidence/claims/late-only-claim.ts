@@ -203,3 +203,13 @@ function widestFlip(points: readonly ClaimPoint[]): readonly [ClaimPoint, ClaimP
   }
   return widest !== null && widest[1].at / widest[0].at > 1.001 ? widest : null
 }
+
+/** What the fit of a claim is given, for the scans beside it. Throws as `lateOnlyClaim`. */
+export function lateOnlyQuestion(
+  form: LateOnlyClaim,
+  setting: ClaimSetting,
+): { y: Float64Array; chain: Chain; options: LateOnlyOptions } {
+  const prepared = prepareClaim(setting)
+  const chain = claimChain(prepared, setting.chain)
+  return { y: fittedWaveform(prepared, chain), chain, options: optionsOf(prepared, form, chain) }
+}

@@ -11,7 +11,7 @@ export type WeighShown = (form: ShownClaim, specs: readonly StageSpec[]) => Weig
  * Form 7: the filter shows it, and with every stage that is applied here in its causal (zero-phase) twin's place it does not. Amplifier stages have no twin
  * and stay.
  *
- * The number is the twin's; where the filter as it is does not show it, that of the filter.
+ * The number is the twin's; where the filter as it is does not show it, that of the filter. A curve draws the twin's throughout.
  *
  * @throws RangeError for a chain that cannot be designed, and as the claim that is shown.
  */
@@ -33,7 +33,7 @@ export function twinClaim(
   }
   if (present.verdict === 'does not hold') {
     const { decisions, ...shown } = present
-    return { ...shown, grounds: { kind: 'not shown', shown }, decisions }
+    return { ...shown, grounds: { kind: 'not shown', shown }, decisions, drawn: weigh(form.shows, twins.flat()).number }
   }
   return compared(present, weigh(form.shows, twins.flat()), 'twin', (one, other) =>
     one === 'holds' && other === 'does not hold' ? 'holds' : 'does not hold',

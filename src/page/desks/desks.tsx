@@ -6,6 +6,7 @@ import { OnDesk } from '../sheet-figures.ts'
 import type { Shown } from '../use-evaluation.ts'
 import './desks.css'
 import { closeDesk, DESKS_ID, type DeskId, openDesk } from './open-desk.ts'
+import { ClaimsDesk } from './claims/claims-desk.tsx'
 import { TraceDesk } from './trace/trace-desk.tsx'
 import { TradeOffDesk } from './trade-off/trade-off-desk.tsx'
 import { WriteUpDesk } from './write-up/write-up-desk.tsx'
@@ -30,6 +31,7 @@ interface Desk {
 const DESKS: readonly Desk[] = [
   { id: 'trace', title: 'Trace-back', question: 'Where does this value come from?', Body: TraceDesk },
   { id: 'trade-off', title: 'Trade-off', question: 'Which cutoff and roll-off should I use?', Body: TradeOffDesk },
+  { id: 'claims', title: 'Claims', question: 'Is this statement about the filter true?', Body: ClaimsDesk },
   { id: 'write-up', title: 'Write-up', question: 'How do I report this?', Body: WriteUpDesk },
 ]
 

@@ -18,6 +18,6 @@ export function openDesk(id: DeskId): void {
 export function closeDesk(): void {
   const { open } = viewStore.getState()
   // an editor of the desk goes with it
-  const own = open !== null && ['trace-', 'trade-off-', 'write-up-'].some((desk) => open.startsWith(desk))
+  const own = open !== null && ['trace-', 'trade-off-', 'claim-', 'write-up-'].some((desk) => open.startsWith(desk))
   look({ desk: null, ...(own ? { open: null } : {}) })
 }

@@ -1,0 +1,143 @@
+/** Claims: statements about the filter in a fixed form, each computed, answered, and told what would change the answer. */
+import { useMemo, useRef, useState } from 'react'
+import { useStore } from 'zustand'
+import { addingClaim, CLAIM_FORMS, conditionNames, namingClaims, statingFilteredBefore } from '../../../state/claims.ts'
+import { dataStore, recordedData } from '../../../state/recorded-data.ts'
+import { endGesture, say } from '../../../state/store.ts'
+import { look } from '../../../state/view.ts'
+import { MAX_CLAIMS, type Workspace } from '../../../state/workspace.ts'
+import { claimFormName } from '../../../words/index.ts'
+import { Choice, WordButton } from '../../fields.tsx'
+import { Editor } from '../../editors/editor.tsx'
+import { useView } from '../../hooks.ts'
+import { Token } from '../../token.tsx'
+import type { DeskProps } from '../desks.tsx'
+import { ClaimCard } from './claim-card.tsx'
+import './claims.css'
+import { DossierPart, type FigureSource } from './dossier-part.tsx'
+import { TextField } from './text-field.tsx'
+
+export function ClaimsDesk({ workspace, shown, caption }: DeskProps) {
+  const { evaluation } = shown
+  const { claims, source } = workspace
+  const data = useStore(dataStore, (store) => recordedData(source, store.files))
+  const conditions = useMemo(() => conditionNames(workspace, data), [workspace, data])
+  // the figures of the cards, for the dossier
+  const figures = useRef(new Map<number, FigureSource>())
+  if (!evaluation) return null
+  const { samplingRateHz } = evaluation
+  return (
+    <div className="desk claims-desk">
+      <div className="grid">
+        <div>
+          <p className="desk-question">
+            {claims.list.length === 0
+              ? 'Is a statement about this filter true? Put it in a fixed form: it is computed, answered, and told what would change the answer.'
+              : 'Are these statements about the filter true?'}
+          </p>
+          {source.kind === 'recorded' ? <FilteredBefore workspace={workspace} /> : null}
+        </div>
+        <div className="side desk-side">
+          <TextField
+            label="title of the claims"
+            hint="the paper or review that they are from"
+            value={claims.title}
+            onChange={(title) => say(namingClaims(title), 'claims-title')}
+            onEnd={endGesture}
+          />
+        </div>
+      </div>
+      {claims.list.map((claim, place) => (
+        <ClaimCard
+          key={claim.id}
+          {...{ claim, workspace, data, samplingRateHz, conditions, caption }}
+          number={place + 1}
+          count={claims.list.length}
+          figures={figures.current}
+        />
+      ))}
+      <AddClaim workspace={workspace} />
+      {claims.list.length > 0 ? <DossierPart {...{ workspace, evaluation, data }} figures={figures.current} /> : null}
+    </div>
+  )
+}
+
+/** Whether the stages in the data are all that a recording has passed: only the user can know. */
+function FilteredBefore({ workspace }: { workspace: Workspace }) {
+  const id = 'claim-filtered-before'
+  const open = useView((view) => view.open === id)
+  const { filteredBefore } = workspace.claims
+  return (
+    <>
+      <p className="small claim-about">
+        What this recording had passed before it was loaded is{' '}
+        <Token
+          id={id}
+          className="small"
+          text={filteredBefore === 'as stated' ? 'all stated in the protocol line' : 'not known in full'}
+          label="what the recording had passed"
+        />
+        {filteredBefore === 'as stated'
+          ? '.'
+          : ': claims that speak of the unfiltered waveform cannot be told before it is.'}
+      </p>
+      {open ? (
+        <Editor title="Before it was loaded" subtitle="what the recording had passed">
+          <Choice
+            stacked
+            label="what the recording had passed"
+            value={filteredBefore}
+            options={[
+              {
+                value: 'as stated',
+                text: 'only the stages that the protocol line says were in the data',
+                hint: 'none, if it says none',
+              },
+              { value: 'not known', text: 'not known in full' },
+            ]}
+            onChange={(value) => say(statingFilteredBefore(value))}
+          />
+        </Editor>
+      ) : null}
+    </>
+  )
+}
+
+function AddClaim({ workspace }: { workspace: Workspace }) {
+  const [open, setOpen] = useState(workspace.claims.list.length === 0)
+  const data = useStore(dataStore, (store) => recordedData(workspace.source, store.files))
+  const full = workspace.claims.list.length >= MAX_CLAIMS
+  const few = conditionNames(workspace, data).length < 2
+  if (full) return <p className="small quiet">{MAX_CLAIMS} claims are as many as one dossier holds.</p>
+  return (
+    <section className="add-claim" aria-label="add a claim">
+      {open ? (
+        <>
+          <p className="small quiet">A claim about …</p>
+          <ul>
+            {CLAIM_FORMS.map((form) => {
+              const impossible = form === 'effect' && few
+              return (
+                <li key={form}>
+                  <WordButton
+                    disabled={impossible}
+                    onPress={() => {
+                      say(addingClaim(form, data))
+                      setOpen(false)
+                      look({ open: null })
+                    }}
+                  >
+                    {claimFormName(form)}
+                  </WordButton>
+                  {impossible ? <span className="quiet small"> needs two conditions</span> : null}
+                </li>
+              )
+            })}
+          </ul>
+        </>
+      ) : (
+        <WordButton onPress={() => setOpen(true)}>+ add a claim</WordButton>
+      )}
+    </section>
+  )
+}

@@ -1,0 +1,1 @@
+export { CALIBRATION } from '../evidence/calibration-table.ts'
