@@ -117,6 +117,9 @@ export function useFiles() {
           say(() => workspace)
           return look({ open: null })
         }
+        // before reading: afterwards the file is at hand, and no longer waited for
+        const { source } = workspaceStore.getState().workspace
+        const waiting = source.kind === 'recorded' && !recordedData(source, dataStore.getState().files) ? source : null
         const result = await openTable(file)
         if (!result.ok) {
           const where = [
@@ -129,8 +132,6 @@ export function useFiles() {
             `${file.name} was not opened${where ? ` (${where})` : ''}: ${sentence(result.reason)} ${sentence(result.todo ?? '')} The work on screen is as it was.`,
           )
         }
-        const { source } = workspaceStore.getState().workspace
-        const waiting = source.kind === 'recorded' && !recordedData(source, dataStore.getState().files) ? source : null
         if (waiting && waiting.fileId === result.source.fileId) {
           // The very file that the workspace asks for: everything that was said about it stands.
           const table = await rereadTable(waiting, waiting.reading)
