@@ -24,7 +24,7 @@ test('the allowed region is found, a filter picked from it by keyboard, and ever
   const { page } = workbench
   await openDesk(workbench)
   await expect(summary(workbench)).toContainText(
-    /With 40 trials, high-pass cutoffs up to [\d.]+ Hz .* \(order 2 per pass, both ways\) keep the bias within 0\.2 µV/,
+    /With 40 trials, high-pass cutoffs \(order 2 per pass, both ways\) up to [\d.]+ Hz .* keep the bias within 0\.2 µV/,
   )
   // the filter in the chain, 1 Hz, is the cell to begin with, and it is over the limit
   await expect(cursor(workbench)).toHaveAccessibleName(/^Cell of the map: 1\.04 Hz, order 2: .*over a limit/)
@@ -81,6 +81,92 @@ test('the worst of many waveforms allows less than the waveform as built', async
   const worst = await allowed()
   expect(worst).toBeGreaterThan(0)
   expect(worst).toBeLessThan(built)
+})
+
+test('every limit in force has its line with its name, none over another or outside the map', async ({ workbench }) => {
+  const { page } = workbench
+  await openDesk(workbench)
+  const names = page.locator('.limit-name')
+  await expect(names).toHaveText(['bias 0.2 µV'])
+  await workbench.edit('limits of the map')
+  for (const [limit, most] of [
+    ['noise of the score', '1'],
+    ['total error', '1.03'],
+  ]) {
+    await workbench.editor().getByRole('checkbox', { name: limit }).check()
+    await workbench.field(`${limit} within`).fill(most)
+  }
+  await workbench.closeEditor()
+  await expect
+    .poll(async () => [...new Set(await names.allTextContents())].sort())
+    .toEqual(['bias 0.2 µV', 'noise 1 µV', 'total error 1.03 µV'])
+  // no two lines have the same dash, so that none is told by its colour
+  const dashes = await page
+    .locator('.limit-line')
+    .evaluateAll((lines) => lines.map((line) => line.getAttribute('stroke-dasharray')))
+  expect(new Set(dashes).size).toBe(3)
+  expect(await workbench.descriptionOf('Trade-off map')).toContain(
+    'Lines at the limits: bias 0.2 µV, noise 1 µV and total error 1.03 µV.',
+  )
+  const map = await page.getByRole('group', { name: 'Trade-off map' }).boundingBox()
+  const boxes = await names.evaluateAll((texts) => texts.map((text) => text.getBoundingClientRect().toJSON()))
+  if (!map) throw new Error('no map')
+  boxes.forEach((a, i) => {
+    expect(a.left).toBeGreaterThanOrEqual(map.x)
+    expect(a.right).toBeLessThanOrEqual(map.x + map.width)
+    expect(a.top).toBeGreaterThanOrEqual(map.y)
+    for (const b of boxes.slice(0, i))
+      expect(a.left >= b.right || b.left >= a.right || a.top >= b.bottom || b.top >= a.bottom).toBe(true)
+  })
+  await expectAccessible(workbench)
+})
+
+test('kinds of filter stand side by side; one picked from the second map goes into the chain by keyboard, and undo takes it back', async ({
+  workbench,
+}) => {
+  const { page } = workbench
+  await openDesk(workbench)
+  await workbench.edit('kinds of filter beside it')
+  const editor = workbench.editor()
+  for (const kind of ['Butterworth run forward', 'zero-phase windowed sinc']) {
+    await editor.getByRole('checkbox', { name: kind }).focus()
+    await page.keyboard.press('Space')
+  }
+  await expectAccessible(workbench)
+  await workbench.closeEditor()
+  await expect(page.locator('.map-progress')).toHaveText('1320 filters in 3 maps.')
+  const lines = page.locator('.map-line')
+  await expect(lines).toHaveText([
+    /^Order 2: .* keep the limit, least total error [\d.]+ µV at [\d.]+ Hz/,
+    /^Order 2: 0\.01 Hz keeps the limit/,
+    /^0\.2 Hz wide: /,
+  ])
+  // the same cutoffs in all of them
+  for (const kind of ['Butterworth run both ways', 'Butterworth run forward', 'zero-phase windowed sinc'])
+    expect(await workbench.descriptionOf(`Trade-off map, ${kind}`)).toContain('over 60 cutoffs')
+  await expectAccessible(workbench)
+
+  const before = await workbench.sentenceText()
+  const second = page.getByRole('button', { name: /^Cell of the map of Butterworth run forward: / })
+  await second.focus()
+  await page.keyboard.press('Home')
+  await page.keyboard.press('ArrowDown')
+  await expect(second).toHaveAccessibleName(/: 0\.01 Hz, order 1: .*keeps the limits/)
+  await expect(summary(workbench)).toContainText('(order 1, forward)')
+  const said = /bias (−?\+?[\d.]+) µV/.exec((await second.getAttribute('aria-label')) ?? '')
+  await page.keyboard.press('Enter')
+  await expect(workbench.token('stage 2, cutoff')).toHaveText('0.01 Hz')
+  expect(await workbench.sentenceText()).toContain('order 1, run forward')
+  const [score] = await workbench.readout()
+  expect(numberOf(score.change)).toBeCloseTo(numberOf(said?.[1] ?? ''), 1)
+  await expect(second).toBeFocused()
+  // no other map was asked for
+  await expect(page.locator('.map-progress')).toHaveText('1320 filters in 3 maps.')
+
+  await page.keyboard.press('Control+Z')
+  await expect.poll(() => workbench.sentenceText()).toBe(before)
+  const csv = await workbench.saved(() => workbench.button('save the maps as CSV').click())
+  expect(csv.bytes.toString('utf8').trim().split(/\r?\n/)).toHaveLength(1 + 1320 + 1)
 })
 
 test('the map is saved as SVG, PNG and CSV', async ({ workbench }) => {

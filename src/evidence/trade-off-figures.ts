@@ -1,5 +1,5 @@
 import { simulatedFigures } from './simulated-score.ts'
-import type { CellScore, MapCell, PreparedMap } from './trade-off-map.ts'
+import type { AnsweredMap, CellScore, MapCell } from './trade-off-map.ts'
 
 /** The figures of one filter for one score, from a cell and a number of trials. */
 export interface CellFigures {
@@ -48,7 +48,7 @@ const EFFECT_SHARE = 0.2
  * @throws RangeError for an unknown score or waveform, trials below 1, or a simulated score at another number of trials than it
  *   was simulated for.
  */
-export function cellFigures(prepared: PreparedMap, cell: MapCell, asked: FiguresQuestion): CellFigures {
+export function cellFigures(prepared: AnsweredMap, cell: MapCell, asked: FiguresQuestion): CellFigures {
   const { question } = prepared
   check(prepared, asked)
   const where = {
@@ -171,7 +171,7 @@ function combinedEffects(values: readonly (number | null)[], over: OverWaveforms
 
 const number = (value: number) => (Number.isFinite(value) ? value : null)
 
-function check({ question }: PreparedMap, { score, latency, trials, over, largest }: FiguresQuestion): void {
+function check({ question }: AnsweredMap, { score, latency, trials, over, largest }: FiguresQuestion): void {
   const count = question.scores.length
   for (const [name, index] of [
     ['score', score],

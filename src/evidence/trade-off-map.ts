@@ -127,11 +127,15 @@ export function planMap(cutoffs: number, rollOffs: number, coarse = 8): MapPlan 
   }
 }
 
-/** A question made ready: what every cell shares. Keep it for as long as its question is asked. */
-export interface PreparedMap {
+/** What the figures of a cell are held against. */
+export interface AnsweredMap {
   readonly question: MapQuestion
   /** Unfiltered: the waveforms and the noise as they come to the chain. */
   readonly before: readonly CellScore[]
+}
+
+/** A question made ready: what every cell shares. Keep it for as long as its question is asked. */
+export interface PreparedMap extends AnsweredMap {
   readonly shared: Shared
 }
 

@@ -9,10 +9,15 @@ import {
   tradeOffAnswer,
   type TradeOffLimits,
 } from '../evidence/trade-off-answer.ts'
-import { type CellFigures, cellFigures, type OverWaveforms } from '../evidence/trade-off-figures.ts'
-import type { PreparedMap } from '../evidence/trade-off-map.ts'
+import {
+  type CellFigures,
+  cellFigures,
+  type FiguresQuestion,
+  type OverWaveforms,
+} from '../evidence/trade-off-figures.ts'
+import type { MapCell } from '../evidence/trade-off-map.ts'
 import { tableToCsv } from '../files/index.ts'
-import { protocolLine, protocolText } from '../words/index.ts'
+import { candidateWords, protocolLine, protocolText } from '../words/index.ts'
 import type { MapState } from './map-run.ts'
 import { protocolOf } from './protocol.ts'
 import { filterInChain, type MapRequest } from './trade-off.ts'
@@ -27,12 +32,25 @@ export interface MapFigures {
   readonly kept: readonly boolean[]
 }
 
-/** The worker keeps what only computing needs; figures need the question and the unfiltered scores. */
-const preparedOf = (request: MapRequest, before: PreparedMap['before']) =>
-  ({ question: request.question, before }) as unknown as PreparedMap
-
 export function overWaveforms(request: MapRequest, over: TradeOff['over']): OverWaveforms {
   return request.question.waveforms.length === 1 ? 0 : over
+}
+
+/** A cell's figures as they were last asked for: a map that grows asks for the same ones with every slice. */
+const keptFigures = new WeakMap<MapCell, { before: unknown; asked: FiguresQuestion; figures: CellFigures }>()
+
+function figuresOf(
+  question: MapRequest['question'],
+  before: NonNullable<MapState['before']>,
+  cell: MapCell,
+  asked: FiguresQuestion,
+): CellFigures {
+  const kept = keptFigures.get(cell)
+  const names = ['latency', 'trials', 'largest', 'over'] as const
+  if (kept?.before === before && names.every((name) => Object.is(kept.asked[name], asked[name]))) return kept.figures
+  const figures = cellFigures({ question, before }, cell, asked)
+  keptFigures.set(cell, { before, asked, figures })
+  return figures
 }
 
 /** @throws RangeError as `cellFigures` and `keepsLimits`. */
@@ -45,16 +63,10 @@ export function mapFigures(
   const { question, latency, trials, largest } = request
   const count = question.cutoffsHz.length * question.rollOffs.length
   const before = state?.before ?? null
+  const asked = { score: 0, latency, trials, largest, over: overWaveforms(request, over) }
   const cells =
     state && before
-      ? state.cells.map((cell) =>
-          cell === null
-            ? null
-            : cellFigures(preparedOf(request, before), cell, {
-                ...{ score: 0, latency, trials, largest },
-                over: overWaveforms(request, over),
-              }),
-        )
+      ? state.cells.map((cell) => cell && figuresOf(question, before, cell, asked))
       : new Array<null>(count).fill(null)
   const verdicts = cells.map((cell) => cell && keepsLimits(cell, limits))
   return {
@@ -139,34 +151,49 @@ export function cellInChain(workspace: Workspace, request: MapRequest): number |
   return row * cutoffsHz.length + nearest
 }
 
-/** The map as a table, a line a filter, with full digits and the sentence that it belongs to. */
-export function mapCsv(figures: MapFigures, request: MapRequest, workspace: Workspace): string {
+/** The filter of all rows that keeps the limits and has the least total error; that none keeps them is known of a whole map only. */
+export function bestOfAllRows({ cells, kept }: MapFigures): CellFigures | 'none' | 'not known' {
+  let best: CellFigures | null = null
+  cells.forEach((cell, i) => {
+    if (!cell || !kept[i] || cell.totalError === null) return
+    if (best === null || cell.totalError < (best.totalError as number)) best = cell
+  })
+  if (best !== null) return best
+  return kept.includes(true) || cells.includes(null) ? 'not known' : 'none'
+}
+
+/** The maps as a table, a line a filter, with full digits and the sentence that it belongs to. Several maps have a column for the kind of filter. */
+export function mapCsv(maps: readonly { figures: MapFigures; request: MapRequest }[], workspace: Workspace): string {
   const unit = scoreUnit(workspace.score.kind)
-  const { candidate, samplingRateHz } = request.question
-  const rollOff = candidate.design === 'butterworth' ? 'order of one pass' : 'transition width (Hz)'
-  const header = ['cutoff (Hz)', rollOff, `bias (${unit})`, `noise (${unit})`, `total error (${unit})`]
-  header.push(
-    'precision factor',
-    'equal-trials factor',
-    'latency shift (ms)',
-    'keeps the limits',
-    'on the front',
-    'problem',
+  const several = maps.length > 1
+  const rollOffs = maps.map(({ request }) =>
+    request.question.candidate.design === 'butterworth' ? 'order of one pass' : 'transition width (Hz)',
   )
-  const front = new Set(figures.front)
+  const header = [
+    ...(several ? ['kind of filter'] : []),
+    ...['cutoff (Hz)', [...new Set(rollOffs)].join(' or ')],
+    ...[`bias (${unit})`, `noise (${unit})`, `total error (${unit})`],
+    ...['precision factor', 'equal-trials factor', 'latency shift (ms)'],
+    ...['keeps the limits', 'on the front', 'problem'],
+  ]
   const cell = (value: number | null) => (value === null ? '' : value)
-  const lines = figures.cells.flatMap((of, i) =>
-    of === null
-      ? []
-      : [
-          [
-            ...[of.cutoffHz, of.rollOff, cell(of.bias), cell(of.noise), cell(of.totalError)],
-            ...[cell(of.precisionFactor), cell(of.equalTrialsFactor), cell(of.latencyShiftMs)],
-            ...[figures.kept[i] ? 'yes' : 'no', front.has(i) ? 'yes' : 'no', of.error ?? ''],
+  const lines = maps.flatMap(({ figures, request }) => {
+    const front = new Set(figures.front)
+    const kind = candidateWords(request.question.candidate)
+    return figures.cells.flatMap((of, i) =>
+      of === null
+        ? []
+        : [
+            [
+              ...(several ? [kind] : []),
+              ...[of.cutoffHz, of.rollOff, cell(of.bias), cell(of.noise), cell(of.totalError)],
+              ...[cell(of.precisionFactor), cell(of.equalTrialsFactor), cell(of.latencyShiftMs)],
+              ...[figures.kept[i] ? 'yes' : 'no', front.has(i) ? 'yes' : 'no', of.error ?? ''],
+            ],
           ],
-        ],
-  )
-  const words = protocolText(protocolLine(protocolOf(workspace, samplingRateHz)))
+    )
+  })
+  const words = protocolText(protocolLine(protocolOf(workspace, maps[0].request.question.samplingRateHz)))
   const last = ['protocol', words, ...Array<string>(header.length - 2).fill('')]
   return tableToCsv(header, [...lines, last])
 }

@@ -47,19 +47,44 @@ export function mapPlace({ chain, tradeOff }: ChainAndDesk): CandidatePlace {
   return first < 0 ? { at: chain.length, replaces: false } : { at: first, replaces: true }
 }
 
-/** The kind of filter; a stage of the same design and pass hands on its window and the meaning of its cutoff. */
+/** Which filters a map holds, but for cutoff and roll-off. */
+export type FilterKind = Pick<TradeOff, 'design' | 'direction'>
+
+export const FILTER_KINDS: readonly FilterKind[] = [
+  { design: 'butterworth', direction: 'both' },
+  { design: 'butterworth', direction: 'forward' },
+  { design: 'windowed-sinc', direction: 'both' },
+  { design: 'windowed-sinc', direction: 'forward' },
+]
+
+export const sameKind = (a: FilterKind, b: FilterKind) => a.design === b.design && a.direction === b.direction
+
+/** The kinds that are compared, each once, the desk's own first. */
+export function comparedKinds({ design, direction, beside }: TradeOff): FilterKind[] {
+  const all = [{ design, direction }, ...beside]
+  return all.filter((kind, i) => all.findIndex((other) => sameKind(kind, other)) === i)
+}
+
+/** The workspace as if the desk were about this kind; roll-offs that were chosen for one design mean nothing for another. */
+export function aboutKind<Part extends Pick<Workspace, 'tradeOff'>>(workspace: Part, kind: FilterKind): Part {
+  const { tradeOff } = workspace
+  if (sameKind(tradeOff, kind)) return workspace
+  const rollOffs = kind.design === tradeOff.design ? tradeOff.rollOffs : null
+  return { ...workspace, tradeOff: { ...tradeOff, ...kind, rollOffs } }
+}
+
+/** The kind of filter; the stage that it replaces hands on what its cutoff means, one of the same design its window too. */
 export function mapCandidate(workspace: ChainAndDesk): Candidate {
   const { design, pass, direction } = workspace.tradeOff
   const place = mapPlace(workspace)
   const present = place.replaces ? workspace.chain[place.at] : undefined
-  const like = present?.design === design ? present : undefined
-  const meaning = like && 'meaning' in like ? like.meaning : 'half-amplitude'
+  const meaning = present && 'meaning' in present ? present.meaning : 'half-amplitude'
   if (design === 'butterworth') return { design, pass, meaning, direction }
   return {
     design,
     pass,
     meaning,
-    window: like?.design === 'windowed-sinc' ? like.window : { name: 'hamming' },
+    window: present?.design === 'windowed-sinc' ? present.window : { name: 'hamming' },
     delay: direction === 'both' ? 'compensated' : 'causal',
   }
 }
@@ -147,9 +172,12 @@ interface MapSettings extends TradeOff {
 /** What the computation hangs on, as text: another limit or layer is no other question, unless it asks for a latency. */
 function settingsOf(tradeOff: TradeOff): string {
   const watched = tradeOff.layer === 'latency shift' || tradeOff.limits.latencyShiftMs !== undefined
-  const settings: MapSettings = { ...tradeOff, limits: {}, over: 'worst', layer: 'bias', watched }
+  const settings: MapSettings = { ...tradeOff, limits: {}, over: 'worst', layer: 'bias', beside: [], watched }
   return JSON.stringify(settings)
 }
+
+/** Of every kind the present one and a few before it. */
+const KEPT_QUESTIONS = 12
 
 const questionOf = memoised((...args: [...PartValues, RecordedData | null, ChosenNoise, string, number]) => {
   const [source, shown, chain, extent, baseline, score, measure, data, { noise, passed }, settings, trials] = args
@@ -200,7 +228,7 @@ const questionOf = memoised((...args: [...PartValues, RecordedData | null, Chose
     largest,
     latency: tradeOff.watched ? 1 : null,
   }
-})
+}, KEPT_QUESTIONS)
 
 function waveformsOf(
   { source, shown, tradeOff }: Pick<Workspace, 'source' | 'shown' | 'tradeOff'>,
@@ -242,10 +270,16 @@ function averageOver(data: RecordedData, channel: string | null): Float64Array {
   return all[0].map((_, i) => all.reduce((sum, values) => sum + values[i], 0) / all.length)
 }
 
-/** The workspace with a filter of the map in its chain. */
-export function withFilter(workspace: Workspace, cutoffHz: number, rollOff: number): Workspace {
+/** The workspace with a filter of a map in its chain; of the desk's own kind unless another is given. */
+export function withFilter(
+  workspace: Workspace,
+  cutoffHz: number,
+  rollOff: number,
+  kind: FilterKind = workspace.tradeOff,
+): Workspace {
   const place = mapPlace(workspace)
-  const chain = chainWithCandidate(workspace.chain, place, mapCandidate(workspace), cutoffHz, rollOff)
+  const candidate = mapCandidate(aboutKind(workspace, kind))
+  const chain = chainWithCandidate(workspace.chain, place, candidate, cutoffHz, rollOff)
   // a filter that was put in is the one that the map goes on with
   const tradeOff = place.replaces ? workspace.tradeOff : { ...workspace.tradeOff, stage: place.at }
   return { ...workspace, chain, tradeOff }

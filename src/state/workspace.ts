@@ -187,12 +187,23 @@ const START_TRACE = {
 /** Roll-offs of a map's rows: orders of one pass, or transition widths in Hz. */
 export const MAX_ROLL_OFFS = 12
 
+/** Two designs, each in two directions, are four kinds in all. */
+export const MAX_BESIDE = 3
+
 const tradeOffSchema = v.object({
   /** The stage that the map varies: its place in the chain, a new one, or (null) the first that can be varied. */
   stage: v.nullable(v.union([v.literal('insert'), v.pipe(finite, v.integer(), v.minValue(0))])),
   pass: v.picklist(['low', 'high']),
   design: v.picklist(['butterworth', 'windowed-sinc']),
   direction: directionSchema,
+  /** Other kinds of filter whose maps stand beside this one's. */
+  beside: v.optional(
+    v.pipe(
+      v.array(v.object({ design: v.picklist(['butterworth', 'windowed-sinc']), direction: directionSchema })),
+      v.maxLength(MAX_BESIDE),
+    ),
+    [],
+  ),
   fromHz: positive,
   toHz: positive,
   /** Null: those that suggest themselves for the design. */
@@ -225,6 +236,7 @@ const START_TRADE_OFF: v.InferOutput<typeof tradeOffSchema> = {
   pass: 'high',
   design: 'butterworth',
   direction: 'both',
+  beside: [],
   fromHz: 0.01,
   toHz: 3,
   rollOffs: null,

@@ -33,6 +33,14 @@ export function brief(value: number, digits = 3): string {
   return value < 0 && Number(trimmed) !== 0 ? MINUS + trimmed : trimmed
 }
 
+/** A measured number with exactly so many significant digits, zeros at the end among them: 0.20, 1.0, 29; whole where it has more. */
+export function measured(value: number, digits: number): string {
+  if (!Number.isFinite(value)) return '\u2013'
+  if (value === 0) return '0'
+  const size = Math.abs(Number(value.toPrecision(digits)))
+  return fixed(value, Math.max(0, Math.min(100, digits - 1 - Math.floor(Math.log10(size)))))
+}
+
 /** A number as the user typed it: every digit that matters, up to twelve. */
 export function exact(value: number): string {
   return brief(value, 12)

@@ -1,7 +1,7 @@
 import type { Candidate } from '../evidence/trade-off-candidate.ts'
 import type { CutoffRun, LimitName, TradeOffAnswer, TradeOffLimits } from '../evidence/trade-off-answer.ts'
 import type { CellFigures, OverWaveforms } from '../evidence/trade-off-figures.ts'
-import { brief, exact, list } from './number.ts'
+import { brief, exact, list, measured } from './number.ts'
 import { PASS_WORD } from './stage-words.ts'
 
 /** What the words need besides the answer itself. */
@@ -27,6 +27,7 @@ export function tradeOffWords(question: TradeOffWordsQuestion): string {
   const opening = `With ${exact(question.trials)} ${question.trials === 1 ? 'trial' : 'trials'}${caseWords(question)}, `
   const filter = `${PASS_WORD[candidate.pass]} cutoffs`
   const row = `(${rowWords(candidate, rollOff)})`
+  const rowOf = `${filter} ${row}`
   const looked = `${exact(answer.lowestHz)} to ${exact(answer.highestHz)} Hz`
   const left =
     answer.left === 0
@@ -42,16 +43,16 @@ export function tradeOffWords(question: TradeOffWordsQuestion): string {
     return (
       `${opening}no ${PASS_WORD[candidate.pass]} from ${looked} ${row} keeps ${limitList(limits, unit)}. ` +
       `What limits it most is the ${LIMIT_WORD[limit]}: ` +
-      `the least violation is at ${exact(answer.least.cutoffHz)} Hz, ${brief(size, 3)} ${unitOf(limit, unit)}${times}.${left}`
+      `the least violation is at ${exact(answer.least.cutoffHz)} Hz, ${measured(size, 3)} ${unitOf(limit, unit)}${times}.${left}`
     )
   }
   const limited = limitList(limits, unit)
   const region =
     answer.kind === 'all'
       ? limited === ''
-        ? `all ${filter} from ${looked} ${row} are open, since no limit is set`
-        : `all ${filter} from ${looked} ${row} keep ${limited}`
-      : `${filter} ${list(answer.allowed.map((run) => allowedWords(run, answer)))} ${row} keep ${limited}`
+        ? `all ${rowOf} from ${looked} are open, since no limit is set`
+        : `all ${rowOf} from ${looked} keep ${limited}`
+      : `${rowOf} ${list(answer.allowed.map((run) => allowedWords(run, answer)))} keep ${limited}`
   if (answer.best === null) return `${opening}${region}.${left}`
   return `${opening}${region}; ${bestWords(answer.best, unit)}; ${closeWords(answer.close, answer.best)}.${left}`
 }
@@ -95,30 +96,93 @@ const unitOf = (name: LimitName, unit: string) => (name === 'latencyShiftMs' ? '
 /** A run that begins or ends where the grid does says so: nothing was looked at beyond. */
 function allowedWords({ first, last }: CutoffRun, grid: { lowestHz: number; highestHz: number }): string {
   if (first.cutoffHz === last.cutoffHz) return `of ${exact(first.cutoffHz)} Hz only`
-  if (first.cutoffHz === grid.lowestHz) return `up to ${exact(last.cutoffHz)} Hz (from ${exact(first.cutoffHz)} Hz)`
-  if (last.cutoffHz === grid.highestHz) return `from ${exact(first.cutoffHz)} Hz up (to ${exact(last.cutoffHz)} Hz)`
+  if (first.cutoffHz === grid.lowestHz)
+    return `up to ${exact(last.cutoffHz)} Hz (the grid begins at ${exact(first.cutoffHz)} Hz)`
+  if (last.cutoffHz === grid.highestHz)
+    return `from ${exact(first.cutoffHz)} Hz up (the grid ends at ${exact(last.cutoffHz)} Hz)`
   return `from ${exact(first.cutoffHz)} to ${exact(last.cutoffHz)} Hz`
 }
 
 function bestWords(best: CellFigures, unit: string): string {
-  const total = `of these ${exact(best.cutoffHz)} Hz has the least total error, ${measured(best.totalError as number)} ${unit}`
+  const total = `of these ${exact(best.cutoffHz)} Hz has the least total error, ${twoDigits(best.totalError as number)} ${unit}`
   const { equalTrialsFactor: factor, precisionFactor: precision } = best
   if (factor !== null) {
-    return `${total}, and is worth ${measured(factor)} times the trials (equal-trials factor, so the effect's own change counts)`
+    return `${total}, and is worth ${twoDigits(factor)} times the trials (equal-trials factor, so the effect’s own change counts)`
   }
-  return precision === null ? total : `${total}, with a precision factor of ${measured(precision)}`
+  return precision === null ? total : `${total}, with a precision factor of ${twoDigits(precision)}`
 }
 
 function closeWords(close: readonly CutoffRun[], best: CellFigures): string {
   const alone = close.length === 1 && close[0].first === best && close[0].last === best
   if (alone) return 'no other cutoff of the grid that is allowed is within 5 % of it'
-  const runs = close.map(({ first, last }) =>
-    first === last ? `${exact(first.cutoffHz)} Hz` : `${exact(first.cutoffHz)} to ${exact(last.cutoffHz)} Hz`,
-  )
+  const runs = close.map(({ first, last }) => runText(first, last))
   return `${list(runs)} are within 5 % of it`
 }
 
-/** Two significant digits below 10, all whole ones above. */
-function measured(value: number): string {
-  return Math.abs(value) < 9.95 ? brief(value, 2) : brief(value, 3)
+/** As many as limits are usually given with. */
+const twoDigits = (value: number) => measured(value, 2)
+
+/** "Butterworth high-pass run both ways" */
+export function candidateWords(candidate: Candidate): string {
+  const pass = PASS_WORD[candidate.pass]
+  if (candidate.design === 'butterworth')
+    return `Butterworth ${pass} ${candidate.direction === 'both' ? 'run both ways' : 'run forward'}`
+  const delay =
+    candidate.delay === 'compensated' ? 'zero-phase' : candidate.delay === 'causal' ? 'causal' : 'minimum-phase'
+  return `${delay} windowed-sinc ${pass}`
 }
+
+/** "order 2", "0.5 Hz wide" */
+export function rollOffWords(candidate: Candidate, rollOff: number): string {
+  return candidate.design === 'butterworth' ? `order ${exact(rollOff)}` : `${exact(rollOff)} Hz wide`
+}
+
+/** What the short line of one map among several needs. */
+export interface MapLine {
+  /** Of the row at the cursor. */
+  readonly answer: TradeOffAnswer
+  readonly candidate: Candidate
+  readonly rollOff: number
+  readonly limits: TradeOffLimits
+  readonly unit: TradeOffWordsQuestion['unit']
+  /** The allowed filter of all rows with the least total error, or that no filter of the map keeps the limits, or neither is known. */
+  readonly ofAllRows: CellFigures | 'none' | 'not known'
+}
+
+/** One of several maps in a line, so that they can be compared: the allowed cutoffs of its row, the least total error of the row and of all rows. */
+export function mapLineWords({ answer, candidate, rollOff, limits, unit, ofAllRows }: MapLine): string {
+  const row = capital(rollOffWords(candidate, rollOff))
+  const best = typeof ofAllRows === 'string' ? null : ofAllRows
+  const all = best && leastWords(best, unit, `, ${rollOffWords(candidate, best.rollOff)}`)
+  if (answer.kind === 'nothing') return `${row}: ${answer.reason}.`
+  const limited = Object.values(limits).some((limit) => limit !== undefined)
+  if (answer.kind === 'none') {
+    const { least, tightest } = answer
+    const by = Number.isFinite(tightest.multiples) ? ` (${brief(tightest.multiples, 3)} times the limit)` : ''
+    const elsewhere = all
+      ? `; other rows do, with a least total error of ${all}`
+      : ofAllRows === 'none'
+        ? '; nor does any other row'
+        : ''
+    return `${row}: no cutoff keeps ${limitsWord(limits)}, ${exact(least.cutoffHz)} Hz comes nearest${by}${elsewhere}.`
+  }
+  const runs = list(answer.allowed.map(({ first, last }) => runText(first, last)))
+  const region = limited ? `${runs} ${one(answer.allowed) ? 'keeps' : 'keep'} ${limitsWord(limits)}` : `no limit is set`
+  if (answer.best === null) return `${row}: ${region}.`
+  const own = `least total error ${leastWords(answer.best, unit, '')}`
+  const other = all && best !== answer.best ? `; of all rows ${all}` : ''
+  return `${row}: ${region}, ${own}${other}.`
+}
+
+const capital = (text: string) => text[0].toUpperCase() + text.slice(1)
+
+const limitsWord = (limits: TradeOffLimits) =>
+  Object.values(limits).filter((limit) => limit !== undefined).length === 1 ? 'the limit' : 'the limits'
+
+const one = (runs: readonly CutoffRun[]) => runs.length === 1 && runs[0].first === runs[0].last
+
+const runText = (first: CellFigures, last: CellFigures) =>
+  first === last ? `${exact(first.cutoffHz)} Hz` : `${exact(first.cutoffHz)} to ${exact(last.cutoffHz)} Hz`
+
+const leastWords = (cell: CellFigures, unit: string, row: string) =>
+  `${twoDigits(cell.totalError as number)} ${unit} at ${exact(cell.cutoffHz)} Hz${row}`

@@ -2,10 +2,20 @@ import { describe, expect, test } from 'vitest'
 import { BATCH_DRAWS } from '../../src/evidence/simulated-score.ts'
 import { computeCell, planMap, prepareMap } from '../../src/evidence/trade-off-map.ts'
 import { evaluate } from '../../src/state/evaluate.ts'
-import { cellInChain, mapCsv, mapFigures, nearestComputed, noiseError } from '../../src/state/map-figures.ts'
+import {
+  bestOfAllRows,
+  cellInChain,
+  mapCsv,
+  mapFigures,
+  nearestComputed,
+  noiseError,
+} from '../../src/state/map-figures.ts'
 import { mapStore, runMap, runMaps, type Slice } from '../../src/state/map-run.ts'
 import { mapSlice } from '../../src/state/map-worker.ts'
 import {
+  aboutKind,
+  comparedKinds,
+  type FilterKind,
   filterInChain,
   mapCandidate,
   mapLimits,
@@ -76,6 +86,61 @@ describe('what the map varies', () => {
     expect(inserted.chain).toHaveLength(4)
     // the next one that is picked takes its place
     expect(withFilter(inserted, 0.2, 3).chain).toHaveLength(4)
+  })
+})
+
+describe('kinds that are compared', () => {
+  const forward: FilterKind = { design: 'butterworth', direction: 'forward' }
+  const sinc: FilterKind = { design: 'windowed-sinc', direction: 'both' }
+
+  test('are the desk’s own and those beside it, each once', () => {
+    const own: FilterKind = { design: 'butterworth', direction: 'both' }
+    expect(comparedKinds(start.tradeOff)).toEqual([own])
+    expect(comparedKinds({ ...start.tradeOff, beside: [sinc, own, forward, sinc] })).toEqual([own, sinc, forward])
+  })
+
+  test('have the same cutoffs and waveforms, and roll-offs of their own where the design is another', () => {
+    const several = asking({ rollOffs: [2, 4], beside: [forward, sinc] })
+    const [a, b, c] = comparedKinds(several.tradeOff).map((kind) => requestOf(aboutKind(several, kind)).question)
+    expect(b.cutoffsHz).toEqual(a.cutoffsHz)
+    expect(c.cutoffsHz).toEqual(a.cutoffsHz)
+    expect(b.rollOffs).toEqual([2, 4])
+    expect(c.rollOffs).toEqual([0.1, 0.2, 0.5, 1, 2, 4])
+    expect(b.candidate).toEqual({ ...a.candidate, direction: 'forward' })
+    expect(c.candidate).toMatchObject({ design: 'windowed-sinc', pass: 'high', delay: 'compensated' })
+    // beside or alone, it is one map
+    expect(requestOf(several).key).toBe(requestOf(asking({ rollOffs: [2, 4] })).key)
+  })
+
+  test('a filter picked from another kind takes the place, and asks no other map of any kind', () => {
+    const half: Workspace = {
+      ...asking({ beside: [forward, sinc] }),
+      chain: start.chain.map((spec, i) =>
+        i === 1 && spec.design === 'butterworth' ? { ...spec, meaning: 'half-power' } : spec,
+      ),
+    }
+    const picked = withFilter(half, 0.5, 1, sinc)
+    expect(picked.chain[1]).toEqual({
+      ...{ design: 'windowed-sinc', pass: 'high', meaning: 'half-power', window: { name: 'hamming' } },
+      ...{ delay: 'compensated', transitionHz: 1, cutoffsHz: [0.5] },
+    })
+    expect(picked.tradeOff).toEqual(half.tradeOff)
+    for (const kind of comparedKinds(half.tradeOff)) {
+      expect(requestOf(aboutKind(picked, kind)).key).toBe(requestOf(aboutKind(half, kind)).key)
+    }
+    expect(filterInChain(picked)).toBeNull()
+    expect(filterInChain(aboutKind(picked, sinc))).toEqual({ cutoffHz: 0.5, rollOff: 1 })
+  })
+
+  test('of all rows the allowed filter with the least total error is the best; that none is allowed is said of a whole map only', async () => {
+    const { figures } = await mapOf(small)
+    const best = bestOfAllRows(figures)
+    if (typeof best === 'string') throw new Error(best)
+    const allowed = figures.cells.filter((_, i) => figures.kept[i]).map((cell) => cell?.totalError as number)
+    expect(best.totalError).toBe(Math.min(...allowed))
+    const none = { ...figures, kept: figures.kept.map(() => false) }
+    expect(bestOfAllRows(none)).toBe('none')
+    expect(bestOfAllRows({ ...none, cells: [null, ...figures.cells.slice(1)] })).toBe('not known')
   })
 })
 
@@ -331,10 +396,16 @@ describe('a map that is computed', () => {
 
   test('is saved with a line for every filter, and the sentence', async () => {
     const { request, figures } = await mapOf(small)
-    const lines = mapCsv(figures, request, small).trim().split(/\r?\n/)
+    const lines = mapCsv([{ figures, request }], small).trim().split(/\r?\n/)
     expect(lines).toHaveLength(1 + 120 + 1)
     expect(lines[1].startsWith('0.01,1,')).toBe(true)
     expect(lines[121].startsWith('protocol,')).toBe(true)
+    const forward = await mapOf(aboutKind(small, { design: 'butterworth', direction: 'forward' }))
+    const both = mapCsv([{ figures, request }, forward], small).trim().split(/\r?\n/)
+    expect(both).toHaveLength(1 + 240 + 1)
+    expect(both[0].startsWith('kind of filter,cutoff (Hz),order of one pass,')).toBe(true)
+    expect(both[1]).toBe(`Butterworth high-pass run both ways,${lines[1]}`)
+    expect(both[121].startsWith('Butterworth high-pass run forward,0.01,1,')).toBe(true)
   })
 })
 
@@ -343,4 +414,7 @@ test('a workspace of before the desk reads with its defaults', () => {
   const read = readWorkspace(JSON.parse(JSON.stringify(old)))
   expect(read.ok && read.workspace.tradeOff).toEqual(startWorkspace().tradeOff)
   expect(read.ok && read.workspace.noiseFrom).toBe('model')
+  const { beside: ___, ...alone } = startWorkspace().tradeOff
+  const earlier = readWorkspace({ ...startWorkspace(), tradeOff: alone })
+  expect(earlier.ok && earlier.workspace.tradeOff).toEqual(startWorkspace().tradeOff)
 })

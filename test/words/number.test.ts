@@ -1,6 +1,6 @@
 import fc from 'fast-check'
 import { describe, expect, test } from 'vitest'
-import { brief, exact, fixed, list, parseNumber, signed } from '../../src/words/number.ts'
+import { brief, exact, fixed, list, measured, parseNumber, signed } from '../../src/words/number.ts'
 
 const anyNumber = fc.double({ noNaN: true, noDefaultInfinity: true })
 /** Sizes that are met: from a millionth of a millionth to a million millions, and exact zeros. */
@@ -168,5 +168,34 @@ describe('list', () => {
     [['a', 'b', 'c'], 'a, b and c'],
   ])('%j is %j', (items, text) => {
     expect(list(items)).toBe(text)
+  })
+})
+
+describe('measured', () => {
+  test.each([
+    [0.998, 2, '1.0'],
+    [0.2, 2, '0.20'],
+    [-0.0996, 2, '−0.10'],
+    [29.14, 2, '29'],
+    [1234, 2, '1234'],
+    [99.96, 3, '100'],
+    [0, 2, '0'],
+    [Number.NaN, 2, '–'],
+  ])('%d with %d digits is %s', (value, digits, text) => {
+    expect(measured(value, digits)).toBe(text)
+  })
+
+  test('has the value rounded to its digits, and at least so many of them', () => {
+    fc.assert(
+      fc.property(usual, fc.integer({ min: 1, max: 6 }), (value, digits) => {
+        const text = measured(value, digits)
+        fc.pre(value !== 0)
+        const number = Number(text.replace('−', '-'))
+        expect(Math.abs(number - value)).toBeLessThanOrEqual(
+          0.5000001 * 10 ** (Math.floor(Math.log10(Math.abs(value))) + 1 - digits),
+        )
+        expect(text.replace(/[−.]/g, '').replace(/^0+/, '').length).toBeGreaterThanOrEqual(digits)
+      }),
+    )
   })
 })

@@ -7,7 +7,7 @@ import type { Candidate } from '../../src/evidence/trade-off-candidate.ts'
 import { logCutoffs } from '../../src/evidence/trade-off-candidate.ts'
 import { type CellFigures, cellFigures } from '../../src/evidence/trade-off-figures.ts'
 import { computeCell, prepareMap } from '../../src/evidence/trade-off-map.ts'
-import { tradeOffWords } from '../../src/words/trade-off-words.ts'
+import { candidateWords, type MapLine, mapLineWords, tradeOffWords } from '../../src/words/trade-off-words.ts'
 
 const candidate: Candidate = { design: 'butterworth', pass: 'high', meaning: 'half-amplitude', direction: 'both' }
 
@@ -65,7 +65,7 @@ describe('tradeOffWords', () => {
   test('a bound from below, the best, what it is worth and what is nearly as good', () => {
     const words = say(rowOf(2, 40), { bias: 0.5 }, 40)
     expect(words).toMatch(
-      /^With 40 trials, high-pass cutoffs up to [\d.]+ Hz \(from 0\.02 Hz\) \(order 2 per pass, both ways\) keep the bias within 0\.5 µV; of these [\d.]+ Hz has the least total error, [\d.]+ µV, and is worth [\d.]+ times the trials \(equal-trials factor, so the effect's own change counts\); .+ within 5 % of it\.$/,
+      /^With 40 trials, high-pass cutoffs \(order 2 per pass, both ways\) up to [\d.]+ Hz \(the grid begins at 0\.02 Hz\) keep the bias within 0\.5 µV; of these [\d.]+ Hz has the least total error, [\d.]+ µV, and is worth [\d.]+ times the trials \(equal-trials factor, so the effect’s own change counts\); .+ within 5 % of it\.$/,
     )
   })
 
@@ -132,16 +132,16 @@ describe('tradeOffWords', () => {
             return
           }
           // the region: what the words' intervals hold is exactly what keeps the limits
-          const region = words.slice(0, words.indexOf('(order 2'))
+          const region = words.slice(0, words.search(/ keep | are open/))
           const inside = new Set<CellFigures>()
           const add = (from: number, to: number) => {
             for (const cell of row) if (cell.cutoffHz >= from && cell.cutoffHz <= to) inside.add(cell)
           }
           for (const m of region.matchAll(new RegExp(`of ${number} Hz only`, 'g')))
             add(at(m[1]).cutoffHz, at(m[1]).cutoffHz)
-          for (const m of region.matchAll(new RegExp(`up to ${number} Hz \\(from ${number} Hz\\)`, 'g')))
+          for (const m of region.matchAll(new RegExp(`up to ${number} Hz \\(the grid begins at ${number} Hz\\)`, 'g')))
             add(at(m[2]).cutoffHz, at(m[1]).cutoffHz)
-          for (const m of region.matchAll(new RegExp(`from ${number} Hz up \\(to ${number} Hz\\)`, 'g')))
+          for (const m of region.matchAll(new RegExp(`from ${number} Hz up \\(the grid ends at ${number} Hz\\)`, 'g')))
             add(at(m[1]).cutoffHz, at(m[2]).cutoffHz)
           for (const m of region.matchAll(new RegExp(`from ${number} to ${number} Hz`, 'g')))
             add(at(m[1]).cutoffHz, at(m[2]).cutoffHz)
@@ -205,8 +205,8 @@ describe('tradeOffWords', () => {
 
   test('several regions are all named', () => {
     expect(say(row, { bias: 0.2 }, 40)).toBe(
-      'With 40 trials, high-pass cutoffs of 0.1 Hz only, of 0.5 Hz only and of 2 Hz only (order 2 per pass, both ways) keep the bias within 0.2 µV; ' +
-        "of these 2 Hz has the least total error, 0.5 µV, and is worth 1.2 times the trials (equal-trials factor, so the effect's own change counts); " +
+      'With 40 trials, high-pass cutoffs (order 2 per pass, both ways) of 0.1 Hz only, of 0.5 Hz only and of 2 Hz only keep the bias within 0.2 µV; ' +
+        'of these 2 Hz has the least total error, 0.50 µV, and is worth 1.2 times the trials (equal-trials factor, so the effect’s own change counts); ' +
         'no other cutoff of the grid that is allowed is within 5 % of it.',
     )
   })
@@ -214,13 +214,13 @@ describe('tradeOffWords', () => {
   test('no region names the tightest limit and the least violation', () => {
     expect(say(row, { bias: 1, totalError: 0.1 }, 1)).toBe(
       'With 1 trial, no high-pass from 0.1 to 2 Hz (order 2 per pass, both ways) keeps the bias within 1 µV and the total error within 0.1 µV. ' +
-        'What limits it most is the total error: the least violation is at 1 Hz, 0.5 µV, 5 times the limit.',
+        'What limits it most is the total error: the least violation is at 1 Hz, 0.500 µV, 5 times the limit.',
     )
   })
 
   test('all, no limits, a windowed sinc, the worst case of many waveforms, and nothing at all', () => {
     expect(say(row, { bias: 1 }, 40)).toContain(
-      'all high-pass cutoffs from 0.1 to 2 Hz (order 2 per pass, both ways) keep the bias within 1 µV;',
+      'all high-pass cutoffs (order 2 per pass, both ways) from 0.1 to 2 Hz keep the bias within 1 µV;',
     )
     expect(say(row, {}, 40)).toContain('are open, since no limit is set;')
     const sinc = tradeOffWords({
@@ -234,9 +234,36 @@ describe('tradeOffWords', () => {
       over: 'worst',
     })
     expect(sinc).toContain(
-      'With 12.5 trials and the worst of 65 waveforms, low-pass cutoffs from 1 Hz up (to 2 Hz) (transition width 1.5 Hz, causal) keep the noise of the score within 0.6 µV',
+      'With 12.5 trials and the worst of 65 waveforms, low-pass cutoffs (transition width 1.5 Hz, causal) from 1 Hz up (the grid ends at 2 Hz) keep the noise of the score within 0.6 µV',
     )
     const broken = row.map((cell) => ({ ...cell, error: 'cutoffsHz[0] must lie below 125, was 200', bias: null }))
     expect(say(broken, {}, 40)).toBe('Nothing can be said: cutoffsHz[0] must lie below 125, was 200.')
+  })
+
+  test('one of several maps is a line: its row, what is allowed, the least total error there and anywhere', () => {
+    const line = (limits: TradeOffLimits, ofAllRows: MapLine['ofAllRows']) =>
+      mapLineWords({ answer: tradeOffAnswer(row, limits), candidate, rollOff: 2, limits, unit: 'µV', ofAllRows })
+    const better = { ...row[4], rollOff: 4, rollOffIndex: 1, totalError: 0.4 }
+    expect(line({ bias: 0.35 }, row[4])).toBe(
+      'Order 2: 0.1 to 0.5 Hz and 2 Hz keep the limit, least total error 0.50 µV at 2 Hz.',
+    )
+    expect(line({ bias: 0.35, noise: 0.6 }, better)).toBe(
+      'Order 2: 2 Hz keeps the limits, least total error 0.50 µV at 2 Hz; of all rows 0.40 µV at 2 Hz, order 4.',
+    )
+    expect(line({}, row[3])).toBe('Order 2: no limit is set, least total error 0.50 µV at 1 Hz.')
+    const over = 'Order 2: no cutoff keeps the limit, 1 Hz comes nearest (5 times the limit)'
+    expect(line({ totalError: 0.1 }, 'none')).toBe(`${over}; nor does any other row.`)
+    expect(line({ totalError: 0.1 }, 'not known')).toBe(`${over}.`)
+    expect(line({ totalError: 0.1 }, better)).toBe(
+      `${over}; other rows do, with a least total error of 0.40 µV at 2 Hz, order 4.`,
+    )
+  })
+
+  test('kinds of filter are named by design and direction', () => {
+    expect(candidateWords(candidate)).toBe('Butterworth high-pass run both ways')
+    expect(candidateWords({ ...candidate, direction: 'forward' })).toBe('Butterworth high-pass run forward')
+    const sinc = { design: 'windowed-sinc', pass: 'low', meaning: 'design', window: { name: 'hann' } } as const
+    expect(candidateWords({ ...sinc, delay: 'compensated' })).toBe('zero-phase windowed-sinc low-pass')
+    expect(candidateWords({ ...sinc, delay: 'minimum-phase' })).toBe('minimum-phase windowed-sinc low-pass')
   })
 })

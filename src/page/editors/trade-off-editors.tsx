@@ -1,9 +1,21 @@
 /** The editors of the trade-off desk: which filter is varied, over which range, under which limits, for which waveforms. */
 import { useState } from 'react'
 import { endGesture, say } from '../../state/store.ts'
-import { canVary, mapPlace, mapRollOffs, RANGE, scoreUnitOf, varyingStage } from '../../state/trade-off.ts'
+import {
+  canVary,
+  comparedKinds,
+  FILTER_KINDS,
+  type FilterKind,
+  mapPlace,
+  mapRollOffs,
+  RANGE,
+  sameKind,
+  scoreUnitOf,
+  varyingStage,
+} from '../../state/trade-off.ts'
 import { MAX_ROLL_OFFS, type TradeOff, type Workspace } from '../../state/workspace.ts'
 import { exact, parseNumber, stageName } from '../../words/index.ts'
+import { kindWords } from '../desks/trade-off/map-words.ts'
 import { Choice, NumberField } from '../fields.tsx'
 import { Editor } from './editor.tsx'
 
@@ -69,6 +81,33 @@ export function FilterKindEditor({ workspace }: EditorProps) {
         onChange={(direction) => set({ direction })}
       />
       <p className="quiet">The rest of the chain stays as it is.</p>
+    </Editor>
+  )
+}
+
+/** Other kinds of filter, whose maps stand beside the first. */
+export function BesideEditor({ workspace }: EditorProps) {
+  const { tradeOff } = workspace
+  const toggle = (kind: FilterKind, on: boolean) => {
+    const others = comparedKinds(tradeOff).slice(1)
+    set({ beside: on ? [...others, kind] : others.filter((other) => !sameKind(other, kind)) })
+  }
+  return (
+    <Editor title="Trade-off" subtitle="kinds of filter beside it">
+      {FILTER_KINDS.filter((kind) => !sameKind(kind, tradeOff)).map((kind) => (
+        <label key={kindWords(kind)} className="small beside-kind">
+          <input
+            type="checkbox"
+            checked={tradeOff.beside.some((other) => sameKind(other, kind))}
+            onChange={(event) => toggle(kind, event.target.checked)}
+          />{' '}
+          {kindWords(kind)}
+        </label>
+      ))}
+      <p className="quiet">
+        Each has a map of its own, on the same cutoffs and the same shades. A filter that is picked from any of them
+        takes the place of the one that is varied.
+      </p>
     </Editor>
   )
 }

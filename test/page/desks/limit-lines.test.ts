@@ -33,10 +33,12 @@ describe('a map with limits', () => {
     fc.assert(
       fc.property(cells, limits, (of, asked) => {
         const map = limitedMap(of.map(cell), asked, 10, 4)
-        if (Object.keys(asked).length === 0) return expect(map.region).toBeNull()
+        expect(map.region === null).toBe(Object.keys(asked).length === 0)
+        const { region } = map
+        if (!region) return
         of.forEach((change, i) => {
           const middle = (i % 10) + 0.5
-          const held = map.region?.[Math.floor(i / 10)].some(({ from, to }) => middle > from && middle < to)
+          const held = region[Math.floor(i / 10)].some(({ from, to }) => middle > from && middle < to)
           // on the limit the middle is the very end of the run
           const { kept, tightest } = verdictOnLimits(cell(change), asked)
           if (Math.abs((tightest?.multiples ?? 2) - 1) > 1e-6) expect(held).toBe(kept)
@@ -75,7 +77,7 @@ describe('names at the lines', () => {
         (of, asked, width, rowHeight) => {
           const map = limitedMap(of.map(cell), asked, 10, 4)
           const room = frame(width, 4 * rowHeight)
-          const placed = placedLimits(map, room, 10, 4, 'µV', [3, 4, 5])
+          const placed = placedLimits(map, room, 10, 4, 'µV', [3, 4, 5], 12)
           const boxes = placed.map(({ x, y, anchor, width: w, height: h }) => ({
             ...{ left: anchor === 'start' ? x : x - w, right: anchor === 'start' ? x + w : x },
             ...{ top: y - h / 2, bottom: y + h / 2 },
@@ -98,17 +100,26 @@ describe('names at the lines', () => {
     const biases = [0.1, 0.1, 0.1, 0.1, 0.1, 0.4, 0.4, 0.4, 0.4, 0.4]
     const of = biases.map((bias) => cell({ bias }))
     const map = limitedMap(of, { bias: 0.2 }, 10, 1)
-    const [name, ...others] = placedLimits(map, frame(600, 25), 10, 1, 'µV', [])
+    const [name, ...others] = placedLimits(map, frame(600, 25), 10, 1, 'µV', [], null)
     expect(others).toEqual([])
     expect(name).toMatchObject({ text: 'bias 0.2 µV', anchor: 'end' })
     // halfway in log size from the middle of the fifth cell to the sixth's
     expect(name.x).toBeCloseTo(10 + 300 - 2, 6)
   })
 
+  test('makes room for the cursor', () => {
+    const of = Array.from({ length: 20 }, (_, i) => cell({ bias: i % 10 < 5 ? 0.1 : 0.4 }))
+    const map = limitedMap(of, { bias: 0.2 }, 10, 2)
+    const rowOf = (cursor: number | null) => placedLimits(map, frame(600, 50), 10, 2, 'µV', [], cursor)[0].y
+    expect(rowOf(null)).toBe(22.5)
+    expect(rowOf(14)).toBe(47.5)
+    expect(rowOf(4)).toBe(22.5)
+  })
+
   test('of two limits whose lines run side by side stand in different places', () => {
     const of = Array.from({ length: 40 }, (_, i) => cell({ bias: i % 10 < 5 ? 0.1 : 0.4, noise: i % 10 < 5 ? 2 : 0.5 }))
     const map = limitedMap(of, { bias: 0.2, noise: 1 }, 10, 4)
-    const placed = placedLimits(map, frame(400, 100), 10, 4, 'µV', [])
+    const placed = placedLimits(map, frame(400, 100), 10, 4, 'µV', [], null)
     expect(placed.map(({ limit: name }) => name).sort()).toEqual(['bias', 'noise'])
     expect(placed.map(({ anchor }) => anchor).sort()).toEqual(['end', 'start'])
   })

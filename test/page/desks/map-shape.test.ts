@@ -59,13 +59,14 @@ describe('shades', () => {
 describe('words of a cell', () => {
   test('name filter, figures and verdict, with the error of what was simulated', () => {
     expect(cellWords(cell({}), candidate, { bias: 0.2 }, 'µV', null)).toBe(
-      '0.15 Hz, order 2: bias −0.120 µV, noise 0.71 µV, total error 0.72 µV, precision factor 1.3, equal-trials factor 1.2; keeps the limits',
+      '0.15 Hz, order 2: bias −0.120 µV, noise 0.710 µV, total error 0.720 µV, precision factor 1.30, equal-trials factor 1.20; keeps the limits',
     )
-    expect(cellWords(cell({}), candidate, { bias: 0.1 }, 'µV', 0.012)).toContain('noise 0.71 ± 0.01 µV')
+    expect(cellWords(cell({}), candidate, { bias: 0.1 }, 'µV', 0.012)).toContain('noise 0.710 ± 0.01 µV')
     expect(cellWords(cell({}), candidate, { bias: 0.1 }, 'µV', 0.012)).toContain('over a limit')
     expect(cellWords(cell({ error: 'too wide' }), candidate, {}, 'µV', null)).toBe(
       '0.15 Hz, order 2: cannot be used (too wide)',
     )
+    expect(cellWords(cell({ equalTrialsFactor: 1e-8 }), candidate, {}, 'µV', null)).toContain('factor below 0.001')
     expect(cellWords(null, candidate, {}, 'µV', null)).toBe('not computed yet')
   })
 

@@ -2,12 +2,12 @@
 import { useRef } from 'react'
 import { Axis, Clipped, DirectLabel, FigureFrame, GridLines, Line, linearScale, ZeroLine } from '../../../plot/index.ts'
 import type { Tone } from '../../../plot/index.ts'
-import { brief } from '../../../words/index.ts'
+import { brief, measured, rollOffWords } from '../../../words/index.ts'
 import { FigureHead } from '../../figure-head.tsx'
 import { MAP_MARGIN } from './map-figure.tsx'
 import { cutoffScale } from './map-shape.ts'
-import { type MapUnit, rollOffWords } from './map-words.ts'
-import type { DrawnMap } from './use-map.ts'
+import type { MapUnit } from './map-words.ts'
+import type { DrawnMap } from './use-maps.ts'
 
 interface CutFigureProps {
   map: DrawnMap
@@ -36,7 +36,7 @@ export function CutFigure({ map, unit, at, caption }: CutFigureProps) {
     },
   ]
   const most = Math.max(...curves.flatMap(({ values }) => values.filter(Number.isFinite)), limits.bias ?? 0, 1e-6)
-  const said = curves.map(({ name, values }) => `${name} ${brief(values[column], 3)} ${unit}`)
+  const said = curves.map(({ name, values }) => `${name} ${measured(values[column], 3)} ${unit}`)
   return (
     <>
       <FigureHead
@@ -100,7 +100,7 @@ export function CutFigure({ map, unit, at, caption }: CutFigureProps) {
                       tone={tone}
                       anchor={side < 0 ? 'end' : 'start'}
                     >
-                      <tspan className="plot-strong">{name}</tspan> {brief(values[column], 3)}
+                      <tspan className="plot-strong">{name}</tspan> {measured(values[column], 3)}
                     </DirectLabel>
                   ) : null,
                 )}

@@ -3,29 +3,36 @@ import type { TradeOffLimits } from '../../../evidence/trade-off-answer.ts'
 import type { CellFigures } from '../../../evidence/trade-off-figures.ts'
 import type { Candidate } from '../../../evidence/trade-off-candidate.ts'
 import { verdictOnLimits } from '../../../state/map-figures.ts'
-import { brief, exact } from '../../../words/index.ts'
+import { brief, exact, measured, rollOffWords } from '../../../words/index.ts'
 import { WordButton } from '../../fields.tsx'
 import { TableHead } from '../table-head.tsx'
-import { changeText, type MapUnit, rollOffWords } from './map-words.ts'
+import { changeText, factorText, type MapUnit } from './map-words.ts'
 
-interface FiltersTableProps {
-  filters: readonly { name: string; index: number; cell: CellFigures | null }[]
+export interface NamedFilter {
+  name: string
+  cell: CellFigures | null
   candidate: Candidate
-  limits: TradeOffLimits
-  unit: MapUnit
-  inChain: number | null
-  csv: () => string
-  onPick: (index: number) => void
+  inChain: boolean
+  onPick: () => void
 }
 
-export function FiltersTable({ filters, candidate, limits, unit, inChain, csv, onPick }: FiltersTableProps) {
+interface FiltersTableProps {
+  filters: readonly NamedFilter[]
+  limits: TradeOffLimits
+  unit: MapUnit
+  /** How many maps the CSV holds. */
+  maps: number
+  csv: () => string
+}
+
+export function FiltersTable({ filters, limits, unit, maps, csv }: FiltersTableProps) {
   const limited = Object.keys(limits).length > 0
   return (
     <>
       <TableHead
         title="Filters"
-        told="the CSV holds every filter of the map"
-        what="the map"
+        told={`the CSV holds every filter of the ${maps > 1 ? 'maps' : 'map'}`}
+        what={maps > 1 ? 'the maps' : 'the map'}
         fileName="trade-off-map"
         csv={csv}
       />
@@ -49,26 +56,26 @@ export function FiltersTable({ filters, candidate, limits, unit, inChain, csv, o
             </tr>
           </thead>
           <tbody>
-            {filters.map(({ name, index, cell }) => (
+            {filters.map(({ name, cell, candidate, inChain, onPick }) => (
               <tr key={name}>
                 <th scope="row">{name}</th>
                 <td>{cell ? `${exact(cell.cutoffHz)} Hz` : '–'}</td>
                 <td>{cell ? rollOffWords(candidate, cell.rollOff) : '–'}</td>
                 <Size value={cell?.bias} unit={unit} words={changeText} />
-                <Size value={cell?.noise} unit={unit} words={(value) => brief(value, 3)} />
-                <Size value={cell?.totalError} unit={unit} words={(value) => brief(value, 3)} />
+                <Size value={cell?.noise} unit={unit} words={(value) => measured(value, 3)} />
+                <Size value={cell?.totalError} unit={unit} words={(value) => measured(value, 3)} />
                 <td>{factor(cell?.precisionFactor)}</td>
                 <td>{factor(cell?.equalTrialsFactor)}</td>
                 <td>
                   <Verdict cell={cell} limits={limits} limited={limited} />
                 </td>
                 <td>
-                  {index === inChain ? (
+                  {inChain ? (
                     <span className="quiet">in the chain</span>
                   ) : cell && cell.error === null ? (
                     <WordButton
-                      label={`put ${exact(cell.cutoffHz)} Hz, ${rollOffWords(candidate, cell.rollOff)}, into the chain`}
-                      onPress={() => onPick(index)}
+                      label={`put ${name}, ${exact(cell.cutoffHz)} Hz, ${rollOffWords(candidate, cell.rollOff)}, into the chain`}
+                      onPress={onPick}
                     >
                       use
                     </WordButton>
@@ -83,7 +90,7 @@ export function FiltersTable({ filters, candidate, limits, unit, inChain, csv, o
   )
 }
 
-const factor = (value: number | null | undefined) => (value === null || value === undefined ? '–' : brief(value, 3))
+const factor = (value: number | null | undefined) => (value === null || value === undefined ? '–' : factorText(value))
 
 function Size(props: { value: number | null | undefined; unit: MapUnit; words: (value: number) => string }) {
   const { value, unit, words } = props

@@ -14,7 +14,7 @@ import type { CellFigures } from '../../../evidence/trade-off-figures.ts'
 import { FigureHead } from '../../figure-head.tsx'
 import { Unspoken } from '../../label-text.tsx'
 import { cellWords, type MapUnit } from './map-words.ts'
-import type { DrawnMap } from './use-map.ts'
+import type { DrawnMap } from './use-maps.ts'
 
 const MARGIN = { top: 8, right: 10, bottom: 24, left: 44 }
 
@@ -40,7 +40,7 @@ export function FrontFigure({ map, unit, at, inChain, caption, onMove, onPick }:
     const byIndex = new Map(points.map((point) => [point.index, point]))
     return figures.front.flatMap((index) => byIndex.get(index) ?? [])
   }, [figures, points])
-  const most = Math.max(...points.map(({ bias }) => bias), limits.bias ?? 0, 1e-6)
+  const most = Math.max(...points.map(({ bias }) => bias), limits.bias ?? 0, points.length > 0 ? 1e-6 : 1)
   const noises = points.map(({ noise }) => noise)
   const low = noises.length > 0 ? Math.min(...noises) : 0
   const high = noises.length > 0 ? Math.max(...noises) : 1

@@ -89,13 +89,14 @@ export interface PlacedLimit {
 const LABEL_HEIGHT = 16
 const PADDING = 4
 /** A name that stands on another limit's line could be taken for that one's: only where there is no other place. */
-const COST = { lineCovered: 30, outside: 8, markCovered: 1, row: 0.1 }
+const COST = { lineCovered: 30, cursorCovered: 15, outside: 8, markCovered: 1, row: 0.1 }
 
 /**
  * Each limit's name beside an upright piece of its line, rather on the side that keeps the limit. A limit with several lines has its name at the
  * longest; at the others where there is room.
  *
- * @param marks cells that a name should leave free, as far as there is room.
+ * @param marks  cells that a name should leave free, as far as there is room.
+ * @param cursor the cell that a name should leave free above others; null for none.
  * @returns fewer than there are limits with lines only where the map is too small for a name.
  */
 export function placedLimits(
@@ -105,6 +106,7 @@ export function placedLimits(
   rows: number,
   unit: MapUnit,
   marks: readonly number[],
+  cursor: number | null,
 ): PlacedLimit[] {
   const x = (column: number) => frame.left + (column / columns) * frame.plotWidth
   const middle = (row: number) => frame.bottom - ((row + 0.5) / rows) * frame.plotHeight
@@ -127,10 +129,15 @@ export function placedLimits(
         const crossed = lined
           .flatMap((other) => other.pieces)
           .filter((piece) => piece.row === row && piece.column !== column && covers(x(piece.column))).length
-        const marked = marks.filter((at) => Math.floor(at / columns) === row && covers(x((at % columns) + 0.5))).length
+        const under = (at: number) => Math.floor(at / columns) === row && covers(x((at % columns) + 0.5))
+        const onCursor = cursor !== null && under(cursor) ? COST.cursorCovered : 0
         const kept = of.inside[row].some((run) => Math.abs((side > 0 ? run.from : run.to) - column) < 1e-3)
         const cost =
-          COST.lineCovered * crossed + COST.markCovered * marked + (kept ? 0 : COST.outside) + COST.row * (rows - row)
+          COST.lineCovered * crossed +
+          COST.markCovered * marks.filter(under).length +
+          onCursor +
+          (kept ? 0 : COST.outside) +
+          COST.row * (rows - row)
         return { x: near, y: middle(row), anchor: side > 0 ? 'start' : 'end', cost }
       }),
     )

@@ -68,14 +68,16 @@ function boxes(rows: RunsByRow, x: (column: number) => number, y: (row: number) 
 interface LimitNamesProps extends LimitMarksProps {
   unit: MapUnit
   marks: readonly number[]
+  cursor: number
 }
 
 /** Above everything else on the map, on a ground of their own, since cells are dark and light. */
-export const LimitNames = memo(function LimitNames({ frame, columns, rows, limited, unit, marks }: LimitNamesProps) {
+export const LimitNames = memo(function LimitNames(props: LimitNamesProps) {
+  const { frame, columns, rows, limited, unit, marks, cursor } = props
   return (
     <Unspoken>
       <g pointerEvents="none">
-        {placedLimits(limited, frame, columns, rows, unit, marks).map(
+        {placedLimits(limited, frame, columns, rows, unit, marks, cursor).map(
           ({ limit, text, x, y, anchor, width, height }) => (
             <g key={limit}>
               <rect

@@ -1,5 +1,5 @@
 /** The map: every filter of the grid as a cell, a line at each limit, the allowed region unveiled, the front marked. */
-import { memo, useMemo, useRef, useState } from 'react'
+import { memo, type ReactNode, useMemo, useRef, useState } from 'react'
 import { Axis, FigureFrame, type Frame, hatchId } from '../../../plot/index.ts'
 import type { CellFigures } from '../../../evidence/trade-off-figures.ts'
 import { nearestComputed } from '../../../state/map-figures.ts'
@@ -11,16 +11,20 @@ import { FigureHead } from '../../figure-head.tsx'
 import { Unspoken } from '../../label-text.tsx'
 import { limitedMap, limitLabel, unlinedWords } from './limit-lines.ts'
 import { LimitMarks, LimitNames } from './limit-marks.tsx'
-import { cutoffScale, movedCell, rowTop, type Shade, shadeOf } from './map-shape.ts'
-import { cellWords, layerUnit, type MapUnit } from './map-words.ts'
-import type { DrawnMap } from './use-map.ts'
+import { cutoffScale, movedCell, rowTop, type Shade } from './map-shape.ts'
+import { capital, cellWords, layerUnit, type MapUnit } from './map-words.ts'
+import type { DrawnMap } from './use-maps.ts'
 
 export const MAP_MARGIN = { top: 6, right: 10, bottom: 24, left: 54 }
 const ROW_PX = 25
 
 interface MapFigureProps {
   map: DrawnMap
+  /** Which of several maps it is, in words; null where it is the only one. */
+  name: string | null
+  fileName: string
   layer: TradeOff['layer']
+  shade: Shade
   unit: MapUnit
   /** Cell under the cursor; of the filter in the chain. */
   at: number
@@ -29,11 +33,14 @@ interface MapFigureProps {
   caption: () => string
   onMove: (index: number) => void
   onPick: (index: number) => void
+  /** Words and switches beside the title. */
+  children?: ReactNode
 }
 
 const LAYERS: readonly TradeOff['layer'][] = ['bias', 'noise', 'total error', 'equal-trials factor', 'latency shift']
 
-export function MapFigure({ map, layer, unit, at, inChain, noiseErrorOf, caption, onMove, onPick }: MapFigureProps) {
+export function MapFigure(props: MapFigureProps) {
+  const { map, name, fileName, layer, shade, unit, at, inChain, noiseErrorOf, caption, onMove, onPick } = props
   const svg = useRef<SVGSVGElement>(null)
   const [pointed, setPointed] = useState<number | null>(null)
   const { request, figures, limits } = map
@@ -41,7 +48,6 @@ export function MapFigure({ map, layer, unit, at, inChain, noiseErrorOf, caption
   const columns = cutoffsHz.length
   const rows = rollOffs.length
   const cells = useMemo(() => nearestComputed(figures, columns, rows), [figures, columns, rows])
-  const shade = useMemo(() => shadeOf(figures.cells, layer), [figures, layer])
   const limited = useMemo(() => limitedMap(cells, limits, columns, rows), [cells, limits, columns, rows])
   const marks = useMemo(() => (inChain === null ? figures.front : [...figures.front, inChain]), [figures, inChain])
   const lined = limited.limits.filter(({ lines }) => lines.length > 0).map((of) => limitLabel(of, unit))
@@ -56,17 +62,11 @@ export function MapFigure({ map, layer, unit, at, inChain, noiseErrorOf, caption
   const kept = figures.kept.filter(Boolean).length
   return (
     <>
-      <FigureHead title="Map" svg={svg} caption={caption} fileName="trade-off-map">
-        <Choice
-          label="what the map shows"
-          value={layer}
-          options={LAYERS.map((value) => ({ value, text: value }))}
-          onChange={(next) => say((w) => ({ ...w, tradeOff: { ...w.tradeOff, layer: next } }))}
-        />
-        <Legend shade={shade} layer={layer} unit={unit} />
+      <FigureHead title={name === null ? 'Map' : capital(name)} svg={svg} caption={caption} fileName={fileName}>
+        {props.children}
       </FigureHead>
       <FigureFrame
-        title="Trade-off map"
+        title={name === null ? 'Trade-off map' : `Trade-off map, ${name}`}
         description={`${layer} over ${columns} cutoffs and ${rows} roll-offs. ${kept} of ${columns * rows} filters keep the limits; ${figures.front.length} are on the front that no other beats in bias and noise.${lined.length > 0 ? ` Lines at the limits: ${list(lined)}.` : ''} At the cursor: ${words(at)}.`}
         height={height}
         margin={MAP_MARGIN}
@@ -79,7 +79,7 @@ export function MapFigure({ map, layer, unit, at, inChain, noiseErrorOf, caption
             <Cells {...{ frame, cells, shade, columns, rows }} />
             <LimitMarks {...{ frame, columns, rows, limited }} />
             <Marks {...{ frame, columns, rows, inChain }} front={figures.front} />
-            <LimitNames {...{ frame, columns, rows, limited, unit, marks }} />
+            <LimitNames {...{ frame, columns, rows, limited, unit, marks }} cursor={at} />
             <Axis
               side="bottom"
               scale={cutoffScale(cutoffsHz, frame.left, frame.right)}
@@ -91,7 +91,7 @@ export function MapFigure({ map, layer, unit, at, inChain, noiseErrorOf, caption
               role="button"
               tabIndex={0}
               className="map-cursor plot-focus"
-              aria-label={`Cell of the map: ${words(at)}. Arrow keys move, Enter puts the filter into the chain.`}
+              aria-label={`Cell of the map${name === null ? '' : ` of ${name}`}: ${words(at)}. Arrow keys move, Enter puts the filter into the chain.`}
               onKeyDown={(event) => {
                 if (event.key === 'Enter' || event.key === ' ') {
                   event.preventDefault()
@@ -232,6 +232,27 @@ function RowLabels({ frame, rollOffs, orders }: { frame: Frame; rollOffs: readon
         ))}
       </g>
     </Unspoken>
+  )
+}
+
+interface LayerChoiceProps {
+  layer: TradeOff['layer']
+  shade: Shade
+  unit: MapUnit
+}
+
+/** What the maps show, and the scale of their shades. */
+export function LayerChoice({ layer, shade, unit }: LayerChoiceProps) {
+  return (
+    <>
+      <Choice
+        label="what the map shows"
+        value={layer}
+        options={LAYERS.map((value) => ({ value, text: value }))}
+        onChange={(next) => say((w) => ({ ...w, tradeOff: { ...w.tradeOff, layer: next } }))}
+      />
+      <Legend shade={shade} layer={layer} unit={unit} />
+    </>
   )
 }
 

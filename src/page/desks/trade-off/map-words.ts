@@ -3,21 +3,18 @@ import type { LimitName, TradeOffLimits } from '../../../evidence/trade-off-answ
 import type { CellFigures } from '../../../evidence/trade-off-figures.ts'
 import type { Candidate } from '../../../evidence/trade-off-candidate.ts'
 import { verdictOnLimits } from '../../../state/map-figures.ts'
+import type { FilterKind } from '../../../state/trade-off.ts'
 import type { TradeOff, Workspace } from '../../../state/workspace.ts'
-import { brief, exact, list, PASS_WORD, signed } from '../../../words/index.ts'
+import { brief, exact, list, measured, rollOffWords, signed } from '../../../words/index.ts'
 
 export type MapUnit = 'µV' | 'ms' | 'µV·s'
 
-export function candidateWords(candidate: Candidate): string {
-  const pass = PASS_WORD[candidate.pass]
-  if (candidate.design === 'butterworth')
-    return `Butterworth ${pass} ${candidate.direction === 'both' ? 'run both ways' : 'run forward'}`
-  return `${candidate.delay === 'compensated' ? 'zero-phase' : 'causal'} windowed-sinc ${pass}`
-}
+export const capital = (text: string) => text[0].toUpperCase() + text.slice(1)
 
-/** "order 2", "0.5 Hz wide" */
-export function rollOffWords(candidate: Candidate, rollOff: number): string {
-  return candidate.design === 'butterworth' ? `order ${exact(rollOff)}` : `${exact(rollOff)} Hz wide`
+/** A kind of filter whose pass is clear: "Butterworth run forward", "zero-phase windowed sinc" */
+export function kindWords({ design, direction }: FilterKind): string {
+  if (design === 'butterworth') return `Butterworth run ${direction === 'both' ? 'both ways' : 'forward'}`
+  return `${direction === 'both' ? 'zero-phase' : 'causal'} windowed sinc`
 }
 
 export function rangeWords(candidate: Candidate, { fromHz, toHz }: TradeOff, rollOffs: readonly number[]): string {
@@ -69,10 +66,10 @@ export function cellWords(
   const parts: string[] = []
   if (cell.bias !== null) parts.push(`bias ${changeText(cell.bias)} ${unit}`)
   if (cell.noise !== null)
-    parts.push(`noise ${brief(cell.noise)}${noiseError === null ? '' : ` ± ${brief(noiseError, 1)}`} ${unit}`)
-  if (cell.totalError !== null) parts.push(`total error ${brief(cell.totalError)} ${unit}`)
-  if (cell.precisionFactor !== null) parts.push(`precision factor ${brief(cell.precisionFactor)}`)
-  if (cell.equalTrialsFactor !== null) parts.push(`equal-trials factor ${brief(cell.equalTrialsFactor)}`)
+    parts.push(`noise ${measured(cell.noise, 3)}${noiseError === null ? '' : ` ± ${brief(noiseError, 1)}`} ${unit}`)
+  if (cell.totalError !== null) parts.push(`total error ${measured(cell.totalError, 3)} ${unit}`)
+  if (cell.precisionFactor !== null) parts.push(`precision factor ${factorText(cell.precisionFactor)}`)
+  if (cell.equalTrialsFactor !== null) parts.push(`equal-trials factor ${factorText(cell.equalTrialsFactor)}`)
   if (cell.latencyShiftMs !== null) parts.push(`latency shift ${changeText(cell.latencyShiftMs)} ms`)
   if (cell.missingShare > 0) parts.push(`no such score in ${brief(100 * cell.missingShare, 2)} % of the averages`)
   const verdict = verdictOnLimits(cell, limits)
@@ -86,3 +83,6 @@ export function changeText(value: number): string {
   const decimals = size === 0 ? 2 : Math.max(0, Math.min(4, 2 - Math.floor(Math.log10(size))))
   return signed(value, decimals)
 }
+
+/** A factor that says "as good as nothing" needs no zeros. */
+export const factorText = (value: number) => (value < 0.001 ? 'below 0.001' : measured(value, 3))

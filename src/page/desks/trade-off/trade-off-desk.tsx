@@ -1,30 +1,39 @@
-/** Trade-off: which cutoff and roll-off keep the limits, and what each costs in bias and noise. */
-import { useState } from 'react'
-import { useStore } from 'zustand'
+/** Trade-off: which cutoff and roll-off keep the limits, and what each costs in bias and noise; one kind of filter, or several side by side. */
+import { useMemo, useState } from 'react'
 import type { Evaluation } from '../../../state/evaluation.ts'
-import { answerOfRow, cellInChain, mapCsv, noiseError, overWaveforms } from '../../../state/map-figures.ts'
-import { dataStore, recordedData } from '../../../state/recorded-data.ts'
-import { endGesture, say } from '../../../state/store.ts'
-import { scoreUnitOf, withFilter } from '../../../state/trade-off.ts'
-import { DIFFERENCE, type Workspace } from '../../../state/workspace.ts'
-import { exact, scoreWords, tradeOffWords } from '../../../words/index.ts'
 import {
+  answerOfRow,
+  bestOfAllRows,
+  cellInChain,
+  mapCsv,
+  noiseError,
+  overWaveforms,
+} from '../../../state/map-figures.ts'
+import { endGesture, say } from '../../../state/store.ts'
+import { aboutKind, scoreUnitOf, withFilter } from '../../../state/trade-off.ts'
+import type { Workspace } from '../../../state/workspace.ts'
+import { candidateWords, list, mapLineWords, scoreWords, tradeOffWords } from '../../../words/index.ts'
+import {
+  BesideEditor,
   FilterKindEditor,
   MapLimitsEditor,
   MapRangeEditor,
   MapWaveformsEditor,
 } from '../../editors/trade-off-editors.tsx'
-import { NumberField, SliderField, WordButton } from '../../fields.tsx'
+import { NumberField, SliderField } from '../../fields.tsx'
 import { useView } from '../../hooks.ts'
 import { Token } from '../../token.tsx'
 import type { DeskProps } from '../desks.tsx'
 import { CutFigure } from './cut-figure.tsx'
-import { FiltersTable } from './filters-table.tsx'
+import { FiltersTable, type NamedFilter } from './filters-table.tsx'
 import { FrontFigure } from './front-figure.tsx'
-import { MapFigure } from './map-figure.tsx'
-import { candidateWords, limitWords, type MapUnit, rangeWords, waveformsWords } from './map-words.ts'
+import { LayerChoice, MapFigure } from './map-figure.tsx'
+import { MapNotes } from './map-notes.tsx'
+import { isRunning, MapProgress } from './map-progress.tsx'
+import { shadeOf } from './map-shape.ts'
+import { kindWords, limitWords, type MapUnit, rangeWords, waveformsWords } from './map-words.ts'
 import './trade-off.css'
-import { type DrawnMap, useMap } from './use-map.ts'
+import { type DrawnMap, type DrawnMaps, useMaps } from './use-maps.ts'
 
 export function TradeOffDesk({ workspace, shown, caption }: DeskProps) {
   const { evaluation } = shown
@@ -44,7 +53,7 @@ interface AskedProps {
 
 function Asked({ workspace, evaluation, caption }: AskedProps) {
   const before = evaluation.rows[0].before
-  const outcome = useMap(workspace, typeof before === 'number' ? before : null)
+  const outcome = useMaps(workspace, typeof before === 'number' ? before : null)
   const editor = useEditor(workspace)
   if (!outcome.ok)
     return (
@@ -55,7 +64,7 @@ function Asked({ workspace, evaluation, caption }: AskedProps) {
         <div className="side desk-side">{editor}</div>
       </div>
     )
-  return <Answered {...{ workspace, caption, editor }} map={outcome.map} />
+  return <Answered {...{ workspace, caption, editor }} drawn={outcome.drawn} />
 }
 
 function useEditor(workspace: Workspace) {
@@ -63,6 +72,8 @@ function useEditor(workspace: Workspace) {
   switch (editing) {
     case 'trade-off-filter':
       return <FilterKindEditor workspace={workspace} />
+    case 'trade-off-beside':
+      return <BesideEditor workspace={workspace} />
     case 'trade-off-range':
       return <MapRangeEditor workspace={workspace} />
     case 'trade-off-limits':
@@ -76,98 +87,195 @@ function useEditor(workspace: Workspace) {
 
 interface AnsweredProps {
   workspace: Workspace
-  map: DrawnMap
+  drawn: DrawnMaps
   caption: () => string
   editor: React.ReactNode
 }
 
-function Answered({ workspace, map, caption: pageCaption, editor }: AnsweredProps) {
-  const { request, state, figures, limits } = map
-  const { cutoffsHz, rollOffs, candidate, waveforms } = request.question
-  const columns = cutoffsHz.length
-  const count = columns * rollOffs.length
+function Answered({ workspace, drawn, caption: pageCaption, editor }: AnsweredProps) {
+  const { maps } = drawn
+  const several = maps.length > 1
   const unit: MapUnit = scoreUnitOf(workspace)
-  const inChain = cellInChain(workspace, request)
-  const [moved, setMoved] = useState<number | null>(null)
-  const start = inChain ?? Math.min(count - 1, columns * Math.min(1, rollOffs.length - 1) + Math.floor(columns / 2))
-  const at = moved !== null && moved < count ? moved : start
-  const row = Math.floor(at / columns)
-  const answer = answerOfRow(figures, row, columns, limits)
-  const words = answer
+  const { layer, over } = workspace.tradeOff
+  const [active, setActive] = useState<string | null>(null)
+  const [moved, setMoved] = useState<Readonly<Record<string, number>>>({})
+  const views = maps.map((map) => viewOf(workspace, map, moved[map.id]))
+  const shown = views.find(({ map }) => map.id === active) ?? views[0]
+  const all = maps.map(({ figures }) => figures.cells)
+  // biome-ignore lint/correctness/useExhaustiveDependencies: the cells of all maps, which are as many as there are maps
+  const shade = useMemo(() => shadeOf(all.flat(), layer), [layer, ...all])
+  const words = shown.answer
     ? tradeOffWords({
-        ...{ answer, candidate, limits, unit },
-        rollOff: rollOffs[row],
+        ...{ answer: shown.answer, candidate: shown.candidate, limits: shown.map.limits, unit },
+        rollOff: shown.rollOff,
         trials: workspace.trials,
-        waveforms: waveforms.length,
-        over: overWaveforms(request, workspace.tradeOff.over),
+        waveforms: shown.map.request.question.waveforms.length,
+        over: overWaveforms(shown.map.request, over),
       })
     : 'The first map is being computed …'
   const caption = () => `${words} ${pageCaption()}`
-  const pick = (index: number) => {
-    const column = index % columns
-    const rollOff = rollOffs[Math.floor(index / columns)]
-    if (figures.cells[index]?.error !== null) return
-    say((w) => withFilter(w, cutoffsHz[column], rollOff))
+  const move = (map: DrawnMap) => (index: number) => {
+    setActive(map.id)
+    setMoved((before) => ({ ...before, [map.id]: index }))
   }
-  const best = answer && (answer.kind === 'some' || answer.kind === 'all') ? answer.best : null
-  const named = [
-    { name: 'at the cursor', index: at },
-    ...(inChain === null ? [] : [{ name: 'in the chain (nearest of the grid)', index: inChain }]),
-    ...(best ? [{ name: 'least total error of this row', index: best.index }] : []),
-  ]
-  const running = state?.status === 'running' || !state || map.stale
+  const pick = (map: DrawnMap) => (index: number) => {
+    const { cutoffsHz, rollOffs } = map.request.question
+    if (map.figures.cells[index]?.error !== null) return
+    const rollOff = rollOffs[Math.floor(index / cutoffsHz.length)]
+    say((w) => withFilter(w, cutoffsHz[index % cutoffsHz.length], rollOff, map.kind))
+  }
+  const running = isRunning(drawn)
+  const figures = views.map((view, i) => {
+    const { map, at, inChain, answer, candidate, rollOff } = view
+    const lineOf = () =>
+      answer === null
+        ? 'being computed …'
+        : mapLineWords({
+            ...{ answer, candidate, rollOff, limits: map.limits, unit },
+            ofAllRows: bestOfAllRows(map.figures),
+          })
+    return (
+      <div key={map.id} className={map.stale ? 'figure-body stale' : 'figure-body'}>
+        <MapFigure
+          {...{ map, unit, at, inChain, layer, shade }}
+          name={several ? kindWords(map.kind) : null}
+          fileName={i === 0 ? 'trade-off-map' : `trade-off-map-${i + 1}`}
+          caption={several ? () => `${candidateWords(candidate)}. ${lineOf()} ${pageCaption()}` : caption}
+          noiseErrorOf={(index) => noiseError(map.state, index)}
+          onMove={move(map)}
+          onPick={pick(map)}
+        >
+          {several ? null : <LayerChoice {...{ layer, shade, unit }} />}
+        </MapFigure>
+        {several ? <p className="map-line">{lineOf()}</p> : null}
+      </div>
+    )
+  })
+  const under = { map: shown.map, unit, at: shown.at, caption }
+  const frontFigure = (
+    <div className="figure-body">
+      <FrontFigure {...under} inChain={shown.inChain} onMove={move(shown.map)} onPick={pick(shown.map)} />
+      <TrialsSlider workspace={workspace} />
+      <p className="small quiet desk-hint">
+        Unveiled: filters that keep every limit; a line at each limit. Ringed: no other filter beats them in both bias
+        and noise. Filled: the filter in the chain. Hatched: cannot be realised. A click or Enter puts a filter into the
+        chain; undo takes it back.
+      </p>
+    </div>
+  )
   return (
     <>
       <div className="grid">
         <div>
-          <p className="desk-question">
-            Which <Token id="trade-off-filter" text={candidateWords(candidate)} label="filter that is varied" /> from{' '}
-            <Token
-              id="trade-off-range"
-              text={rangeWords(candidate, workspace.tradeOff, rollOffs)}
-              label="range of the map"
-            />{' '}
-            keeps <Token id="trade-off-limits" text={limitWords(limits, unit)} label="limits of the map" /> in{' '}
-            {scoreWords(workspace.score)} of{' '}
-            <Token id="trade-off-waveforms" text={waveformsWords(workspace)} label="waveforms of the map" />?
-          </p>
+          <Question {...{ workspace, maps, unit }} />
           <p className="remark summary" role="status">
             {words}
           </p>
-          <Notes workspace={workspace} />
-          <Progress map={map} running={running} />
+          <MapNotes workspace={workspace} />
+          <MapProgress drawn={drawn} />
         </div>
         <div className="side desk-side">{editor}</div>
       </div>
-      <div className={map.stale ? 'grid desk-figures stale' : 'grid desk-figures'} aria-busy={running}>
-        <div className="figure-body">
-          <MapFigure
-            {...{ map, unit, at, inChain, caption }}
-            layer={workspace.tradeOff.layer}
-            noiseErrorOf={(index) => noiseError(state, index)}
-            onMove={setMoved}
-            onPick={pick}
-          />
-          <CutFigure {...{ map, unit, at, caption }} />
-        </div>
-        <div className="figure-body">
-          <FrontFigure {...{ map, unit, at, inChain, caption }} onMove={setMoved} onPick={pick} />
-          <TrialsSlider workspace={workspace} />
-          <p className="small quiet desk-hint">
-            Unveiled: filters that keep every limit; a line at each limit. Ringed: no other filter beats them in both
-            bias and noise. Filled: the filter in the chain. Hatched: cannot be realised. A click or Enter puts a filter
-            into the chain; undo takes it back.
+      {several ? (
+        <section className="desk-figures" aria-label="Maps side by side" aria-busy={running}>
+          <div className="figure-head maps-head">
+            <h2>Maps</h2>
+            <LayerChoice {...{ layer, shade, unit }} />
+          </div>
+          <div className={`maps-beside of-${maps.length}`}>{figures}</div>
+          <p className="small maps-below">
+            Below: <b>{kindWords(shown.map.kind)}</b>, the map whose cursor was moved last.
           </p>
+        </section>
+      ) : null}
+      <div className={shown.map.stale ? 'grid desk-figures stale' : 'grid desk-figures'} aria-busy={running}>
+        <div>
+          {several ? null : figures}
+          <div className="figure-body">
+            <CutFigure {...under} />
+          </div>
         </div>
+        {frontFigure}
       </div>
       <FiltersTable
-        filters={named.map(({ name, index }) => ({ name, index, cell: figures.cells[index] }))}
-        {...{ candidate, limits, unit, inChain }}
-        csv={() => mapCsv(figures, request, workspace)}
-        onPick={pick}
+        filters={namedFilters(views, shown, several, pick)}
+        {...{ limits: shown.map.limits, unit }}
+        maps={maps.length}
+        csv={() => mapCsv(maps, workspace)}
       />
     </>
   )
+}
+
+function Question({ workspace, maps, unit }: { workspace: Workspace; maps: readonly DrawnMap[]; unit: MapUnit }) {
+  const { candidate, rollOffs } = maps[0].request.question
+  const beside = maps.slice(1).map(({ kind }) => kindWords(kind))
+  return (
+    <p className="desk-question">
+      Which <Token id="trade-off-filter" text={candidateWords(candidate)} label="filter that is varied" />
+      {beside.length > 0 ? ', beside ' : ' '}
+      <Token
+        id="trade-off-beside"
+        className={beside.length > 0 ? '' : 'add'}
+        text={beside.length > 0 ? list(beside) : '+ compare'}
+        label="kinds of filter beside it"
+      />
+      {beside.length > 0 ? ', from ' : ' from '}
+      <Token id="trade-off-range" text={rangeWords(candidate, workspace.tradeOff, rollOffs)} label="range of the map" />{' '}
+      keeps <Token id="trade-off-limits" text={limitWords(maps[0].limits, unit)} label="limits of the map" /> in{' '}
+      {scoreWords(workspace.score)} of{' '}
+      <Token id="trade-off-waveforms" text={waveformsWords(workspace)} label="waveforms of the map" />?
+    </p>
+  )
+}
+
+/** A map with its cursor and what its row answers. */
+function viewOf(workspace: Workspace, map: DrawnMap, moved: number | undefined) {
+  const { cutoffsHz, rollOffs, candidate } = map.request.question
+  const columns = cutoffsHz.length
+  const count = columns * rollOffs.length
+  const inChain = cellInChain(aboutKind(workspace, map.kind), map.request)
+  const start = inChain ?? Math.min(count - 1, columns * Math.min(1, rollOffs.length - 1) + Math.floor(columns / 2))
+  const at = moved !== undefined && moved < count ? moved : start
+  const row = Math.floor(at / columns)
+  return {
+    map,
+    candidate,
+    inChain,
+    at,
+    rollOff: rollOffs[row],
+    answer: answerOfRow(map.figures, row, columns, map.limits),
+  }
+}
+
+type MapView = ReturnType<typeof viewOf>
+
+/** The filters that matter: of the map with the cursor all, of the others the best of their row. */
+function namedFilters(
+  views: readonly MapView[],
+  shown: MapView,
+  several: boolean,
+  pick: (map: DrawnMap) => (index: number) => void,
+): NamedFilter[] {
+  const named = (view: MapView, name: string, index: number | null | undefined): NamedFilter[] =>
+    index === null || index === undefined
+      ? []
+      : [
+          {
+            name: several ? `${name}, ${kindWords(view.map.kind)}` : name,
+            cell: view.map.figures.cells[index],
+            candidate: view.candidate,
+            inChain: index === view.inChain,
+            onPick: () => pick(view.map)(index),
+          },
+        ]
+  const bestOf = ({ answer }: MapView) => (answer && 'best' in answer ? answer.best?.index : null)
+  const least = several ? 'least total error of its row' : 'least total error of this row'
+  return [
+    ...named(shown, 'at the cursor', shown.at),
+    ...views.flatMap((view) => named(view, 'in the chain (nearest of the grid)', view.inChain)),
+    ...views.flatMap((view) => named(view, least, bestOf(view))),
+  ]
 }
 
 function TrialsSlider({ workspace }: { workspace: Workspace }) {
@@ -189,68 +297,4 @@ function TrialsSlider({ workspace }: { workspace: Workspace }) {
       <NumberField label="number of trials of the map" hideLabel value={workspace.trials} onChange={change} />
     </div>
   )
-}
-
-/** How far the map is, with the means to stop it and to go on. */
-function Progress({ map, running }: { map: DrawnMap; running: boolean }) {
-  const { state, request } = map
-  if (state?.status === 'failed')
-    return (
-      <p className="small over" role="alert">
-        The map could not be computed: {state.reason} <WordButton onPress={map.goOn}>try again</WordButton>
-      </p>
-    )
-  const drawn = request.simulated && state && state.draws > 0 ? `, ${exact(state.draws)} simulated averages each` : ''
-  const done = state?.done ?? 0
-  const total = request.question.cutoffsHz.length * request.question.rollOffs.length
-  return (
-    <p className="small quiet map-progress">
-      {state?.status === 'cancelled' ? (
-        <>
-          Stopped at {done} of {total} filters{drawn}. <WordButton onPress={map.goOn}>go on</WordButton>
-        </>
-      ) : running ? (
-        <>
-          {request.simulated && state && state.draws > 0 ? 'Refining the noise: ' : 'Computing: '}
-          {done} of {total} filters{drawn}. <WordButton onPress={map.cancel}>cancel</WordButton>
-        </>
-      ) : (
-        <>
-          {total} filters{drawn}
-          {request.question.waveforms.length > 1 ? `, over ${request.question.waveforms.length} waveforms` : ''}.
-        </>
-      )}
-    </p>
-  )
-}
-
-/** What the map leaves out, and what it must not be used for. */
-function Notes({ workspace }: { workspace: Workspace }) {
-  const { source, shown, tradeOff } = workspace
-  const data = useStore(dataStore, (state) => recordedData(source, state.files))
-  if (source.kind === 'recorded' && tradeOff.waveform === 'chosen' && data?.conditions.length === 1)
-    return (
-      <p className="small map-note">
-        A filter that is chosen on the data under test inflates false positives. Choose on other data, or on a built
-        waveform (the first phrase of the page).
-      </p>
-    )
-  if (source.kind === 'recorded' && tradeOff.waveform === 'chosen')
-    return (
-      <p className="small map-note">
-        {shown.chosen === DIFFERENCE
-          ? 'This difference wave is the effect under test: a filter that is chosen on it inflates false positives. '
-          : 'A filter that is chosen on the data under test inflates false positives. '}
-        Choose on{' '}
-        <WordButton onPress={() => say((w) => ({ ...w, tradeOff: { ...w.tradeOff, waveform: 'average' } }))}>
-          the average over all conditions
-        </WordButton>{' '}
-        instead, or on a built waveform (the first phrase of the page).
-      </p>
-    )
-  if (source.kind === 'built' && source.events !== 'alone')
-    return (
-      <p className="small map-note">The map takes the event alone: what overlaps from its neighbours is not counted.</p>
-    )
-  return null
 }
