@@ -1,4 +1,5 @@
 export { effectiveWindow, effectiveWindowOn } from './effective-window.ts'
+export { type FurtherData, furtherData } from './further-data.ts'
 export { shareOutside, unseenShare, unseenShareBySample } from './unseen-share.ts'
 
 export { largestAbsolute, fidelityRows, judge, scoreReference } from './fidelity.ts'

@@ -1,5 +1,5 @@
 import { noiseDensityAt, type NoiseSpec } from '../erp/noise.ts'
-import type { Complex } from '../filter/fourier.ts'
+import { type Complex, nextPowerOfTwo, realTransform } from '../filter/fourier.ts'
 import type { Stage } from '../filter/stage.ts'
 import { stageResponse } from '../filter/stage-response.ts'
 import { noiseAutocovariance } from '../erp/noise-autocovariance.ts'
@@ -28,20 +28,26 @@ const RULE = gaussLegendre(8)
  *
  * Gauss–Legendre panels of at most a quarter octave and at most one oscillation of what an epoch and the kernels' taps make, with limits at the
  * noise's kinks and wherever a response changes quickly. Where every term has seen the same stages, no response is left to integrate against, and the
- * noise's autocovariance serves (`varianceOfWeights`).
+ * noise's autocovariance serves as well (`varianceOfWeights`).
  *
  * @param probes weights of all of them on the same samples. What was made of weights, noise and stages is kept by their identity: do not
  *   change them afterwards.
+ * @param way  which of the two, where both serve: by lags for weights that are new every time, by frequencies for stages that are.
  * @returns rows of a symmetric matrix.
  * @throws RangeError for a noise that is refused.
  */
-export function scoreCovariance(probes: readonly NoiseProbe[], noise: NoiseSpec, samplingRateHz: number): number[][] {
+export function scoreCovariance(
+  probes: readonly NoiseProbe[],
+  noise: NoiseSpec,
+  samplingRateHz: number,
+  way: 'by lags' | 'by frequencies' = 'by lags',
+): number[][] {
   const terms = probes.flat()
   const matrix = probes.map(() => new Array<number>(probes.length).fill(0))
   if (terms.length === 0) return matrix
   const longest = Math.max(...terms.map(({ weights }) => weights.length))
   const together = terms.every(({ stages }) => sameStages(stages, terms[0].stages))
-  if (together) addByLags(matrix, probes, longest, noise, samplingRateHz)
+  if (together && way === 'by lags') addByLags(matrix, probes, longest, noise, samplingRateHz)
   else addByFrequencies(matrix, probes, longest, noise, samplingRateHz)
   addLines(matrix, probes, noise, samplingRateHz)
   return matrix
@@ -215,25 +221,81 @@ function transformOf(weights: Float64Array, grid: Grid, samplingRateHz: number):
   return transform
 }
 
+/** Sums over more products than this go by a Fourier transform instead. */
+const MOST_PRODUCTS = 2 ** 21
+
+/** Σ weights[m]·e^(−j2πf·m/fs) at many frequencies. */
 function transformAt(weights: Float64Array, hz: Float64Array, samplingRateHz: number): Complex {
   let from = 0
   let to = weights.length
   while (from < to && weights[from] === 0) from++
   while (to > from && weights[to - 1] === 0) to--
   const seen = weights.subarray(from, to)
+  const middle = from + (seen.length >> 1)
+  const many = seen.length * hz.length > MOST_PRODUCTS
+  const at = many ? interpolated(seen) : (cycles: number) => aboutMiddle(seen, cycles)
   const re = new Float64Array(hz.length)
   const im = new Float64Array(hz.length)
   for (let k = 0; k < hz.length; k++) {
     const cycles = hz[k] / samplingRateHz
-    const at = directTransform(seen, cycles)
-    const turns = from * cycles
+    const value = at(cycles)
+    const turns = middle * cycles
     const angle = -2 * Math.PI * (turns - Math.round(turns))
     const c = Math.cos(angle)
     const s = Math.sin(angle)
-    re[k] = at.re * c - at.im * s
-    im[k] = at.re * s + at.im * c
+    re[k] = value.re * c - value.im * s
+    im[k] = value.re * s + value.im * c
   }
   return { re, im }
+}
+
+/** The transform with time counted from the middle sample, about which it turns slowest. */
+function aboutMiddle(seen: Float64Array, cycles: number): { re: number; im: number } {
+  const { re, im } = directTransform(seen, cycles)
+  const turns = (seen.length >> 1) * cycles
+  const angle = 2 * Math.PI * (turns - Math.round(turns))
+  const c = Math.cos(angle)
+  const s = Math.sin(angle)
+  return { re: re * c - im * s, im: re * s + im * c }
+}
+
+/** Length of the transform over that of the weights, and the samples of it that an interpolation takes. */
+const OVERSAMPLING = 8
+const BARYCENTRIC = Float64Array.of(1, -11, 55, -165, 330, -462, 462, -330, 165, -55, 11, -1)
+/** Bins below which the transform is summed directly, because it may fall there by many powers of ten. */
+const DIRECT_BINS = 16
+
+/**
+ * The same read from a zero-padded transform of 8 times the length through 12 neighbours (barycentric Lagrange): as `windowPower`, but of the transform itself,
+ * which turns half as fast as its square.
+ */
+function interpolated(seen: Float64Array): (cycles: number) => { re: number; im: number } {
+  const size = nextPowerOfTwo(Math.max(OVERSAMPLING * seen.length, 8 * DIRECT_BINS))
+  const centred = new Float64Array(size)
+  const middle = seen.length >> 1
+  for (let m = 0; m < seen.length; m++) centred[(m - middle + size) % size] = seen[m]
+  const { re, im } = realTransform(centred, size)
+  const half = size / 2
+  return (cycles) => {
+    const position = cycles * size
+    if (position < DIRECT_BINS) return aboutMiddle(seen, cycles)
+    const first = Math.floor(position) - BARYCENTRIC.length / 2 + 1
+    let numeratorRe = 0
+    let numeratorIm = 0
+    let denominator = 0
+    for (let k = 0; k < BARYCENTRIC.length; k++) {
+      const at = first + k
+      // beyond fs/2 lies the mirror image, conjugated
+      const bin = at > half ? size - at : at
+      const valueIm = at > half ? -im[bin] : im[bin]
+      if (position === at) return { re: re[bin], im: valueIm }
+      const share = BARYCENTRIC[k] / (position - at)
+      numeratorRe += share * re[bin]
+      numeratorIm += share * valueIm
+      denominator += share
+    }
+    return { re: numeratorRe / denominator, im: numeratorIm / denominator }
+  }
 }
 
 function responseOf(stage: Stage, grid: Grid): Complex {

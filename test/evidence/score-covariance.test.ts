@@ -87,6 +87,24 @@ describe('scoreCovariance', () => {
     })
   })
 
+  test('of long weights, whose transforms are interpolated, is right as well', () => {
+    const stages = appliedStages(designChain([{ design: 'amplifier', pass: 'high', order: 1, cutoffHz: 0.5 }], 1000))
+    const long = Float64Array.from({ length: 3000 }, (_, i) => Math.sin(i / 7) * Math.exp(-i / 900) + 0.1)
+    const window = effectiveWindow({ samplingRateHz: 1000, stages }, long, 'continuous')
+    for (let i = 0; i < long.length; i++) window.values[i - window.start] -= long[i]
+    const [[found]] = scoreCovariance(
+      [
+        [
+          { weights: long, stages, factor: 1 },
+          { weights: long, stages: [], factor: -1 },
+        ],
+      ],
+      withLine,
+      1000,
+    )
+    expect(found / scoreVariance(window.values, withLine, 1000, 1)).toBeCloseTo(1, 4)
+  })
+
   test('of two scores adds up as covariances do', () => {
     const stages = appliedStages(
       designChain(

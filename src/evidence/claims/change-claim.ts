@@ -21,6 +21,7 @@ import {
   type Part,
   part,
   type PartNoise,
+  type Unseen,
   untold,
   verdictOf,
   type Weighed,
@@ -207,7 +208,7 @@ export function noValue({ before, after }: FidelityRow, unit: Unit): Weighed | n
 }
 
 /** Of what the filtered value hangs on: its weights, for a latency those of its moment. */
-export function unseenOfScore(prepared: PreparedClaim, claimed: ClaimedWaveform, score: Score): number | null {
+export function unseenOfScore(prepared: PreparedClaim, claimed: ClaimedWaveform, score: Score): Unseen | null {
   if (claimed.extent !== 'epochs') return null
   const { baseline, timesMs } = prepared.setting
   const { before, after } = claimed

@@ -10,9 +10,10 @@ import { runContinuous } from '../../filter/stand-alone.ts'
 import type { Stage } from '../../filter/stage.ts'
 import { stagesResponse } from '../../filter/stage-response.ts'
 import { spectrumAfter } from '../filtered-noise.ts'
+import { furtherData } from '../further-data.ts'
 import { type NoiseProbe, type NoiseTerm, scoreCovariance } from '../score-covariance.ts'
 import { unseenShare } from '../unseen-share.ts'
-import type { PartNoise } from './claim-parts.ts'
+import type { PartNoise, Unseen } from './claim-parts.ts'
 import { type ClaimedWaveform, once, type PreparedClaim, type UnfilteredWaveform } from './claimed-waveform.ts'
 
 /** Whether numbers carry the noise of the trials: those of a recorded average always do. */
@@ -55,12 +56,16 @@ export function termBefore(
 /** Covariances of linear numbers over the setting's trials; of a difference both conditions' are added. Exact, as the noise of the readout. */
 export function covarianceOf(
   prepared: PreparedClaim,
-  { averages }: UnfilteredWaveform,
+  { averages, extent }: UnfilteredWaveform,
   probes: readonly NoiseProbe[],
 ): number[][] {
   const { noise, samplingRateHz, trials } = prepared.setting
   checkTrials(trials)
-  return scoreCovariance(probes, noise, samplingRateHz).map((row) => row.map((value) => (averages * value) / trials))
+  // on epochs the stages that the noise has passed stay the same, while the weights change with every chain
+  const way = extent === 'epochs' ? 'by lags' : 'by frequencies'
+  return scoreCovariance(probes, noise, samplingRateHz, way).map((row) =>
+    row.map((value) => (averages * value) / trials),
+  )
 }
 
 /** The noise of one linear number; null where the waveform is taken as it stands. */
@@ -75,13 +80,23 @@ export function linearNoise(
 }
 
 /** The unseen share of a value of the filtered waveform by its weights; null where the waveform is known on the whole axis. */
-export function unseenOf({ chain, extent }: ClaimedWaveform, weights: Float64Array): number | null {
-  return extent === 'epochs' ? unseenShare(chain, weights, 0, weights.length) : null
+export function unseenOf({ chain, extent }: ClaimedWaveform, weights: Float64Array): Unseen | null {
+  if (extent !== 'epochs') return null
+  return {
+    share: unseenShare(chain, weights, 0, weights.length),
+    furtherMs: (threshold) => {
+      const further = furtherData(chain, weights, threshold)
+      const ms = 1000 / chain.samplingRateHz
+      return further && { back: further.before * ms, on: further.after * ms }
+    },
+  }
 }
 
 const SEED = 1
-/** The stretch of recording that is drawn around an epoch reaches at most this many epochs to either side. */
+/** The stretch of recording that is drawn around an epoch reaches at most this many epochs to either side … */
 const EPOCHS_AROUND = 4
+/** … and less where all draws together would hold more values than this: 32 MB. */
+const MOST_VALUES = 2 ** 22
 /** Draws without such a number, in a hundred, from which its interval says nothing. */
 const MISSING_SHARE = 0.05
 
@@ -104,7 +119,7 @@ export function simulatedNoise(
 ): PartNoise | null | 'missing' {
   if (!isMeasured(prepared, claimed)) return null
   const { timesMs, baseline, trials } = prepared.setting
-  const { before, after, averages } = claimed
+  const { before, averages } = claimed
   const n = timesMs.length
   const { margin, stretches } = drawnStretches(prepared, claimed)
   const size = Math.sqrt(averages)
@@ -113,11 +128,12 @@ export function simulatedNoise(
   let found = 0
   let mean = 0
   let squares = 0
-  for (const stretch of stretches) {
-    const filtered = onEpoch(claimed, stretch, margin, n)
+  const after = filteredOnEpoch(prepared, claimed, stretches, margin)
+  for (const [draw, stretch] of stretches.entries()) {
+    const filtered = after[draw]
     for (let i = 0; i < n; i++) {
       noisyBefore[i] = before[i] + size * stretch[margin + i]
-      noisyAfter[i] = after[i] + size * filtered[i]
+      noisyAfter[i] = claimed.after[i] + size * filtered[i]
     }
     correctBaseline(noisyBefore, timesMs, baseline, noisyBefore)
     correctBaseline(noisyAfter, timesMs, baseline, noisyAfter)
@@ -137,9 +153,9 @@ function drawnStretches(prepared: PreparedClaim, { chain, extent }: ClaimedWavef
   const { noise, samplingRateHz, timesMs, trials } = prepared.setting
   checkTrials(trials)
   const n = timesMs.length
-  const margin = marginOf(extent === 'continuous' ? appliedStages(chain) : appliedAmplifierStages(chain), n)
+  const seen = extent === 'continuous' ? appliedStages(chain) : appliedAmplifierStages(chain)
+  const margin = marginOf(seen, n, prepared.draws)
   const past = pastStages(prepared, chain)
-  // stages in the data are not varied but for a claim's own search, which then asks for other noise
   const key = `noise ${margin} ${JSON.stringify(past.map(({ spec }) => spec))}`
   const stretches = once(prepared, key, () => {
     const samples = n + 2 * margin
@@ -152,22 +168,65 @@ function drawnStretches(prepared: PreparedClaim, { chain, extent }: ClaimedWavef
   return { margin, stretches }
 }
 
-function marginOf(stages: readonly Stage[], samples: number): number {
+function marginOf(stages: readonly Stage[], samples: number, draws: number): number {
   if (stages.length === 0) return 0
   const { beforeSamples, afterSamples } = reach(stages)
+  const room = (MOST_VALUES / draws - samples) / 2
+  const most = Math.min(EPOCHS_AROUND * samples, Math.max(samples / 4, room))
+  const wanted = Math.min(most, Math.max(samples, beforeSamples, afterSamples))
+  // few different lengths, so that a search over cutoffs draws seldom; what a stage pads with there must be, whatever the room
+  const steps = (least: number) => Math.ceil(samples * 2 ** Math.ceil(Math.log2(least / samples)))
   const padding = Math.max(...stages.map(epochPaddingSamples))
-  const wanted = Math.max(samples, Math.min(EPOCHS_AROUND * samples, Math.max(beforeSamples, afterSamples)), padding)
-  // few different lengths, so that a search over cutoffs draws seldom
-  return samples * 2 ** Math.ceil(Math.log2(wanted / samples))
+  return padding > wanted ? steps(padding) : Math.min(steps(wanted), Math.ceil(most))
 }
 
-/** A stretch of noise after the chain, on the epoch. */
-function onEpoch({ chain, extent }: ClaimedWaveform, stretch: Float64Array, margin: number, n: number): Float64Array {
+interface Begun {
+  readonly stretches: readonly Float64Array[]
+  readonly stages: readonly Stage[]
+  readonly values: readonly Float64Array[]
+}
+
+/** Chains that a search goes back and forth between: a filter and its twin. */
+const KEPT = 3
+
+/**
+ * Stretches of noise after the chain, on the epoch.
+ *
+ * On a recording the stages may change places but for what its ends see: amplifiers and kernels run first, and what they made is kept, because most searches vary a
+ * recursive stage.
+ */
+function filteredOnEpoch(
+  prepared: PreparedClaim,
+  { chain, extent }: ClaimedWaveform,
+  stretches: readonly Float64Array[],
+  margin: number,
+): Float64Array[] {
+  const n = prepared.setting.timesMs.length
   const amplifiers = appliedAmplifierStages(chain)
   const offline = appliedOfflineStages(chain)
-  const recorded = amplifiers.length > 0 ? settled(amplifiers, stretch) : stretch
-  if (extent === 'continuous') return applyEpochs(offline, recorded).subarray(margin, margin + n)
-  return applyEpochs(offline, recorded.slice(margin, margin + n))
+  const finite = extent === 'continuous' ? offline.filter(({ taps }) => taps !== null) : []
+  const rest = extent === 'continuous' ? offline.filter(({ taps }) => taps === null) : offline
+  const first = [...amplifiers, ...finite]
+  const kept = once(prepared, 'noise after the first stages', (): Begun[] => [])
+  let begun = kept.find(
+    (entry) =>
+      entry.stretches === stretches &&
+      entry.stages.length === first.length &&
+      first.every((s, i) => s === entry.stages[i]),
+  )
+  if (!begun) {
+    const values = stretches.map((stretch) => {
+      const recorded = amplifiers.length > 0 ? settled(amplifiers, stretch) : stretch
+      return finite.length > 0 ? applyEpochs(finite, recorded) : recorded
+    })
+    begun = { stretches, stages: first, values }
+    kept.unshift(begun)
+    if (kept.length > KEPT) kept.pop()
+  }
+  return begun.values.map((values) => {
+    if (extent === 'continuous') return applyEpochs(rest, values).subarray(margin, margin + n)
+    return applyEpochs(rest, values.subarray(margin, margin + n))
+  })
 }
 
 /** An amplifier has been on for long when a stretch begins: it starts in the steady state times the first sample. */

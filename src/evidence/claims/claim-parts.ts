@@ -85,14 +85,22 @@ export function untold(
   return { verdict: 'cannot be told', number, unit, interval: null, grounds, values, decisions: [] }
 }
 
+/** The unseen share of a value, and what would bring it down. */
+export interface Unseen {
+  readonly share: number
+  readonly furtherMs: (threshold: number) => { back: number; on: number } | null
+}
+
 /**
  * Holds the unseen share against its threshold: above it nothing else is told.
  *
  * The share joins the decisions, so that a flip that it makes is found.
  */
-export function withUnseen(answer: Weighed, share: number | null, threshold: number): Weighed {
-  if (share === null) return answer
+export function withUnseen(answer: Weighed, unseen: Unseen | null, threshold: number): Weighed {
+  if (unseen === null) return answer
+  const { share } = unseen
   const decisions = [...answer.decisions, share - threshold]
   if (!(share > threshold)) return { ...answer, decisions }
-  return { ...answer, decisions, verdict: 'cannot be told', grounds: { kind: 'unseen', share, threshold } }
+  const grounds = { kind: 'unseen', share, threshold, furtherMs: unseen.furtherMs(threshold) } as const
+  return { ...answer, decisions, verdict: 'cannot be told', grounds }
 }

@@ -140,7 +140,13 @@ export type ClaimGrounds =
   /** The claimed amount lies in the 95 % interval of the number; about so many trials would settle it, or null where no number would. */
   | { readonly kind: 'within noise'; readonly trialsNeeded: number | null }
   /** Too large a part of the weight falls on samples outside the data. */
-  | { readonly kind: 'unseen'; readonly share: number; readonly threshold: number }
+  | {
+      readonly kind: 'unseen'
+      readonly share: number
+      readonly threshold: number
+      /** How much further the data would have to reach for the share to fall to the threshold; null where no length would do. */
+      readonly furtherMs?: { readonly back: number; readonly on: number } | null
+    }
   /** The recording was filtered before, and nobody said how. */
   | { readonly kind: 'filtered before' }
   | {

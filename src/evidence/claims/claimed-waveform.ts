@@ -37,8 +37,11 @@ export interface ClaimedWaveform extends UnfilteredWaveform {
 
 export type Chosen = ClaimSetting['chosen']
 
+/** The standard deviation of so many draws is right to 5 %. */
+const DRAWS = 200
+
 /** @param draws of noise, an even number. */
-export function prepareClaim(setting: ClaimSetting, draws = 300): PreparedClaim {
+export function prepareClaim(setting: ClaimSetting, draws = DRAWS): PreparedClaim {
   const stages = new WeakMap<StageSpec, Stage>()
   const design: typeof designStage = (spec, samplingRateHz) => {
     let stage = stages.get(spec)

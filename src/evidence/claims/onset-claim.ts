@@ -25,7 +25,8 @@ export function onsetClaim(prepared: PreparedClaim, form: OnsetClaim, chain: Cha
   if (typeof before === 'string' || typeof after === 'string')
     throw new RangeError(`an onset must be found before and after, was ${before} and ${after}`)
   const sign = direction === 'later' ? 1 : -1
-  const number = sign * (after - before)
+  // −0 would be a strange number to hand out
+  const number = sign * (after - before) + 0
   const score = scoreOfRow(setting, row)
   const noise = simulatedNoise(prepared, claimed, (x, y) => {
     const first = scoreOf(x, setting.timesMs, score)
