@@ -40,6 +40,7 @@ export {
 export { noiseAutocovariance, noiseSpectrum, type NoiseSpectrum } from './noise-autocovariance.ts'
 export { seededRandom, type SeededRandom } from './seeded-random.ts'
 export { drawNoise, noiseSource, type NoiseSource } from './simulate-noise.ts'
+export { meanNoise } from './mean-noise.ts'
 export {
   EXTRAPOLATED_MARK,
   noiseFromTrials,

@@ -81,7 +81,7 @@ export function precisionOf(
   const { trials, score } = workspace
   let variances = scoreVariances(chain, weights.before, weights.after, extent, noise, passed, trials)
   if (workspace.shown.chosen === DIFFERENCE) {
-    // Two conditions of as many trials each, independent of one another.
+    // Two conditions of as many trials each, independent of one another; a noise that was estimated is the mean of theirs.
     const { before: b, after: a } = variances
     variances = { before: varianceOfDifference(b, b), after: varianceOfDifference(a, a) }
   }

@@ -3,11 +3,13 @@ import { join } from 'node:path'
 import { describe, expect, test } from 'vitest'
 import { seededRandom } from '../../src/erp/seeded-random.ts'
 import { drawNoise, noiseSource } from '../../src/erp/simulate-noise.ts'
+import { prepareMap } from '../../src/evidence/trade-off-map.ts'
 import { readTable, type Table } from '../../src/files/index.ts'
-import { chosenNoise, simulatedTrial } from '../../src/state/chosen-noise.ts'
+import { chosenNoise, simulatedTrial, trialsChosen } from '../../src/state/chosen-noise.ts'
 import { evaluate } from '../../src/state/evaluate.ts'
 import { workspaceOnTable } from '../../src/state/open-table.ts'
-import { startWorkspace, type Workspace } from '../../src/state/workspace.ts'
+import { mapRequest } from '../../src/state/trade-off.ts'
+import { DIFFERENCE, startWorkspace, type Workspace } from '../../src/state/workspace.ts'
 import { madeUpSource, madeUpTable } from './made-up-table.ts'
 
 /** 40 trials of white noise of 4 µV, 250 Hz, on a small hump. */
@@ -93,6 +95,80 @@ describe('noise estimated from the trials', () => {
     const plain = evaluated(on(table), table).precision
     const withPast = evaluated(on(table, { chain: past }), table).precision
     expect(withPast?.after).toBeCloseTo(plain?.after as number, 10)
+  })
+})
+
+describe('noise of a difference, estimated from the trials of its conditions', () => {
+  /** White noise of 6 µV in the first condition and of 2 µV in the second, 40 and 60 trials. */
+  const text = (conditions: readonly (readonly [string, number, number])[]) => {
+    const random = seededRandom(4, 0)
+    const lines = ['condition,trial,time_ms,Cz (µV)']
+    for (const [condition, sd, trials] of conditions)
+      for (let trial = 1; trial <= trials; trial++)
+        for (let i = 0; i < 250; i++)
+          lines.push([condition, trial, -200 + 4 * i, (sd * random.normal()).toFixed(4)].join(','))
+    return lines.join('\n')
+  }
+  const table = read(
+    text([
+      ['rare', 6, 40],
+      ['frequent', 2, 60],
+    ]),
+  )
+  const difference = (of = table, first = 'rare', second = 'frequent'): Workspace => {
+    const { shown } = on(of)
+    return on(of, {
+      ...{ baseline: 'none', trials: 40 },
+      shown: { ...shown, conditions: [DIFFERENCE], difference: { first, second }, chosen: DIFFERENCE },
+    })
+  }
+  const alone = (chosen: string): Workspace => {
+    const { shown } = on(table)
+    return on(table, { baseline: 'none', trials: 40, shown: { ...shown, conditions: [chosen], chosen } })
+  }
+  const variance = (workspace: Workspace, of = table) => (evaluated(workspace, of).precision?.before as number) ** 2
+
+  test('is the sum of theirs, each over its trials, whichever comes first', () => {
+    const sum = variance(alone('rare')) + variance(alone('frequent'))
+    expect(variance(difference()) / sum).toBeCloseTo(1, 2)
+    expect(variance(difference(table, 'frequent', 'rare')) / sum).toBeCloseTo(1, 2)
+    // (36 + 4)/(samples · N) for white noise; twice the first condition's would be 72
+    const { score } = on(table)
+    const samples = table.timesMs.filter((ms) => ms >= score.fromMs && ms <= score.toMs).length
+    const exact = 40 / samples / 40
+    expect(variance(difference())).toBeGreaterThan(0.7 * exact)
+    expect(variance(difference())).toBeLessThan(1.3 * exact)
+  })
+
+  test('is on the trade-off map what it is in the readout', () => {
+    const workspace = difference()
+    const outcome = mapRequest(workspace, table)
+    if (!outcome.ok) throw new Error(outcome.reason)
+    const { request } = outcome
+    const { before } = prepareMap(request.question)
+    const ofMap = (before[0].varianceOfOneTrial as number) / request.trials
+    expect(ofMap / variance(workspace)).toBeCloseTo(1, 4)
+  })
+
+  test('names both, and is the same object for the same trials', () => {
+    const chosen = chosenNoise(difference(), table)
+    expect(chosenNoise(difference(), table)).toBe(chosen)
+    expect([chosen.estimate?.trials, chosen.estimateOfSecond?.trials]).toEqual([40, 60])
+    expect(trialsChosen(difference(), table).conditions).toEqual(['rare', 'frequent'])
+    expect(chosenNoise(alone('rare'), table).estimateOfSecond).toBeNull()
+  })
+
+  test('is the first condition’s where the second has a single trial only', () => {
+    const few = read(
+      text([
+        ['rare', 6, 40],
+        ['frequent', 2, 1],
+      ]),
+    )
+    const chosen = chosenNoise(difference(few), few)
+    expect(chosen.estimateOfSecond).toBeNull()
+    expect(chosen.noise).toBe(chosen.estimate?.noise)
+    expect(trialsChosen(difference(few), few).conditions).toEqual(['rare'])
   })
 })
 

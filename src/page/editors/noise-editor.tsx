@@ -65,14 +65,19 @@ function attempt<T>(compute: () => T): { value: T | null; problem: string | unde
   }
 }
 
-function Estimated({ chosen, condition, channel }: { chosen: ChosenNoise; condition: string; channel: string }) {
-  const { estimate } = chosen
+function Estimated({ chosen, conditions, channel }: { chosen: ChosenNoise; conditions: string[]; channel: string }) {
+  const { estimate, estimateOfSecond: second } = chosen
   if (!estimate) return null
+  const from = second
+    ? `From ${estimate.trials} trials of ${conditions[0]} and ${second.trials} of ${conditions[1]}, each ${brief(estimate.secondsOfTrial, 3)} s (${channel}); drawn is the mean of both`
+    : `From ${estimate.trials} trials of ${brief(estimate.secondsOfTrial, 3)} s (${conditions[0]}, ${channel})`
+  const exponents = second
+    ? `power laws with exponents ${brief(estimate.exponent, 2)} and ${brief(second.exponent, 2)} go on there`
+    : `a power law with exponent ${brief(estimate.exponent, 2)} goes on there`
   return (
     <p className="quiet">
-      From {estimate.trials} trials of {brief(estimate.secondsOfTrial, 3)} s ({condition}, {channel}), what is evoked
-      cancelled. Below {brief(estimate.extrapolatedBelowHz, 2)} Hz (2/T, dashed) the trials are too short: a power law
-      with exponent {brief(estimate.exponent, 2)} goes on there. The estimate holds what the stages in the data left.
+      {from}; what is evoked is cancelled. Below {brief(estimate.extrapolatedBelowHz, 2)} Hz (2/T, dashed) the trials
+      are too short: {exponents}. The estimate holds what the stages in the data left.
     </p>
   )
 }
