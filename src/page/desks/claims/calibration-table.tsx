@@ -44,7 +44,7 @@ export function CalibrationTable() {
                 <td>{percent(row.falseAlarms)}</td>
                 <td>{percent(row.found)}</td>
                 <td>{percent(row.covered)}</td>
-                <td>{percent(row.verdicts['it can'])}</td>
+                <td>{percent(row.verdicts['it can'] / row.draws)}</td>
               </tr>
             ))}
           </tbody>

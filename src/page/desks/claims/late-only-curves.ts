@@ -2,7 +2,7 @@
 import type { Dash, Tone, Weight } from '../../../plot/index.ts'
 import type { LateOnlyResult } from '../../../state/late-only-steps.ts'
 
-interface FitCurve {
+export interface FitCurve {
   readonly name: string
   readonly values: Float64Array
   readonly tone: Tone

@@ -14,14 +14,16 @@ import {
   StaticBand,
   ZeroLine,
 } from '../../../plot/index.ts'
+import { type CurveCourse, placesAlong } from '../../../plot/place-labels.ts'
 import { lateOnlyFacts } from '../../../state/claim-facts.ts'
 import type { LateOnlyResult } from '../../../state/late-only-steps.ts'
 import { brief, bumpScanWords, lateOnlyWords } from '../../../words/index.ts'
 import { FigureHead } from '../../figure-head.tsx'
+import { LabelTexts, Unspoken } from '../../label-text.tsx'
+import { courseOf, type DrawnLabel, drawnLabels, labelSize, type WantedText } from '../../placed-labels.ts'
 import { timeTicks } from '../../time-axis.ts'
 import { CalibrationTable } from './calibration-table.tsx'
-import { lateOnlyCurves } from './late-only-curves.ts'
-import { spread } from '../trade-off/cut-figure.tsx'
+import { type FitCurve, lateOnlyCurves } from './late-only-curves.ts'
 
 interface LateOnlyPanelProps {
   form: Extract<ClaimForm, { form: 'late-only' }>
@@ -66,7 +68,7 @@ export function LateOnlyPanel({ form, result, number, caption }: LateOnlyPanelPr
   )
 }
 
-const FIT_MARGIN = { left: 44, right: 12, top: 12, bottom: 26 }
+const FIT_MARGIN = { left: 44, right: 12, top: 20, bottom: 26 }
 
 function FitFigure({ form, result, number, caption }: LateOnlyPanelProps) {
   const svg = useRef<SVGSVGElement>(null)
@@ -104,12 +106,10 @@ function FitPlot(
   const room = (high - low || 1) * 0.06
   const y = linearScale([low - room, high + room], [frame.bottom, frame.top])
   const step = (timesMs[last] - timesMs[0]) / last
-  // the right end, where the curves have parted from the early window
-  const at = Math.round(last * 0.78)
-  const heights = spread(
-    curves.map(({ values }) => y.toPixel(values[at])),
-    frame.top + 8,
-    frame.bottom - 8,
+  const labels = fitLabels(
+    curves,
+    curves.map(({ values }) => courseOf(values, timesMs[0], step, frame, x, y)),
+    frame,
   )
   return (
     <>
@@ -132,17 +132,31 @@ function FitPlot(
           />
         ))}
       </Clipped>
-      <g>
-        {curves.map(({ name, tone }, i) => (
-          <DirectLabel key={name} x={x.toPixel(timesMs[at]) + 4} y={heights[i]} tone={tone} strong={tone === 'after'}>
-            {name}
-          </DirectLabel>
-        ))}
-      </g>
+      <Unspoken>
+        <LabelTexts labels={labels} />
+      </Unspoken>
       <Axis side="left" scale={y} at={frame.left} title="µV" />
       <Axis side="bottom" scale={x} at={frame.bottom} {...timeTicks(x)} />
     </>
   )
+}
+
+const LABEL_PX = 16
+
+/** Every curve's name along it, where it runs apart from the others. */
+function fitLabels(curves: readonly FitCurve[], courses: readonly CurveCourse[], frame: Frame): DrawnLabel[] {
+  const wanted = curves.map(({ name, tone }, own): WantedText => {
+    const rows = tone === 'after' ? [{ strong: name }] : [{ plain: name }]
+    const { width } = labelSize({ id: name, tone, rows })
+    const alone = (column: number) => {
+      const heights = courses.map((course) => course.heights[column])
+      return Math.min(30, ...heights.filter((_, i) => i !== own).map((height) => Math.abs(height - heights[own])))
+    }
+    const size = { width, height: LABEL_PX }
+    const places = placesAlong(courses[own].heights, size, frame.left, (column) => 12 - 0.4 * alone(column))
+    return { id: name, tone, rows, places }
+  })
+  return drawnLabels(wanted, frame, courses, [])
 }
 
 /** The stated onset. */
@@ -159,7 +173,7 @@ function Onset({ frame, x, atMs }: { frame: Frame; x: Scale; atMs: number }) {
   )
 }
 
-const SCAN_MARGIN = { left: 44, right: 12, top: 12, bottom: 26 }
+const SCAN_MARGIN = { left: 44, right: 12, top: 20, bottom: 26 }
 
 /** β with its 95 % interval for every assumed onset. */
 function ScanFigure(props: LateOnlyPanelProps & { scan: NonNullable<LateOnlyResult['scan']> }) {
