@@ -28,10 +28,7 @@ export interface ClaimAnswerContext {
   /** Per condition. */
   readonly trials: number
   readonly taken: 'as it stands' | 'as measured'
-  /**
-   * How much further the data would have to reach for the unseen share to fall to its threshold, ms; absent where that was not computed.
-   */
-  readonly furtherMs?: { readonly back: number; readonly on: number }
+}
 }
 
 const VERDICT: Record<ClaimVerdict, string> = {
@@ -353,14 +350,13 @@ function insideWords(form: ClaimForm, amount: number, unit: Unit): string {
 function unseen(
   form: ClaimForm,
   answer: ShownAnswer,
-  { share, threshold }: Extract<ClaimGrounds, { kind: 'unseen' }>,
+  { share, threshold, furtherMs }: Extract<ClaimGrounds, { kind: 'unseen' }>,
   context: ClaimAnswerContext,
 ): string {
   const part = valueWithUnit(100 * share, '%', [100 * threshold])
   const limit = exact(Number((100 * threshold).toPrecision(6)))
   const more = share > threshold ? `, more than the ${limit} % allowed` : ''
   const number = answer.number === null ? '' : ` From the data that there are, ${numberWords(form, answer, context)}.`
-  const { furtherMs } = context
   const reach = [
     ...(furtherMs && furtherMs.back > 0 ? [`${reachWords(furtherMs.back)} ms further back`] : []),
     ...(furtherMs && furtherMs.on > 0 ? [`${reachWords(furtherMs.on)} ms further on`] : []),

@@ -82,8 +82,10 @@ describe('claimReason', () => {
   })
 
   test('an unseen share says how much further the data would have to reach, only where that was computed', () => {
-    const answer = shown({ verdict: 'cannot be told', grounds: { kind: 'unseen', share: 0.234, threshold: 0.05 } })
-    expect(claimReason(deflection, answer, { ...context, furtherMs: { back: 900, on: 0 } })).toBe(
+    const grounds = { kind: 'unseen' as const, share: 0.234, threshold: 0.05 }
+    const answer = shown({ verdict: 'cannot be told', grounds })
+    const computed = { ...answer, grounds: { ...grounds, furtherMs: { back: 900, on: 0 } } }
+    expect(claimReason(deflection, computed, context)).toBe(
       '23.4 % of the weight falls on samples outside the data, more than the 5 % allowed, so that the number cannot be trusted. From the data that there are, the deflection that the filter makes there is −1.19 µV. Data that reach 900 ms further back would bring that share within what is allowed.',
     )
     expect(claimReason(deflection, answer, context)).not.toMatch(/\d ms/)

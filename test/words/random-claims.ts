@@ -112,18 +112,11 @@ export const forms: fc.Arbitrary<ClaimForm> = fc.oneof(
   }),
 )
 
-export const contexts: fc.Arbitrary<ClaimAnswerContext> = fc.record(
-  {
-    filter: fc.constantFrom('the filter', 'the chain “as published”'),
-    trials: fc.constantFrom(1, 40, 1000, 12.5),
-    taken: fc.constantFrom('as it stands' as const, 'as measured' as const),
-    furtherMs: fc.record({
-      back: fc.constantFrom(0, 900, 12.3),
-      on: fc.constantFrom(0, 300),
-    }),
-  },
-  { requiredKeys: ['filter', 'trials', 'taken'] },
-)
+export const contexts: fc.Arbitrary<ClaimAnswerContext> = fc.record({
+  filter: fc.constantFrom('the filter', 'the chain “as published”'),
+  trials: fc.constantFrom(1, 40, 1000, 12.5),
+  taken: fc.constantFrom('as it stands' as const, 'as measured' as const),
+})
 
 const verdicts = fc.constantFrom<ClaimVerdict>('holds', 'does not hold', 'cannot be told')
 
@@ -244,10 +237,16 @@ function plainAnswers(form: ClaimForm): fc.Arbitrary<ShownAnswer> {
     })
   const without: fc.Arbitrary<ShownAnswer>[] = [
     fc.constant(noAnswer(form, 'cannot be told', { kind: 'filtered before' })),
-    fc.tuple(fc.double({ min: 0.0501, max: 1, noNaN: true }), fc.option(numbers)).map(([share, number]) => ({
-      ...noAnswer(form, 'cannot be told', { kind: 'unseen', share, threshold: 0.05 }),
-      number,
-    })),
+    fc
+      .record({
+        share: fc.double({ min: 0.0501, max: 1, noNaN: true }),
+        number: fc.option(numbers),
+        furtherMs: fc.option(fc.record({ back: fc.constantFrom(0, 900, 12.3), on: fc.constantFrom(0, 300) })),
+      })
+      .map(({ share, number, furtherMs }) => ({
+        ...noAnswer(form, 'cannot be told', { kind: 'unseen', share, threshold: 0.05, furtherMs }),
+        number,
+      })),
   ]
   if (form.form === 'change' || form.form === 'onset')
     without.push(
