@@ -29,7 +29,6 @@ export interface ClaimAnswerContext {
   readonly trials: number
   readonly taken: 'as it stands' | 'as measured'
 }
-}
 
 const VERDICT: Record<ClaimVerdict, string> = {
   holds: 'Holds',
