@@ -40,7 +40,7 @@ export function CutFigure({ map, unit, at, caption }: CutFigureProps) {
   return (
     <>
       <FigureHead
-        title={`Cut along ${rollOffWords(candidate, rollOffs[row])}`}
+        title={`Cut along ${candidate.design === 'butterworth' ? '' : 'filters '}${rollOffWords(candidate, rollOffs[row])}`}
         svg={svg}
         caption={caption}
         fileName="trade-off-cut"

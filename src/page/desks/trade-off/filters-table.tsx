@@ -104,6 +104,7 @@ function Size(props: { value: number | null | undefined; unit: MapUnit; words: (
 }
 
 function Verdict({ cell, limits, limited }: { cell: CellFigures | null; limits: TradeOffLimits; limited: boolean }) {
+  if (cell && cell.error !== null) return <span className="over">cannot be used</span>
   if (!cell || !limited) return <span className="quiet">–</span>
   const { kept, tightest } = verdictOnLimits(cell, limits)
   if (kept) return <span className="kept">kept</span>

@@ -28,6 +28,8 @@ export interface LimitedMap {
   readonly limits: readonly LimitLine[]
   /** What keeps every limit; null where there is none in force. */
   readonly region: RunsByRow | null
+  /** Its border, but for the map's own edges. */
+  readonly border: readonly (readonly Corner[])[]
 }
 
 /** Sizes a thousand times the limit, or a thousandth, are no nearer to the line than others. */
@@ -50,7 +52,8 @@ export function limitedMap(
     return { limit, most, inside: runs.inside, lines: stepLines(runs), kept }
   })
   const region = of.length === 0 ? null : of.slice(1).reduce((all, { inside }) => commonRuns(all, inside), of[0].inside)
-  return { limits: of, region }
+  const whole = Array.from({ length: rows }, () => [{ from: 0, to: columns }])
+  return { limits: of, region, border: region === null ? [] : stepLines({ inside: region, known: whole }) }
 }
 
 /** Above 0 over the limit, as a ratio, since sizes run over decades; a hair over it is kept, as the verdict keeps it. */

@@ -37,11 +37,20 @@ export const LimitMarks = memo(function LimitMarks({ frame, columns, rows, limit
           fill="var(--sheet)"
           fillOpacity={0.5}
         />
+        <path
+          className="region-border"
+          d={limited.border.map(path).join('')}
+          fill="none"
+          stroke="var(--kept)"
+          strokeWidth={7}
+          strokeOpacity={0.45}
+          strokeLinejoin="round"
+        />
         {limited.limits.map(({ limit, lines }) => {
           const d = lines.map(path).join('')
           return d === '' ? null : (
             <g key={limit} fill="none" strokeLinejoin="round">
-              <path d={d} stroke="var(--sheet)" strokeWidth={4} strokeOpacity={0.75} />
+              <path d={d} stroke="var(--sheet)" strokeWidth={3.4} strokeOpacity={0.6} />
               <path
                 className="limit-line"
                 data-limit={limit}

@@ -5,7 +5,7 @@ import type { Candidate } from '../../../evidence/trade-off-candidate.ts'
 import { verdictOnLimits } from '../../../state/map-figures.ts'
 import type { FilterKind } from '../../../state/trade-off.ts'
 import type { TradeOff, Workspace } from '../../../state/workspace.ts'
-import { brief, exact, list, measured, rollOffWords, signed } from '../../../words/index.ts'
+import { brief, exact, inWords, list, measured, rollOffWords, signed } from '../../../words/index.ts'
 
 export type MapUnit = 'µV' | 'ms' | 'µV·s'
 
@@ -62,7 +62,7 @@ export function cellWords(
 ): string {
   if (!cell) return 'not computed yet'
   const name = `${exact(cell.cutoffHz)} Hz, ${rollOffWords(candidate, cell.rollOff)}`
-  if (cell.error !== null) return `${name}: cannot be used (${cell.error})`
+  if (cell.error !== null) return `${name}: cannot be used (${inWords(cell.error)})`
   const parts: string[] = []
   if (cell.bias !== null) parts.push(`bias ${changeText(cell.bias)} ${unit}`)
   if (cell.noise !== null)

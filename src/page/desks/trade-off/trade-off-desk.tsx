@@ -157,9 +157,9 @@ function Answered({ workspace, drawn, caption: pageCaption, editor }: AnsweredPr
       <FrontFigure {...under} inChain={shown.inChain} onMove={move(shown.map)} onPick={pick(shown.map)} />
       <TrialsSlider workspace={workspace} />
       <p className="small quiet desk-hint">
-        Unveiled: filters that keep every limit; a line at each limit. Ringed: no other filter beats them in both bias
-        and noise. Filled: the filter in the chain. Hatched: cannot be realised. A click or Enter puts a filter into the
-        chain; undo takes it back.
+        Unveiled and broadly edged: filters that keep every limit; a line at each limit. Ringed: no other filter beats
+        them in both bias and noise. Filled: the filter in the chain. Hatched: cannot be realised. A click or Enter puts
+        a filter into the chain; undo takes it back.
       </p>
     </div>
   )

@@ -1,5 +1,5 @@
 /** The maps of the desk: asked for as soon as the question stands still, drawn while they are computed. */
-import { useEffect, useMemo, useRef, useState } from 'react'
+import { useDeferredValue, useEffect, useMemo, useRef, useState } from 'react'
 import { useStore } from 'zustand'
 import type { TradeOffLimits } from '../../../evidence/trade-off-answer.ts'
 import { computeMaps } from '../../../state/map-bench.ts'
@@ -54,7 +54,8 @@ export function useMaps(
   )
   const requests = asked.flatMap(({ outcome }) => (outcome.ok ? [outcome.request] : []))
   const keys = requests.map(({ key }) => key).join('\n')
-  const store = useStore(mapStore, ({ maps }) => maps)
+  // a map that grows gives way to whatever else the page has to draw
+  const store = useDeferredValue(useStore(mapStore, ({ maps }) => maps))
   const [attempt, setAttempt] = useState(0)
   const control = useRef<AbortController | null>(null)
   // The requests are said in full by their keys; trials and limits change them without another map.
