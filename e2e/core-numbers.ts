@@ -2,6 +2,7 @@
 import { evaluate } from '../src/state/evaluate.ts'
 import type { Evaluation } from '../src/state/evaluation.ts'
 import { SCENARIOS, type Workspace, workspaceOf } from '../src/state/workspace.ts'
+import { noiseQuestion, noiseSlice } from '../src/state/simulated-noise.ts'
 import { rowWords } from '../src/words/index.ts'
 
 export { SCENARIOS, type Workspace, workspaceOf }
@@ -39,7 +40,8 @@ export const firstSight = (): Workspace => workspaceOf(SCENARIOS[0])
 
 /** Every line of the readout as the page must print it, the noise of the score last. */
 export function readoutOf(workspace: Workspace): ReadoutLine[] {
-  const { rows, precision } = evaluated(workspace)
+  const evaluation = evaluated(workspace)
+  const { rows, precision } = evaluation
   const lines = rows.map((row): ReadoutLine => {
     const { name, where } = rowWords(row)
     const cell = (value: number | string) =>
@@ -52,14 +54,16 @@ export function readoutOf(workspace: Workspace): ReadoutLine[] {
     }
   })
   const noise = `noise of the score, ${workspace.trials} trials, noise model`
-  if (!precision)
-    // a latency: no weighted sum, so no exact figure
-    lines.push({
-      name: noise,
-      before: 'a latency’s noise needs simulation; there is no exact figure',
-      after: '',
-      change: '',
-    })
+  const simulated = precision ? null : simulatedNoise(workspace, evaluation)
+  if (simulated) {
+    const { before, after, unit } = simulated
+    const decimals = DECIMALS[unit]
+    const said = ({ value, standardError }: typeof before) =>
+      `${printed(value, decimals)} ± ${Number(standardError.toPrecision(1))}${unit}`
+    const change = printedChange(after.value - before.value, decimals) + unit
+    lines.push({ name: noise, before: said(before), after: said(after), change })
+  } else if (!precision)
+    lines.push({ name: noise, before: 'no score of both waveforms, so that it has no noise', after: '', change: '' })
   else {
     const decimals = DECIMALS[precision.unit]
     lines.push({
@@ -70,4 +74,10 @@ export function readoutOf(workspace: Workspace): ReadoutLine[] {
     })
   }
   return lines
+}
+
+/** All draws of the simulation that the readout refines; null where there is no such score. */
+function simulatedNoise(workspace: Workspace, evaluation: Evaluation) {
+  const question = noiseQuestion(workspace, evaluation, null)
+  return question && noiseSlice(JSON.stringify(workspace), question, Number.POSITIVE_INFINITY)
 }

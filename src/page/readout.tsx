@@ -2,6 +2,7 @@
 import { useState } from 'react'
 import type { FigureId, Limits } from '../erp/figure.ts'
 import type { FidelityRow } from '../evidence/fidelity.ts'
+import type { Estimate } from '../evidence/simulated-score.ts'
 import { downloadBlob } from '../plot/index.ts'
 import { EXTRAPOLATED_MARK } from '../state/chosen-noise.ts'
 import type { Evaluation, Problem } from '../state/evaluation.ts'
@@ -15,6 +16,7 @@ import { type DrawnPin, drawnPins } from './pin-line.tsx'
 import { FailedPins, PinCells, PinColumns, PinHeads } from './readout-pins.tsx'
 import { problemOf } from './protocol-line.tsx'
 import { Token } from './token.tsx'
+import { useSimulatedNoise } from './use-simulated-noise.ts'
 
 const GROUP_WORDS = {
   score: 'the score',
@@ -33,11 +35,15 @@ interface ReadoutProps {
 export function Readout({ evaluation, workspace, problems }: ReadoutProps) {
   const { rows, precision } = evaluation
   const pins = drawnPins(evaluation)
+  const simulated = useSimulatedNoise(workspace, evaluation)
   const [failed, setFailed] = useState<string | null>(null)
   const save = () => {
     try {
       // The mark tells spreadsheets that the file is UTF-8; without it they misread µ.
-      downloadBlob(new Blob(['\ufeff', readoutCsv(evaluation, workspace)], { type: 'text/csv' }), 'readout.csv')
+      downloadBlob(
+        new Blob(['\ufeff', readoutCsv(evaluation, workspace, simulated?.noise)], { type: 'text/csv' }),
+        'readout.csv',
+      )
       setFailed(null)
     } catch (error) {
       setFailed(`The readout could not be saved: ${error instanceof Error ? error.message : String(error)}`)
@@ -123,9 +129,7 @@ export function Readout({ evaluation, workspace, problems }: ReadoutProps) {
                 </td>
               </>
             ) : (
-              <td colSpan={7 + pins.length} className="verdict quiet">
-                a latency’s noise needs simulation; there is no exact figure
-              </td>
+              <SimulatedCells {...{ evaluation, pins }} state={simulated} />
             )}
           </tr>
         </tbody>
@@ -137,6 +141,49 @@ export function Readout({ evaluation, workspace, problems }: ReadoutProps) {
       ) : null}
       <FailedPins pins={evaluation.pins} />
     </section>
+  )
+}
+
+/** The noise of a latency or an area has no formula: it is simulated, and says how far the simulation itself may be off. */
+function SimulatedCells(props: {
+  evaluation: Evaluation
+  pins: readonly DrawnPin[]
+  state: ReturnType<typeof useSimulatedNoise>
+}) {
+  const { evaluation, pins, state } = props
+  const noise = state?.noise
+  const { before, after } = evaluation.rows[0]
+  if (!noise)
+    return (
+      <td colSpan={7 + pins.length} className="verdict quiet" role="status">
+        {state?.reason ??
+          (typeof before === 'number' && typeof after === 'number'
+            ? 'being simulated …'
+            : 'no score of both waveforms, so that it has no noise')}
+      </td>
+    )
+  const { unit, precisionFactor, draws, missing } = noise
+  const said = ({ value, standardError }: Estimate) => `${valueWords(value, unit)} ± ${brief(standardError, 1)}`
+  const change = noise.after.value - noise.before.value
+  return (
+    <>
+      <Cell value={said(noise.before)} unit={unit} />
+      <Cell value={said(noise.after)} unit={unit} />
+      {pins.map(({ index }) => (
+        <td key={index} className="pin-cell">
+          –
+        </td>
+      ))}
+      <Cell value={changeWords(change, unit)} unit={unit} />
+      <td className="percent">{signed((100 * change) / noise.before.value, 0)} %</td>
+      <td className="quiet">no limit</td>
+      <td colSpan={2} className="verdict precision">
+        {precisionFactor
+          ? `precision factor ${brief(precisionFactor.value)} ± ${brief(precisionFactor.standardError, 1)}; `
+          : ''}
+        {exact(draws)} simulated averages{missing > 0 ? `, ${exact(missing)} without such a score` : ''}
+      </td>
+    </>
   )
 }
 

@@ -4,8 +4,9 @@ import { readTable } from '../files/index.ts'
 import { claimSlice } from './claim-worker.ts'
 import { evaluate } from './evaluate.ts'
 import { mapSlice } from './map-worker.ts'
+import { noiseSlice } from './simulated-noise.ts'
 import { exportedCode, writeUpWords } from './write-up.ts'
 
-const api = { readTable, evaluate, mapSlice, claimSlice, exportedCode, writeUpWords }
+const api = { readTable, evaluate, mapSlice, claimSlice, noiseSlice, exportedCode, writeUpWords }
 export type BenchApi = typeof api
 expose(api)

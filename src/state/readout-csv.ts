@@ -3,11 +3,16 @@ import { protocolLine, protocolText, rowWords } from '../words/index.ts'
 import type { NoiseRow } from '../evidence/precision.ts'
 import type { Evaluation } from './evaluation.ts'
 import { protocolOf } from './protocol.ts'
+import type { SimulatedNoise } from './simulated-noise.ts'
 import { verdictOf } from './verdict.ts'
 import type { Workspace } from './workspace.ts'
 
-/** The readout with full digits, one row per figure, and the protocol line that the numbers belong to. */
-export function readoutCsv(evaluation: Evaluation, workspace: Workspace): string {
+/**
+ * The readout with full digits, one row per figure, and the protocol line that the numbers belong to.
+ *
+ * @param simulated noise of a score that has no formula for it, as far as it is simulated.
+ */
+export function readoutCsv(evaluation: Evaluation, workspace: Workspace, simulated?: SimulatedNoise | null): string {
   const pins = evaluation.pins.flatMap((pin, place) => ('reason' in pin ? [] : [{ ...pin, place }]))
   const header = [
     'figure',
@@ -70,6 +75,17 @@ export function readoutCsv(evaluation: Evaluation, workspace: Workspace): string
       factorRow('precision factor', ({ precisionFactor }) => precisionFactor),
       factorRow('equal-trials factor', ({ equalTrialsFactor }) => equalTrialsFactor),
     )
+  else if (simulated) {
+    const { before, after, unit, draws, precisionFactor } = simulated
+    const empty = (count: number) => Array<string>(count).fill('')
+    const name = `noise of the score, ${workspace.trials} ${workspace.trials === 1 ? 'trial' : 'trials'}, ${draws} simulated averages`
+    const noPins = empty(pins.length)
+    rows.push(
+      [name, '', unit, before.value, after.value, ...noPins, after.value - before.value, ...empty(5)],
+      ['standard error of that noise', '', unit, before.standardError, after.standardError, ...noPins, ...empty(6)],
+    )
+    if (precisionFactor) rows.push(['precision factor', '', '', '', precisionFactor.value, ...noPins, ...empty(6)])
+  }
   const line = protocolText(protocolLine(protocolOf(workspace, evaluation.samplingRateHz)))
   const chains = pins.map(({ name, place }) => {
     const { chain, extent } = workspace.pins[place]

@@ -50,6 +50,33 @@ describe('the readout as CSV', () => {
     },
   )
 
+  test('of a latency holds what was simulated, with the simulation’s own error, and fills every column', () => {
+    const workspace: Workspace = {
+      ...workspaceOf(SCENARIOS[0]),
+      score: { kind: 'peak-latency', fromMs: 200, toMs: 700, polarity: 'positive' },
+    }
+    const evaluation = evaluated(workspace)
+    const simulated = {
+      unit: 'ms' as const,
+      before: { value: 26.9, standardError: 0.3 },
+      after: { value: 27.5, standardError: 0.31 },
+      precisionFactor: { value: 0.957, standardError: 0.03 },
+      draws: 4000,
+      missing: 0,
+    }
+    const { data } = Papa.parse<string[]>(readoutCsv(evaluation, workspace, simulated), { skipEmptyLines: true })
+    expect(new Set(data.map((row) => row.length)).size).toBe(1)
+    const rowOf = (name: string) => data.find(([first]) => first.startsWith(name)) ?? []
+    expect(rowOf('noise of the score, 40 trials, 4000 simulated averages').slice(2, 6)).toEqual([
+      'ms',
+      '26.9',
+      '27.5',
+      String(27.5 - 26.9),
+    ])
+    expect(rowOf('standard error of that noise').slice(3, 5)).toEqual(['0.3', '0.31'])
+    expect(rowOf('precision factor')[4]).toBe('0.957')
+  })
+
   test('says one trial, and a factor that is infinite or no number, in words', () => {
     const quiet = { ...workspaceOf(SCENARIOS[0]), trials: 1 }
     quiet.noise = { kind: 'model', exponent: 0, levelAt1HzUv2PerHz: 0, flatBelowHz: 1, whiteUv2PerHz: 0, lines: [] }
