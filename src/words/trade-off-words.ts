@@ -2,6 +2,7 @@ import type { Candidate } from '../evidence/trade-off-candidate.ts'
 import type { CutoffRun, LimitName, TradeOffAnswer, TradeOffLimits } from '../evidence/trade-off-answer.ts'
 import type { CellFigures, OverWaveforms } from '../evidence/trade-off-figures.ts'
 import { brief, exact, list, measured } from './number.ts'
+import { inWords } from './problem.ts'
 import { PASS_WORD } from './stage-words.ts'
 
 /** What the words need besides the answer itself. */
@@ -23,7 +24,7 @@ export interface TradeOffWordsQuestion {
  */
 export function tradeOffWords(question: TradeOffWordsQuestion): string {
   const { answer, candidate, rollOff, limits, unit } = question
-  if (answer.kind === 'nothing') return `Nothing can be said: ${answer.reason}.`
+  if (answer.kind === 'nothing') return `Nothing can be said. ${inWords(answer.reason)}`
   const opening = `With ${exact(question.trials)} ${question.trials === 1 ? 'trial' : 'trials'}${caseWords(question)}, `
   const filter = `${PASS_WORD[candidate.pass]} cutoffs`
   const row = `(${rowWords(candidate, rollOff)})`
@@ -154,7 +155,7 @@ export function mapLineWords({ answer, candidate, rollOff, limits, unit, ofAllRo
   const row = capital(rollOffWords(candidate, rollOff))
   const best = typeof ofAllRows === 'string' ? null : ofAllRows
   const all = best && leastWords(best, unit, `, ${rollOffWords(candidate, best.rollOff)}`)
-  if (answer.kind === 'nothing') return `${row}: ${answer.reason}.`
+  if (answer.kind === 'nothing') return `${row}: nothing can be said. ${inWords(answer.reason)}`
   const limited = Object.values(limits).some((limit) => limit !== undefined)
   if (answer.kind === 'none') {
     const { least, tightest } = answer

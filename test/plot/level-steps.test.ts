@@ -114,7 +114,8 @@ describe('the lines of a level', () => {
           row === undefined ? null : row.some(({ from, to }) => at > from && at < to)
         for (const line of stepLines(runs))
           for (let i = 1; i < line.length; i++) {
-            const [c, r] = line[i - 1].map((value, k) => (value + line[i][k]) / 2)
+            // not halfway, where one row may begin as the other ends
+            const [c, r] = line[i - 1].map((value, k) => value + 0.3719 * (line[i][k] - value))
             const upright = line[i - 1][0] === line[i][0]
             const near = 1e-4
             const sides = upright

@@ -237,7 +237,7 @@ describe('tradeOffWords', () => {
       'With 12.5 trials and the worst of 65 waveforms, low-pass cutoffs (transition width 1.5 Hz, causal) from 1 Hz up (the grid ends at 2 Hz) keep the noise of the score within 0.6 µV',
     )
     const broken = row.map((cell) => ({ ...cell, error: 'cutoffsHz[0] must lie below 125, was 200', bias: null }))
-    expect(say(broken, {}, 40)).toBe('Nothing can be said: cutoffsHz[0] must lie below 125, was 200.')
+    expect(say(broken, {}, 40)).toBe('Nothing can be said. The cutoff must lie below 125, was 200.')
   })
 
   test('one of several maps is a line: its row, what is allowed, the least total error there and anywhere', () => {

@@ -63,8 +63,8 @@ describe('words of a cell', () => {
     )
     expect(cellWords(cell({}), candidate, { bias: 0.1 }, 'µV', 0.012)).toContain('noise 0.710 ± 0.01 µV')
     expect(cellWords(cell({}), candidate, { bias: 0.1 }, 'µV', 0.012)).toContain('over a limit')
-    expect(cellWords(cell({ error: 'too wide' }), candidate, {}, 'µV', null)).toBe(
-      '0.15 Hz, order 2: cannot be used (too wide)',
+    expect(cellWords(cell({ error: 'cutoffsHz[0] must lie below 125, was 200' }), candidate, {}, 'µV', null)).toBe(
+      '0.15 Hz, order 2: cannot be used. The cutoff must lie below 125, was 200',
     )
     expect(cellWords(cell({ equalTrialsFactor: 1e-8 }), candidate, {}, 'µV', null)).toContain('factor below 0.001')
     expect(cellWords(null, candidate, {}, 'µV', null)).toBe('not computed yet')

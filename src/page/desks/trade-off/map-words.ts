@@ -62,7 +62,7 @@ export function cellWords(
 ): string {
   if (!cell) return 'not computed yet'
   const name = `${exact(cell.cutoffHz)} Hz, ${rollOffWords(candidate, cell.rollOff)}`
-  if (cell.error !== null) return `${name}: cannot be used (${inWords(cell.error)})`
+  if (cell.error !== null) return `${name}: cannot be used. ${inWords(cell.error).replace(/\.$/, '')}`
   const parts: string[] = []
   if (cell.bias !== null) parts.push(`bias ${changeText(cell.bias)} ${unit}`)
   if (cell.noise !== null)
