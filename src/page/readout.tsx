@@ -155,7 +155,7 @@ function SimulatedCells(props: {
   const { before, after } = evaluation.rows[0]
   if (!noise)
     return (
-      <td colSpan={7 + pins.length} className="verdict quiet" role="status">
+      <td colSpan={7 + pins.length} className="verdict quiet">
         {state?.reason ??
           (typeof before === 'number' && typeof after === 'number'
             ? 'being simulated …'
