@@ -88,7 +88,8 @@ export function stagePhrases(stage: Stage): StagePhrases {
         order: `order ${exact(spec.order)} (one pass)`,
         run: 'causal',
         window: null,
-        cutoffs: cutoffWords(points, [spec.cutoffHz], 1),
+        // a cutoff that follows from a time constant has more digits than anyone said
+        cutoffs: cutoffWords(points, Number(spec.cutoffHz.toPrecision(6)) === spec.cutoffHz ? [spec.cutoffHz] : [], 1),
         design: null,
         rollOff: `a roll-off approaching ${slope(points)} dB per octave as applied`,
         beside:
