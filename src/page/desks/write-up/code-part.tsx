@@ -29,7 +29,7 @@ const CHECKED = 'filter random and real waveforms with them, and hold the output
 const NOTES: Record<CodeFormat, string> = {
   python: `Needs NumPy and SciPy. Run alone, the file checks itself. This project’s own tests run such files: they ${CHECKED}.`,
   octave: `Needs no package. Called without an argument, the file checks itself. This project’s own tests run such files: they ${CHECKED}.`,
-  r: 'Base R. Run alone, the file checks itself: do so before use. This project’s own tests run such files only where R is installed.',
+  r: `Needs no package beyond base R. Run alone, the file checks itself. This project’s own tests run such files: they ${CHECKED}.`,
   julia:
     'Base Julia. Not run here: this project’s own tests do not run Julia. Run alone, the file checks itself: do so before use.',
   json: 'Sections are rows b0 b1 b2 a0 a1 a2 of one pass, a0 = 1; every number reads back to the same double. How ends are handled is in the methods paragraph and in the code.',
