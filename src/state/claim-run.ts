@@ -61,6 +61,8 @@ export async function runClaim(request: ClaimRequest, slice: Slice, signal: Abor
       // the question is sent once; a worker that was started anew asks for it again
       const got = await slice(key, asked ? null : question, SLICE_MS)
       asked = got !== null
+      // another card with the same question may have brought it to its end
+      if (claimStore.getState().answers[key]?.status === 'complete') return
       if (!got) continue
       const { result, done, total, finished } = got
       state = { ...state, result: result ?? state.result, done, total }

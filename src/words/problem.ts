@@ -38,6 +38,13 @@ const FIELD_WORDS: readonly [RegExp, string][] = [
   [/\by must hold finite numbers, y\[\d+\]/g, 'the waveform must hold finite numbers, its value'],
   [/\bx\[\d+\](?= must)/g, 'each value of the waveform'],
   [/\border(?= must)/g, 'the order'],
+  [/\bhz(?= must)/g, 'the frequency'],
+  [/\bt0Ms(?= must)/g, 'the onset of the activity'],
+  [/\bleastUv(?= must)/g, 'the smallest effect that counts'],
+  [
+    /\bunit must be ms for [\w-]+, was %/g,
+    'a latency has no per cent of its value before; its change must be said in ms',
+  ],
   [/\bepoch(?= must)/g, 'the epoch'],
   [/\bscore window(?= must)/g, 'the score window'],
   [/\bbaseline window(?= must)/g, 'the baseline window'],

@@ -1,9 +1,11 @@
 /** The editors of the claims desk: one for every token of a claim's sentence and of the line under it. */
+import { useState } from 'react'
 import type { ClaimForm, ClaimRow, ShownClaim, Varied } from '../../evidence/claims/claim.ts'
 import type { CutoffMeaning } from '../../filter/stage.ts'
 import {
   chainOfClaim,
   changingClaim,
+  claimScoreUnit,
   isShownForm,
   SHOWN_FORMS,
   shownToBegin,
@@ -15,7 +17,7 @@ import { namesOfPins } from '../../state/pin-actions.ts'
 import type { RecordedData } from '../../state/recorded-data.ts'
 import { say } from '../../state/store.ts'
 import type { Claim, Workspace } from '../../state/workspace.ts'
-import { claimFormName, variedWords } from '../../words/index.ts'
+import { claimFormName, claimRowUnit, exact, variedWords } from '../../words/index.ts'
 import { Choice, NumberField, WindowFields } from '../fields.tsx'
 import { Editor } from './editor.tsx'
 
@@ -136,7 +138,7 @@ function FormPart({ form, part, set, workspace, samplingRateHz, conditions }: Fo
           label="what is changed"
           value={form.row}
           options={ROWS.map((row) => ({ value: row, text: ROW_TEXT[row], ...hintOf(row, workspace) }))}
-          onChange={(row) => set({ ...form, row })}
+          onChange={(row) => set({ ...form, row, unit: isLatency(row, workspace) ? 'own' : form.unit })}
         />
       )
     case 'relation':
@@ -157,8 +159,10 @@ function FormPart({ form, part, set, workspace, samplingRateHz, conditions }: Fo
             label="unit of the amount"
             value={form.unit}
             options={[
-              { value: 'own', text: 'its own unit' },
-              { value: '%', text: '% of its value before' },
+              { value: 'own', text: rowUnitWords(form.row, workspace) },
+              isLatency(form.row, workspace)
+                ? { value: '%', text: '% of its value before', hint: 'not of a latency', disabled: true }
+                : { value: '%', text: '% of its value before' },
             ]}
             onChange={(unit) => set({ ...form, unit })}
           />
@@ -177,7 +181,7 @@ function FormPart({ form, part, set, workspace, samplingRateHz, conditions }: Fo
         />
       )
     case 'amount':
-      return <AmountField form={form} set={set} />
+      return <AmountField {...{ form, set, workspace }} />
     case 'window': {
       const window = 'window' in form ? form.window : form.form === 'late-only' ? form.early : null
       if (!window) return null
@@ -202,7 +206,7 @@ function FormPart({ form, part, set, workspace, samplingRateHz, conditions }: Fo
           label={`${part} condition`}
           value={form[part]}
           options={plain(...conditions)}
-          onChange={(name) => set({ ...form, [part]: name })}
+          onChange={(name) => set(withoutTwice(form, part, name))}
         />
       )
     case 'says':
@@ -224,6 +228,7 @@ function FormPart({ form, part, set, workspace, samplingRateHz, conditions }: Fo
           unit="µV"
           value={form.leastUv}
           step={0.1}
+          above
           set={(leastUv) => set({ ...form, leastUv })}
         />
       )
@@ -308,9 +313,8 @@ function FormPart({ form, part, set, workspace, samplingRateHz, conditions }: Fo
           options={(Object.keys(MEANING_TEXT) as CutoffMeaning[]).map((value) => ({
             value,
             text: MEANING_TEXT[value],
-            disabled: value === form[part === 'stated' ? 'other' : 'stated'],
           }))}
-          onChange={(meaning) => set({ ...form, [part]: meaning })}
+          onChange={(meaning) => set(meaningWithoutTwice(form, part, meaning))}
         />
       )
     case 'onset':
@@ -340,20 +344,42 @@ function FormPart({ form, part, set, workspace, samplingRateHz, conditions }: Fo
   }
 }
 
+/** A latency has no per cent: it is counted from an arbitrary moment. */
+const isLatency = (row: ClaimRow, workspace: Workspace) => unitOfRow(row, workspace) === 'ms'
+
+const unitOfRow = (row: ClaimRow, workspace: Workspace) => claimRowUnit(row, { scoreUnit: claimScoreUnit(workspace) })
+
+const rowUnitWords = (row: ClaimRow, workspace: Workspace) => unitOfRow(row, workspace) ?? 'its own unit'
+
+type Effect = Extract<ClaimForm, { form: 'effect' }>
+type Meaning = Extract<ClaimForm, { form: 'meaning' }>
+
+/** A condition has no difference from itself: the one that stood there already takes the other place. */
+function withoutTwice(form: Effect, part: 'first' | 'second', name: string): Effect {
+  const other = part === 'first' ? 'second' : 'first'
+  return { ...form, [part]: name, ...(form[other] === name ? { [other]: form[part] } : {}) }
+}
+
+/** Two meanings are compared: the one that stood there already takes the other place. */
+function meaningWithoutTwice(form: Meaning, part: 'stated' | 'other', meaning: CutoffMeaning): Meaning {
+  const other = part === 'stated' ? 'other' : 'stated'
+  return { ...form, [part]: meaning, ...(form[other] === meaning ? { [other]: form[part] } : {}) }
+}
+
 function hintOf(row: ClaimRow, { measure, score }: Workspace): { hint?: string } {
   const window = row === 'score' ? score : row === 'mean-amplitude' ? measure.mean : measure.peak
   return { hint: `${window.fromMs} to ${window.toMs} ms` }
 }
 
 /** The amount of a form, whatever it is called there. */
-function AmountField({ form, set }: Pick<FormPartProps, 'form' | 'set'>) {
+function AmountField({ form, set, workspace }: Pick<FormPartProps, 'form' | 'set' | 'workspace'>) {
   switch (form.form) {
     case 'change':
     case 'deflection':
       return (
         <Positive
           label="amount claimed"
-          unit={form.unit === 'own' ? '' : form.unit}
+          unit={form.form === 'change' && form.unit === 'own' ? rowUnitWords(form.row, workspace) : form.unit}
           value={form.amount}
           step={form.unit === '%' ? 1 : 0.1}
           set={(amount) => set({ ...form, amount })}
@@ -396,21 +422,24 @@ function Positive(props: {
 }) {
   const { label, unit, value, step = 1, above = false, set } = props
   const good = (next: number) => Number.isFinite(next) && (above ? next > 0 : next >= 0)
+  const [refused, setRefused] = useState<{ kept: number } | null>(null)
+  const rule = above ? 'more than 0' : '0 or more'
+  // the claim has changed since, by undo perhaps: the fault is no longer there
+  const error = refused?.kept === value ? `${label} must be ${rule}; the claim keeps ${exact(value)}` : undefined
   return (
-    <>
-      <NumberField
-        {...{ label, unit, value, step }}
-        onChange={(next) => {
-          if (good(next)) set(next)
-        }}
-      />
-      <p className="quiet">{above ? 'More than 0' : '0 or more'}; anything else is not taken up.</p>
-    </>
+    <NumberField
+      {...{ label, unit, value, step, error }}
+      onChange={(next) => {
+        setRefused(good(next) ? null : { kept: value })
+        if (good(next)) set(next)
+      }}
+    />
   )
 }
 
 /** Another statement in the place of the inner one. */
-function InnerForm({ form, set, workspace, data }: FormPartProps) {
+function InnerForm({ form, set, workspace, data, conditions }: FormPartProps) {
+  const few = conditions.length < 2
   return (
     <div>
       <p className="quiet">The statement is about</p>
@@ -418,7 +447,11 @@ function InnerForm({ form, set, workspace, data }: FormPartProps) {
         stacked
         label="what the statement is about"
         value={form.form}
-        options={SHOWN_FORMS.map((value) => ({ value, text: claimFormName(value) }))}
+        options={SHOWN_FORMS.map((value) => ({
+          value,
+          text: claimFormName(value),
+          ...(value === 'effect' && few ? { disabled: true, hint: 'needs two conditions' } : {}),
+        }))}
         onChange={(next) =>
           isShownForm(next) && next !== form.form ? set(shownToBegin(next, workspace, data)) : undefined
         }

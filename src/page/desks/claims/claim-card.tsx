@@ -31,8 +31,10 @@ import { Token } from '../../token.tsx'
 import { CurveFigure } from './curve-figure.tsx'
 import type { FigureSource } from './dossier-part.tsx'
 import { LateOnlyPanel } from './late-only-panel.tsx'
+import { unbroken, unbrokenText } from './unbroken.ts'
 import { TextField } from './text-field.tsx'
 import { type AnsweredClaim, useClaim } from './use-claim.ts'
+import type { FocusNext } from './use-focus-next.ts'
 
 interface ClaimCardProps {
   claim: Claim
@@ -46,13 +48,13 @@ interface ClaimCardProps {
   /** Names chain, data and score of the page. */
   caption: () => string
   figures: Map<number, FigureSource>
+  focusNext: FocusNext
 }
 
 export function ClaimCard(props: ClaimCardProps) {
   const { claim, number, workspace, figures } = props
   const answered = useClaim(claim, workspace)
-  const { state, stale, reason } = answered
-  const result = state?.result ?? null
+  const { result, stale, reason } = answered
   const svg = useRef<SVGSVGElement>(null)
   const own = `claim-${claim.id}:`
   const editing = useView((view) => (view.open?.startsWith(own) ? view.open.slice(own.length) : null))
@@ -76,13 +78,26 @@ export function ClaimCard(props: ClaimCardProps) {
       changingClaim(claim.id, (present) => ({ ...present, ...next })),
       `claim:${claim.id}:${group}`,
     )
+  // the card moves in the list, and the keyboard would stay behind
+  const act = (next: Parameters<typeof say>[0], then: 'up' | 'down') => {
+    say(next)
+    props.focusNext((desk) => buttonsOf(desk, claim.id).find((button) => button.textContent === then))
+  }
   const messageId = `claim-${claim.id}-message`
   return (
-    <section className={stale ? 'claim grid stale' : 'claim grid'} aria-label={`claim ${number}`}>
+    <section
+      id={`card-of-claim-${claim.id}`}
+      className={stale ? 'claim grid stale' : 'claim grid'}
+      aria-label={`claim ${number}`}
+    >
       <div>
         <p className="claim-sentence">
-          <span className="claim-number">{number}</span>
-          <Phrases pieces={pieces} idOf={(id) => `${own}${id}`} badOf={() => (reason ? messageId : undefined)} />
+          <span className="claim-number">{number}</span>{' '}
+          <Phrases
+            pieces={unbroken(pieces)}
+            idOf={(id) => `${own}${id}`}
+            badOf={() => (reason ? messageId : undefined)}
+          />
         </p>
         {reason ? (
           <p id={messageId} className="message" role="alert">
@@ -95,20 +110,20 @@ export function ClaimCard(props: ClaimCardProps) {
               <VerdictMark verdict={result.answer.verdict} />
               {claimVerdictWords(result.answer.verdict)}
             </p>
-            <p className="remark claim-reason">{answerText}</p>
+            <p className="remark claim-reason">{answerText ? unbrokenText(answerText) : null}</p>
           </div>
         ) : null}
         {result?.curve && !reason ? (
-          <p className="small claim-flips">{curveSentence(claim.says, result.curve, chain)}</p>
+          <p className="small claim-flips">{unbrokenText(curveSentence(claim.says, result.curve, chain))}</p>
         ) : null}
         {result?.curve === null && !reason ? (
-          <p className="small quiet">
+          <p className="small claim-flips quiet">
             {claim.varied
               ? 'The chain has no such quantity any more: choose another to vary.'
               : 'No stage of this chain has a cutoff to vary.'}
           </p>
         ) : null}
-        <Progress answered={answered} />
+        {reason ? null : <Progress answered={answered} />}
         <p className="small claim-about">
           About{' '}
           <Token
@@ -148,21 +163,27 @@ export function ClaimCard(props: ClaimCardProps) {
             <WordButton
               label={`move claim ${number} up`}
               disabled={number === 1}
-              onPress={() => say(movingClaim(claim.id, -1))}
+              onPress={() => act(movingClaim(claim.id, -1), number > 2 ? 'up' : 'down')}
             >
               up
             </WordButton>
             <WordButton
               label={`move claim ${number} down`}
               disabled={number === props.count}
-              onPress={() => say(movingClaim(claim.id, 1))}
+              onPress={() => act(movingClaim(claim.id, 1), number < props.count - 1 ? 'down' : 'up')}
             >
               down
             </WordButton>
             <WordButton label={`duplicate claim ${number}`} onPress={() => say(duplicatingClaim(claim.id))}>
               duplicate
             </WordButton>
-            <WordButton label={`remove claim ${number}`} onPress={() => say(removingClaim(claim.id))}>
+            <WordButton
+              label={`remove claim ${number}`}
+              onPress={() => {
+                say(removingClaim(claim.id))
+                props.focusNext((desk) => removeButtonNear(desk, number))
+              }}
+            >
               remove
             </WordButton>
           </span>
@@ -191,6 +212,15 @@ export function ClaimCard(props: ClaimCardProps) {
   )
 }
 
+const buttonsOf = (desk: HTMLElement, id: number) =>
+  Array.from(desk.querySelectorAll<HTMLButtonElement>(`#card-of-claim-${id} .claim-foot button`))
+
+/** Of the claim that has come to stand in a removed one's place, else of the last one; with no claim left, the first thing to add. */
+function removeButtonNear(desk: HTMLElement, number: number): HTMLElement | null {
+  const all = Array.from(desk.querySelectorAll<HTMLElement>('.claim .claim-foot .actions button:last-child'))
+  return all[number - 1] ?? all[all.length - 1] ?? desk.querySelector<HTMLElement>('.add-claim button')
+}
+
 /** The verdict is said in words; the mark beside it differs in shape. */
 export function VerdictMark({ verdict }: { verdict: ClaimVerdict }) {
   return (
@@ -207,18 +237,18 @@ export function VerdictMark({ verdict }: { verdict: ClaimVerdict }) {
 }
 
 function Progress({ answered }: { answered: AnsweredClaim }) {
-  const { state, cancel, goOn } = answered
-  if (!state || state.status === 'complete' || state.status === 'failed') return null
-  const far = state.done > 0 ? ` ${state.done} of about ${state.total} steps` : ''
+  const { present, cancel, goOn } = answered
+  if (!present || present.status === 'complete' || present.status === 'failed') return null
+  const far = present.done > 0 ? ` ${present.done} of about ${present.total} steps` : ''
   return (
-    <p className="small quiet">
-      {state.status === 'cancelled' ? (
+    <p className="small claim-flips quiet">
+      {present.status === 'cancelled' ? (
         <>
           Stopped{far ? ` after${far}` : ''}. <WordButton onPress={goOn}>go on</WordButton>
         </>
       ) : (
         <>
-          {state.result ? 'Looking for what would change it:' : 'Computing:'}
+          {present.result ? 'Looking for what would change it:' : 'Computing:'}
           {far} <WordButton onPress={cancel}>cancel</WordButton>
         </>
       )}

@@ -16,6 +16,7 @@ import { ClaimCard } from './claim-card.tsx'
 import './claims.css'
 import { DossierPart, type FigureSource } from './dossier-part.tsx'
 import { TextField } from './text-field.tsx'
+import { type FocusNext, useFocusNext } from './use-focus-next.ts'
 
 export function ClaimsDesk({ workspace, shown, caption }: DeskProps) {
   const { evaluation } = shown
@@ -24,10 +25,12 @@ export function ClaimsDesk({ workspace, shown, caption }: DeskProps) {
   const conditions = useMemo(() => conditionNames(workspace, data), [workspace, data])
   // the figures of the cards, for the dossier
   const figures = useRef(new Map<number, FigureSource>())
+  const desk = useRef<HTMLDivElement>(null)
+  const focusNext = useFocusNext(desk)
   if (!evaluation) return null
   const { samplingRateHz } = evaluation
   return (
-    <div className="desk claims-desk">
+    <div className="desk claims-desk" ref={desk}>
       <div className="grid">
         <div>
           <p className="desk-question">
@@ -38,6 +41,7 @@ export function ClaimsDesk({ workspace, shown, caption }: DeskProps) {
           {source.kind === 'recorded' ? <FilteredBefore workspace={workspace} /> : null}
         </div>
         <div className="side desk-side">
+          {source.kind === 'recorded' ? <FilteredBeforeEditor workspace={workspace} /> : null}
           <TextField
             label="title of the claims"
             hint="the paper or review that they are from"
@@ -50,61 +54,65 @@ export function ClaimsDesk({ workspace, shown, caption }: DeskProps) {
       {claims.list.map((claim, place) => (
         <ClaimCard
           key={claim.id}
-          {...{ claim, workspace, data, samplingRateHz, conditions, caption }}
+          {...{ claim, workspace, data, samplingRateHz, conditions, caption, focusNext }}
           number={place + 1}
           count={claims.list.length}
           figures={figures.current}
         />
       ))}
-      <AddClaim workspace={workspace} />
+      <AddClaim {...{ workspace, focusNext }} />
       {claims.list.length > 0 ? <DossierPart {...{ workspace, evaluation, data }} figures={figures.current} /> : null}
     </div>
   )
 }
 
+const FILTERED_BEFORE = 'claim-filtered-before'
+
 /** Whether the stages in the data are all that a recording has passed: only the user can know. */
 function FilteredBefore({ workspace }: { workspace: Workspace }) {
-  const id = 'claim-filtered-before'
-  const open = useView((view) => view.open === id)
   const { filteredBefore } = workspace.claims
   return (
-    <>
-      <p className="small claim-about">
-        What this recording had passed before it was loaded is{' '}
-        <Token
-          id={id}
-          className="small"
-          text={filteredBefore === 'as stated' ? 'all stated in the protocol line' : 'not known in full'}
-          label="what the recording had passed"
-        />
-        {filteredBefore === 'as stated'
-          ? '.'
-          : ': claims that speak of the unfiltered waveform cannot be told before it is.'}
-      </p>
-      {open ? (
-        <Editor title="Before it was loaded" subtitle="what the recording had passed">
-          <Choice
-            stacked
-            label="what the recording had passed"
-            value={filteredBefore}
-            options={[
-              {
-                value: 'as stated',
-                text: 'only the stages that the protocol line says were in the data',
-                hint: 'none, if it says none',
-              },
-              { value: 'not known', text: 'not known in full' },
-            ]}
-            onChange={(value) => say(statingFilteredBefore(value))}
-          />
-        </Editor>
-      ) : null}
-    </>
+    <p className="small claim-about">
+      What this recording had passed before it was loaded is{' '}
+      <Token
+        id={FILTERED_BEFORE}
+        className="small"
+        text={filteredBefore === 'as stated' ? 'all stated in the protocol line' : 'not known in full'}
+        label="what the recording had passed"
+      />
+      {filteredBefore === 'as stated'
+        ? '.'
+        : ': claims that speak of the unfiltered waveform cannot be told before it is.'}
+    </p>
   )
 }
 
-function AddClaim({ workspace }: { workspace: Workspace }) {
-  const [open, setOpen] = useState(workspace.claims.list.length === 0)
+function FilteredBeforeEditor({ workspace }: { workspace: Workspace }) {
+  const open = useView((view) => view.open === FILTERED_BEFORE)
+  if (!open) return null
+  return (
+    <Editor title="Before it was loaded" subtitle="what the recording had passed">
+      <Choice
+        stacked
+        label="what the recording had passed"
+        value={workspace.claims.filteredBefore}
+        options={[
+          {
+            value: 'as stated',
+            text: 'only the stages that the protocol line says were in the data',
+            hint: 'none, if it says none',
+          },
+          { value: 'not known', text: 'not known in full' },
+        ]}
+        onChange={(value) => say(statingFilteredBefore(value))}
+      />
+    </Editor>
+  )
+}
+
+function AddClaim({ workspace, focusNext }: { workspace: Workspace; focusNext: FocusNext }) {
+  const [asked, setAsked] = useState(false)
+  const open = asked || workspace.claims.list.length === 0
   const data = useStore(dataStore, (store) => recordedData(workspace.source, store.files))
   const full = workspace.claims.list.length >= MAX_CLAIMS
   const few = conditionNames(workspace, data).length < 2
@@ -123,8 +131,11 @@ function AddClaim({ workspace }: { workspace: Workspace }) {
                     disabled={impossible}
                     onPress={() => {
                       say(addingClaim(form, data))
-                      setOpen(false)
+                      setAsked(false)
                       look({ open: null })
+                      focusNext((desk) =>
+                        Array.from(desk.querySelectorAll('.claim')).at(-1)?.querySelector<HTMLElement>('.token'),
+                      )
                     }}
                   >
                     {claimFormName(form)}
@@ -136,7 +147,14 @@ function AddClaim({ workspace }: { workspace: Workspace }) {
           </ul>
         </>
       ) : (
-        <WordButton onPress={() => setOpen(true)}>+ add a claim</WordButton>
+        <WordButton
+          onPress={() => {
+            setAsked(true)
+            focusNext((desk) => desk.querySelector<HTMLElement>('.add-claim button'))
+          }}
+        >
+          + add a claim
+        </WordButton>
       )}
     </section>
   )

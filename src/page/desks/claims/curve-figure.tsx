@@ -17,8 +17,10 @@ import {
   ZeroLine,
 } from '../../../plot/index.ts'
 import { claimBounds } from '../../../state/claims.ts'
-import { brief, claimVerdictWords, curveSentence } from '../../../words/index.ts'
+import { claimVerdictWords, curveSentence } from '../../../words/index.ts'
 import { FigureHead } from '../../figure-head.tsx'
+import { LabelTexts, Unspoken } from '../../label-text.tsx'
+import { curveLabels } from './curve-labels.ts'
 import { verdictStretches } from './verdict-strip.ts'
 
 interface CurveFigureProps {
@@ -102,9 +104,10 @@ function CurvePlot(props: Pick<CurveFigureProps, 'form' | 'answer' | 'curve' | '
           )
         : null}
       <Strip {...{ frame, x, curve }} />
-      <FlipLabels {...{ frame, x, curve }} />
-      {here ? <Present {...{ frame, x, y, at: here.at, number: here.number, unit }} /> : null}
-      <BoundLabels {...{ frame, y, unit: answer.unit }} bounds={drawnBounds(bounds, numbers)} />
+      {here && here.number !== null ? <Dot x={x.toPixel(here.at)} y={y.toPixel(here.number)} tone="after" /> : null}
+      <Unspoken>
+        <LabelTexts labels={curveLabels(curve, frame, x, y, drawnBounds(bounds, numbers), answer.unit)} />
+      </Unspoken>
       <Axis side="left" scale={y} at={frame.left} title={answer.unit} />
       <Axis
         side="bottom"
@@ -148,10 +151,12 @@ function numberScale(numbers: readonly number[], bounds: readonly number[], fram
     .sort((a, b) => a - b)
   const usual = Math.max(sizes[Math.floor(0.75 * sizes.length)] ?? 0, ...bounds.map(Math.abs))
   const kept = numbers.map((value) => Math.max(-MOST_TIMES_USUAL * usual, Math.min(MOST_TIMES_USUAL * usual, value)))
-  const [low, high] = extent([...kept, ...drawnBounds(bounds, numbers)])
+  const drawn = drawnBounds(bounds, numbers)
+  const [low, high] = extent([...kept, ...drawn])
   const room = (high - low || 1) * 0.08
-  // critical values stand at the foot
-  return linearScale([low - 2.8 * room, high + room], [frame.bottom, frame.top])
+  // critical values stand at the foot; over the highest line stands what is claimed
+  const head = drawn.includes(high) && high !== 0 ? 2.6 * room : room
+  return linearScale([low - 2.8 * room, high + head], [frame.bottom, frame.top])
 }
 
 const STRIP_Y = 24
@@ -187,66 +192,6 @@ function Strip({ frame, x, curve }: { frame: Frame; x: Scale; curve: ClaimCurve 
           </g>
         )
       })}
-    </g>
-  )
-}
-
-/** Critical values at the foot of their lines; one that would stand on its neighbour is left to the sentence. */
-function FlipLabels({ frame, x, curve }: { frame: Frame; x: Scale; curve: ClaimCurve }) {
-  let taken = Number.NEGATIVE_INFINITY
-  return (
-    <g>
-      {curve.flips.map(({ at }) => {
-        const words = curve.unit === 'Hz' ? `${brief(at, 2)} Hz` : String(at)
-        const width = textWidth(words)
-        const pixel = x.toPixel(at)
-        const middle = Math.min(frame.right - width / 2, Math.max(frame.left + width / 2, pixel))
-        if (middle - width / 2 < taken + 6) return null
-        taken = middle + width / 2
-        return (
-          <DirectLabel key={at} x={middle} y={frame.bottom - 9} tone="over" anchor="middle" strong>
-            {words}
-          </DirectLabel>
-        )
-      })}
-    </g>
-  )
-}
-
-/** Where the chain stands. */
-function Present(props: { frame: Frame; x: Scale; y: Scale; at: number; number: number | null; unit: 'Hz' | null }) {
-  const { frame, x, y, at, number, unit } = props
-  const pixel = x.toPixel(at)
-  const height = number === null ? frame.top + 10 : y.toPixel(number)
-  const words = `now ${brief(at, 3)}${unit === null ? '' : ' Hz'}`
-  const left = pixel + textWidth(words) + 14 > frame.right
-  const above = height - 12 > frame.top + 8
-  return (
-    <g>
-      {number === null ? null : <Dot x={pixel} y={height} tone="after" />}
-      <DirectLabel
-        x={pixel + (left ? -9 : 9)}
-        y={above ? height - 11 : height + 13}
-        tone="after"
-        anchor={left ? 'end' : 'start'}
-        strong
-      >
-        {words}
-      </DirectLabel>
-    </g>
-  )
-}
-
-function BoundLabels({ frame, y, unit, bounds }: { frame: Frame; y: Scale; unit: string; bounds: readonly number[] }) {
-  return (
-    <g>
-      {bounds
-        .filter((bound) => bound !== 0)
-        .map((bound) => (
-          <DirectLabel key={bound} x={frame.right - 4} y={y.toPixel(bound) - 9} tone="ink" anchor="end">
-            claimed {brief(bound, 3)} {unit}
-          </DirectLabel>
-        ))}
     </g>
   )
 }

@@ -60,7 +60,7 @@ export function DossierPart({ workspace, evaluation, data, figures }: DossierPar
           save as Markdown
         </WordButton>
         <span role="status" className={said?.failed ? 'over' : 'quiet'}>
-          {left > 0 ? `${left === 1 ? '1 claim is' : `${left} claims are`} not answered yet.` : said?.words}
+          {left > 0 ? `${left === 1 ? '1 claim has' : `${left} claims have`} no complete answer yet.` : said?.words}
         </span>
       </p>
     </section>

@@ -24,6 +24,7 @@ import { courseOf, type DrawnLabel, drawnLabels, labelSize, type WantedText } fr
 import { timeTicks } from '../../time-axis.ts'
 import { CalibrationTable } from './calibration-table.tsx'
 import { type FitCurve, lateOnlyCurves } from './late-only-curves.ts'
+import { unbrokenText } from './unbroken.ts'
 
 interface LateOnlyPanelProps {
   form: Extract<ClaimForm, { form: 'late-only' }>
@@ -59,7 +60,7 @@ export function LateOnlyPanel({ form, result, number, caption }: LateOnlyPanelPr
         {said.map(([name, text]) => (
           <div key={name}>
             <dt>{name}</dt>
-            <dd>{text}</dd>
+            <dd>{unbrokenText(text)}</dd>
           </div>
         ))}
       </dl>

@@ -3,6 +3,7 @@ import { useEffect, useMemo, useRef, useState } from 'react'
 import { useStore } from 'zustand'
 import { computeClaim } from '../../../state/claim-bench.ts'
 import { type ClaimState, claimStore } from '../../../state/claim-run.ts'
+import type { ClaimResult } from '../../../state/claim-worker.ts'
 import { claimKey, claimSetting, variedOf } from '../../../state/claims.ts'
 import { dataStore, recordedData } from '../../../state/recorded-data.ts'
 import type { Claim, Workspace } from '../../../state/workspace.ts'
@@ -12,8 +13,10 @@ import { inWords } from '../../../words/index.ts'
 const REST_MS = 150
 
 export interface AnsweredClaim {
-  /** The last answer that there was, which may be that of an earlier question. */
-  state: ClaimState | undefined
+  /** The last answer that there was, which may be that of an earlier question; null where there is none to show. */
+  result: ClaimResult | null
+  /** How far the present question has come. */
+  present: ClaimState | undefined
   /** What is shown is not the answer to the present question. */
   stale: boolean
   /** Why it cannot be asked; null where it can. */
@@ -53,11 +56,14 @@ export function useClaim(claim: Claim, workspace: Workspace): AnsweredClaim {
     }
   }, [key, attempt, data])
 
-  const last = useRef<ClaimState | undefined>(undefined)
-  if (present?.result) last.current = present
+  const last = useRef<ClaimResult | null>(null)
+  if (present?.result) last.current = present.result
+  const stopped = present?.status === 'cancelled' && !present.result
   const failed = present?.status === 'failed' ? present.reason : null
   return {
-    state: present?.result ? present : (last.current ?? present),
+    // while nobody looks for the new answer, the old one must not stand there as if it were coming
+    result: stopped ? null : last.current,
+    present,
     stale: !present?.result,
     reason: refused?.key === key ? refused.reason : failed,
     cancel: () => control.current?.abort(),
