@@ -186,6 +186,36 @@ test('the map is saved as SVG, PNG and CSV', async ({ workbench }) => {
   expect(page.url()).toContain('127.0.0.1')
 })
 
+test('the map of a latency, whose noise is drawn, is stopped with what it has and goes on from there', async ({
+  workbench,
+}) => {
+  const { page } = workbench
+  await openDesk(workbench)
+  await workbench.edit('score')
+  await workbench.choose('kind of score', 'peak latency')
+  await workbench.closeEditor()
+  const progress = page.locator('.map-progress')
+  const done = async () => Number(/(\d+) of 480 filters/.exec((await progress.textContent()) ?? '')?.[1] ?? 0)
+  await cursor(workbench).focus()
+  await page.keyboard.press('ArrowDown')
+  await page.keyboard.press('Home')
+  await expect(cursor(workbench)).toHaveAccessibleName(/: 0\.01 Hz, order 1: .*noise [\d.]+ ± [\d.]+ ms/)
+  await page.getByRole('button', { name: 'cancel', exact: true }).click()
+  await expect(progress).toHaveText(/^Stopped at \d+ of 480 filters\. go on$/)
+  const stopped = await done()
+  expect(stopped).toBeGreaterThan(0)
+  expect(stopped).toBeLessThan(480)
+  // the coarse map has its answer already
+  await expect(summary(workbench)).toContainText('With 40 trials')
+  await page.waitForTimeout(400)
+  expect(await done()).toBe(stopped)
+  await page.getByRole('button', { name: 'go on', exact: true }).click()
+  await expect(progress).toContainText('Computing: ')
+  await expect.poll(done).toBeGreaterThan(stopped)
+  await page.getByRole('button', { name: 'cancel', exact: true }).click()
+  await expect(progress).toContainText('Stopped at')
+})
+
 test('axe finds nothing on the desk and in the noise editor', async ({ workbench }) => {
   await openDesk(workbench)
   await expectAccessible(workbench)

@@ -12,7 +12,7 @@ import {
 import { endGesture, say } from '../../../state/store.ts'
 import { aboutKind, scoreUnitOf, withFilter } from '../../../state/trade-off.ts'
 import type { Workspace } from '../../../state/workspace.ts'
-import { candidateWords, list, mapLineWords, scoreWords, tradeOffWords } from '../../../words/index.ts'
+import { candidateWords, list, mapLineWords, rollOffWords, scoreWords, tradeOffWords } from '../../../words/index.ts'
 import {
   BesideEditor,
   FilterKindEditor,
@@ -31,7 +31,7 @@ import { LayerChoice, MapFigure } from './map-figure.tsx'
 import { MapNotes } from './map-notes.tsx'
 import { isRunning, MapProgress } from './map-progress.tsx'
 import { shadeOf } from './map-shape.ts'
-import { kindWords, limitWords, type MapUnit, rangeWords, waveformsWords } from './map-words.ts'
+import { capital, kindWords, limitWords, type MapUnit, rangeWords, waveformsWords } from './map-words.ts'
 import './trade-off.css'
 import { type DrawnMap, type DrawnMaps, useMaps } from './use-maps.ts'
 
@@ -95,7 +95,8 @@ interface AnsweredProps {
 function Answered({ workspace, drawn, caption: pageCaption, editor }: AnsweredProps) {
   const { maps } = drawn
   const several = maps.length > 1
-  const unit: MapUnit = scoreUnitOf(workspace)
+  // of the maps that are drawn, which may still be those of another score
+  const unit: MapUnit = scoreUnitOf(maps[0].request.question.scores[0])
   const { layer, over } = workspace.tradeOff
   const [active, setActive] = useState<string | null>(null)
   const [moved, setMoved] = useState<Readonly<Record<string, number>>>({})
@@ -104,6 +105,7 @@ function Answered({ workspace, drawn, caption: pageCaption, editor }: AnsweredPr
   const all = maps.map(({ figures }) => figures.cells)
   // biome-ignore lint/correctness/useExhaustiveDependencies: the cells of all maps, which are as many as there are maps
   const shade = useMemo(() => shadeOf(all.flat(), layer), [layer, ...all])
+  const running = isRunning(drawn)
   const words = shown.answer
     ? tradeOffWords({
         ...{ answer: shown.answer, candidate: shown.candidate, limits: shown.map.limits, unit },
@@ -112,7 +114,7 @@ function Answered({ workspace, drawn, caption: pageCaption, editor }: AnsweredPr
         waveforms: shown.map.request.question.waveforms.length,
         over: overWaveforms(shown.map.request, over),
       })
-    : 'The first map is being computed …'
+    : notYet(shown, running)
   const caption = () => `${words} ${pageCaption()}`
   const move = (map: DrawnMap) => (index: number) => {
     setActive(map.id)
@@ -124,12 +126,11 @@ function Answered({ workspace, drawn, caption: pageCaption, editor }: AnsweredPr
     const rollOff = rollOffs[Math.floor(index / cutoffsHz.length)]
     say((w) => withFilter(w, cutoffsHz[index % cutoffsHz.length], rollOff, map.kind))
   }
-  const running = isRunning(drawn)
   const figures = views.map((view, i) => {
     const { map, at, inChain, answer, candidate, rollOff } = view
     const lineOf = () =>
       answer === null
-        ? 'being computed …'
+        ? notYet(view, running)
         : mapLineWords({
             ...{ answer, candidate, rollOff, limits: map.limits, unit },
             ofAllRows: bestOfAllRows(map.figures),
@@ -249,6 +250,13 @@ function viewOf(workspace: Workspace, map: DrawnMap, moved: number | undefined) 
 }
 
 type MapView = ReturnType<typeof viewOf>
+
+/** A coarse map leaves out every second row. */
+function notYet({ map, candidate, rollOff }: MapView, running: boolean): string {
+  if (map.figures.cells.some((cell) => cell !== null))
+    return `${capital(rollOffWords(candidate, rollOff))}: not computed yet${running ? ' …' : ', other rows are.'}`
+  return running ? 'The first map is being computed …' : 'Nothing is computed yet.'
+}
 
 /** The filters that matter: of the map with the cursor all, of the others the best of their row. */
 function namedFilters(

@@ -26,6 +26,8 @@ export interface DrawnMap {
   /** The request whose cells are drawn: the last one while the new one has none. */
   request: MapRequest
   state: MapState | undefined
+  /** How far the map is that is asked for, drawn or not yet; undefined before it is begun. */
+  asked: Pick<MapState, 'status' | 'reason' | 'done' | 'draws'> | undefined
   figures: MapFigures
   limits: TradeOffLimits
   /** What is drawn is not yet the map that is asked for. */
@@ -85,7 +87,13 @@ export function useMaps(
     const now = keep(last, drawn, store[drawn.key], workspace.tradeOff.over, limits)
     kept.current.set(id, now)
     const { state, figures } = now
-    return [{ ...{ kind, id, request: drawn, state, figures }, limits: now.limits, stale: drawn.key !== request.key }]
+    return [
+      {
+        ...{ kind, id, request: drawn, state, figures, limits: now.limits },
+        asked: store[request.key],
+        stale: drawn.key !== request.key,
+      },
+    ]
   })
   return {
     ok: true,
