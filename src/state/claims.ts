@@ -16,7 +16,7 @@ export { claimBounds }
 /** The chain and the extent that a claim is about: its own where it keeps one. */
 export function chainOfClaim(claim: Claim, workspace: Workspace): Pick<Workspace, 'chain' | 'extent'> {
   const { chain, extent } = claim.on ?? workspace
-  // A loaded average has epochs only; what was done to it before it came here may have been done to the continuous recording.
+  // What is applied to a loaded average runs on its epoch; only a late-only fit asks on what its stages in the data ran.
   const loaded = workspace.source.kind === 'recorded' && claim.says.form !== 'late-only'
   return { chain, extent: loaded ? 'epochs' : extent }
 }
@@ -264,6 +264,11 @@ export function variedChoices(chain: readonly StageSpec[], samplingRateHz: numbe
     ),
   )
 }
+
+/** Whether a recording's stages in the data ran before or after its epochs were cut; what is applied here runs on the epoch. */
+export const statingRunOn =
+  (extent: Workspace['extent']): Change =>
+  (workspace) => ({ ...workspace, extent })
 
 /** What is varied where the user has not said: of a statement about one frequency the cutoff that lies nearest to it, else the first. */
 export function variedOf(claim: Claim, chain: readonly StageSpec[]): Varied | null {

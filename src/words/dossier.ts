@@ -254,6 +254,14 @@ function claimEntries(dossier: Dossier, claim: DossierClaim): Entry[] {
           { name: 'Other assumptions', text: words.robust },
           ...(words.scan === null ? [] : [{ name: 'Other onsets', text: words.scan }]),
           { name: 'Limit of the method', text: words.phaseLocked },
+          ...(facts.source === 'recorded'
+            ? [
+                {
+                  name: 'Stages in the data',
+                  text: `taken to have run on ${facts.extent === 'continuous' ? 'the continuous recording' : 'the cut-out epochs'}`,
+                },
+              ]
+            : []),
         ]
       : []),
     {

@@ -1,7 +1,14 @@
 /** Claims: statements about the filter in a fixed form, each computed, answered, and told what would change the answer. */
 import { useMemo, useRef, useState } from 'react'
 import { useStore } from 'zustand'
-import { addingClaim, CLAIM_FORMS, conditionNames, namingClaims, statingFilteredBefore } from '../../../state/claims.ts'
+import {
+  addingClaim,
+  CLAIM_FORMS,
+  conditionNames,
+  namingClaims,
+  statingFilteredBefore,
+  statingRunOn,
+} from '../../../state/claims.ts'
 import { dataStore, recordedData } from '../../../state/recorded-data.ts'
 import { endGesture, say } from '../../../state/store.ts'
 import { look } from '../../../state/view.ts'
@@ -42,6 +49,7 @@ export function ClaimsDesk({ workspace, shown, caption }: DeskProps) {
         </div>
         <div className="side desk-side">
           {source.kind === 'recorded' ? <FilteredBeforeEditor workspace={workspace} /> : null}
+          {source.kind === 'recorded' ? <RunOnEditor workspace={workspace} /> : null}
           <TextField
             label="title of the claims"
             hint="the paper or review that they are from"
@@ -83,7 +91,43 @@ function FilteredBefore({ workspace }: { workspace: Workspace }) {
       {filteredBefore === 'as stated'
         ? '.'
         : ': claims that speak of the unfiltered waveform cannot be told before it is.'}
+      {workspace.chain.some(({ inData, enabled }) => inData && enabled !== false) ? (
+        <>
+          {' '}
+          Its stages in the data ran on{' '}
+          <Token
+            id={RUN_ON}
+            className="small"
+            text={RUN_ON_TEXT[workspace.extent]}
+            label="what the stages in the data ran on"
+          />
+          .
+        </>
+      ) : null}
     </p>
+  )
+}
+
+const RUN_ON = 'claim-run-on'
+const RUN_ON_TEXT = { continuous: 'the continuous recording', epochs: 'the cut-out epochs' } as const
+
+function RunOnEditor({ workspace }: { workspace: Workspace }) {
+  const open = useView((view) => view.open === RUN_ON)
+  if (!open) return null
+  return (
+    <Editor title="Before it was loaded" subtitle="what the stages in the data ran on">
+      <Choice
+        stacked
+        label="what the stages in the data ran on"
+        value={workspace.extent}
+        options={[
+          { value: 'continuous', text: RUN_ON_TEXT.continuous, hint: 'they saw what lies outside the epoch' },
+          { value: 'epochs', text: RUN_ON_TEXT.epochs, hint: 'what lies outside was invented by padding' },
+        ]}
+        onChange={(extent) => say(statingRunOn(extent))}
+      />
+      <p className="quiet">Only claims about what the filter alone can make depend on it.</p>
+    </Editor>
   )
 }
 
