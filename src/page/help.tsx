@@ -68,6 +68,17 @@ export function Help() {
           <dd>
             how many times as many trials the unfiltered score would need to tell the effect from noise equally well
           </dd>
+          <dt>precision factor</dt>
+          <dd>variance of the score’s noise, unfiltered over filtered; the effect’s own shrinking is not counted</dd>
+          <dt>trade-off map</dt>
+          <dd>bias and noise of the score over a grid of filters</dd>
+          <dt>claim</dt>
+          <dd>a checkable statement about a filter; it holds, does not hold, or cannot be told</dd>
+          <dt>late-only fit</dt>
+          <dd>
+            the best account of a filtered waveform by activity after a given moment only; its error rates stand beside
+            every such claim
+          </dd>
         </dl>
       </div>
       <div>
