@@ -1,9 +1,16 @@
 /** What the core says, in the digits in which the page prints it: the journeys hold the page's text against this. */
+import { answerClaim } from '../src/evidence/claims/answer-claim.ts'
+import type { ClaimAnswer, ClaimCurve } from '../src/evidence/claims/claim.ts'
+import { claimCurve } from '../src/evidence/claims/claim-curve.ts'
+import { lateOnlyClaim } from '../src/evidence/claims/late-only-claim.ts'
+import { claimContext } from '../src/state/claim-facts.ts'
+import { claimSetting, variedOf } from '../src/state/claims.ts'
 import { evaluate } from '../src/state/evaluate.ts'
 import type { Evaluation } from '../src/state/evaluation.ts'
 import { SCENARIOS, type Workspace, workspaceOf } from '../src/state/workspace.ts'
 import { noiseQuestion, noiseSlice } from '../src/state/simulated-noise.ts'
-import { rowWords } from '../src/words/index.ts'
+import type { RecordedData } from '../src/state/recorded-data.ts'
+import { claimReason, claimVerdictWords, curveSentence, rowWords } from '../src/words/index.ts'
 
 export { SCENARIOS, type Workspace, workspaceOf }
 
@@ -80,4 +87,34 @@ export function readoutOf(workspace: Workspace): ReadoutLine[] {
 function simulatedNoise(workspace: Workspace, evaluation: Evaluation) {
   const question = noiseQuestion(workspace, evaluation, null)
   return question && noiseSlice(JSON.stringify(workspace), question, Number.POSITIVE_INFINITY)
+}
+
+/** The answer to the claim at a place of the list, from 1. */
+export function answerTo(workspace: Workspace, place: number, data: RecordedData | null = null): ClaimAnswer {
+  const claim = workspace.claims.list[place - 1]
+  const setting = claimSetting(claim, workspace, data)
+  if (claim.says.form === 'late-only') return lateOnlyClaim(claim.says, setting)
+  return answerClaim(claim.says, setting)
+}
+
+/** Verdict and reason as the page must print them. */
+export function saidOf(workspace: Workspace, place: number, data: RecordedData | null = null) {
+  const claim = workspace.claims.list[place - 1]
+  const answer = answerTo(workspace, place, data)
+  return {
+    verdict: claimVerdictWords(answer.verdict),
+    reason: claimReason(claim.says, answer, claimContext(claim, workspace)),
+  }
+}
+
+/** What would change the answer, and the sentence about it. */
+export function changeOf(workspace: Workspace, place: number): { curve: ClaimCurve; sentence: string } {
+  const claim = workspace.claims.list[place - 1]
+  if (claim.says.form === 'late-only') throw new Error('the curve of a fit takes too long to be computed twice')
+  const setting = claimSetting(claim, workspace, null)
+  const search = claimCurve(claim.says, setting, variedOf(claim, setting.chain))
+  let step = search.next()
+  while (!step.done) step = search.next()
+  if (!step.value) throw new Error('there is nothing to vary')
+  return { curve: step.value, sentence: curveSentence(claim.says, step.value, setting.chain) }
 }

@@ -164,6 +164,64 @@ export class Workbench {
     return this.page.locator('.figures')
   }
 
+  // Claims
+
+  /** Opens the claims desk. */
+  async openClaims(): Promise<void> {
+    const tab = this.button('Claims: Is this statement about the filter true?')
+    if ((await tab.getAttribute('aria-expanded')) !== 'true') await tab.click()
+    await expect(this.page.getByRole('region', { name: 'add a claim' })).toBeVisible()
+  }
+
+  /** Adds a claim of a form, named as in the menu. */
+  async addClaim(form: string): Promise<void> {
+    const part = this.page.getByRole('region', { name: 'add a claim' })
+    const offer = part.getByRole('button', { name: form, exact: true })
+    if (!(await offer.isVisible())) await part.getByRole('button', { name: '+ add a claim' }).click()
+    await offer.click()
+  }
+
+  /** The card of a claim, from 1. */
+  claim(number: number): Locator {
+    return this.page.getByRole('region', { name: `claim ${number}`, exact: true })
+  }
+
+  claims(): Locator {
+    return this.page.getByRole('region', { name: /^claim \d+$/ })
+  }
+
+  claimSentence(number: number): Locator {
+    return this.claim(number).getByRole('paragraph').first()
+  }
+
+  /** A phrase of a claim by what it is: "window of the claim". */
+  claimToken(number: number, what: string): Locator {
+    return this.claim(number).getByRole('button', { name: new RegExp(`, ${escaped(what)}$`) })
+  }
+
+  async editClaim(number: number, what: string): Promise<void> {
+    await this.claimToken(number, what).click()
+    await expect(this.editor()).toBeVisible()
+  }
+
+  claimVerdict(number: number): Locator {
+    return this.claim(number).locator('.claim-verdict')
+  }
+
+  claimReason(number: number): Locator {
+    return this.claim(number).locator('.claim-reason')
+  }
+
+  /** What would change the answer, in words; while it is being looked for, how far that has come. */
+  claimChange(number: number): Locator {
+    return this.claim(number).locator('.claim-flips').first()
+  }
+
+  async expectClaim(number: number, said: { verdict: string; reason: string }): Promise<void> {
+    await expect(this.claimReason(number)).toHaveText(said.reason)
+    await expect(this.claimVerdict(number)).toHaveText(said.verdict)
+  }
+
   // Numbers
 
   readoutTable(): Locator {

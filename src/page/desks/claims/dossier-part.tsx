@@ -28,11 +28,13 @@ export function DossierPart({ workspace, evaluation, data, figures }: DossierPar
   const [said, setSaid] = useState<{ words: string; failed: boolean } | null>(null)
   const save = (kind: 'html' | 'md') => {
     try {
-      const dossier = dossierOf(workspace, evaluation, data, ({ id }) => {
-        const figure = figures.get(id)
-        if (!figure?.svg.current) return null
-        return figureToSvg(figure.svg.current, { title: 'What would change it', caption: '', fontCss: '' })
-      })
+      const dossier = inLightTheme(() =>
+        dossierOf(workspace, evaluation, data, ({ id }) => {
+          const figure = figures.get(id)
+          if (!figure?.svg.current) return null
+          return figureToSvg(figure.svg.current, { title: 'What would change it', caption: '', fontCss: '' })
+        }),
+      )
       const text = kind === 'html' ? dossierHtml(dossier) : dossierMarkdown(dossier)
       const name = `${fileName(workspace.claims.title)}.${kind}`
       downloadBlob(new Blob([text], { type: kind === 'html' ? 'text/html' : 'text/markdown' }), name)
@@ -65,6 +67,19 @@ export function DossierPart({ workspace, evaluation, data, figures }: DossierPar
       </p>
     </section>
   )
+}
+
+/** The dossier is a light page whatever the theme, and its figures are read off the page: nothing is painted in between. */
+function inLightTheme<T>(read: () => T): T {
+  const { dataset } = document.documentElement
+  const theme = dataset.theme
+  dataset.theme = 'light'
+  try {
+    return read()
+  } finally {
+    if (theme === undefined) delete dataset.theme
+    else dataset.theme = theme
+  }
 }
 
 /** A title as the name of a file. */
