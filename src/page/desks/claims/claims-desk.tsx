@@ -80,7 +80,7 @@ const FILTERED_BEFORE = 'claim-filtered-before'
 function FilteredBefore({ workspace }: { workspace: Workspace }) {
   const { filteredBefore } = workspace.claims
   return (
-    <p className="small claim-about">
+    <p className="small claim-about of-desk">
       What this recording had passed before it was loaded is{' '}
       <Token
         id={FILTERED_BEFORE}

@@ -70,6 +70,9 @@ function CurvePlot(props: Pick<CurveFigureProps, 'form' | 'answer' | 'curve' | '
   const bounds = claimBounds(form)
   const y = numberScale(numbers, bounds, frame)
   const here = points.find((point) => point.at === present)
+  const labels = curveLabels(curve, frame, x, y, drawnBounds(bounds, numbers), answer.unit)
+  const now = labels.find(({ id }) => id === 'now')
+  const head = now?.anchor === 'middle' ? now.box.bottom : frame.top
   return (
     <>
       <GridLines frame={frame} scale={x} along="x" />
@@ -105,8 +108,16 @@ function CurvePlot(props: Pick<CurveFigureProps, 'form' | 'answer' | 'curve' | '
         : null}
       <Strip {...{ frame, x, curve }} />
       {here && here.number !== null ? <Dot x={x.toPixel(here.at)} y={y.toPixel(here.number)} tone="after" /> : null}
+      {here ? (
+        <path
+          d={`M${x.toPixel(here.at)},${here.number === null ? frame.bottom : y.toPixel(here.number) - 4}V${head}`}
+          stroke="var(--after)"
+          strokeWidth={1}
+          fill="none"
+        />
+      ) : null}
       <Unspoken>
-        <LabelTexts labels={curveLabels(curve, frame, x, y, drawnBounds(bounds, numbers), answer.unit)} />
+        <LabelTexts labels={labels} />
       </Unspoken>
       <Axis side="left" scale={y} at={frame.left} title={answer.unit} />
       <Axis

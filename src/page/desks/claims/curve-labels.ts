@@ -3,22 +3,12 @@ import type { ClaimCurve } from '../../../evidence/claims/claim.ts'
 import type { Frame, Scale } from '../../../plot/index.ts'
 import type { CurveCourse, LabelBox, LabelPlace } from '../../../plot/place-labels.ts'
 import { brief } from '../../../words/index.ts'
-import {
-  around,
-  type DrawnLabel,
-  drawnLabels,
-  firstThatFits,
-  labelSize,
-  placesBeside,
-  placesOver,
-  type WantedText,
-} from '../../placed-labels.ts'
+import { around, type DrawnLabel, drawnLabels, firstThatFits, labelSize, type WantedText } from '../../placed-labels.ts'
 
 /** Of a flip's line nothing but its width and a breath of paper. */
 const LINE_PX = 3
 /** The foot of the plot belongs to the critical values. */
 const FOOT_PX = 9
-const DEAREST_PRESENT = 60
 
 /**
  * @param bounds  the claimed amounts that are drawn, in the number's unit.
@@ -50,10 +40,11 @@ export function curveLabels(
     const boxes = drawn.map(({ box }) => box)
     drawn.push(...firstThatFits([{ ...text, places }], (one) => drawnLabels([one], frame, [course], boxes)))
   }
-  const present = presentLabel(curve, frame, x, y)
-  if (present) add(present, [course])
+  const levels = [0, ...bounds].map((value): CurveCourse => levelCourse(y.toPixel(value), frame))
+  const present = presentLabel(curve, frame, x)
+  if (present) add(present, [course, ...levels])
   const claimed = bounds.filter((bound) => bound !== 0)
-  for (const bound of claimed) add(boundLabel(bound, answerUnit, frame, y), [course])
+  for (const bound of claimed) add(boundLabel(bound, answerUnit, frame, y), [course, levels[0]])
   return drawn
 }
 
@@ -84,16 +75,25 @@ function presentBox({ points, present }: ClaimCurve, x: Scale, y: Scale): LabelB
   return here && here.number !== null ? around(x.toPixel(here.at), y.toPixel(here.number), 6) : null
 }
 
-function presentLabel(curve: ClaimCurve, frame: Frame, x: Scale, y: Scale): WantedText | null {
-  const { points, present, unit } = curve
-  const here = points.find(({ at }) => at === present)
-  if (!here) return null
+function presentLabel({ points, present, unit }: ClaimCurve, frame: Frame, x: Scale): WantedText | null {
+  if (!points.some(({ at }) => at === present)) return null
   const words = `now ${brief(present, 3)}${unit === null ? '' : ` ${unit}`}`
   const text: Omit<WantedText, 'places'> = { id: 'now', tone: 'after', rows: [{ strong: words }] }
-  const pixel = x.toPixel(present)
-  const height = here.number === null ? frame.top + 10 : y.toPixel(here.number)
-  const places = [...placesBeside(pixel, height, 0), ...placesOver(pixel, height, labelSize(text).width)]
-  return { ...text, places, maxCost: DEAREST_PRESENT }
+  return { ...text, places: placesOnLine(x.toPixel(present), frame) }
+}
+
+/** On the vertical line of the present value or to one side of it, at its head rather than further down. */
+function placesOnLine(pixel: number, frame: Frame): LabelPlace[] {
+  const places: LabelPlace[] = []
+  for (let y = frame.top + 9; y < frame.bottom - 2 * FOOT_PX; y += 6) {
+    const cost = (y - frame.top) * 0.25
+    places.push(
+      { x: pixel + 6, y, anchor: 'start', cost },
+      { x: pixel - 6, y, anchor: 'end', cost: cost + 1 },
+      { x: pixel, y, anchor: 'middle', cost: cost + 6 },
+    )
+  }
+  return places
 }
 
 /** Along its line, above or below, from the right end on. */
@@ -114,6 +114,11 @@ function boundLabel(bound: number, unit: string, frame: Frame, y: Scale): Wanted
         cost: (frame.right - right) * 0.04 + (side > 0 ? 1 : 0),
       })
   return { ...text, places }
+}
+
+/** A line across the plot: a label on it can be read, though not well. */
+function levelCourse(height: number, frame: Frame): CurveCourse {
+  return { heights: new Float64Array(Math.floor(frame.plotWidth) + 1).fill(height), weight: 8 }
 }
 
 /** Heights of the curve by pixel column; none where it leaves the plot or there is no number. */
