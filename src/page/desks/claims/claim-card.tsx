@@ -1,5 +1,5 @@
 /** One claim: its sentence, verdict, reason, what would change it, and the figure of that. */
-import { useEffect, useRef } from 'react'
+import { Fragment, useEffect, useRef } from 'react'
 import type { ClaimVerdict } from '../../../evidence/claims/claim.ts'
 import { claimContext } from '../../../state/claim-facts.ts'
 import {
@@ -96,7 +96,7 @@ export function ClaimCard(props: ClaimCardProps) {
           <Phrases
             pieces={unbroken(pieces)}
             idOf={(id) => `${own}${id}`}
-            badOf={() => (reason ? messageId : undefined)}
+            badOf={(id) => (isAtFault(id, reason) ? messageId : undefined)}
           />
         </p>
         {reason ? (
@@ -114,7 +114,9 @@ export function ClaimCard(props: ClaimCardProps) {
           </div>
         ) : null}
         {result?.curve && !reason ? (
-          <p className="small claim-flips">{unbrokenText(curveSentence(claim.says, result.curve, chain))}</p>
+          <p className="small claim-flips">
+            <Stretches sentence={unbrokenText(curveSentence(claim.says, result.curve, chain))} />
+          </p>
         ) : null}
         {result?.curve === null && !reason ? (
           <p className="small claim-flips quiet">
@@ -210,6 +212,30 @@ export function ClaimCard(props: ClaimCardProps) {
       ) : null}
     </section>
   )
+}
+
+/** Words of a refusal by which its phrase is known; a fault of chain, score or waveform is none of the claim's phrases. */
+const FAULT: Record<string, RegExp> = {
+  window: /^The (?:window of the|early window)/,
+  hz: /^The frequency/,
+  onset: /^The onset of the activity/,
+  unit: /^A latency has no per cent/,
+  least: /^The smallest effect/,
+  first: /has no condition/,
+  second: /has no condition/,
+}
+
+const isAtFault = (id: string, reason: string | null) =>
+  reason !== null && FAULT[id.replace(/^inner:/, '')]?.test(reason) === true
+
+/** A long sentence about many stretches breaks between them. */
+function Stretches({ sentence }: { sentence: string }) {
+  return sentence.split(/ (?=(?:and )?it (?:holds|does not|cannot) )/).map((part, place) => (
+    <Fragment key={part}>
+      {place === 0 ? '' : ' '}
+      <span className={place === 0 ? undefined : 'claim-stretch'}>{part}</span>
+    </Fragment>
+  ))
 }
 
 const buttonsOf = (desk: HTMLElement, id: number) =>
