@@ -38,7 +38,7 @@ export function workspaceOnTable(workspace: Workspace, source: RecordedSource, t
     shown: { conditions: [condition], difference: null, chosen: condition, channel },
     chain: earlier ? workspace.chain : [],
     // of the stages in the data, of which only late-only fits ask; what is applied here always runs on the epoch
-    extent: 'continuous',
+    extent: earlier ? workspace.extent : 'continuous',
     baseline: baselineOn(timesMs),
     trials: table.trialsAveraged ?? (earlier ? workspace.trials : 40),
     score: { kind: 'mean', ...around(SCORE_HALF_MS), polarity },

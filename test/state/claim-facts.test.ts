@@ -2,7 +2,15 @@ import { beforeEach, describe, expect, test } from 'vitest'
 import { answerOf, claimContext, dossierOf, lateOnlyFacts, unanswered } from '../../src/state/claim-facts.ts'
 import { claimStore, runClaim } from '../../src/state/claim-run.ts'
 import { claimSlice } from '../../src/state/claim-worker.ts'
-import { addingClaim, changingClaim, claimKey, claimSetting, namingClaims, variedOf } from '../../src/state/claims.ts'
+import {
+  addingClaim,
+  changingClaim,
+  claimKey,
+  claimSetting,
+  namingClaims,
+  statingRunOn,
+  variedOf,
+} from '../../src/state/claims.ts'
 import { evaluate } from '../../src/state/evaluate.ts'
 import type { RecordedData } from '../../src/state/recorded-data.ts'
 import { SOFTWARE_VERSION } from '../../src/state/software-version.ts'
@@ -135,6 +143,31 @@ describe('dossierOf', () => {
     expect(claim.lateOnly).toEqual(lateOnlyFacts(said.says, result.lateOnly))
     expect(claim.lateOnly).toMatchObject({ t0Ms: said.says.t0Ms, early: said.says.early, slackMs: 30 })
     expect(claim.lateOnly?.scan?.rows.length).toBeGreaterThan(1)
+  })
+
+  test('states of a recording on what its stages in the data ran, since the fit hangs on it', () => {
+    const { workspace, table } = madeUpWorkspace()
+    const chain = start.chain
+      .filter(({ design }) => design === 'butterworth')
+      .map((spec) => ({ ...spec, inData: true }))
+    const written = (extent: Workspace['extent']) => {
+      const one = statingRunOn(extent)(having({ ...workspace, chain }, table, 'late-only'))
+      const [claim] = one.claims.list
+      const setting = claimSetting(claim, one, table)
+      const key = claimKey(claim, one)
+      // the fit itself is enough: its scan takes long
+      const slice = claimSlice(key, { form: claim.says, setting, varied: null }, 0)
+      if (!slice) throw new Error('the question was sent')
+      claimStore.setState({
+        answers: { [key]: { key, ...slice, status: 'running', reason: null } },
+      })
+      return { text: dossierMarkdown(dossier(one, table)), answer: slice.result?.answer }
+    }
+    const continuous = written('continuous')
+    const epochs = written('epochs')
+    expect(continuous.text).toContain('**Stages in the data:** taken to have run on the continuous recording')
+    expect(epochs.text).toContain('**Stages in the data:** taken to have run on the cut-out epochs')
+    expect(epochs.answer?.number).not.toBe(continuous.answer?.number)
   })
 
   test('names the file of a table, where its noise is from, and that it carries its noise', async () => {

@@ -92,6 +92,11 @@ describe('workspaceOnTable', () => {
     const next = workspaceOnTable(filtered, { ...madeUpSource, fileName: 'next.csv' }, table)
     expect(next.chain).toBe(filtered.chain)
     expect(next.trials).toBe(77)
+    // and so with what the stages in the data ran on, which after a built waveform is the usual
+    expect(workspace.extent).toBe('continuous')
+    const cut = workspaceOnTable({ ...filtered, extent: 'epochs' }, { ...madeUpSource, fileName: 'next.csv' }, table)
+    expect(cut.extent).toBe('epochs')
+    expect(workspaceOnTable({ ...startWorkspace(), extent: 'epochs' }, madeUpSource, table).extent).toBe('continuous')
     expect(next.shown.channel).toBe('PO7')
   })
 

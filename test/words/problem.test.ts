@@ -4,6 +4,9 @@ import { scoreOf } from '../../src/erp/score.ts'
 import type { Component } from '../../src/erp/component.ts'
 import { checkBuiltWaveform, epochTimesMs } from '../../src/erp/waveform.ts'
 import { applyChain } from '../../src/filter/apply-chain.ts'
+import { answerClaim } from '../../src/evidence/claims/answer-claim.ts'
+import { lateOnlyClaim } from '../../src/evidence/claims/late-only-claim.ts'
+import { firstSight as claimSetting } from '../evidence/claims/claim-settings.ts'
 import { designChain } from '../../src/filter/chain.ts'
 import type { StageSpec } from '../../src/filter/stage.ts'
 import { inWords, partOfField } from '../../src/words/problem.ts'
@@ -97,6 +100,29 @@ describe('refused stages in words', () => {
     ],
   ])('%s', (words, compute) => {
     expect(said(compute)).toBe(words)
+  })
+
+  test('say of a claim what its phrases are called', () => {
+    expect(said(() => answerClaim({ form: 'attenuation', hz: 300, db: 20 }, claimSetting))).toBe(
+      'The frequency must lie between 0 and 250 (half the sampling rate), was 300.',
+    )
+    expect(
+      said(() =>
+        answerClaim({ form: 'change', row: 'peak-latency', relation: 'at least', amount: 10, unit: '%' }, claimSetting),
+      ),
+    ).toBe('A latency has no per cent of its value before; its change must be said in ms.')
+    const window = { fromMs: 80, toMs: 140 }
+    expect(
+      said(() =>
+        answerClaim(
+          { form: 'effect', first: 'a', second: 'b', window, says: 'changes sign', leastUv: 0 },
+          claimSetting,
+        ),
+      ),
+    ).toBe('The smallest effect that counts must be above 0, was 0.')
+    expect(
+      said(() => lateOnlyClaim({ form: 'late-only', t0Ms: 9000, early: window, slackMs: 30 }, claimSetting)),
+    ).toMatch(/^The onset of the activity must lie in the epoch \(−400 to 1000 ms\), was 9000\.$/)
   })
 
   test('name the stage by its place in the chain, and an amplifier that comes too late', () => {
