@@ -43,6 +43,19 @@ export function robustVerdict(
   return robustOf(fit, variants)
 }
 
+/** The fit and the robust verdict alone: no variant is fitted that cannot change it any more. Throws as `lateOnlyFit`. */
+export function robustVerdictOnly(
+  y: Float64Array,
+  chain: Chain,
+  options: LateOnlyOptions,
+): { fit: LateOnlyFit; verdict: LateOnlyVerdict } {
+  const fit = lateOnlyFit(y, chain, options)
+  const stands =
+    fit.verdict !== 'cannot be told' &&
+    robustOptions(options).every((variant) => lateOnlyFit(y, chain, variant).verdict === fit.verdict)
+  return { fit, verdict: stands ? fit.verdict : 'cannot be told' }
+}
+
 /** The other assumptions under which a verdict must stay what it is. */
 export function robustOptions(options: LateOnlyOptions): (LateOnlyOptions & { sigmaUv: number; lengthMs: number })[] {
   const { sigmaUv = DEFAULT_SIGMA_UV, lengthMs = SHORTEST_LENGTH_MS } = options

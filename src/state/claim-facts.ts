@@ -23,9 +23,9 @@ export function claimContext(claim: Claim, workspace: Workspace): ClaimAnswerCon
 }
 
 export function lateOnlyFacts(form: LateOnlyForm, result: LateOnlyResult): LateOnlyFacts {
-  const { robust, sigmaUv, lengthMs, scan } = result
+  const { robust, sigmaUv, lengthMs, scan, noiseless } = result
   const { t0Ms, slackMs, early } = form
-  return { robust, t0Ms, slackMs, early, sigmaUv, lengthMs, scan }
+  return { robust, t0Ms, slackMs, early, sigmaUv, lengthMs, scan, noiseless }
 }
 
 /** The answer that stands for a claim as it is said now; null where it is not there yet. */
@@ -43,6 +43,7 @@ export function unanswered(workspace: Workspace): number {
  * All claims with their answers. Claims about one chain, taken in one way, share their assumptions.
  *
  * @param figureOf the figure of a claim as the text of an svg file, or null.
+ * @param moreOf   figures beside it: of a late-only fit its account and its scan.
  * @throws RangeError where a claim has no answer, or its setting cannot be.
  */
 export function dossierOf(
@@ -50,6 +51,7 @@ export function dossierOf(
   evaluation: Pick<Evaluation, 'samplingRateHz' | 'timesMs'>,
   data: RecordedData | null,
   figureOf: (claim: Claim) => string | null,
+  moreOf: (claim: Claim) => readonly { title: string; svg: string }[] = () => [],
 ): Dossier {
   const settings: DossierSetting[] = []
   const places = new Map<string, number>()
@@ -82,6 +84,7 @@ export function dossierOf(
       context: claimContext(claim, workspace),
       curve: result.curve ?? null,
       figureSvg: figureOf(claim),
+      moreFigures: moreOf(claim),
       ...(says.form === 'late-only' && result.lateOnly ? { lateOnly: lateOnlyFacts(says, result.lateOnly) } : {}),
       setting: place,
     }

@@ -31,6 +31,17 @@ export const takenOf = (claim: Claim, { source }: Workspace): Claim['taken'] =>
   source.kind === 'recorded' ? 'as measured' : claim.taken
 
 /**
+ * Whether what a waveform passed before it came here is known. Nobody says which filters a recording has passed and leaves some out unawares, so
+ * that a stage that is said to be in the data is taken for all of them, until the user says otherwise.
+ */
+export function filteredBeforeOf(claim: Claim | null, workspace: Workspace): 'as stated' | 'not known' {
+  if (workspace.source.kind !== 'recorded') return 'as stated'
+  const { chain } = claim?.on ?? workspace
+  const stated = chain.some(({ inData, enabled }) => inData === true && enabled !== false)
+  return workspace.claims.filteredBefore ?? (stated ? 'as stated' : 'not known')
+}
+
+/**
  * All that a claim is answered from.
  *
  * @throws RangeError where the data are not at hand, the waveform is impossible, or a condition is not there.
@@ -56,7 +67,7 @@ export function claimSetting(claim: Claim, workspace: Workspace, data: RecordedD
     })),
     noisePassed: passed,
     taken: takenOf(claim, workspace),
-    filteredBefore: source.kind === 'recorded' ? workspace.claims.filteredBefore : 'as stated',
+    filteredBefore: filteredBeforeOf(claim, workspace),
     unseenThreshold: workspace.trace.threshold,
   }
 }
@@ -71,7 +82,7 @@ function namesNeeded(form: ClaimForm, chosen: ClaimSetting['chosen']): string[] 
 
 /** Says what an answer hangs on: the same text is the same answer. */
 export function claimKey(claim: Claim, workspace: Workspace): string {
-  const { source, shown, baseline, score, measure, trials, noise, noiseFrom, trace, claims } = workspace
+  const { source, shown, baseline, score, measure, trials, noise, noiseFrom, trace } = workspace
   return JSON.stringify([
     claim.says,
     chainOfClaim(claim, workspace),
@@ -80,7 +91,7 @@ export function claimKey(claim: Claim, workspace: Workspace): string {
     source,
     { chosen: shown.chosen, difference: shown.difference, channel: shown.channel },
     { baseline, score, measure, trials, noise, noiseFrom },
-    { threshold: trace.threshold, filteredBefore: claims.filteredBefore },
+    { threshold: trace.threshold, filteredBefore: filteredBeforeOf(claim, workspace) },
   ])
 }
 

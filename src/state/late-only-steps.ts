@@ -12,6 +12,8 @@ export interface LateOnlyResult {
   /** What was fitted, µV on the epoch's samples. */
   readonly fitted: Float64Array
   readonly timesMs: Float64Array
+  /** A built waveform, taken as it stands. */
+  readonly noiseless: boolean
   /** What was assumed of late activity. */
   readonly sigmaUv: number
   readonly lengthMs: number
@@ -24,7 +26,8 @@ export interface LateOnlyResult {
 /** What is known after a step. */
 export interface LateOnlyStep {
   readonly answer: ClaimAnswer
-  readonly lateOnly: LateOnlyResult
+  /** Absent where nothing can be fitted, since nobody knows what the waveform had passed. */
+  readonly lateOnly?: LateOnlyResult
   readonly curve?: ClaimCurve | null
 }
 
@@ -41,10 +44,15 @@ export function* lateOnlySteps(
   setting: ClaimSetting,
   varied: Varied | null,
 ): Generator<{ result: LateOnlyStep; done: number; total: number }, LateOnlyStep> {
+  if (setting.filteredBefore === 'not known') {
+    const grounds = { kind: 'filtered before' } as const
+    return { answer: { verdict: 'cannot be told', number: null, unit: 'µV', interval: null, grounds, values: [] } }
+  }
   const { robust, fitted, ...answer } = lateOnlyClaim(form, setting)
   let lateOnly: LateOnlyResult = {
     ...{ robust, fitted },
     timesMs: setting.timesMs,
+    noiseless: setting.taken === 'as it stands',
     sigmaUv: DEFAULT_SIGMA_UV,
     lengthMs: SHORTEST_LENGTH_MS,
     scan: null,

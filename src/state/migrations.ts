@@ -12,7 +12,7 @@ const STEPS: Readonly<Record<number, (older: object) => object>> = {
   // 1: no claims, nothing stated for the write-up
   1: (older) => ({
     ...older,
-    claims: { title: '', filteredBefore: 'not known', list: [] },
+    claims: { title: '', filteredBefore: null, list: [] },
     statements: {},
   }),
 }

@@ -321,12 +321,12 @@ export const MAX_CLAIMS = 30
 /** The claims of one paper or review. */
 const claimsSchema = v.object({
   title: text,
-  /** Of a recording: whether the stages in the data are all that it has passed. */
-  filteredBefore: v.picklist(['as stated', 'not known']),
+  /** Of a recording: whether the stages in the data are all that it has passed; null: they are if there are any. */
+  filteredBefore: v.nullable(v.picklist(['as stated', 'not known'])),
   list: v.pipe(v.array(claimSchema), v.maxLength(MAX_CLAIMS)),
 })
 
-const START_CLAIMS: v.InferOutput<typeof claimsSchema> = { title: '', filteredBefore: 'not known', list: [] }
+const START_CLAIMS: v.InferOutput<typeof claimsSchema> = { title: '', filteredBefore: null, list: [] }
 
 /** What the user says of what the page cannot know, by the checklist's field ("resampling"); shown in the write-up. */
 const statementsSchema = v.pipe(

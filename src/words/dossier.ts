@@ -34,6 +34,8 @@ export interface DossierClaim {
   readonly curve: ClaimCurve | null
   /** The figure as the text of an svg file; null for none. */
   readonly figureSvg: string | null
+  /** Others beside it, each with what it shows. */
+  readonly moreFigures?: readonly { readonly title: string; readonly svg: string }[]
   /** Of the late-only form. */
   readonly lateOnly?: LateOnlyFacts
   /** Place in `settings`, counted from 0. */
@@ -298,6 +300,9 @@ function sized(form: ClaimForm, number: number, unit: Unit): string {
     : changeWithUnit(number, unit, [0])
 }
 
+/** a, b, … */
+const smallLetterOf = (index: number) => letterOf(index).toLowerCase()
+
 /** A, B, … Z, AA. */
 function letterOf(index: number): string {
   const rest = Math.floor(index / 26)
@@ -374,6 +379,10 @@ function claimHtml(dossier: Dossier, claim: DossierClaim, i: number): string {
     claim.figureSvg === null
       ? ''
       : `<figure>${inlineSvg(claim.figureSvg, `claim-${n}-`)}<figcaption>Figure ${n}. ${escapeHtml(sentenceOf(dossier, claim))}</figcaption></figure>`
+  const more = (claim.moreFigures ?? []).map(
+    ({ title, svg }, k) =>
+      `<figure>${inlineSvg(svg, `claim-${n}${smallLetterOf(k)}-`)}<figcaption>Figure ${n}${smallLetterOf(k)}. ${escapeHtml(title)}</figcaption></figure>`,
+  )
   return (
     `<section aria-labelledby="claim-${n}"><h2 id="claim-${n}">Claim ${n}</h2>` +
     `<p class="claim">${escapeHtml(sentenceOf(dossier, claim))}</p>` +
@@ -384,7 +393,7 @@ function claimHtml(dossier: Dossier, claim: DossierClaim, i: number): string {
           name === 'Rests on' ? `<a href="#setting-${claim.setting + 1}">${escapeHtml(text)}</a>` : escapeHtml(text)
         return `<div><dt>${escapeHtml(name)}</dt><dd${verdict}>${words}</dd></div>`
       })
-      .join('')}</dl>${figure}</section>`
+      .join('')}</dl>${figure}${more.join('')}</section>`
   )
 }
 

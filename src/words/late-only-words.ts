@@ -18,6 +18,8 @@ export interface LateOnlyFacts {
   readonly t0Ms: number
   readonly slackMs: number
   readonly early: TimeWindow
+  /** A built waveform that is taken as it stands has no noise on it. */
+  readonly noiseless?: boolean
   /** σ and ℓ that the fit assumed, so that its variants can be named by what they change. */
   readonly sigmaUv: number
   readonly lengthMs: number
@@ -49,6 +51,10 @@ const VERDICT: Record<LateOnlyVerdict, string> = {
 const PHASE_LOCKED =
   'Activity at about 10 Hz that is phase-locked to the event cannot be told from an early component by this fit.'
 
+/** The fit then believes every detail of the waveform. */
+const NOISELESS =
+  'The waveform is taken as it stands, without noise, so that the noise found is about none and the interval is far narrower than any study’s. Taken as measured, it carries the noise of the trials.'
+
 /** Scales of the stated noise within which it is taken to be right. */
 const SCALE_LOW = 0.5
 const SCALE_HIGH = 2
@@ -64,7 +70,7 @@ export function lateOnlyWords(facts: LateOnlyFacts): LateOnlyWords {
     estimate: estimateWords(facts),
     verdict: VERDICT[robust.verdict],
     reason: reasonWords(facts),
-    noise: noiseWords(robust.fit.noiseScale),
+    noise: facts.noiseless ? NOISELESS : noiseWords(robust.fit.noiseScale),
     alpha: alphaWords(robust.fit.alphaScale),
     phaseLocked: PHASE_LOCKED,
     robust: robustWords(facts),
@@ -179,6 +185,8 @@ function variantWords(variant: RobustVariant, sigmaUv: number, lengthMs: number)
   return parts.length === 0 ? 'late activity as assumed' : list(parts)
 }
 
+const RULED_OUT: LateOnlyVerdict = 'not by late activity alone'
+
 function scanWords({ rows, latestMs, beyond }: NonNullable<LateOnlyFacts['scan']>): string {
   const range =
     rows.length === 1
@@ -194,7 +202,11 @@ function scanWords({ rows, latestMs, beyond }: NonNullable<LateOnlyFacts['scan']
       : `${range} none is ruled out by the fit: the latest onset that the data allow lies at ${momentWords(latestMs)} or later.`
   const next = rows.find(({ t0Ms }) => t0Ms > latestMs)
   const until = next ? `; at the next, ${momentWords(next.t0Ms)}, late activity alone is ruled out` : ''
-  return `${range}, the latest that the data allow is ${momentWords(latestMs)}${until}.`
+  const again = next ? rows.filter(({ t0Ms, verdict }) => t0Ms > next.t0Ms && verdict !== RULED_OUT).length : 0
+  const later = again === 0 ? '' : again === 1 ? ', at one later one not' : `, at ${exact(again)} later ones not`
+  // where the verdicts do not change once for all, the latest that is allowed is no single moment
+  const latest = again === 0 ? 'the latest that the data allow' : 'the latest before the first that is ruled out'
+  return `${range}, ${latest} is ${momentWords(latestMs)}${until}${later}.`
 }
 
 /** The strongest early component anywhere before the late activity, and how often noise alone finds one as strong. */

@@ -9,6 +9,7 @@ import {
   claimToBegin,
   conditionNames,
   duplicatingClaim,
+  filteredBeforeOf,
   movingClaim,
   namingClaims,
   removingClaim,
@@ -281,10 +282,26 @@ describe('what a claim is answered from', () => {
   test('of a built waveform: its history is never in doubt, and it stands as it is until it is said to be measured', () => {
     const built = addingClaim('deflection', null)(start)
     const [claim] = built.claims.list
-    expect(built.claims.filteredBefore).toBe('not known')
+    expect(built.claims.filteredBefore).toBeNull()
     expect(claimSetting(claim, built, null)).toMatchObject({ filteredBefore: 'as stated', taken: 'as it stands' })
     expect(claimSetting({ ...claim, taken: 'as measured' }, built, null).taken).toBe('as measured')
     expect(claimSetting(claim, built, null).chain).toBe(built.chain)
+  })
+
+  test('of a recording: what it had passed is known once a stage is said to be in the data, unless the user says otherwise', () => {
+    const table: Workspace = { ...start, source: { kind: 'recorded', fileName: 'a.csv', fileId: '0', reading: {} } }
+    const inData = { ...table, chain: start.chain.map((stage) => ({ ...stage, inData: true })) }
+    expect(filteredBeforeOf(null, table)).toBe('not known')
+    expect(filteredBeforeOf(null, inData)).toBe('as stated')
+    const off = { ...inData, chain: inData.chain.map((stage) => ({ ...stage, enabled: false })) }
+    expect(filteredBeforeOf(null, off)).toBe('not known')
+    const said = (value: 'as stated' | 'not known') => statingFilteredBefore(value)
+    expect(filteredBeforeOf(null, said('as stated')(table))).toBe('as stated')
+    expect(filteredBeforeOf(null, said('not known')(inData))).toBe('not known')
+    // a claim with a chain of its own says it by that chain
+    const [claim] = addingClaim('deflection', null)(start).claims.list
+    const kept = { ...claim, on: { name: 'as published', chain: inData.chain, extent: 'continuous' as const } }
+    expect(filteredBeforeOf(kept, table)).toBe('as stated')
   })
 
   test('of a claim with a chain of its own: that chain, whatever the protocol line says', () => {
@@ -314,7 +331,6 @@ describe('the question of a claim', () => {
     ['the extent', (w) => ({ ...w, extent: 'epochs' })],
     ['the waveform', (w) => ({ ...w, source: { ...w.source, samplingRateHz: 250 } as Workspace['source'] })],
     ['the share that is too much', (w) => ({ ...w, trace: { ...w.trace, threshold: 0.31 } })],
-    ['what was filtered before', statingFilteredBefore('as stated')],
     ['what is varied', changingClaim(1, (claim) => ({ ...claim, varied: { stage: 1, what: 'order', cutoff: 0 } }))],
     ['how it is taken', changingClaim(1, (claim) => ({ ...claim, taken: 'as measured' }))],
   ])('is another one with %s', (_, change) => {
@@ -325,6 +341,7 @@ describe('the question of a claim', () => {
     ['where it was made', changingClaim(1, (claim) => ({ ...claim, madeIn: 'Reviewer 1' }))],
     ['the title', namingClaims('A review')],
     ['another claim', addingClaim('tone', null)],
+    ['what a recording would have passed before', statingFilteredBefore('not known')],
     ['a limit', (w) => ({ ...w, limits: {} })],
     ['the limits of the trade-off map', (w) => ({ ...w, tradeOff: { ...w.tradeOff, fromHz: 0.02 } })],
   ])('is the same one with %s', (_, change) => {

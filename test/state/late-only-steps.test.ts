@@ -55,14 +55,14 @@ describe('a late-only fit in steps', () => {
   })
 
   test('adds one onset at a time, from the early window to the largest late value', () => {
-    const rows = seen.map(({ result }) => result.lateOnly.scan?.rows.length ?? 0)
+    const rows = seen.map(({ result }) => result.lateOnly?.scan?.rows.length ?? 0)
     expect(rows.slice(0, 4)).toEqual([0, 1, 2, 3])
-    const scan = end.lateOnly.scan
+    const scan = end.lateOnly!.scan
     if (!scan) throw new Error('there is no scan')
     const stepMs = scan.rows[1].t0Ms - scan.rows[0].t0Ms
     const last = scan.rows[scan.rows.length - 1].t0Ms
     expect(scan.rows[0].t0Ms).toBeCloseTo(form.early.fromMs, 9)
-    const largest = end.lateOnly.fitted.reduce(
+    const largest = end.lateOnly!.fitted.reduce(
       (best, value, i, all) => (timesMs[i] > form.early.toMs && Math.abs(value) > Math.abs(all[best]) ? i : best),
       timesMs.length - 1,
     )
@@ -71,7 +71,7 @@ describe('a late-only fit in steps', () => {
     expect(timesMs[largest]).toBeGreaterThan(300)
     expect(scan).toEqual({ rows: scan.rows, ...latestOnset(scan.rows) })
     // nothing that was shown earlier is changed behind its back
-    expect(seen[1].result.lateOnly.scan?.rows).toHaveLength(1)
+    expect(seen[1].result.lateOnly?.scan?.rows).toHaveLength(1)
   })
 
   test('ends with the search for early components anywhere, and with a curve that has the answer where the chain stands', () => {
@@ -79,7 +79,7 @@ describe('a late-only fit in steps', () => {
     const search = scanBumps(y, chain, options)
     let next = search.next()
     while (!next.done) next = search.next()
-    expect(end.lateOnly.bumps).toEqual(next.value)
+    expect(end.lateOnly!.bumps).toEqual(next.value)
     const here = end.curve?.points.find(({ at }) => at === end.curve?.present)
     expect(here).toMatchObject({ verdict: end.answer.verdict })
     expect(here?.number).toBeCloseTo(end.answer.number as number, 9)
@@ -89,8 +89,15 @@ describe('a late-only fit in steps', () => {
 
 test('late activity from the epoch’s start on leaves no room for a component before it, and the steps still come to their end', () => {
   const { end } = run(lateOnlySteps({ ...form, t0Ms: -200, slackMs: 0 }, setting, null))
-  expect(end.lateOnly.bumps).toBeNull()
-  expect(end.lateOnly.scan?.rows.length).toBeGreaterThan(1)
+  expect(end.lateOnly!.bumps).toBeNull()
+  expect(end.lateOnly!.scan?.rows.length).toBeGreaterThan(1)
+})
+
+test('what had passed filters that nobody knows is not fitted, whatever it looks like', () => {
+  const { seen: none, end } = run(lateOnlySteps(form, { ...setting, filteredBefore: 'not known' }, null))
+  expect(none).toHaveLength(0)
+  expect(end.answer).toMatchObject({ verdict: 'cannot be told', grounds: { kind: 'filtered before' }, number: null })
+  expect(end.lateOnly).toBeUndefined()
 })
 
 test('without a cutoff to vary there is no curve', () => {

@@ -127,6 +127,22 @@ describe('dossier', () => {
     expect(html).toContain('clip-path="url(#claim-1-c)"')
   })
 
+  test('figures beside the first have ids and names of their own, and what is no figure is refused', () => {
+    const [claim] = dossier.claims
+    const moreFigures = [
+      { title: 'The best account & what is left', svg },
+      { title: 'Other onsets', svg },
+    ]
+    const html = dossierHtml({ ...dossier, claims: [{ ...claim, moreFigures }] })
+    const text = wellFormed(html)
+    expect(text).toContain('Figure 1a. The best account &amp; what is left')
+    expect(text).toContain('Figure 1b. Other onsets')
+    const ids = [...html.matchAll(/ id="([^"]*)"/g)].map(([, id]) => id)
+    expect(new Set(ids).size).toBe(ids.length)
+    const hostile = [{ title: 'x', svg: '<svg xmlns="http://www.w3.org/2000/svg"><script>1</script></svg>' }]
+    expect(() => dossierHtml({ ...dossier, claims: [{ ...claim, moreFigures: hostile }] })).toThrow(RangeError)
+  })
+
   test('every assumption is listed, with version and caution', () => {
     for (const text of [wellFormed(dossierHtml(dossier)), dossierMarkdown(dossier)]) {
       for (const part of [

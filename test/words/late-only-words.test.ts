@@ -101,6 +101,12 @@ describe('lateOnlyWords', () => {
     )
   })
 
+  test('a waveform without noise is not reproached with it', () => {
+    const noiseless = lateOnlyWords({ ...facts(can), noiseless: true })
+    expect(noiseless.noise).toMatch(/without noise/)
+    expect(noiseless.noise).not.toMatch(/may be wrong/)
+  })
+
   const rowsOf = (verdicts: readonly LateOnlyVerdict[]) =>
     verdicts.map((verdict, i) => ({ t0Ms: 100 + 20 * i, beta: 0, interval: [-1, 1] as const, z: 0, verdict }))
   const scanned = (verdicts: readonly LateOnlyVerdict[]) => {
@@ -111,6 +117,9 @@ describe('lateOnlyWords', () => {
   test('the latest onset that the data allow, found, before the scan or beyond it', () => {
     expect(scanned(['it can', 'cannot be told', 'not by late activity alone'])).toBe(
       'Of 3 assumed onsets from 100 to 140 ms, the latest that the data allow is 120 ms; at the next, 140 ms, late activity alone is ruled out.',
+    )
+    expect(scanned(['it can', 'not by late activity alone', 'it can', 'cannot be told'])).toBe(
+      'Of 4 assumed onsets from 100 to 160 ms, the latest before the first that is ruled out is 100 ms; at the next, 120 ms, late activity alone is ruled out, at 2 later ones not.',
     )
     expect(scanned(['not by late activity alone', 'it can'])).toContain('already the earliest is ruled out')
     expect(scanned(['it can', 'it can'])).toContain('lies at 120 ms or later')

@@ -1,11 +1,14 @@
+import { correctBaseline } from '../../erp/baseline.ts'
 import { noiseDensityAt, type NoiseSpec, type NoiseTable } from '../../erp/noise.ts'
+import { seededRandom } from '../../erp/seeded-random.ts'
 import { appliedOfflineStages, type Extent } from '../../filter/apply-chain.ts'
 import type { Chain } from '../../filter/chain.ts'
 import type { StageSpec } from '../../filter/stage.ts'
 import { stagesResponse } from '../../filter/stage-response.ts'
+import { drawFilteredNoise, filteredNoise, noisePath } from '../filtered-noise.ts'
 import type { LateOnlyOptions } from '../late-only-model.ts'
 import type { LateOnlyVerdict } from '../late-only-verdict.ts'
-import { type RobustVerdict, robustVerdict } from '../robust-verdict.ts'
+import { type RobustVerdict, robustVerdict, robustVerdictOnly } from '../robust-verdict.ts'
 import { type CurveProgress, located } from './claim-curve.ts'
 import type { ClaimAnswer, ClaimCurve, ClaimPoint, ClaimSetting, ClaimVerdict, LateOnlyClaim, Varied } from './claim.ts'
 import {
@@ -31,7 +34,7 @@ export interface LateOnlyAnswer extends ClaimAnswer {
  * the fit's verdict, it cannot be told.
  *
  * What is fitted is the waveform after the stages that are applied here: a recorded one whose stages are all in the data as it is loaded, a built one
- * baseline-corrected. A recorded waveform that is filtered here was filtered on its epoch, whatever the setting's extent.
+ * baseline-corrected; taken as measured, with the noise of one simulated average on it, always the same. A recorded waveform that is filtered here was filtered on its epoch, whatever the setting's extent.
  *
  * An estimated noise that has passed the stages in the data is taken back to before them, as the fit runs it through them, by no more than 40 dB: weaker
  * than that nothing was measured. Two conditions of a difference count as half as many trials.
@@ -68,11 +71,24 @@ function lateOnlyOf(prepared: PreparedClaim, form: LateOnlyClaim, specs: readonl
   }
 }
 
+/** Of the one simulated average that a built waveform is measured in. */
+const SEED = 1
+
 function fittedWaveform(prepared: PreparedClaim, chain: Chain): Float64Array {
-  const { chosen } = prepared.setting
+  const { setting } = prepared
+  const { chosen, timesMs, taken, baseline } = setting
   const unfiltered = unfilteredWaveform(prepared, chosen)
   if (unfiltered.source.kind === 'recorded') return filteredValues(prepared, unfiltered, chain)
-  return claimedWaveform(prepared, chosen, chain).after
+  const { after } = claimedWaveform(prepared, chosen, chain)
+  if (taken === 'as it stands') return after
+  const path = noisePath(chain, setting.extent, setting.noisePassed)
+  const source = filteredNoise(path, setting.noise, setting.samplingRateHz, timesMs.length)
+  const [noise] = drawFilteredNoise(source, seededRandom(SEED, 0), Math.max(1, setting.trials / unfiltered.averages))
+  return correctBaseline(
+    after.map((value, i) => value + noise[i]),
+    timesMs,
+    baseline,
+  )
 }
 
 const VERDICT: Record<LateOnlyVerdict, ClaimVerdict> = {
@@ -123,7 +139,7 @@ export function noiseBefore(chain: Chain, noise: NoiseSpec): NoiseSpec {
   return table
 }
 
-/** Most fits of a curve; each is three. */
+/** Most points of a curve; each is one to three fits. */
 const MOST_POINTS = 15
 const GRID = 9
 /** A cutoff is varied to this many times itself, up and down. */
@@ -139,7 +155,7 @@ export function variedByDefaultOfFit(chain: readonly StageSpec[]): Varied | null
  * The estimated early activity and the verdict of the fit over one quantity of the chain: of a recorded waveform, what would follow if its filter had been another
  * than is stated; of a built one, what another filter would have made.
  *
- * At most 15 points, since each is three fits: a cutoff or transition width from an eighth to eight times itself, or the orders about the present one, and steps towards
+ * At most 15 points, since each is one to three fits: a cutoff or transition width from an eighth to eight times itself, or the orders about the present one, and steps towards
  * each change of the verdict as long as points are left. A flip stands in the middle (of the logarithm) of the two points that it lies between.
  *
  * @param varied what is varied, or null for the first enabled offline stage's first cutoff.
@@ -160,12 +176,10 @@ export function* lateOnlyCurve(
   const look = (at: number) => {
     if (points.some((point) => point.at === at)) return
     try {
-      const { number, verdict } = lateOnlyOf(
-        prepared,
-        form,
-        at === present ? setting.chain : variedChain(setting.chain, of, at),
-      )
-      points.push({ at, number, verdict })
+      const chain = claimChain(prepared, at === present ? setting.chain : variedChain(setting.chain, of, at))
+      const y = fittedWaveform(prepared, chain)
+      const { fit, verdict } = robustVerdictOnly(y, chain, optionsOf(prepared, form, chain))
+      points.push({ at, number: fit.beta, verdict: VERDICT[verdict] })
     } catch (error) {
       if (!(error instanceof RangeError) || at === present) throw error
       points.push({ at, number: null, verdict: null })

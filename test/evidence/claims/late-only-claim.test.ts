@@ -70,6 +70,22 @@ describe('lateOnlyClaim', () => {
     expect(answer.number).toBeCloseTo(lateOnlyClaim(form, andEarly).number as number, 9)
   })
 
+  test('takes a built waveform as measured with the noise of one simulated average, always the same', () => {
+    const measured = { ...andEarly, taken: 'as measured' as const }
+    const first = lateOnlyClaim(form, measured)
+    expect(lateOnlyClaim(form, measured).fitted).toEqual(first.fitted)
+    const { fitted: clean } = lateOnlyClaim(form, andEarly)
+    const noise = first.fitted.map((value, i) => value - clean[i])
+    const size = (values: Float64Array) => Math.sqrt(values.reduce((sum, value) => sum + value ** 2, 0) / values.length)
+    expect(size(noise)).toBeGreaterThan(0.05)
+    // four times the trials leave half of it, and the noise that is found is about the stated one
+    const more = lateOnlyClaim(form, { ...measured, trials: 4 * measured.trials })
+    expect(size(more.fitted.map((value, i) => value - clean[i])) / size(noise)).toBeCloseTo(0.5, 9)
+    expect(first.robust.fit.noiseScale).toBeGreaterThan(0.3)
+    expect(first.robust.fit.noiseScale).toBeLessThan(3)
+    expect(lateOnlyClaim(form, andEarly).robust.fit.noiseScale).toBeLessThan(0.1)
+  })
+
   test('is the robust verdict of the fit with the setting’s noise and trials', () => {
     const answer = lateOnlyClaim(form, onlyLate)
     const { t0Ms, early, slackMs } = form

@@ -1,5 +1,5 @@
 /** One claim: its sentence, verdict, reason, what would change it, and the figure of that. */
-import { Fragment, useEffect, useRef } from 'react'
+import { Fragment, type RefObject, useEffect, useRef } from 'react'
 import type { ClaimVerdict } from '../../../evidence/claims/claim.ts'
 import { claimContext } from '../../../state/claim-facts.ts'
 import {
@@ -56,6 +56,7 @@ export function ClaimCard(props: ClaimCardProps) {
   const answered = useClaim(claim, workspace)
   const { result, stale, reason } = answered
   const svg = useRef<SVGSVGElement>(null)
+  const more = useRef(new Map<string, RefObject<SVGSVGElement | null>>())
   const own = `claim-${claim.id}:`
   const editing = useView((view) => (view.open?.startsWith(own) ? view.open.slice(own.length) : null))
   const { chain } = chainOfClaim(claim, workspace)
@@ -68,7 +69,7 @@ export function ClaimCard(props: ClaimCardProps) {
   const figure = () =>
     `Claim: ${text} ${result ? `${claimVerdictWords(result.answer.verdict)}. ${answerText}` : ''} ${props.caption()}`
   useEffect(() => {
-    figures.set(claim.id, { svg, caption: figure })
+    figures.set(claim.id, { svg, caption: figure, more: more.current })
     return () => {
       figures.delete(claim.id)
     }
@@ -208,7 +209,13 @@ export function ClaimCard(props: ClaimCardProps) {
         ) : null}
       </div>
       {claim.says.form === 'late-only' && result?.lateOnly && !reason ? (
-        <LateOnlyPanel form={claim.says} result={result.lateOnly} number={number} caption={figure} />
+        <LateOnlyPanel
+          form={claim.says}
+          result={result.lateOnly}
+          number={number}
+          caption={figure}
+          figures={more.current}
+        />
       ) : null}
     </section>
   )

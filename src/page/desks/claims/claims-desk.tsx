@@ -5,6 +5,7 @@ import {
   addingClaim,
   CLAIM_FORMS,
   conditionNames,
+  filteredBeforeOf,
   namingClaims,
   statingFilteredBefore,
   statingRunOn,
@@ -78,7 +79,7 @@ const FILTERED_BEFORE = 'claim-filtered-before'
 
 /** Whether the stages in the data are all that a recording has passed: only the user can know. */
 function FilteredBefore({ workspace }: { workspace: Workspace }) {
-  const { filteredBefore } = workspace.claims
+  const filteredBefore = filteredBeforeOf(null, workspace)
   return (
     <p className="small claim-about of-desk">
       What this recording had passed before it was loaded is{' '}
@@ -139,7 +140,7 @@ function FilteredBeforeEditor({ workspace }: { workspace: Workspace }) {
       <Choice
         stacked
         label="what the recording had passed"
-        value={workspace.claims.filteredBefore}
+        value={filteredBeforeOf(null, workspace)}
         options={[
           {
             value: 'as stated',

@@ -14,6 +14,8 @@ import { WordButton } from '../../fields.tsx'
 export interface FigureSource {
   svg: RefObject<SVGSVGElement | null>
   caption: () => string
+  /** Figures beside it, by what they show. */
+  more: ReadonlyMap<string, RefObject<SVGSVGElement | null>>
 }
 
 interface DossierPartProps {
@@ -29,11 +31,17 @@ export function DossierPart({ workspace, evaluation, data, figures }: DossierPar
   const save = (kind: 'html' | 'md') => {
     try {
       const dossier = inLightTheme(() =>
-        dossierOf(workspace, evaluation, data, ({ id }) => {
-          const figure = figures.get(id)
-          if (!figure?.svg.current) return null
-          return figureToSvg(figure.svg.current, { title: 'What would change it', caption: '', fontCss: '' })
-        }),
+        dossierOf(
+          workspace,
+          evaluation,
+          data,
+          ({ id }) => drawn('What would change it', figures.get(id)?.svg.current),
+          ({ id }) =>
+            [...(figures.get(id)?.more ?? [])].flatMap(([title, { current }]) => {
+              const svg = drawn(title, current)
+              return svg === null ? [] : [{ title, svg }]
+            }),
+        ),
       )
       const text = kind === 'html' ? dossierHtml(dossier) : dossierMarkdown(dossier)
       const name = `${fileName(workspace.claims.title)}.${kind}`
@@ -80,6 +88,10 @@ function inLightTheme<T>(read: () => T): T {
     if (theme === undefined) delete dataset.theme
     else dataset.theme = theme
   }
+}
+
+function drawn(title: string, svg: SVGSVGElement | null | undefined): string | null {
+  return svg ? figureToSvg(svg, { title, caption: '', fontCss: '' }) : null
 }
 
 /** A title as the name of a file. */

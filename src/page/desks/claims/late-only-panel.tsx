@@ -1,5 +1,5 @@
 /** The late-only fit behind a claim: what it found, in words, numbers and figures. */
-import { useRef } from 'react'
+import { type RefObject, useEffect, useRef } from 'react'
 import type { ClaimForm } from '../../../evidence/claims/claim.ts'
 import {
   Axis,
@@ -31,9 +31,11 @@ interface LateOnlyPanelProps {
   result: LateOnlyResult
   number: number
   caption: () => string
+  /** Where the figures are listed for the dossier, by what they show. */
+  figures: Map<string, RefObject<SVGSVGElement | null>>
 }
 
-export function LateOnlyPanel({ form, result, number, caption }: LateOnlyPanelProps) {
+export function LateOnlyPanel({ form, result, number, caption, figures }: LateOnlyPanelProps) {
   const words = lateOnlyWords(lateOnlyFacts(form, result))
   const said: readonly [string, string][] = [
     ['Early activity', words.estimate],
@@ -48,11 +50,11 @@ export function LateOnlyPanel({ form, result, number, caption }: LateOnlyPanelPr
     <div className="late-only">
       <div className="grid">
         <div className="figure-body">
-          <FitFigure {...{ form, result, number, caption }} />
+          <FitFigure {...{ form, result, number, caption, figures }} />
         </div>
         <div className="side figure-body">
           {result.scan && result.scan.rows.length > 1 ? (
-            <ScanFigure {...{ form, result, number, caption }} scan={result.scan} />
+            <ScanFigure {...{ form, result, number, caption, figures }} scan={result.scan} />
           ) : null}
         </div>
       </div>
@@ -71,8 +73,24 @@ export function LateOnlyPanel({ form, result, number, caption }: LateOnlyPanelPr
 
 const FIT_MARGIN = { left: 44, right: 12, top: 20, bottom: 26 }
 
-function FitFigure({ form, result, number, caption }: LateOnlyPanelProps) {
+function useListed(figures: LateOnlyPanelProps['figures'], title: string) {
   const svg = useRef<SVGSVGElement>(null)
+  useEffect(() => {
+    figures.set(title, svg)
+    return () => {
+      figures.delete(title)
+    }
+  }, [figures, title])
+  return svg
+}
+
+const FIT_SHOWS =
+  'The filtered waveform, the best unfiltered waveform that begins no earlier than stated, what the filter makes of it, and what is left.'
+const SCAN_SHOWS =
+  'Early activity with its 95 % interval for other onsets; open and dashed where late activity alone is ruled out.'
+
+function FitFigure({ form, result, number, caption, figures }: LateOnlyPanelProps) {
+  const svg = useListed(figures, FIT_SHOWS)
   const title = `Claim ${number}: the best late-only account`
   const { timesMs } = result
   const curves = lateOnlyCurves(result)
@@ -178,8 +196,8 @@ const SCAN_MARGIN = { left: 44, right: 12, top: 20, bottom: 26 }
 
 /** β with its 95 % interval for every assumed onset. */
 function ScanFigure(props: LateOnlyPanelProps & { scan: NonNullable<LateOnlyResult['scan']> }) {
-  const { form, scan, number, caption } = props
-  const svg = useRef<SVGSVGElement>(null)
+  const { form, scan, number, caption, figures } = props
+  const svg = useListed(figures, SCAN_SHOWS)
   const { rows } = scan
   const title = `Claim ${number}: other onsets`
   return (
