@@ -6,7 +6,7 @@ import { createStore } from 'zustand/vanilla'
 import { courier } from '../jobs/index.ts'
 import type { Table, TableRefusal } from '../files/index.ts'
 import type { BenchApi } from './bench.worker.ts'
-import { recall, remember } from './browser-storage.ts'
+import { keepFile, keptFile } from './kept-files.ts'
 import type { Reading, RecordedSource, Workspace } from './workspace.ts'
 
 export type RecordedData = Table
@@ -30,7 +30,6 @@ export const bench = courier<BenchApi>(
 )
 
 const readingKey = (reading: Reading) => JSON.stringify(Object.entries(reading).sort(([a], [b]) => (a < b ? -1 : 1)))
-const storageKey = (fileId: string) => `sidelobe.file.${fileId}`
 
 /** The table of a recorded source as it is read at present; null while it has not been read. */
 export function recordedData(source: Workspace['source'], files: DataState['files']): RecordedData | null {
@@ -82,13 +81,13 @@ export async function openTable(
   const table = await readWith(fileId, file.name, text, reading)
   if (!table.ok) return { ...table, fileName: file.name }
   // Without storage the work goes on; only a reload will ask for the file again.
-  const kept = await remember(storageKey(fileId), text)
+  const kept = await keepFile(fileId, text)
   return { ok: true, source: { kind: 'recorded', fileName: file.name, fileId, reading }, table, kept }
 }
 
 /** The text of a file that is at hand; undefined where it is not. */
 export async function fileText(fileId: string): Promise<string | undefined> {
-  return dataStore.getState().files[fileId]?.text ?? (await recall<string>(storageKey(fileId)))
+  return dataStore.getState().files[fileId]?.text ?? (await keptFile(fileId))
 }
 
 /** Reads a file that is at hand in another way ("time is in s"). */
