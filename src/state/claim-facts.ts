@@ -23,9 +23,9 @@ export function claimContext(claim: Claim, workspace: Workspace): ClaimAnswerCon
 }
 
 export function lateOnlyFacts(form: LateOnlyForm, result: LateOnlyResult): LateOnlyFacts {
-  const { robust, sigmaUv, lengthMs, scan, noiseless } = result
+  const { robust, sigmaUv, lengthMs, scan, bumps, noiseless } = result
   const { t0Ms, slackMs, early } = form
-  return { robust, t0Ms, slackMs, early, sigmaUv, lengthMs, scan, noiseless }
+  return { robust, t0Ms, slackMs, early, sigmaUv, lengthMs, scan, bumps, noiseless }
 }
 
 /** The answer that stands for a claim as it is said now; null where it is not there yet. */

@@ -255,6 +255,7 @@ function claimEntries(dossier: Dossier, claim: DossierClaim): Entry[] {
           { name: 'Noise found', text: `${words.noise} ${words.alpha}` },
           { name: 'Other assumptions', text: words.robust },
           ...(words.scan === null ? [] : [{ name: 'Other onsets', text: words.scan }]),
+          ...(words.bumps === null ? [] : [{ name: 'Anywhere before', text: words.bumps }]),
           { name: 'Limit of the method', text: words.phaseLocked },
           ...(facts.source === 'recorded'
             ? [

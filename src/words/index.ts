@@ -58,7 +58,6 @@ export { curveSentence, variedWords } from './claim-curve-words.ts'
 export { type ClaimSentenceContext, claimFormName, claimRowUnit, claimSentence, claimText } from './claim-words.ts'
 export { type Dossier, type DossierClaim, type DossierSetting, dossierHtml, dossierMarkdown } from './dossier.ts'
 export {
-  bumpScanWords,
   type LateOnlyFacts,
   type LateOnlyWords,
   lateOnlyVerdictWords,

@@ -25,6 +25,8 @@ export interface LateOnlyFacts {
   readonly lengthMs: number
   /** Null where no scan was made. */
   readonly scan: Pick<OnsetScan, 'rows' | 'latestMs' | 'beyond'> | null
+  /** Null or absent where early components were not sought everywhere. */
+  readonly bumps?: Pick<BumpScan, 'strongest' | 'level' | 'draws' | 'criticalZ'> | null
 }
 
 /** The panel of the late-only fit, sentence by sentence, in the order in which it is read. */
@@ -39,6 +41,7 @@ export interface LateOnlyWords {
   readonly phaseLocked: string
   readonly robust: string
   readonly scan: string | null
+  readonly bumps: string | null
 }
 
 const VERDICT: Record<LateOnlyVerdict, string> = {
@@ -75,6 +78,7 @@ export function lateOnlyWords(facts: LateOnlyFacts): LateOnlyWords {
     phaseLocked: PHASE_LOCKED,
     robust: robustWords(facts),
     scan: scan === null || scan.rows.length === 0 ? null : scanWords(scan),
+    bumps: facts.bumps ? bumpScanWords(facts.bumps) : null,
   }
 }
 
@@ -210,14 +214,9 @@ function scanWords({ rows, latestMs, beyond }: NonNullable<LateOnlyFacts['scan']
 }
 
 /** The strongest early component anywhere before the late activity, and how often noise alone finds one as strong. */
-export function bumpScanWords({
-  strongest,
-  level,
-  draws,
-  criticalZ,
-}: Pick<BumpScan, 'strongest' | 'level' | 'draws' | 'criticalZ'>): string {
+function bumpScanWords({ strongest, level, draws, criticalZ }: NonNullable<LateOnlyFacts['bumps']>): string {
   const { fromMs, toMs, amplitudeUv, z } = strongest
-  const often = level <= 0.05 ? 'so that something early is likely somewhere' : 'so that chance alone may have made it'
+  const often = level <= 0.05 ? 'which chance alone rarely makes' : 'so that chance alone may have made it'
   return (
     `Of early components of several widths and places, the strongest lies from ${spanWords(fromMs, toMs)}: ` +
     `${changeWithUnit(amplitudeUv, 'µV', [0])} (|z| = ${fixed(Math.abs(z), 1)}). In ${exact(draws)} simulated waveforms without early activity, ` +

@@ -107,6 +107,17 @@ describe('lateOnlyWords', () => {
     expect(noiseless.noise).not.toMatch(/may be wrong/)
   })
 
+  test('the strongest early component anywhere is held against what chance finds', () => {
+    const strongest = { fromMs: 60, toMs: 140, amplitudeUv: -2.134, standardError: 0.5, z: -4.27 }
+    const words = (level: number) =>
+      lateOnlyWords({ ...facts(can), bumps: { strongest, level, draws: 2000, criticalZ: 2.9 } }).bumps
+    expect(words(0.0005)).toBe(
+      'Of early components of several widths and places, the strongest lies from 60 to 140 ms: −2.13 µV (|z| = 4.3). In 2000 simulated waveforms without early activity, 0.05 % had one at least as strong (5 % exceed |z| = 2.9), which chance alone rarely makes.',
+    )
+    expect(words(0.4)).toMatch(/40\.0 % had one at least as strong .* chance alone may have made it/)
+    expect(lateOnlyWords(facts(can)).bumps).toBeNull()
+  })
+
   const rowsOf = (verdicts: readonly LateOnlyVerdict[]) =>
     verdicts.map((verdict, i) => ({ t0Ms: 100 + 20 * i, beta: 0, interval: [-1, 1] as const, z: 0, verdict }))
   const scanned = (verdicts: readonly LateOnlyVerdict[]) => {

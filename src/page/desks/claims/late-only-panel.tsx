@@ -17,7 +17,7 @@ import {
 import { type CurveCourse, placesAlong } from '../../../plot/place-labels.ts'
 import { lateOnlyFacts } from '../../../state/claim-facts.ts'
 import type { LateOnlyResult } from '../../../state/late-only-steps.ts'
-import { brief, bumpScanWords, lateOnlyWords } from '../../../words/index.ts'
+import { brief, lateOnlyWords } from '../../../words/index.ts'
 import { FigureHead } from '../../figure-head.tsx'
 import { LabelTexts, Unspoken } from '../../label-text.tsx'
 import { courseOf, type DrawnLabel, drawnLabels, labelSize, type WantedText } from '../../placed-labels.ts'
@@ -44,7 +44,7 @@ export function LateOnlyPanel({ form, result, number, caption, figures }: LateOn
     ['Noise found', `${words.noise} ${words.alpha}`],
     ['Limit of the method', words.phaseLocked],
     ...(words.scan === null ? [] : [['Other onsets', words.scan] as [string, string]]),
-    ...(result.bumps ? [['Anywhere before', bumpScanWords(result.bumps)] as [string, string]] : []),
+    ...(words.bumps === null ? [] : [['Anywhere before', words.bumps] as [string, string]]),
   ]
   return (
     <div className="late-only">
