@@ -22,7 +22,7 @@ export function MultiplesAxis() {
 export function MultiplesDot({ verdict }: { verdict: Verdict }) {
   return (
     <svg height={18} aria-hidden="true" className="multiples">
-      {verdict.kind === 'no limit' ? null : (
+      {verdict.kind === 'no limit' || verdict.kind === 'other unit' ? null : (
         <line x1={place(1)} x2={place(1)} y1={0} y2={20} stroke="var(--quiet)" strokeWidth={1} />
       )}
       {verdict.kind === 'kept' || verdict.kind === 'over' ? <Mark verdict={verdict} /> : null}

@@ -1,15 +1,17 @@
 /** The readout: what the chain did, row by row, held against the user's limits. */
 import { useState } from 'react'
 import type { FigureId, Limits } from '../erp/figure.ts'
+import type { ScoreKind } from '../erp/score.ts'
 import type { FidelityRow } from '../evidence/fidelity.ts'
 import type { Estimate } from '../evidence/simulated-score.ts'
 import { downloadBlob } from '../plot/index.ts'
 import { EXTRAPOLATED_MARK } from '../state/chosen-noise.ts'
 import type { Evaluation, Problem } from '../state/evaluation.ts'
+import type { SimulatedNoise } from '../state/simulated-noise.ts'
 import { readoutCsv } from '../state/readout-csv.ts'
 import { type Verdict, verdictOf } from '../state/verdict.ts'
 import type { Workspace } from '../state/workspace.ts'
-import { brief, changeWords, exact, fixed, rowWords, signed, valueWords, windowWords } from '../words/index.ts'
+import { brief, changeWords, exact, fixed, list, rowWords, signed, valueWords, windowWords } from '../words/index.ts'
 import { openTrace } from './desks/trace/open-trace.ts'
 import { MultiplesAxis, MultiplesDot } from './multiples.tsx'
 import { type DrawnPin, drawnPins } from './pin-line.tsx'
@@ -112,6 +114,7 @@ export function Readout({ evaluation, workspace, problems }: ReadoutProps) {
                 text={evaluation.noiseOf.from === 'trials' ? 'estimated from the trials' : 'noise model'}
                 label="noise of single trials"
               />
+              {precision && !isLinear(workspace.score.kind) ? ` ${HELD_MARK}` : ''}
             </th>
             {precision ? (
               <>
@@ -139,6 +142,8 @@ export function Readout({ evaluation, workspace, problems }: ReadoutProps) {
           * per cent of the waveform’s largest value, since the value before is small beside it.
         </p>
       ) : null}
+      {precision && simulated?.noise ? <FoundAnew noise={simulated.noise} kind={workspace.score.kind} /> : null}
+      <Locked locked={evaluation.locked} />
       <FailedPins pins={evaluation.pins} />
     </section>
   )
@@ -187,10 +192,49 @@ function SimulatedCells(props: {
   )
 }
 
-/** The mark of a noise that the trials are too short to show. */
-function Extrapolated({ part }: { part: number | null }) {
-  if (part === null || part <= EXTRAPOLATED_MARK) return null
-  return <span className="over">; rests on extrapolated noise ({fixed(100 * part, 0)} %)</span>
+const HELD_MARK = '†'
+
+/** A peak held at its moment has a formula for its noise; one that is looked for in every average has another noise, which is simulated. */
+function FoundAnew({ noise, kind }: { noise: SimulatedNoise; kind: ScoreKind }) {
+  const { before, after, unit, precisionFactor, draws } = noise
+  const peak = kind === 'peak-amplitude'
+  const said = ({ value, standardError }: Estimate) => `${valueWords(value, unit)} ± ${brief(standardError, 1)} ${unit}`
+  return (
+    <p className="footnote found-anew">
+      {HELD_MARK} with {peak ? 'the peak held at its moment' : 'the samples on the stated side held fixed'}.{' '}
+      {peak ? 'Found anew' : 'Taken anew'} in every average, as on the trade-off map, its noise is {said(before)} before
+      and {said(after)} after
+      {precisionFactor
+        ? `, a precision factor of ${brief(precisionFactor.value)} ± ${brief(precisionFactor.standardError, 1)}`
+        : ''}{' '}
+      ({exact(draws)} simulated averages).
+    </p>
+  )
+}
+
+/** What the noise model holds that no number of trials averages out, and where the page counts it. */
+function Locked({ locked }: { locked: Evaluation['locked'] }) {
+  if (!locked) return null
+  const { lines, score } = locked
+  const names = list(lines.map(({ hz, amplitudeUv }) => `${exact(hz)} Hz, ${exact(amplitudeUv)} µV`))
+  return (
+    <p className="footnote locked-lines">
+      Interference locked to the event ({names}) is not in these curves and rows; the trade-off map counts it as bias.
+      {score
+        ? ` It adds ${changeWords(score.before, 'µV')} µV to the score before the chain and ${changeWords(score.after, 'µV')} µV after it, with any number of trials.`
+        : ''}
+    </p>
+  )
+}
+
+const isLinear = (kind: ScoreKind) => kind === 'mean' || kind === 'moment'
+
+/** The mark of a noise that the trials are too short to show; the factors hang on the noise before as well. */
+function Extrapolated({ part }: { part: Evaluation['noiseOf']['extrapolated'] }) {
+  if (part === null || Math.max(part.before, part.after) <= EXTRAPOLATED_MARK) return null
+  const [before, after] = [part.before, part.after].map((share) => `${fixed(100 * share, 0)} %`)
+  const shares = before === after ? before : `${before} before, ${after} after`
+  return <span className="over">; rests on extrapolated noise ({shares})</span>
 }
 
 function Cell({ value, unit }: { value: string; unit: string }) {
@@ -321,5 +365,7 @@ function VerdictWords({ verdict }: { verdict: Verdict }) {
       return <span className="quiet">nothing to compare</span>
     case 'no limit':
       return <span className="quiet">no limit set</span>
+    case 'other unit':
+      return <span className="quiet">the limit, in {verdict.unit}, does not apply</span>
   }
 }

@@ -8,6 +8,7 @@ import { scoreVariance, scoreVarianceOfResponse } from '../evidence/score-noise.
 import { appliedStages, type Chain } from '../filter/chain.ts'
 import { wholeResponse } from '../filter/kernel.ts'
 import { stagesResponse } from '../filter/stage-response.ts'
+import type { ChosenNoise } from './chosen-noise.ts'
 import { memoised } from './memo.ts'
 
 export interface ScoreVariances {
@@ -62,14 +63,23 @@ export const scoreVariances = memoised(
   },
 )
 
-/** The part of the filtered score's variance that rests on frequencies below what the trials' length can show. */
-export const extrapolatedPart = memoised(
-  (
-    chain: Chain,
-    weightsAfter: Float64Array,
-    extent: 'continuous' | 'epochs',
-    noise: NoiseSpec,
-    belowHz: number,
-  ): number =>
-    extrapolatedShare(effectiveWindow(chain, weightsAfter, extent).values, noise, chain.samplingRateHz, belowHz),
+/** The part of the score's variance, unfiltered and filtered, that rests on frequencies below what the trials' length can show: the factors rest on both. */
+export function extrapolatedParts(
+  chain: Chain,
+  weights: { before: Float64Array; after: Float64Array },
+  extent: 'continuous' | 'epochs',
+  { noise, estimate }: ChosenNoise,
+): { before: number; after: number } {
+  const belowHz = estimate?.extrapolatedBelowHz ?? 0
+  return {
+    before: partOfUnfiltered(weights.before, noise, chain.samplingRateHz, belowHz),
+    after: partOfFiltered(chain, weights.after, extent, noise, belowHz),
+  }
+}
+
+const partOfUnfiltered = memoised(extrapolatedShare)
+
+const partOfFiltered = memoised(
+  (chain: Chain, weights: Float64Array, extent: 'continuous' | 'epochs', noise: NoiseSpec, belowHz: number): number =>
+    extrapolatedShare(effectiveWindow(chain, weights, extent).values, noise, chain.samplingRateHz, belowHz),
 )

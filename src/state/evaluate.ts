@@ -4,7 +4,7 @@
  */
 import { baselineWeights } from '../erp/baseline.ts'
 import { checkNoise } from '../erp/noise.ts'
-import { type NoScore, scoreOf } from '../erp/score.ts'
+import { type NoScore, scoreLinearity, scoreOf } from '../erp/score.ts'
 import { samplesInWindow, type TimeWindow } from '../erp/time-axis.ts'
 import { largestAbsolute } from '../evidence/fidelity.ts'
 import { unseenShare, unseenShareBySample } from '../evidence/unseen-share.ts'
@@ -24,14 +24,15 @@ import {
   windowFigure,
 } from './evaluate-figures.ts'
 import { longestReach, pinnedResult } from './evaluate-pins.ts'
-import { extrapolatedPart } from './evaluate-precision.ts'
+import { extrapolatedParts } from './evaluate-precision.ts'
 import { precisionOf, rowsOf, weightsOf } from './evaluate-score.ts'
 import { chainPoints, chainTable } from './evaluate-table.ts'
 import type { Curves, Evaluation, Outcome, Problem } from './evaluation.ts'
+import { lockedInterference } from './locked-interference.ts'
 import { memoised } from './memo.ts'
 import { namesOfPins } from './pin-actions.ts'
 import type { RecordedData } from './recorded-data.ts'
-import type { Workspace } from './workspace.ts'
+import { DIFFERENCE, type Workspace } from './workspace.ts'
 
 const MAX_TRIALS = 1_000_000
 
@@ -124,11 +125,18 @@ function evaluationOf(
     precision: weights && precisionOf(workspace, noise, chain, weights, extent, rows[0], before),
     noiseOf: {
       from: noise.estimate ? 'trials' : 'model',
-      extrapolated:
-        noise.estimate &&
-        weights &&
-        extrapolatedPart(chain, weights.after, extent, noise.noise, noise.estimate.extrapolatedBelowHz),
+      extrapolated: noise.estimate && weights && extrapolatedParts(chain, weights, extent, noise),
     },
+    locked:
+      shown.chosen === DIFFERENCE || noise.estimate
+        ? null
+        : lockedInterference(
+            workspace.noise,
+            chain,
+            weights && scoreLinearity(score.kind) === 'linear' ? weights.after : null,
+            extent,
+            timesMs,
+          ),
     pins: workspace.pins.map((pin, i) =>
       pinnedResult(pin, pinned[i], workspace, data, noise, axis, frequency.hz, kernel),
     ),

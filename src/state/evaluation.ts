@@ -136,13 +136,21 @@ export interface Evaluation {
   rows: FidelityRow[]
   /** Null for a score that is no weighted sum. */
   precision: NoiseRow | null
-  /** What the noise row reckons with; `extrapolated` is the part (0 to 1) of the variance after the chain that rests on
+  /** What the noise row reckons with; `extrapolated` is the part (0 to 1) of the variance before and after the chain that rests on
    * frequencies below what the trials can show, null for a model or where there is no noise row. */
-  noiseOf: { from: 'model' | 'trials'; extrapolated: number | null }
+  noiseOf: { from: 'model' | 'trials'; extrapolated: { before: number; after: number } | null }
+  /** Interference of the noise model that does not average out; null without any, and for a difference wave, in which it cancels. */
+  locked: LockedInterference | null
   /** Chains kept for comparison, in the workspace's order. */
   pins: (PinnedResult | FailedPin)[]
   /** What the chain did to the score, in a sentence or two. */
   remark: string
+}
+
+export interface LockedInterference {
+  lines: readonly { hz: number; amplitudeUv: number }[]
+  /** What it adds to the score (µV); null for a score that is no weighted sum. */
+  score: { before: number; after: number } | null
 }
 
 export type Outcome = { ok: true; evaluation: Evaluation } | { ok: false; problems: Problem[] }

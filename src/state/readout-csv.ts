@@ -1,3 +1,4 @@
+import { type ScoreKind, scoreLinearity } from '../erp/score.ts'
 import { tableToCsv } from '../files/index.ts'
 import { protocolLine, protocolText, rowWords } from '../words/index.ts'
 import type { NoiseRow } from '../evidence/precision.ts'
@@ -43,10 +44,11 @@ export function readoutCsv(evaluation: Evaluation, workspace: Workspace, simulat
       row.percentOf ?? '',
       limit?.value ?? '',
       limit?.unit ?? '',
-      verdictOf(row, limit).kind,
+      verdictOf(row, limit).kind.replace('other unit', 'limit in another unit'),
     ]
   })
   const { precision } = evaluation
+  const trialWords = `${workspace.trials} ${workspace.trials === 1 ? 'trial' : 'trials'}`
   const factorRow = (name: string, factor: (row: NoiseRow) => number | string) => [
     name,
     '',
@@ -59,7 +61,7 @@ export function readoutCsv(evaluation: Evaluation, workspace: Workspace, simulat
   if (precision)
     rows.push(
       [
-        `noise of the score, ${workspace.trials} ${workspace.trials === 1 ? 'trial' : 'trials'}`,
+        `noise of the score, ${trialWords}${heldFixed(workspace.score.kind) ? ', held fixed' : ''}`,
         '',
         precision.unit,
         precision.before,
@@ -75,16 +77,17 @@ export function readoutCsv(evaluation: Evaluation, workspace: Workspace, simulat
       factorRow('precision factor', ({ precisionFactor }) => precisionFactor),
       factorRow('equal-trials factor', ({ equalTrialsFactor }) => equalTrialsFactor),
     )
-  else if (simulated) {
+  if (simulated) {
     const { before, after, unit, draws, precisionFactor } = simulated
     const empty = (count: number) => Array<string>(count).fill('')
-    const name = `noise of the score, ${workspace.trials} ${workspace.trials === 1 ? 'trial' : 'trials'}, ${draws} simulated averages`
+    const name = `noise of the score, ${trialWords}, ${draws} simulated averages`
     const noPins = empty(pins.length)
     rows.push(
       [name, '', unit, before.value, after.value, ...noPins, after.value - before.value, ...empty(5)],
       ['standard error of that noise', '', unit, before.standardError, after.standardError, ...noPins, ...empty(6)],
     )
-    if (precisionFactor) rows.push(['precision factor', '', '', '', precisionFactor.value, ...noPins, ...empty(6)])
+    if (precisionFactor)
+      rows.push(['precision factor, simulated', '', '', '', precisionFactor.value, ...noPins, ...empty(6)])
   }
   const line = protocolText(protocolLine(protocolOf(workspace, evaluation.samplingRateHz)))
   const chains = pins.map(({ name, place }) => {
@@ -95,6 +98,8 @@ export function readoutCsv(evaluation: Evaluation, workspace: Workspace, simulat
   const notes = [['protocol', line], ...chains].map((note) => [...note, ...Array<string>(header.length - 2).fill('')])
   return tableToCsv(header, [...rows, ...notes])
 }
+
+const heldFixed = (kind: ScoreKind) => scoreLinearity(kind) === 'held fixed'
 
 /** A filter that leaves no noise has an infinite factor. */
 const finite = (value: number | string) => (typeof value === 'string' || Number.isFinite(value) ? value : String(value))

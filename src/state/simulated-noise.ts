@@ -54,7 +54,8 @@ export const NOISE_DRAWS = 4000
 const SEED = 1
 
 /**
- * What is simulated for the readout; null where the noise of the score has an exact formula, or where there is no such score.
+ * What is simulated for the readout: latencies, and what has a formula only while its peak or its side is held fixed. Null where the noise of the
+ * score has an exact formula, or where there is no such score.
  *
  * @param workspace the one that the evaluation belongs to.
  */
@@ -64,8 +65,8 @@ export function noiseQuestion(
   data: RecordedData | null,
 ): NoiseQuestion | null {
   const { score, trials, shown, baseline, chain, extent, source } = workspace
-  const { rows, precision, curves, chosen, timesMs, samplingRateHz } = evaluation
-  if (precision !== null || scoreLinearity(score.kind) !== 'none') return null
+  const { rows, curves, chosen, timesMs, samplingRateHz } = evaluation
+  if (scoreLinearity(score.kind) === 'linear') return null
   if (typeof rows[0].before !== 'number' || typeof rows[0].after !== 'number') return null
   const { noise, passed } = chosenNoise(workspace, data)
   const { before, after } = curves[chosen]

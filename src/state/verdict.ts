@@ -9,10 +9,16 @@ export type Verdict =
   | { kind: 'gone' }
   | { kind: 'unknown' }
   | { kind: 'no limit' }
+  /** One is set, but in a unit that the row does not have (the score's kind was changed): it limits nothing. */
+  | { kind: 'other unit'; unit: Limit['unit'] }
 
-/** A limit in a unit that the row no longer has (the score's kind was changed) counts as none. */
+/** Whether a limit says anything of values in this unit: it is in the same one, or in per cent of what has a size. */
+export const limitFits = (limit: Limit, unit: Limit['unit']) =>
+  limit.unit === unit || (limit.unit === '%' && unit !== 'ms')
+
 export function verdictOf(row: FidelityRow, limit: Limit | undefined): Verdict {
-  if (!limit || (limit.unit !== row.unit && !(limit.unit === '%' && row.unit !== 'ms'))) return { kind: 'no limit' }
+  if (!limit) return { kind: 'no limit' }
+  if (!limitFits(limit, row.unit)) return { kind: 'other unit', unit: limit.unit }
   const { kept, multiples } = judge(row, limit)
   if (kept === null) return { kind: 'unknown' }
   if (kept) return { kind: 'kept', multiples: multiples ?? 0 }

@@ -85,8 +85,11 @@ describe('noise estimated from the trials', () => {
       table,
     )
     // a mean over the whole trial sees little above 1/T, a high-passed one nothing below 2/T = 2 Hz
-    expect(low.noiseOf.extrapolated).toBeGreaterThan(0.2)
-    expect(high.noiseOf.extrapolated).toBeLessThan(0.05)
+    expect(low.noiseOf.extrapolated?.after).toBeGreaterThan(0.2)
+    expect(high.noiseOf.extrapolated?.after).toBeLessThan(0.05)
+    // the factors of the second rest on what was there before it
+    expect(high.noiseOf.extrapolated?.before).toBeGreaterThan(0.2)
+    expect(low.noiseOf.extrapolated?.before).toBe(low.noiseOf.extrapolated?.after)
     expect(evaluated(on(table, { noiseFrom: 'model' }), table).noiseOf).toEqual({ from: 'model', extrapolated: null })
   })
 

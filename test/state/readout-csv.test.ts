@@ -41,7 +41,8 @@ describe('the readout as CSV', () => {
       })
       const noise = rows[evaluation.rows.length]
       if (evaluation.precision) {
-        expect(noise[0]).toBe(`noise of the score, ${workspace.trials} trials`)
+        const held = ['peak-amplitude', 'area'].includes(workspace.score.kind) ? ', held fixed' : ''
+        expect(noise[0]).toBe(`noise of the score, ${workspace.trials} trials${held}`)
         expect(Number(noise[column('before')])).toBe(evaluation.precision.before)
         expect(Number(noise[column('after')])).toBe(evaluation.precision.after)
       }

@@ -65,6 +65,30 @@ describe('the simulated noise of a latency', () => {
   })
 })
 
+describe('the simulated noise of a peak’s amplitude', () => {
+  const peak = (trials: number) =>
+    latency({ trials, score: { kind: 'peak-amplitude', fromMs: 300, toMs: 500, polarity: 'positive' } })
+  const heldFixed = (workspace: Workspace) => {
+    const outcome = evaluate(workspace, null)
+    if (!outcome.ok || !outcome.evaluation.precision) throw new Error('there is no noise row')
+    return outcome.evaluation.precision
+  }
+
+  test('is that of the peak held fixed where the noise is too small to move it', () => {
+    const workspace = peak(1_000_000)
+    const { after, before } = whole('peak of many', asked(workspace) as NoiseQuestion)
+    const fixed = heldFixed(workspace)
+    expect(Math.abs(after.value / fixed.after - 1)).toBeLessThan(0.05)
+    expect(Math.abs(before.value / fixed.before - 1)).toBeLessThan(0.05)
+  })
+
+  test('is smaller where the noise moves the peak', () => {
+    const workspace = peak(40)
+    const { after } = whole('peak of few', asked(workspace) as NoiseQuestion)
+    expect(after.value + 4 * after.standardError).toBeLessThan(heldFixed(workspace).after)
+  })
+})
+
 describe('a simulation as it runs', () => {
   const question = asked(latency()) as NoiseQuestion
 

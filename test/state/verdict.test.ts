@@ -26,12 +26,17 @@ describe('verdictOf', () => {
       { kind: 'over', multiples: 2.5 },
     ],
     ['no limit is none', row, undefined, { kind: 'no limit' }],
-    ['a limit in another unit is none', row, { value: 5, unit: 'ms' }, { kind: 'no limit' }],
+    [
+      'a limit in another unit limits nothing, and is named',
+      row,
+      { value: 5, unit: 'ms' },
+      { kind: 'other unit', unit: 'ms' },
+    ],
     [
       'a latency has no per cent',
       { ...row, unit: 'ms', percent: null, percentOf: null },
       { value: 5, unit: '%' },
-      { kind: 'no limit' },
+      { kind: 'other unit', unit: '%' },
     ],
     [
       'what is not there after the chain is gone',

@@ -3,9 +3,10 @@ import type { FigureId, Limit } from '../../erp/figure.ts'
 import type { ScoreKind } from '../../erp/score.ts'
 import { addStage, newStage, type StageKind } from '../../state/chain-actions.ts'
 import { endGesture, say } from '../../state/store.ts'
+import { limitFits } from '../../state/verdict.ts'
 import { look } from '../../state/view.ts'
 import type { Workspace } from '../../state/workspace.ts'
-import { PASS_WORD } from '../../words/index.ts'
+import { exact, PASS_WORD } from '../../words/index.ts'
 import { Choice, NumberField, SliderField, WindowFields, WordButton } from '../fields.tsx'
 import { Editor } from './editor.tsx'
 
@@ -274,7 +275,8 @@ interface LimitEditorProps {
 
 export function LimitEditor({ workspace, row, label, unit }: LimitEditorProps) {
   const limit = workspace.limits[row]
-  const shown = limit ?? { value: unit === 'ms' ? 10 : 0.5, unit }
+  const fits = limit !== undefined && limitFits(limit, unit)
+  const shown = fits ? limit : { value: unit === 'ms' ? 10 : 0.5, unit }
   const set = (next: Limit) => say((w) => ({ ...w, limits: { ...w.limits, [row]: next } }), `limit:${row}`)
   return (
     <Editor title="Limit" subtitle={`largest change accepted: ${label}`}>
@@ -299,6 +301,12 @@ export function LimitEditor({ workspace, row, label, unit }: LimitEditorProps) {
           onChange={(next) => set({ value: next === '%' ? 10 : 0.5, unit: next })}
         />
       )}
+      {limit && !fits ? (
+        <p className="quiet">
+          Set is ±{exact(limit.value)} {limit.unit}, which says nothing of a value in {unit}. It holds again once the
+          score is in {limit.unit === '%' ? 'µV' : limit.unit}; a number written here takes its place.
+        </p>
+      ) : null}
       {limit ? (
         <WordButton
           onPress={() =>
