@@ -39,6 +39,21 @@ export function unanswered(workspace: Workspace): number {
   return workspace.claims.list.filter((claim) => answers[claimKey(claim, workspace)]?.status !== 'complete').length
 }
 
+/** Places, from 1, of the claims that cannot be answered as they stand: waiting brings no dossier of them. */
+export function unanswerable(workspace: Workspace, data: RecordedData | null): number[] {
+  const { answers } = claimStore.getState()
+  return workspace.claims.list.flatMap((claim, i) => {
+    if (answers[claimKey(claim, workspace)]?.status === 'failed') return [i + 1]
+    try {
+      claimSetting(claim, workspace, data)
+      return []
+    } catch (error) {
+      if (error instanceof RangeError) return [i + 1]
+      throw error
+    }
+  })
+}
+
 /**
  * All claims with their answers. Claims about one chain, taken in one way, share their assumptions.
  *

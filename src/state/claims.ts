@@ -55,10 +55,13 @@ export function claimSetting(claim: Claim, workspace: Workspace, data: RecordedD
     shown.chosen === DIFFERENCE && difference
       ? { kind: 'difference', ...difference }
       : { kind: 'condition', name: shown.chosen }
+  const names = namesNeeded(claim.says, chosen)
+  const known = conditionNames(workspace, data)
+  for (const name of names) if (!known.includes(name)) throw new RangeError(noCondition(name))
   return {
     ...{ samplingRateHz, timesMs, baseline, score, measure, trials, noise, chosen },
     ...chainOfClaim(claim, workspace),
-    conditions: namesNeeded(claim.says, chosen).map((name) => ({
+    conditions: names.map((name) => ({
       name,
       source:
         source.kind === 'built'
@@ -71,6 +74,10 @@ export function claimSetting(claim: Claim, workspace: Workspace, data: RecordedD
     unseenThreshold: workspace.trace.threshold,
   }
 }
+
+/** A claim outlives the data that it was made about: another table need not have its conditions. */
+const noCondition = (name: string) =>
+  name === '' ? 'an effect is of two conditions, and one is not chosen' : `the waveform has no condition “${name}”`
 
 /** A table may hold hundreds of conditions; a claim needs one or two of them, or four. */
 function namesNeeded(form: ClaimForm, chosen: ClaimSetting['chosen']): string[] {

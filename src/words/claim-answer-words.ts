@@ -57,8 +57,8 @@ export function claimReason(form: ClaimForm, answer: ClaimAnswer, context: Claim
       return unseen(form, answer, grounds, context)
     case 'filtered before':
       return (
-        'The recording had been filtered before, and it is not known how. ' +
-        'To tell, every filter that it had passed would have to be known and stated as in the data.'
+        'Which filters the recording had passed before it came here is not known in full. ' +
+        'To tell, each of them would have to be known and stated as in the data, if there were any.'
       )
     case 'no value':
       return `${noValue(grounds)} ${NO_VALUE_SETTLES[grounds.missing]}`

@@ -54,9 +54,9 @@ const VERDICT: Record<LateOnlyVerdict, string> = {
 const PHASE_LOCKED =
   'Activity at about 10 Hz that is phase-locked to the event cannot be told from an early component by this fit.'
 
-/** The fit then believes every detail of the waveform. */
+/** The fit then takes what its activity cannot follow for noise: there is no other. */
 const NOISELESS =
-  'The waveform is taken as it stands, without noise, so that the noise found is about none and the interval is far narrower than any study’s. Taken as measured, it carries the noise of the trials.'
+  'The waveform is taken as it stands, without noise: what the fit calls noise is only what its early and late activity cannot follow, and the interval is not that of a study. Taken as measured, it carries the noise of the trials.'
 
 /** Scales of the stated noise within which it is taken to be right. */
 const SCALE_LOW = 0.5
@@ -74,7 +74,7 @@ export function lateOnlyWords(facts: LateOnlyFacts): LateOnlyWords {
     verdict: VERDICT[robust.verdict],
     reason: reasonWords(facts),
     noise: facts.noiseless ? NOISELESS : noiseWords(robust.fit.noiseScale),
-    alpha: alphaWords(robust.fit.alphaScale),
+    alpha: alphaWords(robust.fit.alphaScale, facts.noiseless === true),
     phaseLocked: PHASE_LOCKED,
     robust: robustWords(facts),
     scan: scan === null || scan.rows.length === 0 ? null : scanWords(scan),
@@ -160,7 +160,11 @@ function against(value: number, amounts: readonly number[]): number {
   return digits
 }
 
-function alphaWords(scale: number): string {
+function alphaWords(scale: number, noiseless: boolean): string {
+  if (noiseless)
+    return scale === 0
+      ? 'None of that looks like alpha activity (a = 0 µV²/Hz).'
+      : 'Some of that it takes for alpha activity (a).'
   if (scale === 0) return 'No alpha activity beyond the stated noise was found (a = 0 µV²/Hz).'
   return `Alpha activity beyond the stated noise: ${brief(scale, 2)} µV²/Hz at 10 Hz in single trials (a).`
 }

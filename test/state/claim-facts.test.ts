@@ -1,5 +1,12 @@
 import { beforeEach, describe, expect, test } from 'vitest'
-import { answerOf, claimContext, dossierOf, lateOnlyFacts, unanswered } from '../../src/state/claim-facts.ts'
+import {
+  answerOf,
+  claimContext,
+  dossierOf,
+  lateOnlyFacts,
+  unanswerable,
+  unanswered,
+} from '../../src/state/claim-facts.ts'
 import { claimStore, runClaim } from '../../src/state/claim-run.ts'
 import { claimSlice } from '../../src/state/claim-worker.ts'
 import {
@@ -71,6 +78,23 @@ describe('unanswered', () => {
       answers: { [key]: { key, result: null, done: 3, total: 80, status: 'cancelled', reason: null } },
     })
     expect(unanswered(one)).toBe(1)
+  })
+})
+
+describe('unanswerable', () => {
+  test('names the claims that waiting does not answer: about a condition that is not there, or refused', () => {
+    const three = having(start, null, 'deflection', 'effect', 'attenuation')
+    expect(unanswerable(three, null)).toEqual([])
+    const lost = changingClaim(2, (claim) => ({
+      ...claim,
+      says: { ...claim.says, first: 'faces' } as typeof claim.says,
+    }))(three)
+    expect(unanswerable(lost, null)).toEqual([2])
+    const key = claimKey(lost.claims.list[2], lost)
+    claimStore.setState({
+      answers: { [key]: { key, result: null, done: 0, total: 1, status: 'failed', reason: 'The frequency …' } },
+    })
+    expect(unanswerable(lost, null)).toEqual([2, 3])
   })
 })
 

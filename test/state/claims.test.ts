@@ -279,6 +279,15 @@ describe('what a claim is answered from', () => {
     expect(names(claimOf(workspace, 'effect'), workspace).sort()).toEqual(['frequent', 'rare'])
   })
 
+  test('of an effect on another table: a condition that is not there is named, and the others are not listed', () => {
+    const claim = claimOf(workspace, 'effect')
+    const about = (first: string): Claim => ({ ...claim, says: { ...claim.says, first } as Claim['says'] })
+    expect(() => claimSetting(about('faces'), workspace, table)).toThrow(
+      new RangeError('the waveform has no condition “faces”'),
+    )
+    expect(() => claimSetting(about(''), workspace, table)).toThrow('of two conditions, and one is not chosen')
+  })
+
   test('of a built waveform: its history is never in doubt, and it stands as it is until it is said to be measured', () => {
     const built = addingClaim('deflection', null)(start)
     const [claim] = built.claims.list

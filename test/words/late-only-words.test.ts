@@ -105,6 +105,12 @@ describe('lateOnlyWords', () => {
     const noiseless = lateOnlyWords({ ...facts(can), noiseless: true })
     expect(noiseless.noise).toMatch(/without noise/)
     expect(noiseless.noise).not.toMatch(/may be wrong/)
+    // the interval of a waveform that the fit cannot follow can be wider than a study's
+    expect(noiseless.noise).not.toMatch(/narrow/)
+    expect(noiseless.alpha).toBe('None of that looks like alpha activity (a = 0 µV²/Hz).')
+    // a density of millions of µV²/Hz is no finding about a brain
+    const taken = lateOnlyWords({ ...facts(can, { alphaScale: 7.9e6 }), noiseless: true })
+    expect(taken.alpha).toBe('Some of that it takes for alpha activity (a).')
   })
 
   test('the strongest early component anywhere is held against what chance finds', () => {

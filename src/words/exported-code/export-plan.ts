@@ -242,7 +242,7 @@ function extentLines({ extent, stages, zerosBefore, zerosAfter, shortestSamples 
       'a kernel pads by odd reflection as many samples as it looks back and ahead',
   ].filter((rule) => rule !== false)
   return [
-    'Applied to one cut-out epoch, which knows nothing outside itself. Each stage pads, runs and trims:',
+    `Applied to one cut-out epoch, which knows nothing outside itself.${rules.length > 0 ? ' Each stage pads, runs and trims:' : ''}`,
     ...rules.map((rule, i) => `  - ${rule}${i < rules.length - 1 ? ';' : '.'}`),
     `An epoch must have at least ${exact(shortestSamples)} ${shortestSamples === 1 ? 'sample' : 'samples'}.`,
   ]

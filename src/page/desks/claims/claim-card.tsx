@@ -1,6 +1,6 @@
 /** One claim: its sentence, verdict, reason, what would change it, and the figure of that. */
 import { Fragment, type RefObject, useEffect, useRef } from 'react'
-import type { ClaimVerdict } from '../../../evidence/claims/claim.ts'
+import type { ClaimForm, ClaimVerdict } from '../../../evidence/claims/claim.ts'
 import { claimContext } from '../../../state/claim-facts.ts'
 import {
   chainOfClaim,
@@ -97,7 +97,7 @@ export function ClaimCard(props: ClaimCardProps) {
           <Phrases
             pieces={unbroken(pieces)}
             idOf={(id) => `${own}${id}`}
-            badOf={(id) => (isAtFault(id, reason) ? messageId : undefined)}
+            badOf={(id) => (isAtFault(id, claim.says, reason) ? messageId : undefined)}
           />
         </p>
         {reason ? (
@@ -123,7 +123,9 @@ export function ClaimCard(props: ClaimCardProps) {
           <p className="small claim-flips quiet">
             {claim.varied
               ? 'The chain has no such quantity any more: choose another to vary.'
-              : 'No stage of this chain has a cutoff to vary.'}
+              : chain.some(({ enabled, inData }) => enabled !== false && !inData)
+                ? 'No stage of this chain has a cutoff to vary.'
+                : 'No stage of this chain is applied here, so that there is nothing to vary.'}
           </p>
         ) : null}
         {reason ? null : <Progress answered={answered} />}
@@ -228,12 +230,17 @@ const FAULT: Record<string, RegExp> = {
   onset: /^The onset of the activity/,
   unit: /^A latency has no per cent/,
   least: /^The smallest effect/,
-  first: /has no condition/,
-  second: /has no condition/,
 }
 
-const isAtFault = (id: string, reason: string | null) =>
-  reason !== null && FAULT[id.replace(/^inner:/, '')]?.test(reason) === true
+function isAtFault(id: string, says: ClaimForm, reason: string | null): boolean {
+  if (reason === null) return false
+  const part = id.replace(/^inner:/, '')
+  if (part !== 'first' && part !== 'second') return FAULT[part]?.test(reason) === true
+  const shown = says.form === 'twin' ? says.shows : says.form === 'meaning' ? says.conclusion : says
+  if (shown.form !== 'effect') return false
+  const name = shown[part]
+  return name === '' ? reason.endsWith('one is not chosen.') : reason.endsWith(`has no condition “${name}”.`)
+}
 
 /** A long sentence about many stretches breaks between them. */
 function Stretches({ sentence }: { sentence: string }) {

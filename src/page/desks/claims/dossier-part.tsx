@@ -2,7 +2,7 @@
 import { type RefObject, useState } from 'react'
 import { useStore } from 'zustand'
 import { downloadBlob, figureToSvg } from '../../../plot/index.ts'
-import { dossierOf, unanswered } from '../../../state/claim-facts.ts'
+import { dossierOf, unanswerable, unanswered } from '../../../state/claim-facts.ts'
 import { claimStore } from '../../../state/claim-run.ts'
 import type { Evaluation } from '../../../state/evaluation.ts'
 import type { RecordedData } from '../../../state/recorded-data.ts'
@@ -27,6 +27,7 @@ interface DossierPartProps {
 
 export function DossierPart({ workspace, evaluation, data, figures }: DossierPartProps) {
   const left = useStore(claimStore, () => unanswered(workspace))
+  const refused = useStore(claimStore, () => unanswerable(workspace, data).join(', '))
   const [said, setSaid] = useState<{ words: string; failed: boolean } | null>(null)
   const save = (kind: 'html' | 'md') => {
     try {
@@ -70,7 +71,11 @@ export function DossierPart({ workspace, evaluation, data, figures }: DossierPar
           save as Markdown
         </WordButton>
         <span role="status" className={said?.failed ? 'over' : 'quiet'}>
-          {left > 0 ? `${left === 1 ? '1 claim has' : `${left} claims have`} no complete answer yet.` : said?.words}
+          {refused !== ''
+            ? `No dossier while ${refused.includes(',') ? `claims ${refused} have` : `claim ${refused} has`} no answer: each says why.`
+            : left > 0
+              ? `${left === 1 ? '1 claim has' : `${left} claims have`} no complete answer yet.`
+              : said?.words}
         </span>
       </p>
     </section>
