@@ -32,7 +32,9 @@ interface Seen extends ClaimPoint {
  * Cutoffs run from 0.01 Hz to 0.45 of the sampling rate (to the other edge of a band), transition widths from 0.05 Hz, both in even steps of their logarithm;
  * orders over all there are. Each change of the verdict between neighbours is bisected to 1e-4 of its value. A number that
  * touches its bound between two grid points changes the verdict twice and leaves no trace on the grid: where any quantity that decides comes
- * nearest to 0 at a grid point, and its neighbours are not so far off that it could not reach it, its least distance is looked for as well.
+ * nearest to 0 at a grid point, and its neighbours are not so far off that it could not reach it, its least distance is looked for as well. So does a
+ * number that goes from beyond one bound to beyond the other: where several deciding quantities change sign and the verdict does not, it is looked at
+ * on the way.
  *
  * @param varied what is varied, or null for the first applied offline stage's first cutoff.
  * @returns null where there is nothing to vary. A filter that cannot be realised has a point without number and verdict.
@@ -86,6 +88,10 @@ export function* claimCurve(
   if (range.kind === 'hz') {
     for (const [a, b, c] of nearMisses(grid)) {
       approach(a, b, c, look)
+      yield { done: ++done, total: Math.max(done, places.length) }
+    }
+    for (let i = 0; i + 1 < grid.length; i++) {
+      if (!passThrough(grid[i], grid[i + 1], look)) continue
       yield { done: ++done, total: Math.max(done, places.length) }
     }
   }
@@ -148,6 +154,28 @@ function approach(a: Seen, b: Seen, c: Seen, look: (at: number) => Seen): void {
       else high = point
     }
   }
+}
+
+/**
+ * Follows each of several deciding quantities that change sign between two neighbours of one verdict to where it does, until the verdict changes.
+ *
+ * @returns whether there was anything to follow.
+ */
+function passThrough(a: Seen, b: Seen, look: (at: number) => Seen): boolean {
+  if (a.verdict === null || a.verdict !== b.verdict || a.decisions.length !== b.decisions.length) return false
+  const changing = a.decisions.flatMap((value, k) => (value * b.decisions[k] < 0 ? [k] : []))
+  // the verdict is the same again only where it has changed twice
+  if (changing.length < 2) return false
+  for (const k of changing) {
+    let [low, high] = [a, b]
+    while (high.at - low.at > CLOSE * high.at) {
+      const middle = look(Math.exp((low.x + high.x) / 2))
+      if (middle.verdict !== a.verdict || middle.decisions.length !== a.decisions.length) return true
+      if (middle.decisions[k] * low.decisions[k] > 0) low = middle
+      else high = middle
+    }
+  }
+  return true
 }
 
 /** Every change of the verdict between two points, each to `CLOSE`. */

@@ -109,6 +109,19 @@ describe('the pulse of 10 µV at 400 ms, SD 80 ms, through a zero-phase high-pas
     expect(found.flips[1].at).toBeGreaterThan(where)
     expect(found.flips[1].at / found.flips[0].at).toBeLessThan(1.05)
   })
+
+  test('a number that goes from beyond one bound to beyond the other between two points of the grid flips twice', () => {
+    // at 80 ms it goes through 0 near 2 Hz, and is smaller than this over a tenth of a grid step only
+    const little: AnsweredForm = { ...form, amount: 0.02 }
+    const close = bruteForce(little, setting, cutoffOf(0), 1.8, 2.3, 400)
+    expect(close.map(({ above }) => above)).toEqual(['does not hold', 'holds'])
+    expect(close[1].high / close[0].low).toBeLessThan(1.06)
+    const between = ({ flips }: ClaimCurve) => flips.filter(({ at }) => at > 1.8 && at < 2.3)
+    for (const present of [0.5, 0.02, 7]) {
+      const found = wholeCurve(claimCurve(little, { ...setting, chain: [highPass(present)] }, null))
+      expectSameFlips({ ...found, flips: between(found) }, close)
+    }
+  })
 })
 
 describe('every flip of a fine grid is found, and no other', () => {
