@@ -49,6 +49,9 @@ export function writeUpFacts(
     ...protocolOf(workspace, samplingRateHz),
     ...(samples > 0 ? { epoch: { fromMs: timesMs[0], toMs: timesMs[samples - 1], samples } } : {}),
     statements: workspace.statements,
+    ...(workspace.source.kind === 'recorded' && workspace.claims.filteredBefore === 'as stated'
+      ? { noOtherFilters: true }
+      : {}),
     softwareVersion: SOFTWARE_VERSION,
   }
 }

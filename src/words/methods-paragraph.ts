@@ -65,6 +65,13 @@ function historySentences(facts: WriteUpFacts, { inData, amplifiers }: DesignedP
   if (filtered && statementOf(facts, 'earlier-edges') === '')
     sentences.push('How the ends of the data had been handled then was not stated.')
   if (facts.source === 'built') return sentences
+  if (facts.noOtherFilters && statementOf(facts, 'earlier-filters') === '') {
+    const besides = statementOf(facts, 'amplifier') === '' ? '' : ' besides the amplifier’s'
+    sentences.push(
+      `The waveform had passed no ${inData.length > 0 ? 'other ' : ''}filter${besides} before this analysis.`,
+    )
+    return sentences
+  }
   const amplifierKnown = [...inData, ...amplifiers].some(({ stage }) => stage.spec.design === 'amplifier')
   if (!amplifierKnown && statementOf(facts, 'amplifier') === '')
     sentences.push('The filters of the amplifier were not stated.')

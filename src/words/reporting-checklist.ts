@@ -89,7 +89,7 @@ function recordingItems(facts: WriteUpFacts, { inData, amplifiers }: DesignedPro
           }
         : source === 'built'
           ? SIMULATED
-          : { ...saidOrNot(facts, 'amplifier'), token: 'add' },
+          : { ...saidOrNone(facts, 'amplifier', 'none'), token: 'add' },
     ),
     recordedOnly(facts, 'acquisition-software', 'Hardware, software and version of the recording', [pernet]),
     recordedOnly(facts, 'reference', 'Reference and re-referencing', [practice]),
@@ -103,13 +103,16 @@ function recordingItems(facts: WriteUpFacts, { inData, amplifiers }: DesignedPro
             words: withStatement(
               facts,
               'earlier-filters',
-              each(earlier, ({ stage }) => stageName(stage.spec)),
+              `${each(earlier, ({ stage }) => stageName(stage.spec))}${facts.noOtherFilters ? '; no other' : ''}`,
             ),
             token: tokenOf(earlier[0], 'design'),
           }
         : source === 'built'
           ? SIMULATED
-          : { ...saidOrNot(facts, 'earlier-filters'), token: 'add' },
+          : {
+              ...saidOrNone(facts, 'earlier-filters', known.length > 0 ? 'none besides the amplifier’s' : 'none'),
+              token: 'add',
+            },
     ),
     item(
       'earlier-edges',
@@ -299,6 +302,12 @@ function recordedOnly(
 function saidOrNot(facts: WriteUpFacts, field: StatementField): Content {
   const said = statementOf(facts, field)
   return said === '' ? { state: 'not stated', words: 'not stated', field } : { state: 'stated', words: said, field }
+}
+
+/** What nobody has described, and yet it has been said that there was nothing to describe. */
+function saidOrNone(facts: WriteUpFacts, field: StatementField, none: string): Content {
+  const said = saidOrNot(facts, field)
+  return said.state === 'not stated' && facts.noOtherFilters ? { ...said, state: 'stated', words: none } : said
 }
 
 function withStatement(facts: WriteUpFacts, field: StatementField, words: string): string {

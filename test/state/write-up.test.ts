@@ -44,6 +44,17 @@ describe('the facts', () => {
     expect(writeUpFacts(first, { samplingRateHz: 500, timesMs: new Float64Array(0) })).not.toHaveProperty('epoch')
   })
 
+  test('take from the claims that a recording had passed no other filter, where the user has said so', () => {
+    const axis = { samplingRateHz: 250, timesMs: Float64Array.of(0, 4) }
+    const source = { kind: 'recorded' as const, fileName: 'a.csv', fileId: 'a', reading: {} }
+    const saying = (filteredBefore: Workspace['claims']['filteredBefore'], on = source as Workspace['source']) =>
+      writeUpFacts({ ...first, source: on, claims: { ...first.claims, filteredBefore } }, axis).noOtherFilters === true
+    expect(saying('as stated')).toBe(true)
+    expect(saying('not known')).toBe(false)
+    expect(saying(null)).toBe(false)
+    expect(saying('as stated', first.source)).toBe(false)
+  })
+
   test('name the version of the package', () => {
     const text = readFileSync(new URL('../../package.json', import.meta.url), 'utf8')
     expect(SOFTWARE_VERSION).toBe((JSON.parse(text) as { version: string }).version)

@@ -412,6 +412,22 @@ describe('the methods paragraph', () => {
     )
   })
 
+  test('of a recording that is said to have passed no other filter calls nothing unstated that was said', () => {
+    const about = (facts: Partial<WriteUpFacts>) => methodsParagraph({ ...FACTS, noOtherFilters: true, ...facts })
+    expect(about({})).toContain(
+      'The waveform had passed no filter before this analysis. No filter was applied offline.',
+    )
+    expect(about({ chain: [{ ...amplifier, inData: true }] })).toContain(
+      'The waveform had passed no other filter before this analysis.',
+    )
+    expect(about({ statements: { amplifier: 'DC to 131 Hz' } })).toContain(
+      'The waveform had passed no filter besides the amplifier’s before this analysis.',
+    )
+    expect(about({})).not.toContain('not stated')
+    // words of the user's own go before
+    expect(about({ statements: { 'earlier-filters': 'a 30 Hz low-pass' } })).not.toContain('had passed no')
+  })
+
   // 0.62325 = 0.5/(√2 − 1)^(1/4): half-amplitude of order 2 both ways is half power of one pass (B18, B19, B22: 0.8022)
   test('of one filter both ways leaves one reading', () => {
     expect(methodsParagraph({ ...FACTS, chain: [{ ...amplifier, inData: true }, highPass] })).toContain(

@@ -19,6 +19,7 @@ const besides = fc.record(
       .tuple(fc.integer({ min: -500, max: 0 }), fc.integer({ min: 1, max: 3000 }), fc.integer({ min: 2, max: 3000 }))
       .map(([fromMs, span, samples]) => ({ fromMs, toMs: fromMs + span, samples })),
     statements,
+    noOtherFilters: fc.boolean(),
     softwareVersion: fc.constantFrom('0.3.0', '1.12.4'),
   },
   { requiredKeys: [] },

@@ -176,6 +176,19 @@ describe('the reporting checklist', () => {
     expect(itemOf({ ...known, chain: [{ ...amplifier, enabled: false }] }, 'amplifier').state).toBe('not stated')
   })
 
+  test('takes it for stated that a recording had passed no other filter', () => {
+    const none: WriteUpFacts = { ...FACTS, noOtherFilters: true }
+    expect(said(none, 'earlier-filters')).toBe('stated: none')
+    expect(said(none, 'amplifier')).toBe('stated: none')
+    expect(said({ ...none, chain: [{ ...amplifier, inData: true }] }, 'earlier-filters')).toBe(
+      'stated: none besides the amplifier’s',
+    )
+    expect(said({ ...none, chain: [{ ...highPass, inData: true }] }, 'earlier-filters')).toBe(
+      'stated: stage 1: Butterworth high-pass; no other',
+    )
+    expect(said({ ...none, statements: { amplifier: 'DC to 131 Hz' } }, 'amplifier')).toBe('stated: DC to 131 Hz')
+  })
+
   test('asks of a simulated waveform nothing that only a recording has', () => {
     const built: WriteUpFacts = { ...FACTS, source: 'built', waveform: 'a late positivity', chain: [highPass] }
     const only = ['amplifier', 'acquisition-software', 'reference', 'earlier-filters', 'earlier-edges']
