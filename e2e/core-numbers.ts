@@ -60,7 +60,9 @@ export function readoutOf(workspace: Workspace): ReadoutLine[] {
       change: row.change === null ? '–' : printedChange(row.change, DECIMALS[row.unit]) + row.unit,
     }
   })
-  const noise = `noise of the score, ${workspace.trials} trials, noise model`
+  // a peak or an area is marked: its formula holds its place fixed
+  const mark = precision && !['mean', 'moment'].includes(workspace.score.kind) ? ' †' : ''
+  const noise = `noise of the score, ${workspace.trials} trials, noise model${mark}`
   const simulated = precision ? null : simulatedNoise(workspace, evaluation)
   if (simulated) {
     const { before, after, unit } = simulated

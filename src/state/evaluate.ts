@@ -32,9 +32,7 @@ import { lockedInterference } from './locked-interference.ts'
 import { memoised } from './memo.ts'
 import { namesOfPins } from './pin-actions.ts'
 import type { RecordedData } from './recorded-data.ts'
-import { DIFFERENCE, type Workspace } from './workspace.ts'
-
-const MAX_TRIALS = 1_000_000
+import { DIFFERENCE, MAX_TRIALS, type Workspace } from './workspace.ts'
 
 /** Everything on the page, or what stands in the way, at the tokens that say it. */
 export function evaluate(workspace: Workspace, data: RecordedData | null): Outcome {

@@ -30,6 +30,8 @@ export interface MapFigures {
   readonly front: readonly number[]
   /** Whether each cell keeps every limit. */
   readonly kept: readonly boolean[]
+  /** Whether any of the waveforms has the score before filtering; true while nothing is computed. */
+  readonly scoredBefore: boolean
 }
 
 export function overWaveforms(request: MapRequest, over: TradeOff['over']): OverWaveforms {
@@ -73,6 +75,7 @@ export function mapFigures(
     cells,
     front: paretoFront(cells.map((cell) => cell ?? { bias: null, noise: null })),
     kept: verdicts.map((verdict) => verdict?.kept === true),
+    scoredBefore: before === null || before[0].after.some((value) => !Number.isNaN(value)),
   }
 }
 
@@ -89,7 +92,24 @@ export function answerOfRow(
   limits: TradeOffLimits,
 ): TradeOffAnswer | null {
   const cells = figures.cells.slice(row * columns, (row + 1) * columns).filter((cell) => cell !== null)
-  return cells.length > 0 ? tradeOffAnswer(cells, limits) : null
+  if (cells.length === 0) return null
+  const usable = cells.filter(({ error }) => error === null)
+  // the first filter of a row often fails for a reason of its own: the one in the middle speaks for all
+  if (usable.length === 0) return { kind: 'nothing', reason: cells[Math.floor(cells.length / 2)].error as string }
+  if (!figures.scoredBefore) return { kind: 'nothing', reason: 'before any filter there is no such score' }
+  if (usable.every(({ bias }) => bias === null))
+    return { kind: 'nothing', reason: 'no filter of this row leaves this score in every waveform' }
+  return tradeOffAnswer(cells, limits)
+}
+
+/** The row to begin with: the second, unless none of its filters can be used and those of another can. */
+export function firstRow(figures: MapFigures, columns: number, rows: number): number {
+  const order = [Math.min(1, rows - 1), ...Array.from({ length: rows }, (_, row) => row)]
+  const usable = (row: number) => {
+    const known = figures.cells.slice(row * columns, (row + 1) * columns).filter((cell) => cell !== null)
+    return known.length === 0 || known.some(({ error }) => error === null)
+  }
+  return order.find(usable) ?? order[0]
 }
 
 /** Every cell with what is known of it: those not computed yet are shown as the nearest that is, so that a coarse map is complete. */

@@ -1,6 +1,7 @@
 /** The question that the trade-off desk asks, as a function of the workspace; and what picking a filter makes of it. */
-import { type Score, scoreLinearity, scoreUnit } from '../erp/score.ts'
+import { type Score, scoreLinearity, scoreOf, scoreUnit } from '../erp/score.ts'
 import { waveformAt } from '../erp/waveform.ts'
+import { filterBuiltWaveform, filterRecordedWaveform } from '../evidence/filtered-waveform.ts'
 import { largestAbsolute, scoreReference } from '../evidence/fidelity.ts'
 import { correctBaseline } from '../erp/baseline.ts'
 import { type Candidate, type CandidatePlace, chainWithCandidate, logCutoffs } from '../evidence/trade-off-candidate.ts'
@@ -11,10 +12,13 @@ import type { StageSpec } from '../filter/stage.ts'
 import { waveformOf } from '../files/index.ts'
 import { inWords } from '../words/index.ts'
 import { type ChosenNoise, chosenNoise } from './chosen-noise.ts'
+import { designedChain } from './evaluate-chain.ts'
 import { componentsOf, recordedValues, timeAxis } from './evaluate-curves.ts'
 import { memoised } from './memo.ts'
 import type { RecordedData } from './recorded-data.ts'
-import { DIFFERENCE, type TradeOff, type Workspace } from './workspace.ts'
+import { DIFFERENCE, MAX_TRIALS, RANGE, type TradeOff, type Workspace } from './workspace.ts'
+
+export { RANGE }
 
 /** Unit of the score, and so of bias, noise and total error. */
 export const scoreUnitOf = ({ score }: Pick<Workspace, 'score'>) => scoreUnit(score.kind)
@@ -98,9 +102,16 @@ export function mapRollOffs({ rollOffs, design, pass }: TradeOff): readonly numb
   return design === 'butterworth' ? ORDERS : WIDTHS_HZ[pass]
 }
 
+/** The desk's own limits without those that were written for a score in another unit: 1 µV of noise is no limit of 1 ms. */
+export function limitsInUnit({ limits }: TradeOff, unit: ReturnType<typeof scoreUnit>): TradeOff['limits'] {
+  if (limits.unit === undefined || limits.unit === unit) return limits
+  const { bias, latencyShiftMs } = limits
+  return { ...(bias === 'none' ? { bias } : {}), ...(latencyShiftMs === undefined ? {} : { latencyShiftMs }) }
+}
+
 /** The limits in force. The bias that is accepted is the limit of the score, unless the desk was given its own. */
 export function mapLimits({ tradeOff, limits, score }: Workspace, scoreBefore: number | null): TradeOffLimits {
-  const { bias, noise, totalError, latencyShiftMs } = tradeOff.limits
+  const { bias, noise, totalError, latencyShiftMs } = limitsInUnit(tradeOff, scoreUnit(score.kind))
   const of: { -readonly [K in keyof TradeOffLimits]: TradeOffLimits[K] } = {}
   if (typeof bias === 'number') of.bias = bias
   else if (bias === undefined && limits.score) {
@@ -114,6 +125,10 @@ export function mapLimits({ tradeOff, limits, score }: Workspace, scoreBefore: n
   if (latencyShiftMs !== undefined) of.latencyShiftMs = latencyShiftMs
   return of
 }
+
+export const TRIALS_RULE = 'The number of trials must be a whole number from 1 to 1000000.'
+
+export const isTrials = (trials: number) => Number.isInteger(trials) && trials >= 1 && trials <= MAX_TRIALS
 
 export interface MapRequest {
   readonly question: MapQuestion
@@ -134,8 +149,9 @@ export type MapRequestOutcome = { ok: true; request: MapRequest } | { ok: false;
 /** What the map computes for this workspace, or why it cannot be asked. */
 export function mapRequest(workspace: Workspace, data: RecordedData | null): MapRequestOutcome {
   const { trials, shown, source, chain, extent, baseline, score, measure, tradeOff } = workspace
+  if (!isTrials(trials)) return { ok: false, reason: TRIALS_RULE }
   const effective = shown.chosen === DIFFERENCE ? trials / 2 : trials
-  if (!(effective >= 1)) return { ok: false, reason: 'A difference needs at least 2 trials of each condition.' }
+  if (effective < 1) return { ok: false, reason: 'A difference needs at least 2 trials of each condition.' }
   const linear = scoreLinearity(score.kind) === 'linear'
   try {
     const noise = chosenNoise(workspace, data)
@@ -264,6 +280,31 @@ function waveformsOf(
   }))
 }
 
+/**
+ * The bias that the rest of the chain has alone, without the filter that is varied: every filter of the map is judged with it. Null where there is
+ * no other stage, or no such score.
+ *
+ * @throws RangeError as the chain and the waveform do.
+ */
+export function biasOfRest(workspace: Workspace, data: RecordedData | null): number | null {
+  const { source, shown, extent, baseline, score } = workspace
+  const place = mapPlace(workspace)
+  const rest = workspace.chain.filter((_, i) => !(place.replaces && i === place.at))
+  if (!rest.some((spec) => spec.enabled !== false && spec.inData !== true)) return null
+  const { samplingRateHz, timesMs } = timeAxis(source, data)
+  const chain = designedChain(rest, samplingRateHz)
+  const [waveform] = waveformsOf({ source, shown, tradeOff: { ...workspace.tradeOff, robust: null } }, data)
+  const { before, after } =
+    waveform.kind === 'built'
+      ? {
+          before: waveformAt(waveform.components, timesMs),
+          after: filterBuiltWaveform(chain, waveform.components, timesMs, extent),
+        }
+      : { before: waveform.values, after: filterRecordedWaveform(chain, waveform.values) }
+  const [first, second] = [before, after].map((y) => scoreOf(correctBaseline(y, timesMs, baseline), timesMs, score))
+  return typeof first === 'number' && typeof second === 'number' ? second - first : null
+}
+
 /** The mean over all conditions of a table, at the channel in use. */
 function averageOver(data: RecordedData, channel: string | null): Float64Array {
   const all = data.conditions.map((condition) => waveformOf(data, condition, channel ?? data.channels[0]).values)
@@ -323,5 +364,3 @@ export function varyingStage(workspace: Workspace, stage: number | 'insert'): Wo
     },
   }
 }
-
-export const RANGE = { high: { fromHz: 0.01, toHz: 3 }, low: { fromHz: 5, toHz: 100 } } as const

@@ -215,6 +215,8 @@ const tradeOffSchema = v.object({
       noise: positive,
       totalError: positive,
       latencyShiftMs: positive,
+      /** Of the score for which bias, noise and total error were written: for one in another unit they hold nothing. */
+      unit: v.picklist(['µV', 'ms', 'µV·s']),
     }),
   ),
   layer: v.picklist(['bias', 'noise', 'total error', 'equal-trials factor', 'latency shift']),
@@ -246,6 +248,23 @@ const START_TRADE_OFF: v.InferOutput<typeof tradeOffSchema> = {
   over: 'worst',
   waveform: 'chosen',
 }
+
+/** Cutoffs that a map of this pass begins with, Hz. */
+export const RANGE = { high: { fromHz: 0.01, toHz: 3 }, low: { fromHz: 5, toHz: 100 } } as const
+
+/** The map of a scenario is about its own filter: the first with one cutoff. */
+function tradeOffOf(chain: Scenario['chain']): v.InferOutput<typeof tradeOffSchema> {
+  for (const spec of chain) {
+    if (spec.design !== 'butterworth' && spec.design !== 'windowed-sinc') continue
+    if ((spec.pass !== 'high' && spec.pass !== 'low') || spec.enabled === false) continue
+    const { pass, design } = spec
+    const zeroPhase = spec.design === 'butterworth' ? spec.direction === 'both' : spec.delay === 'compensated'
+    return { ...START_TRADE_OFF, ...RANGE[pass], pass, design, direction: zeroPhase ? 'both' : 'forward' }
+  }
+  return START_TRADE_OFF
+}
+
+export const MAX_TRIALS = 1_000_000
 
 export const MAX_PINS = 3
 
@@ -433,7 +452,7 @@ export function workspaceOf(scenario: Scenario): Workspace {
     noiseFrom: 'model',
     onsetMs: null,
     trace: START_TRACE,
-    tradeOff: START_TRADE_OFF,
+    tradeOff: tradeOffOf(scenario.chain),
     pins: [],
     claims: START_CLAIMS,
     statements: {},

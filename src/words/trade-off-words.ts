@@ -55,7 +55,7 @@ export function tradeOffWords(question: TradeOffWordsQuestion): string {
         : `all ${rowOf} from ${looked} keep ${limited}`
       : `${rowOf} ${list(answer.allowed.map((run) => allowedWords(run, answer)))} keep ${limited}`
   if (answer.best === null) return `${opening}${region}.${left}`
-  return `${opening}${region}; ${bestWords(answer.best, unit)}; ${closeWords(answer.close, answer.best)}.${left}`
+  return `${opening}${region}; ${bestWords(answer.best, question, answer)}; ${closeWords(answer.close, answer.best)}.${left}`
 }
 
 const LIMIT_WORD: Record<LimitName, string> = {
@@ -104,13 +104,21 @@ function allowedWords({ first, last }: CutoffRun, grid: { lowestHz: number; high
   return `from ${exact(first.cutoffHz)} to ${exact(last.cutoffHz)} Hz`
 }
 
-function bestWords(best: CellFigures, unit: string): string {
-  const total = `of these ${exact(best.cutoffHz)} Hz has the least total error, ${twoDigits(best.totalError as number)} ${unit}`
+function bestWords(
+  best: CellFigures,
+  { unit, waveforms }: TradeOffWordsQuestion,
+  grid: { lowestHz: number; highestHz: number },
+): string {
+  const end = best.cutoffHz === grid.lowestHz ? 'begins' : best.cutoffHz === grid.highestHz ? 'ends' : null
+  const edge = end && grid.lowestHz < grid.highestHz ? ` (where the grid ${end}: what lies beyond was not tried)` : ''
+  const total = `of these ${exact(best.cutoffHz)} Hz has the least total error, ${twoDigits(best.totalError as number)} ${unit}${edge}`
   const { equalTrialsFactor: factor, precisionFactor: precision } = best
   if (factor !== null) {
-    return `${total}, and is worth ${twoDigits(factor)} times the trials (equal-trials factor, so the effect’s own change counts)`
+    return `${total}, and is worth ${factor < 0.001 ? '' : factor < 0.995 ? 'only ' : ''}${factor < 0.001 ? 'less than 0.001' : twoDigits(factor)} times the trials (equal-trials factor, so the effect’s own change counts)`
   }
-  return precision === null ? total : `${total}, with a precision factor of ${twoDigits(precision)}`
+  if (precision === null) return total
+  const without = unit === 'ms' || waveforms > 1 ? '' : ' and no effect in this window to weigh it against'
+  return `${total}, with a precision factor of ${twoDigits(precision)}${without}`
 }
 
 function closeWords(close: readonly CutoffRun[], best: CellFigures): string {

@@ -3,8 +3,10 @@ import { BATCH_DRAWS } from '../../src/evidence/simulated-score.ts'
 import { computeCell, planMap, prepareMap } from '../../src/evidence/trade-off-map.ts'
 import { evaluate } from '../../src/state/evaluate.ts'
 import {
+  answerOfRow,
   bestOfAllRows,
   cellInChain,
+  firstRow,
   mapCsv,
   mapFigures,
   nearestComputed,
@@ -14,18 +16,29 @@ import { mapStore, runMap, runMaps, type Slice } from '../../src/state/map-run.t
 import { mapSlice } from '../../src/state/map-worker.ts'
 import {
   aboutKind,
+  biasOfRest,
   comparedKinds,
   type FilterKind,
   filterInChain,
+  limitsInUnit,
   mapCandidate,
   mapLimits,
   mapPlace,
   mapRequest,
   type MapRequest,
+  TRIALS_RULE,
   varyingStage,
   withFilter,
 } from '../../src/state/trade-off.ts'
-import { DIFFERENCE, readWorkspace, startWorkspace, type TradeOff, type Workspace } from '../../src/state/workspace.ts'
+import {
+  DIFFERENCE,
+  readWorkspace,
+  SCENARIOS,
+  startWorkspace,
+  type TradeOff,
+  type Workspace,
+  workspaceOf,
+} from '../../src/state/workspace.ts'
 import { madeUpWorkspace } from './made-up-table.ts'
 
 const start: Workspace = {
@@ -417,4 +430,69 @@ test('a workspace of before the desk reads with its defaults', () => {
   const { beside: ___, ...alone } = startWorkspace().tradeOff
   const earlier = readWorkspace({ ...startWorkspace(), tradeOff: alone })
   expect(earlier.ok && earlier.workspace.tradeOff).toEqual(startWorkspace().tradeOff)
+})
+
+describe('what a researcher must not be misled by', () => {
+  test('a limit written for a score in µV is none for one in ms, and holds again when the score does', () => {
+    const limits = { bias: 0.3, noise: 0.5, totalError: 0.7, latencyShiftMs: 4, unit: 'µV' } as const
+    const workspace = asking({ limits })
+    expect(mapLimits(workspace, null)).toEqual({ bias: 0.3, noise: 0.5, totalError: 0.7, latencyShiftMs: 4 })
+    const latency = { ...workspace, score: { ...workspace.score, kind: 'peak-latency' as const } }
+    expect(mapLimits(latency, null)).toEqual({ latencyShiftMs: 4 })
+    expect(limitsInUnit({ ...workspace.tradeOff, limits: { ...limits, bias: 'none' } }, 'ms')).toEqual({
+      ...{ bias: 'none', latencyShiftMs: 4 },
+    })
+    // written before units were kept: taken as they are
+    expect(mapLimits(asking({ limits: { noise: 2 } }, latency), null)).toEqual({ noise: 2 })
+  })
+
+  test('a number of trials that is none is refused by its own rule', () => {
+    for (const trials of [0, 2.5, -1, 2_000_000, Number.NaN])
+      expect(mapRequest({ ...start, trials }, null)).toEqual({ ok: false, reason: TRIALS_RULE })
+  })
+
+  test('the rest of the chain has a bias of its own: the map’s, with a filter that takes next to nothing', async () => {
+    // the low-pass is varied, and the high-pass of 1 Hz stays
+    const workspace = asking({ pass: 'low', design: 'butterworth', fromHz: 100, toHz: 200, rollOffs: [1], stage: 2 })
+    const rest = biasOfRest(workspace, null)
+    const { figures } = await mapOf(workspace)
+    const widest = figures.cells[figures.cells.length - 1]
+    expect(rest).toBeLessThan(-0.5)
+    expect(rest).toBeCloseTo(widest?.bias as number, 2)
+    expect(
+      biasOfRest({ ...workspace, chain: [workspace.chain[2]], tradeOff: { ...workspace.tradeOff, stage: 0 } }, null),
+    ).toBeNull()
+  })
+
+  test('where the waveform has no such score, no filter is called open', async () => {
+    const score = { kind: 'peak-latency' as const, fromMs: 380, toMs: 420, polarity: 'negative' as const }
+    const { figures } = await mapOf(
+      asking({ rollOffs: [2], fromHz: 0.01, toHz: 0.02 }, { ...start, trials: 100_000, score }),
+    )
+    expect(figures.scoredBefore).toBe(false)
+    expect(answerOfRow(figures, 0, 60, {})).toEqual({
+      kind: 'nothing',
+      reason: 'before any filter there is no such score',
+    })
+  }, 60_000)
+
+  test('a row that cannot be used gives the reason of its middle, and the map begins with another', async () => {
+    // a transition of 0.2 Hz needs a kernel far longer than the epoch; one of 4 Hz about a cutoff of 3 Hz does not
+    const workspace = asking(
+      { design: 'windowed-sinc', rollOffs: [0.2, 0.3, 4], fromHz: 0.11, toHz: 3 },
+      { ...start, extent: 'epochs' },
+    )
+    const { figures } = await mapOf(workspace)
+    const answer = answerOfRow(figures, 1, 60, {})
+    expect(answer).toMatchObject({ kind: 'nothing', reason: expect.stringMatching(/needs \d+ samples/) })
+    expect(firstRow(figures, 60, 3)).toBe(2)
+  })
+
+  test('the map of a scenario is about the scenario’s own filter', () => {
+    const of = Object.fromEntries(SCENARIOS.map((scenario) => [scenario.id, workspaceOf(scenario)]))
+    expect(of['smeared-onset'].tradeOff).toMatchObject({ pass: 'low', direction: 'both', fromHz: 5, toHz: 100 })
+    expect(of['delayed-peak'].tradeOff).toMatchObject({ pass: 'low', direction: 'forward', design: 'butterworth' })
+    expect(mapPlace(of['smeared-onset'])).toEqual({ at: 0, replaces: true })
+    expect(of['late-positivity'].tradeOff).toMatchObject({ pass: 'high', direction: 'both', fromHz: 0.01, toHz: 3 })
+  })
 })

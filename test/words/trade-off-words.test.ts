@@ -149,7 +149,7 @@ describe('tradeOffWords', () => {
 
           const best = words.match(
             new RegExp(
-              `of these ${number} Hz has the least total error, ${number} µV(?:, and is worth ${number} times the trials|, with a precision factor of ${number})`,
+              `of these ${number} Hz has the least total error, ${number} µV(?: \\(where the grid (begins|ends): what lies beyond was not tried\\))?(?:, and is worth (only )?(?:less than 0.001|${number}) times the trials|, with a precision factor of ${number} and no effect in this window to weigh it against)`,
             ),
           )
           if (!best) throw new Error(words)
@@ -157,9 +157,17 @@ describe('tradeOffWords', () => {
           const least = Math.min(...kept.map(({ totalError }) => totalError as number))
           expect(cell.totalError).toBe(least)
           expect(prints(best[2], least)).toBe(true)
-          if (best[3]) expect(prints(best[3], cell.equalTrialsFactor as number)).toBe(true)
-          else expect(cell.equalTrialsFactor).toBe(null)
-          if (best[4]) expect(prints(best[4], cell.precisionFactor as number)).toBe(true)
+          const [, , , edge, only, factor, precision] = best
+          const hz = usable.map(({ cutoffHz }) => cutoffHz)
+          expect(edge).toBe({ [Math.min(...hz)]: 'begins', [Math.max(...hz)]: 'ends' }[cell.cutoffHz])
+          if (precision) {
+            expect(cell.equalTrialsFactor).toBe(null)
+            expect(prints(precision, cell.precisionFactor as number)).toBe(true)
+          } else {
+            if (factor) expect(prints(factor, cell.equalTrialsFactor as number)).toBe(true)
+            else expect(cell.equalTrialsFactor).toBeLessThan(0.001)
+            expect(only !== undefined).toBe(factor !== undefined && (cell.equalTrialsFactor as number) < 0.995)
+          }
           // never one best without its neighbours
           const close = kept.filter(({ totalError }) => (totalError as number) <= 1.05 * least * (1 + 1e-12))
           const tail = words.slice(words.lastIndexOf(';') + 1)
@@ -206,9 +214,21 @@ describe('tradeOffWords', () => {
   test('several regions are all named', () => {
     expect(say(row, { bias: 0.2 }, 40)).toBe(
       'With 40 trials, high-pass cutoffs (order 2 per pass, both ways) of 0.1 Hz only, of 0.5 Hz only and of 2 Hz only keep the bias within 0.2 µV; ' +
-        'of these 2 Hz has the least total error, 0.50 µV, and is worth 1.2 times the trials (equal-trials factor, so the effect’s own change counts); ' +
+        'of these 2 Hz has the least total error, 0.50 µV (where the grid ends: what lies beyond was not tried), and is worth 1.2 times the trials (equal-trials factor, so the effect’s own change counts); ' +
         'no other cutoff of the grid that is allowed is within 5 % of it.',
     )
+  })
+
+  test('a filter that costs trials is worth only so many of them, and one for no effect is not said to be worth any', () => {
+    const factor = (equalTrialsFactor: number | null) =>
+      say(
+        row.map((cell) => ({ ...cell, equalTrialsFactor })),
+        { bias: 0.35 },
+        40,
+      )
+    expect(factor(0.19)).toContain('and is worth only 0.19 times the trials')
+    expect(factor(1e-7)).toContain('and is worth less than 0.001 times the trials')
+    expect(factor(null)).toContain('with a precision factor of 1.5 and no effect in this window to weigh it against;')
   })
 
   test('no region names the tightest limit and the least violation', () => {

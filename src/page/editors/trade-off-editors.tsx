@@ -1,11 +1,12 @@
 /** The editors of the trade-off desk: which filter is varied, over which range, under which limits, for which waveforms. */
-import { useState } from 'react'
+import { type ComponentProps, useEffect, useRef, useState } from 'react'
 import { endGesture, say } from '../../state/store.ts'
 import {
   canVary,
   comparedKinds,
   FILTER_KINDS,
   type FilterKind,
+  limitsInUnit,
   mapPlace,
   mapRollOffs,
   RANGE,
@@ -13,6 +14,7 @@ import {
   scoreUnitOf,
   varyingStage,
 } from '../../state/trade-off.ts'
+import { limitFits } from '../../state/verdict.ts'
 import { MAX_ROLL_OFFS, type TradeOff, type Workspace } from '../../state/workspace.ts'
 import { exact, parseNumber, stageName } from '../../words/index.ts'
 import { kindWords } from '../desks/trade-off/map-words.ts'
@@ -25,6 +27,26 @@ interface EditorProps {
 
 const set = (change: Partial<TradeOff>, group?: string) =>
   say((w) => ({ ...w, tradeOff: { ...w.tradeOff, ...change } }), group && `trade-off:${group}`)
+
+const ABOVE_0 = (value: number) => (value > 0 ? null : 'a limit is larger than 0')
+
+type CheckedFieldProps = ComponentProps<typeof NumberField> & { rule: (value: number) => string | null }
+
+/** A number that the workspace does not take stays in its field, with the rule and what holds instead. */
+function CheckedField({ rule, onChange, ...field }: CheckedFieldProps) {
+  const [broken, setBroken] = useState<string | null>(null)
+  return (
+    <NumberField
+      {...field}
+      error={broken === null ? undefined : `${broken}: ${exact(field.value)} still holds`}
+      onChange={(value) => {
+        const problem = Number.isNaN(value) ? null : rule(value)
+        setBroken(problem)
+        if (problem === null && !Number.isNaN(value)) onChange(value)
+      }}
+    />
+  )
+}
 
 export function FilterKindEditor({ workspace }: EditorProps) {
   const { tradeOff, chain } = workspace
@@ -118,6 +140,22 @@ export function MapRangeEditor({ workspace }: EditorProps) {
   const orders = design === 'butterworth'
   const [draft, setDraft] = useState(() => mapRollOffs(tradeOff).map(exact).join(', '))
   const [bad, setBad] = useState<string | null>(null)
+  // both limits as they are written: only the two together are a range, whichever is written first
+  const [written, setWritten] = useState({ fromHz, toHz })
+  const problem = rangeProblem(written)
+  const inForce = useRef({ fromHz, toHz })
+  useEffect(() => {
+    if (inForce.current.fromHz === fromHz && inForce.current.toHz === toHz) return
+    inForce.current = { fromHz, toHz }
+    setWritten({ fromHz, toHz })
+  }, [fromHz, toHz])
+  const range = (change: Partial<typeof written>) => {
+    const next = { ...written, ...change }
+    setWritten(next)
+    if (rangeProblem(next) !== null) return
+    inForce.current = next
+    set(next, 'range')
+  }
   const type = (text: string) => {
     setDraft(text)
     const values = text
@@ -134,22 +172,27 @@ export function MapRangeEditor({ workspace }: EditorProps) {
         <NumberField
           label="cutoffs from"
           unit="Hz"
-          value={fromHz}
+          value={written.fromHz}
           ratio={1.1}
           onChange={(value) => {
-            if (value > 0 && value < toHz) set({ fromHz: value }, 'range')
+            if (!Number.isNaN(value)) range({ fromHz: value })
           }}
         />
         <NumberField
           label="to"
           unit="Hz"
-          value={toHz}
+          value={written.toHz}
           ratio={1.1}
           onChange={(value) => {
-            if (value > fromHz) set({ toHz: value }, 'range')
+            if (!Number.isNaN(value)) range({ toHz: value })
           }}
         />
       </div>
+      {problem ? (
+        <p className="field-error" role="alert">
+          {problem}: {exact(fromHz)} to {exact(toHz)} Hz still holds.
+        </p>
+      ) : null}
       <div className="field">
         <label className="field-label" htmlFor="map-roll-offs">
           {orders ? 'orders of one pass' : 'transition widths, Hz'}
@@ -173,6 +216,13 @@ export function MapRangeEditor({ workspace }: EditorProps) {
   )
 }
 
+/** What is wrong with the cutoffs of a map; null where they are a range. */
+export function rangeProblem({ fromHz, toHz }: Pick<TradeOff, 'fromHz' | 'toHz'>): string | null {
+  if (!(fromHz > 0)) return `cutoffs begin above 0 Hz, not at ${exact(fromHz)}`
+  if (!(toHz > fromHz)) return `cutoffs run upwards, not from ${exact(fromHz)} to ${exact(toHz)} Hz`
+  return null
+}
+
 /** What is wrong with the roll-offs of a map; null where they can be used. */
 export function rollOffProblem(values: readonly number[], orders: boolean): string | null {
   if (values.length === 0) return 'write at least one number'
@@ -185,9 +235,11 @@ export function rollOffProblem(values: readonly number[], orders: boolean): stri
 export function MapLimitsEditor({ workspace }: EditorProps) {
   const { tradeOff, limits } = workspace
   const unit = scoreUnitOf(workspace)
-  const change = (next: TradeOff['limits'], group?: string) => set({ limits: next }, group)
-  const { bias } = tradeOff.limits
+  const held = limitsInUnit(tradeOff, unit)
+  const change = (next: TradeOff['limits'], group?: string) => set({ limits: { ...next, unit } }, group)
+  const { bias } = held
   const own = limits.score
+  const fits = own !== undefined && limitFits(own, unit)
   const sizes = [
     { name: 'noise', label: 'noise of the score', unit, start: 1 },
     { name: 'totalError', label: 'total error', unit, start: 1 },
@@ -202,29 +254,29 @@ export function MapLimitsEditor({ workspace }: EditorProps) {
           {
             value: 'score',
             text: 'bias: the score’s limit',
-            ...(own ? { hint: `${exact(own.value)} ${own.unit}` } : { hint: 'none set' }),
+            hint: own ? `${exact(own.value)} ${own.unit}${fits ? '' : `, which is no limit in ${unit}`}` : 'none set',
           },
           { value: 'own', text: 'another' },
           { value: 'none', text: 'none' },
         ]}
         onChange={(value) => {
-          const { bias: _, ...others } = tradeOff.limits
-          change(value === 'score' ? others : { ...others, bias: value === 'none' ? 'none' : (own?.value ?? 0.5) })
+          const { bias: _, ...others } = held
+          const start = fits && own.unit === unit ? own.value : unit === 'ms' ? 10 : 0.5
+          change(value === 'score' ? others : { ...others, bias: value === 'none' ? 'none' : start })
         }}
       />
       {typeof bias === 'number' ? (
-        <NumberField
+        <CheckedField
           label="bias within"
           unit={unit}
           value={bias}
-          step={0.05}
-          onChange={(value) => {
-            if (value > 0) change({ ...tradeOff.limits, bias: value }, 'bias')
-          }}
+          step={unit === 'ms' ? 1 : 0.05}
+          rule={ABOVE_0}
+          onChange={(value) => change({ ...held, bias: value }, 'bias')}
         />
       ) : null}
       {sizes.map(({ name, label, unit: of, start }) => {
-        const value = tradeOff.limits[name]
+        const value = held[name]
         return (
           <div key={name} className="pair">
             <label className="small">
@@ -232,22 +284,21 @@ export function MapLimitsEditor({ workspace }: EditorProps) {
                 type="checkbox"
                 checked={value !== undefined}
                 onChange={(event) => {
-                  const { [name]: _, ...others } = tradeOff.limits
+                  const { [name]: _, ...others } = held
                   change(event.target.checked ? { ...others, [name]: start } : others)
                 }}
               />{' '}
               {label}
             </label>
             {value === undefined ? null : (
-              <NumberField
+              <CheckedField
                 label={`${label} within`}
                 hideLabel
                 unit={of}
                 value={value}
                 step={of === 'ms' ? 1 : 0.05}
-                onChange={(next) => {
-                  if (next > 0) change({ ...tradeOff.limits, [name]: next }, name)
-                }}
+                rule={ABOVE_0}
+                onChange={(next) => change({ ...held, [name]: next }, name)}
               />
             )}
           </div>
@@ -307,17 +358,16 @@ export function MapWaveformsEditor({ workspace }: EditorProps) {
       {robust === null ? null : (
         <div className="pair">
           {fields.map(({ name, label, unit, most }) => (
-            <NumberField
+            <CheckedField
               key={name}
               label={label}
               unit={unit}
               value={robust[name]}
               step={5}
+              rule={(value) => (value >= 0 && value <= most ? null : `from 0 to ${most} ${unit}`)}
               onChange={(value) => {
-                if (value >= 0 && value <= most) {
-                  set({ robust: { ...robust, [name]: value } }, name)
-                  endGesture()
-                }
+                set({ robust: { ...robust, [name]: value } }, name)
+                endGesture()
               }}
             />
           ))}

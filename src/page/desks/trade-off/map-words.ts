@@ -3,7 +3,7 @@ import type { LimitName, TradeOffLimits } from '../../../evidence/trade-off-answ
 import type { CellFigures } from '../../../evidence/trade-off-figures.ts'
 import type { Candidate } from '../../../evidence/trade-off-candidate.ts'
 import { verdictOnLimits } from '../../../state/map-figures.ts'
-import type { FilterKind } from '../../../state/trade-off.ts'
+import { type FilterKind, mapPlace } from '../../../state/trade-off.ts'
 import type { TradeOff, Workspace } from '../../../state/workspace.ts'
 import { brief, exact, inWords, list, measured, rollOffWords, signed } from '../../../words/index.ts'
 
@@ -39,6 +39,13 @@ export function limitWords(limits: TradeOffLimits, unit: MapUnit): string {
     .filter((name) => limits[name] !== undefined)
     .map((name) => `${LIMIT_WORD[name]} within ${exact(limits[name] as number)} ${limitUnit(name, unit)}`)
   return said.length === 0 ? 'no limit' : list(said)
+}
+
+/** Where the map's filters stand; said where the chain holds anything, since the rest of it counts too. */
+export function placeWords(workspace: Workspace): string {
+  if (workspace.chain.length === 0) return ''
+  const { at, replaces } = mapPlace(workspace)
+  return replaces ? `, in place of stage ${at + 1}` : ', as a new last stage'
 }
 
 export function waveformsWords({ source, tradeOff }: Workspace): string {

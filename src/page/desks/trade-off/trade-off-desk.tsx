@@ -5,14 +5,23 @@ import {
   answerOfRow,
   bestOfAllRows,
   cellInChain,
+  firstRow,
   mapCsv,
   noiseError,
   overWaveforms,
 } from '../../../state/map-figures.ts'
 import { endGesture, say } from '../../../state/store.ts'
-import { aboutKind, scoreUnitOf, withFilter } from '../../../state/trade-off.ts'
+import { aboutKind, isTrials, scoreUnitOf, TRIALS_RULE, withFilter } from '../../../state/trade-off.ts'
 import type { Workspace } from '../../../state/workspace.ts'
-import { candidateWords, list, mapLineWords, rollOffWords, scoreWords, tradeOffWords } from '../../../words/index.ts'
+import {
+  candidateWords,
+  exact,
+  list,
+  mapLineWords,
+  rollOffWords,
+  scoreWords,
+  tradeOffWords,
+} from '../../../words/index.ts'
 import {
   BesideEditor,
   FilterKindEditor,
@@ -31,7 +40,7 @@ import { LayerChoice, MapFigure } from './map-figure.tsx'
 import { MapNotes } from './map-notes.tsx'
 import { isRunning, MapProgress } from './map-progress.tsx'
 import { shadeOf } from './map-shape.ts'
-import { capital, kindWords, limitWords, type MapUnit, rangeWords, waveformsWords } from './map-words.ts'
+import { capital, kindWords, limitWords, type MapUnit, placeWords, rangeWords, waveformsWords } from './map-words.ts'
 import './trade-off.css'
 import { type DrawnMap, type DrawnMaps, useMaps } from './use-maps.ts'
 
@@ -64,7 +73,7 @@ function Asked({ workspace, evaluation, caption }: AskedProps) {
         <div className="side desk-side">{editor}</div>
       </div>
     )
-  return <Answered {...{ workspace, caption, editor }} drawn={outcome.drawn} />
+  return <Answered {...{ workspace, evaluation, caption, editor }} drawn={outcome.drawn} />
 }
 
 function useEditor(workspace: Workspace) {
@@ -87,12 +96,13 @@ function useEditor(workspace: Workspace) {
 
 interface AnsweredProps {
   workspace: Workspace
+  evaluation: Evaluation
   drawn: DrawnMaps
   caption: () => string
   editor: React.ReactNode
 }
 
-function Answered({ workspace, drawn, caption: pageCaption, editor }: AnsweredProps) {
+function Answered({ workspace, evaluation, drawn, caption: pageCaption, editor }: AnsweredProps) {
   const { maps } = drawn
   const several = maps.length > 1
   // of the maps that are drawn, which may still be those of another score
@@ -172,7 +182,7 @@ function Answered({ workspace, drawn, caption: pageCaption, editor }: AnsweredPr
           <p className="remark summary" role="status">
             {words}
           </p>
-          <MapNotes workspace={workspace} />
+          <MapNotes {...{ workspace, evaluation, unit }} />
           <MapProgress drawn={drawn} />
         </div>
         <div className="side desk-side">{editor}</div>
@@ -211,9 +221,15 @@ function Answered({ workspace, drawn, caption: pageCaption, editor }: AnsweredPr
 function Question({ workspace, maps, unit }: { workspace: Workspace; maps: readonly DrawnMap[]; unit: MapUnit }) {
   const { candidate, rollOffs } = maps[0].request.question
   const beside = maps.slice(1).map(({ kind }) => kindWords(kind))
+  const limits = limitWords(maps[0].limits, unit)
   return (
     <p className="desk-question">
-      Which <Token id="trade-off-filter" text={candidateWords(candidate)} label="filter that is varied" />
+      Which{' '}
+      <Token
+        id="trade-off-filter"
+        text={`${candidateWords(candidate)}${placeWords(workspace)}`}
+        label="filter that is varied"
+      />
       {beside.length > 0 ? ', beside ' : ' '}
       <Token
         id="trade-off-beside"
@@ -223,7 +239,9 @@ function Question({ workspace, maps, unit }: { workspace: Workspace; maps: reado
       />
       {beside.length > 0 ? ', from ' : ' from '}
       <Token id="trade-off-range" text={rangeWords(candidate, workspace.tradeOff, rollOffs)} label="range of the map" />{' '}
-      keeps <Token id="trade-off-limits" text={limitWords(maps[0].limits, unit)} label="limits of the map" /> in{' '}
+      {limits === 'no limit' ? 'has the least total error, with ' : 'keeps '}
+      <Token id="trade-off-limits" text={limits} label="limits of the map" />
+      {limits === 'no limit' ? ', in ' : ' in '}
       {scoreWords(workspace.score)} of{' '}
       <Token id="trade-off-waveforms" text={waveformsWords(workspace)} label="waveforms of the map" />?
     </p>
@@ -236,7 +254,7 @@ function viewOf(workspace: Workspace, map: DrawnMap, moved: number | undefined) 
   const columns = cutoffsHz.length
   const count = columns * rollOffs.length
   const inChain = cellInChain(aboutKind(workspace, map.kind), map.request)
-  const start = inChain ?? Math.min(count - 1, columns * Math.min(1, rollOffs.length - 1) + Math.floor(columns / 2))
+  const start = inChain ?? columns * firstRow(map.figures, columns, rollOffs.length) + Math.floor(columns / 2)
   const at = moved !== undefined && moved < count ? moved : start
   const row = Math.floor(at / columns)
   return {
@@ -287,7 +305,13 @@ function namedFilters(
 }
 
 function TrialsSlider({ workspace }: { workspace: Workspace }) {
-  const change = (trials: number) => say((w) => ({ ...w, trials }), 'trials')
+  const [refused, setRefused] = useState(false)
+  // a number that is none would take the page's figures away, and with them the field that it was written in
+  const change = (trials: number) => {
+    const taken = isTrials(trials)
+    setRefused(!taken)
+    if (taken) say((w) => ({ ...w, trials }), 'trials')
+  }
   return (
     <div className="editor-row map-trials">
       <span className="small">trials</span>
@@ -302,7 +326,13 @@ function TrialsSlider({ workspace }: { workspace: Workspace }) {
         onChange={(trials) => change(Math.round(trials))}
         onEnd={endGesture}
       />
-      <NumberField label="number of trials of the map" hideLabel value={workspace.trials} onChange={change} />
+      <NumberField
+        label="number of trials of the map"
+        hideLabel
+        value={workspace.trials}
+        error={refused ? `${TRIALS_RULE} ${exact(workspace.trials)} still holds.` : undefined}
+        onChange={change}
+      />
     </div>
   )
 }
