@@ -30,7 +30,7 @@ import {
 import type { Evaluation } from './evaluation.ts'
 import { protocolOf } from './protocol.ts'
 import { SOFTWARE_VERSION } from './software-version.ts'
-import type { Workspace } from './workspace.ts'
+import { DIFFERENCE, type Workspace } from './workspace.ts'
 
 /** The longest statement that a workspace holds, in characters. */
 export const MAX_STATEMENT = 1000
@@ -49,6 +49,7 @@ export function writeUpFacts(
     ...protocolOf(workspace, samplingRateHz),
     ...(samples > 0 ? { epoch: { fromMs: timesMs[0], toMs: timesMs[samples - 1], samples } } : {}),
     statements: workspace.statements,
+    ...(workspace.shown.chosen === DIFFERENCE && workspace.shown.difference ? { ofTwoConditions: true } : {}),
     ...(workspace.source.kind === 'recorded' && workspace.claims.filteredBefore === 'as stated'
       ? { noOtherFilters: true }
       : {}),

@@ -39,16 +39,23 @@ export function methodsParagraph(facts: WriteUpFacts, markup: Markup = 'text'): 
   return inMarkup(sentences.join(' '), markup)
 }
 
-function sourceSentences({ source, waveform, samplingRateHz, epoch, events, trials }: WriteUpFacts): string[] {
+/** What was averaged, as a noun phrase. */
+function trialsWords({ trials, ofTwoConditions }: WriteUpFacts): string {
+  if (ofTwoConditions)
+    return trials === 1
+      ? 'the difference of two single trials'
+      : `the difference of two averages of ${counted(trials, 'trial')} each`
+  return trials === 1 ? 'a single trial' : `an average of ${counted(trials, 'trial')}`
+}
+
+function sourceSentences(facts: WriteUpFacts): string[] {
+  const { source, waveform, samplingRateHz, epoch, events } = facts
   const limits = epoch
     ? `, in an epoch from ${windowWords(epoch.fromMs, epoch.toMs)} (${counted(epoch.samples, 'sample')})`
     : ''
   const sampled = `sampled at ${exact(samplingRateHz)} Hz${limits}`
   if (source === 'recorded')
-    return [
-      `The waveform was recorded: ${waveform}, ${sampled}.`,
-      trials === 1 ? 'It was a single trial.' : `It was an average of ${counted(trials, 'trial')}.`,
-    ]
+    return [`The waveform was recorded: ${waveform}, ${sampled}.`, `It was ${trialsWords(facts)}.`]
   const train =
     events && events !== 'alone'
       ? [`Its events followed one another every ${windowWords(events.fromMs, events.toMs)}.`]
@@ -157,16 +164,10 @@ function baselineSentence({ baseline, chain }: WriteUpFacts): string {
   return filtered ? `After filtering, the ${mean} was subtracted.` : `The ${mean} was subtracted.`
 }
 
-function scoreSentences({ score, source, trials }: WriteUpFacts): string[] {
+function scoreSentences(facts: WriteUpFacts): string[] {
+  const { score, source } = facts
   const defined = `The score was ${scoreWords(score)} ${span(score)} (${definition(score)}).`
-  return source === 'recorded'
-    ? [defined]
-    : [
-        defined,
-        trials === 1
-          ? 'Its precision was computed for a single trial.'
-          : `Its precision was computed for an average of ${counted(trials, 'trial')}.`,
-      ]
+  return source === 'recorded' ? [defined] : [defined, `Its precision was computed for ${trialsWords(facts)}.`]
 }
 
 /** "from −200 to 0 ms", "at 120 ms" */

@@ -9,6 +9,8 @@ export interface WriteUpFacts extends Protocol {
   epoch?: { fromMs: number; toMs: number; samples: number }
   /** What the workspace cannot hold, in the user's words, by the key of the checklist's field ('resampling'). */
   statements?: Readonly<Record<string, string>>
+  /** The waveform is the difference of two conditions, each of so many trials. */
+  ofTwoConditions?: boolean
   /** The user has said of a recording that the stages in the data are all that it had passed. */
   noOtherFilters?: boolean
   /** Version of this software, for the sentence that names it. */

@@ -5,7 +5,14 @@ import { designChain } from '../../src/filter/index.ts'
 import { evaluate } from '../../src/state/evaluate.ts'
 import { SOFTWARE_VERSION } from '../../src/state/software-version.ts'
 import { endGesture, redo, say, undo, workspaceStore } from '../../src/state/store.ts'
-import { readWorkspace, SCENARIOS, startWorkspace, type Workspace, workspaceOf } from '../../src/state/workspace.ts'
+import {
+  DIFFERENCE,
+  readWorkspace,
+  SCENARIOS,
+  startWorkspace,
+  type Workspace,
+  workspaceOf,
+} from '../../src/state/workspace.ts'
 import {
   checklistCsv,
   CODE_FILE,
@@ -42,6 +49,17 @@ describe('the facts', () => {
 
   test('hold no epoch where there is no sample', () => {
     expect(writeUpFacts(first, { samplingRateHz: 500, timesMs: new Float64Array(0) })).not.toHaveProperty('epoch')
+  })
+
+  test('say that a difference is of two conditions', () => {
+    const { shown } = first
+    const [one, two] = ['rare targets', 'frequent standards']
+    const difference: Workspace = {
+      ...first,
+      shown: { ...shown, difference: { first: one, second: two }, chosen: DIFFERENCE },
+    }
+    expect(factsOf(difference)).toMatchObject({ ofTwoConditions: true, waveform: `the difference ${one} minus ${two}` })
+    expect(factsOf(first)).not.toHaveProperty('ofTwoConditions')
   })
 
   test('take from the claims that a recording had passed no other filter, where the user has said so', () => {

@@ -412,6 +412,15 @@ describe('the methods paragraph', () => {
     )
   })
 
+  test('of a difference says that each of its two conditions has so many trials', () => {
+    const of = (facts: Partial<WriteUpFacts>) => methodsParagraph({ ...FACTS, ofTwoConditions: true, ...facts })
+    expect(of({})).toContain(`It was the difference of two averages of ${FACTS.trials} trials each.`)
+    expect(of({ trials: 1 })).toContain('It was the difference of two single trials.')
+    expect(of({ source: 'built' })).toContain(
+      `Its precision was computed for the difference of two averages of ${FACTS.trials} trials each.`,
+    )
+  })
+
   test('of a recording that is said to have passed no other filter calls nothing unstated that was said', () => {
     const about = (facts: Partial<WriteUpFacts>) => methodsParagraph({ ...FACTS, noOtherFilters: true, ...facts })
     expect(about({})).toContain(
