@@ -1,6 +1,7 @@
 /** What the claims desk and its dossier say: contexts for the words, and all claims with their answers as one document. */
 import type { ClaimAnswerContext, Dossier, DossierClaim, DossierSetting, LateOnlyFacts } from '../words/index.ts'
 import type { ClaimForm } from '../evidence/claims/claim.ts'
+import { defaultNoise } from './chosen-noise.ts'
 import { claimStore } from './claim-run.ts'
 import type { ClaimResult } from './claim-worker.ts'
 import { chainOfClaim, claimKey, claimScoreUnit, claimSetting, takenOf } from './claims.ts'
@@ -8,6 +9,7 @@ import type { Evaluation } from './evaluation.ts'
 import type { LateOnlyResult } from './late-only-steps.ts'
 import type { RecordedData } from './recorded-data.ts'
 import { SOFTWARE_VERSION } from './software-version.ts'
+import { noiseWords } from '../words/noise-words.ts'
 import type { Claim, Workspace } from './workspace.ts'
 import { writeUpFacts } from './write-up.ts'
 
@@ -38,6 +40,12 @@ export function unanswered(workspace: Workspace): number {
   const { answers } = claimStore.getState()
   return workspace.claims.list.filter((claim) => answers[claimKey(claim, workspace)]?.status !== 'complete').length
 }
+
+/** The noise that the page begins with was stated by nobody. */
+const statedBy = ({ noise }: Workspace) =>
+  noiseWords(noise) === noiseWords(defaultNoise())
+    ? 'as Sidelobe assumes where nothing else is stated'
+    : 'as stated by the user'
 
 /** Places, from 1, of the claims that cannot be answered as they stand: waiting brings no dossier of them. */
 export function unanswerable(workspace: Workspace, data: RecordedData | null): number[] {
@@ -86,8 +94,7 @@ export function dossierOf(
         facts: { ...writeUpFacts({ ...workspace, ...chain }, evaluation), extent: chain.extent },
         setting,
         file: workspace.source.kind === 'recorded' ? workspace.source.fileName : null,
-        noiseFrom:
-          setting.noisePassed === 'nothing' ? 'as stated by the user' : 'estimated from the plus–minus average',
+        noiseFrom: setting.noisePassed !== 'nothing' ? 'estimated from the plus–minus average' : statedBy(workspace),
         scoreUnit: claimScoreUnit(workspace),
       })
     }

@@ -1,8 +1,11 @@
+import type { Component } from '../erp/component.ts'
 import type { NoisePassed } from '../evidence/filtered-noise.ts'
+import type { TraceSource } from '../evidence/traced-waveform.ts'
 import type { ClaimAnswer, ClaimCurve, ClaimForm, ClaimSetting, Unit } from '../evidence/claims/claim.ts'
 import { type ClaimAnswerContext, claimReason, claimVerdictWords } from './claim-answer-words.ts'
 import { changeWithUnit, intervalWithUnit, toneWithUnit, valueWithUnit } from './claim-number.ts'
 import { curveSentence } from './claim-curve-words.ts'
+import { componentWords } from './component-words.ts'
 import { claimText } from './claim-words.ts'
 import { inlineSvg } from './inline-svg.ts'
 import { type LateOnlyFacts, lateOnlyWords } from './late-only-words.ts'
@@ -50,10 +53,10 @@ export interface DossierSetting {
   readonly setting: Pick<
     ClaimSetting,
     'chosen' | 'measure' | 'noise' | 'noisePassed' | 'trials' | 'taken' | 'filteredBefore' | 'unseenThreshold'
-  > & { readonly conditions: readonly { readonly name: string }[] }
+  > & { readonly conditions: readonly { readonly name: string; readonly source?: TraceSource }[] }
   /** Name of the file that the data came from; null for a built waveform. */
   readonly file: string | null
-  /** Where the noise comes from, as a participle: "as stated by the user", "estimated from the plus–minus average". */
+  /** Where the noise comes from, as a participle: "as stated by the user", "as Sidelobe assumes where nothing else is stated", "estimated from the plus–minus average". */
   readonly noiseFrom: string
   readonly scoreUnit: Unit
 }
@@ -327,6 +330,9 @@ function settingEntries({ chainName, facts, setting, file, noiseFrom }: DossierS
           ? `condition ${quoted(chosen.name)}${others}`
           : `the difference ${quoted(chosen.first)} minus ${quoted(chosen.second)}${others}`,
     },
+    ...conditions.flatMap(({ name: condition, source }) =>
+      source?.kind === 'built' ? [{ name: 'Components', text: componentsOf(condition, source.components) }] : [],
+    ),
     { name: 'Data', text: file === null ? 'built from components; no recording' : `file ${quoted(file)}` },
     {
       name: 'Filtered before',
@@ -354,6 +360,12 @@ function settingEntries({ chainName, facts, setting, file, noiseFrom }: DossierS
       text: `a result of which more than ${exact(Number((100 * unseenThreshold).toPrecision(6)))} % of the absolute weight falls on them cannot be told`,
     },
   ]
+}
+
+/** A built waveform is an assumption too: what it was built from stands here in full. */
+function componentsOf(condition: string, components: readonly Component[]): string {
+  const built = components.map((component) => inMarkup(componentWords(component), 'text')).join('; ')
+  return `of ${quoted(condition)}: ${built || 'none'}`
 }
 
 const PASSED: Record<NoisePassed, string> = {

@@ -199,7 +199,13 @@ describe('dossierOf', () => {
     const one = having(workspace, table, 'onset', 'effect')
     await answerAll(one, table)
     const { settings, claims } = dossier(one, table)
-    expect(settings[0]).toMatchObject({ file: 'average-2024.csv', noiseFrom: 'as stated by the user' })
+    expect(settings[0]).toMatchObject({
+      file: 'average-2024.csv',
+      noiseFrom: 'as Sidelobe assumes where nothing else is stated',
+    })
+    const louder = { ...one, noise: { ...one.noise, whiteUv2PerHz: 0.5 } }
+    await answerAll(louder, table)
+    expect(dossier(louder, table).settings[0].noiseFrom).toBe('as stated by the user')
     expect(settings[0].setting.taken).toBe('as measured')
     expect(claims[0].context).toEqual({ filter: 'the filter', trials: one.trials, taken: 'as measured' })
     // an effect is about other conditions than the one that is shown

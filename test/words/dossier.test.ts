@@ -127,6 +127,24 @@ describe('dossier', () => {
     expect(html).toContain('clip-path="url(#claim-1-c)"')
   })
 
+  test('a built waveform is told with all that it was built from, a recorded one is not', () => {
+    const component = {
+      shape: 'gaussian',
+      name: 'late *positivity*',
+      amplitudeUv: 7.9,
+      latencyMs: 400,
+      widthMs: 213,
+    } as const
+    const having = (source?: DossierSetting['setting']['conditions'][number]['source']): Dossier => ({
+      ...dossier,
+      settings: [{ ...setting, setting: { ...setting.setting, conditions: [{ name: 'rare', source }] } }],
+    })
+    expect(dossierMarkdown(having({ kind: 'built', components: [component] }))).toContain(
+      '**Components:** of “rare”: late \\*positivity\\* (Gaussian, 7.9 µV at 400 ms, 213 ms wide at half maximum)',
+    )
+    expect(dossierMarkdown(having({ kind: 'recorded', values: new Float64Array(3) }))).not.toContain('**Components:**')
+  })
+
   test('figures beside the first have ids and names of their own, and what is no figure is refused', () => {
     const [claim] = dossier.claims
     const moreFigures = [
