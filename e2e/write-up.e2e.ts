@@ -69,6 +69,20 @@ test('the paragraph is the core’s own in each markup; copy and save give the s
   Object.assign(changed.chain[1], { cutoffsHz: [0.3] })
   await expect(paragraph(workbench)).toHaveText(wordsOf(changed).paragraph.text)
   await expect(paragraph(workbench)).toContainText('half-amplitude cutoff of 0.3 Hz')
+  const old = workbench.page.getByText('below is still the write-up of what it said before')
+  await expect(old).toHaveCount(0)
+
+  // what cannot be has no write-up: the last one stays, said to be old, and is not taken away
+  await workbench.edit('stage 2, cutoff')
+  await workbench.field('cutoff').fill('400')
+  await workbench.closeEditor()
+  await expect(old).toBeVisible()
+  await expect(paragraph(workbench)).toContainText('half-amplitude cutoff of 0.3 Hz')
+  for (const what of ['the methods paragraph', 'the Python file'])
+    await expect(workbench.button(`save ${what}`)).toBeDisabled()
+  await workbench.button('Undo').click()
+  await expect(old).toHaveCount(0)
+  await expect(workbench.button('save the Python file')).toBeEnabled()
 })
 
 test('a missing item is stated in its row, stands in the paragraph, is undone, and is kept over a reload', async ({

@@ -1,5 +1,6 @@
 /** What the claims desk and its dossier say: contexts for the words, and all claims with their answers as one document. */
 import type { ClaimAnswerContext, Dossier, DossierClaim, DossierSetting, LateOnlyFacts } from '../words/index.ts'
+import { noiseWords } from '../words/noise-words.ts'
 import type { ClaimForm } from '../evidence/claims/claim.ts'
 import { defaultNoise } from './chosen-noise.ts'
 import { claimStore } from './claim-run.ts'
@@ -9,7 +10,6 @@ import type { Evaluation } from './evaluation.ts'
 import type { LateOnlyResult } from './late-only-steps.ts'
 import type { RecordedData } from './recorded-data.ts'
 import { SOFTWARE_VERSION } from './software-version.ts'
-import { noiseWords } from '../words/noise-words.ts'
 import type { Claim, Workspace } from './workspace.ts'
 import { writeUpFacts } from './write-up.ts'
 

@@ -39,14 +39,21 @@ const NOTES: Record<CodeFormat, string> = {
 /** More letters than these are saved and copied, but not shown. */
 const SHOWN = 60_000
 
-export function CodePart({ facts }: { facts: WriteUpFacts }) {
+interface CodePartProps {
+  facts: WriteUpFacts
+  /** The facts are not those of the sentence any more: their code is not taken away. */
+  old: boolean
+}
+
+export function CodePart({ facts, old }: CodePartProps) {
   const [format, setFormat] = useState<CodeFormat>('python')
   const question = codeQuestion(facts, format)
   const answer = useAnswer(JSON.stringify(question), async (signal) => ({
     format,
     code: await askForCode(question, signal),
   }))
-  const { value, stale, failure } = answer
+  const { value, failure } = answer
+  const stale = answer.stale || old
   const name = FORMATS.find((entry) => entry.value === format)?.text ?? format
   // another language's text under this one's name would be taken for it
   const code = value?.format === format ? value.code : null

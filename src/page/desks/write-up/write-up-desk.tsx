@@ -19,9 +19,9 @@ import { type Answer, useAnswer } from './use-answer.ts'
 import './write-up.css'
 
 export function WriteUpDesk({ workspace, shown }: DeskProps) {
-  const { evaluation, of, stale } = shown
+  const { evaluation, of, stale, problems } = shown
   if (!evaluation || !of) return null
-  return <Written {...{ workspace, of, evaluation, stale }} />
+  return <Written {...{ workspace, of, evaluation, stale }} faulty={problems.length > 0} />
 }
 
 interface WrittenProps {
@@ -29,9 +29,11 @@ interface WrittenProps {
   of: Workspace
   evaluation: Evaluation
   stale: boolean
+  /** The sentence says what cannot be: the write-up is that of the last one that could. */
+  faulty: boolean
 }
 
-function Written({ workspace, of, evaluation, stale }: WrittenProps) {
+function Written({ workspace, of, evaluation, stale, faulty }: WrittenProps) {
   const { statements } = workspace
   const present = useMemo(() => writeUpFacts({ ...of, statements }, evaluation), [of, statements, evaluation])
   // figures go first while a cutoff is dragged
@@ -41,6 +43,11 @@ function Written({ workspace, of, evaluation, stale }: WrittenProps) {
   return (
     <div className={waiting ? 'desk write-up-desk stale' : 'desk write-up-desk'} aria-busy={waiting}>
       <p className="desk-question">How do I report this?</p>
+      {faulty ? (
+        <p className="small over" role="status">
+          What the protocol line says now cannot be: below is still the write-up of what it said before.
+        </p>
+      ) : null}
       {failure ? (
         <p className="small over" role="alert">
           The write-up could not be made: {failure}
@@ -64,7 +71,7 @@ function Written({ workspace, of, evaluation, stale }: WrittenProps) {
           Working …
         </p>
       )}
-      <CodePart facts={facts} />
+      <CodePart facts={facts} old={stale} />
     </div>
   )
 }
