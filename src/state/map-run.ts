@@ -56,6 +56,14 @@ const emptyMap = ({ key, question }: MapRequest): MapState => {
   }
 }
 
+/** Coarse first; then the whole of the row that the desk begins with. */
+export function orderOfWork(cutoffs: number, rollOffs: number, row: number): readonly number[] {
+  const { order, levelEnds } = planMap(cutoffs, rollOffs)
+  const [coarse, rest] = [order.slice(0, levelEnds[0]), order.slice(levelEnds[0])]
+  const inRow = (index: number) => Math.floor(index / cutoffs) === row
+  return [...coarse, ...rest.filter(inRow), ...rest.filter((index) => !inRow(index))]
+}
+
 interface Run {
   /** Slices that are asked for at once; 1 unless said otherwise. */
   readonly workers?: number
@@ -75,7 +83,7 @@ export async function runMap(request: MapRequest, slice: Slice, signal: AbortSig
     keep({ ...state, status: 'complete' })
     return
   }
-  const { order } = planMap(question.cutoffsHz.length, question.rollOffs.length)
+  const order = orderOfWork(question.cutoffsHz.length, question.rollOffs.length, request.row)
   keep(state)
   let keptAt = Date.now()
   try {

@@ -3,7 +3,7 @@ import type { Baseline } from '../erp/baseline.ts'
 import type { TimeWindow } from '../erp/time-axis.ts'
 import type { Table } from '../files/index.ts'
 import { waveformOf } from '../files/index.ts'
-import type { RecordedSource, Workspace } from './workspace.ts'
+import { type RecordedSource, START_TRADE_OFF, type Workspace } from './workspace.ts'
 
 /** Half the width of the score window that is laid around the largest deflection, and of the wider window of the readout's rows. */
 const SCORE_HALF_MS = 25
@@ -53,6 +53,8 @@ export function workspaceOnTable(workspace: Workspace, source: RecordedSource, t
       'false-deflection': { value: 0.5, unit: 'µV' },
     },
     onsetMs: null,
+    // what was varied in a built waveform’s chain, and its ranges, mean nothing here
+    tradeOff: earlier ? workspace.tradeOff : START_TRADE_OFF,
   }
 }
 

@@ -142,6 +142,8 @@ export interface MapRequest {
   readonly trials: number
   /** A score whose noise is drawn, not computed. */
   readonly simulated: boolean
+  /** Index of the roll-off that the desk begins with: that of the filter in the chain, or the second. */
+  readonly row: number
 }
 
 export type MapRequestOutcome = { ok: true; request: MapRequest } | { ok: false; reason: string }
@@ -163,7 +165,8 @@ export function mapRequest(workspace: Workspace, data: RecordedData | null): Map
       settingsOf(tradeOff),
       linear ? 1 : effective,
     )
-    return { ok: true, request: { ...asked, trials: effective, simulated: !linear } }
+    const row = asked.question.rollOffs.indexOf(filterInChain(workspace)?.rollOff ?? Number.NaN)
+    return { ok: true, request: { ...asked, trials: effective, simulated: !linear, row: row < 0 ? 1 : row } }
   } catch (error) {
     if (!(error instanceof RangeError)) throw error
     return { ok: false, reason: inWords(error.message) }

@@ -233,7 +233,7 @@ const tradeOffSchema = v.object({
   waveform: v.picklist(['chosen', 'average']),
 })
 
-const START_TRADE_OFF: v.InferOutput<typeof tradeOffSchema> = {
+export const START_TRADE_OFF: v.InferOutput<typeof tradeOffSchema> = {
   stage: null,
   pass: 'high',
   design: 'butterworth',

@@ -33,7 +33,7 @@ export function tradeOffWords(question: TradeOffWordsQuestion): string {
   const left =
     answer.left === 0
       ? ''
-      : ` ${exact(answer.left)} ${answer.left === 1 ? 'cutoff' : 'cutoffs'} of the grid could not be used.`
+      : ` ${exact(answer.left)} ${answer.left === 1 ? 'cutoff' : 'cutoffs'} of the grid gave no figures.`
   if (answer.kind === 'none') {
     const { limit, size, multiples } = answer.tightest
     const times = !Number.isFinite(multiples)

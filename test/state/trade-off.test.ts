@@ -12,7 +12,7 @@ import {
   nearestComputed,
   noiseError,
 } from '../../src/state/map-figures.ts'
-import { mapStore, runMap, runMaps, type Slice } from '../../src/state/map-run.ts'
+import { mapStore, orderOfWork, runMap, runMaps, type Slice } from '../../src/state/map-run.ts'
 import { mapSlice } from '../../src/state/map-worker.ts'
 import {
   aboutKind,
@@ -486,6 +486,20 @@ describe('what a researcher must not be misled by', () => {
     const answer = answerOfRow(figures, 1, 60, {})
     expect(answer).toMatchObject({ kind: 'nothing', reason: expect.stringMatching(/needs \d+ samples/) })
     expect(firstRow(figures, 60, 3)).toBe(2)
+  })
+
+  test('the row that the desk begins with is whole as soon as the coarse map is', () => {
+    expect(requestOf(start).row).toBe(1)
+    const order = orderOfWork(60, 8, 1)
+    const coarse = planMap(60, 8).levelEnds[0]
+    expect([...order].sort((a, b) => a - b)).toEqual(Array.from({ length: 480 }, (_, i) => i))
+    expect(order.slice(0, coarse)).toEqual(planMap(60, 8).order.slice(0, coarse))
+    expect(new Set(order.slice(0, coarse + 60).map((index) => Math.floor(index / 60)))).toContain(1)
+    const second = order.slice(0, coarse + 60).filter((index) => Math.floor(index / 60) === 1)
+    expect(second).toHaveLength(60)
+    const delayed = SCENARIOS.find(({ id }) => id === 'delayed-peak') as (typeof SCENARIOS)[number]
+    // order 4 is the fourth row
+    expect(requestOf(workspaceOf(delayed)).row).toBe(3)
   })
 
   test('the map of a scenario is about the scenario’s own filter', () => {

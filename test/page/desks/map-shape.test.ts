@@ -2,10 +2,12 @@ import fc from 'fast-check'
 import { describe, expect, test } from 'vitest'
 import { logCutoffs } from '../../../src/evidence/trade-off-candidate.ts'
 import type { CellFigures } from '../../../src/evidence/trade-off-figures.ts'
-import { spread } from '../../../src/page/desks/trade-off/cut-figure.tsx'
+import { type Frame, linearScale } from '../../../src/plot/index.ts'
+import { startWorkspace } from '../../../src/state/workspace.ts'
+import { cutLabels } from '../../../src/page/desks/trade-off/cut-figure.tsx'
 import { cutoffScale, movedCell, shadeOf } from '../../../src/page/desks/trade-off/map-shape.ts'
-import { cellWords, limitWords } from '../../../src/page/desks/trade-off/map-words.ts'
-import { rollOffProblem } from '../../../src/page/editors/trade-off-editors.tsx'
+import { cellWords, limitWords, placeWords } from '../../../src/page/desks/trade-off/map-words.ts'
+import { rangeProblem, rollOffProblem } from '../../../src/page/editors/trade-off-editors.tsx'
 
 const cell = (change: Partial<CellFigures>): CellFigures => ({
   ...{ index: 0, cutoffIndex: 0, rollOffIndex: 0, cutoffHz: 0.15, rollOff: 2, error: null },
@@ -79,17 +81,69 @@ describe('words of a cell', () => {
 })
 
 describe('labels of the cut', () => {
-  test('keep 16 px apart, their order, and the room they have', () => {
+  const frame = { left: 40, right: 640, top: 10, bottom: 150, plotWidth: 600, plotHeight: 140 } as Frame
+  const hz = logCutoffs(0.01, 3, 60)
+
+  test('stand apart from one another, inside the figure, for any curves and cursor', () => {
     fc.assert(
-      fc.property(fc.array(fc.double({ min: 0, max: 150, noNaN: true }), { minLength: 1, maxLength: 4 }), (heights) => {
-        const placed = spread(heights, 8, 150)
-        const order = heights.map((_, i) => i).sort((a, b) => heights[a] - heights[b] || a - b)
-        order.forEach((i, k) => {
-          expect(placed[i]).toBeLessThanOrEqual(150)
-          if (k > 0) expect(placed[i] - placed[order[k - 1]]).toBeGreaterThanOrEqual(16 - 1e-9)
-        })
-      }),
+      fc.property(
+        fc.array(fc.double({ min: 0, max: 5, noNaN: true }), { minLength: 3, maxLength: 3 }),
+        fc.double({ min: -1, max: 1, noNaN: true }),
+        fc.integer({ min: 0, max: 59 }),
+        (levels, slope, column) => {
+          const curves = ['bias', 'noise', 'total error'].map((name, i) => ({
+            ...{ name, tone: 'after' as const, limit: i === 0 ? 0.2 : undefined },
+            values: hz.map((_, k) => Math.max(0, levels[i] + (slope * k) / 20)),
+          }))
+          const scales = { frame, x: cutoffScale(hz, 40, 640), y: linearScale([0, 8], [150, 10]) }
+          const labels = cutLabels(curves, column, hz, scales)
+          expect(labels.length).toBeGreaterThanOrEqual(2)
+          labels.forEach(({ box }, i) => {
+            expect(box.left).toBeGreaterThanOrEqual(40)
+            expect(box.right).toBeLessThanOrEqual(640)
+            for (const { box: other } of labels.slice(0, i))
+              expect(
+                box.left >= other.right ||
+                  other.left >= box.right ||
+                  box.top >= other.bottom ||
+                  other.top >= box.bottom,
+              ).toBe(true)
+          })
+        },
+      ),
     )
+  })
+
+  test('keep off a level curve where there is room beside it', () => {
+    const curves = [{ name: 'noise', tone: 'before' as const, limit: undefined, values: hz.map(() => 4) }]
+    const y = linearScale([0, 8], [150, 10])
+    const [{ box }] = cutLabels(curves, 30, hz, { frame, x: cutoffScale(hz, 40, 640), y })
+    expect(box.bottom <= y.toPixel(4) || box.top >= y.toPixel(4)).toBe(true)
+  })
+
+  test('are none where nothing is computed', () => {
+    const curves = [{ name: 'noise', tone: 'before' as const, limit: undefined, values: hz.map(() => Number.NaN) }]
+    expect(
+      cutLabels(curves, 30, hz, { frame, x: cutoffScale(hz, 40, 640), y: linearScale([0, 8], [150, 10]) }),
+    ).toEqual([])
+  })
+})
+
+describe('where the map’s filters stand', () => {
+  test('is said of a chain that holds anything', () => {
+    const start = startWorkspace()
+    expect(placeWords(start)).toBe(', in place of stage 2')
+    expect(placeWords({ ...start, tradeOff: { ...start.tradeOff, stage: 'insert' } })).toBe(', as a new last stage')
+    expect(placeWords({ ...start, chain: [] })).toBe('')
+  })
+})
+
+describe('cutoffs that are typed', () => {
+  test('are a range above 0 that runs upwards', () => {
+    expect(rangeProblem({ fromHz: 0.01, toHz: 3 })).toBeNull()
+    expect(rangeProblem({ fromHz: 5, toHz: 3 })).toBe('cutoffs run upwards, not from 5 to 3 Hz')
+    expect(rangeProblem({ fromHz: 3, toHz: 3 })).toBe('cutoffs run upwards, not from 3 to 3 Hz')
+    expect(rangeProblem({ fromHz: -1, toHz: 3 })).toBe('cutoffs begin above 0 Hz, not at −1')
   })
 })
 

@@ -1,12 +1,16 @@
 /** A cut through the map along one roll-off: bias, noise and total error over the cutoff, with their numbers at the cursor. */
 import { useRef } from 'react'
-import { Axis, Clipped, DirectLabel, FigureFrame, GridLines, Line, linearScale, ZeroLine } from '../../../plot/index.ts'
-import type { Tone } from '../../../plot/index.ts'
-import { brief, measured, rollOffWords } from '../../../words/index.ts'
+import { Axis, Clipped, FigureFrame, GridLines, Line, linearScale, ZeroLine } from '../../../plot/index.ts'
+import type { Frame, Scale, Tone } from '../../../plot/index.ts'
+import type { CurveCourse } from '../../../plot/place-labels.ts'
+import { brief, rollOffWords } from '../../../words/index.ts'
+import { courseOf } from '../../curve-course.ts'
 import { FigureHead } from '../../figure-head.tsx'
+import { LabelTexts } from '../../label-text.tsx'
+import { type DrawnLabel, drawnLabels, placesBeside } from '../../placed-labels.ts'
 import { MAP_MARGIN } from './map-figure.tsx'
 import { cutoffScale } from './map-shape.ts'
-import type { MapUnit } from './map-words.ts'
+import { type MapUnit, sizeText } from './map-words.ts'
 import type { DrawnMap } from './use-maps.ts'
 
 interface CutFigureProps {
@@ -14,6 +18,14 @@ interface CutFigureProps {
   unit: MapUnit
   at: number
   caption: () => string
+}
+
+interface CutCurve {
+  name: string
+  tone: Tone
+  /** Sizes over the cutoffs; NaN where there is none. */
+  values: readonly number[]
+  limit: number | undefined
 }
 
 export function CutFigure({ map, unit, at, caption }: CutFigureProps) {
@@ -25,7 +37,7 @@ export function CutFigure({ map, unit, at, caption }: CutFigureProps) {
   const cells = figures.cells.slice(row * cutoffsHz.length, (row + 1) * cutoffsHz.length)
   const size = (value: number | null | undefined) =>
     value === null || value === undefined ? Number.NaN : Math.abs(value)
-  const curves: readonly { name: string; tone: Tone; values: number[]; limit: number | undefined }[] = [
+  const curves: readonly CutCurve[] = [
     { name: 'bias', tone: 'taken-out', values: cells.map((cell) => size(cell?.bias)), limit: limits.bias },
     { name: 'noise', tone: 'before', values: cells.map((cell) => size(cell?.noise)), limit: limits.noise },
     {
@@ -35,8 +47,14 @@ export function CutFigure({ map, unit, at, caption }: CutFigureProps) {
       limit: limits.totalError,
     },
   ]
+  // a curve runs on over cutoffs that are not computed yet, and breaks at those without a figure
+  const isDrawn = (_: unknown, i: number) => cells[i] !== null
+  const drawnHz = Float64Array.from(cutoffsHz.filter(isDrawn))
+  const known = curves.some(({ values }) => values.some(Number.isFinite))
   const most = Math.max(...curves.flatMap(({ values }) => values.filter(Number.isFinite)), limits.bias ?? 0, 1e-6)
-  const said = curves.map(({ name, values }) => `${name} ${measured(values[column], 3)} ${unit}`)
+  const said = curves.map(({ name, values }) =>
+    Number.isNaN(values[column]) ? `no ${name}` : `${name} ${sizeText(values[column])} ${unit}`,
+  )
   return (
     <>
       <FigureHead
@@ -58,16 +76,10 @@ export function CutFigure({ map, unit, at, caption }: CutFigureProps) {
           const x = cutoffScale(cutoffsHz, frame.left, frame.right)
           const y = linearScale([0, most * 1.06], [frame.bottom, frame.top])
           const cursor = x.toPixel(cutoffsHz[column])
-          const side = cursor > frame.right - 150 ? -1 : 1
-          const labels = spread(
-            curves.map(({ values }) => y.toPixel(values[column])),
-            frame.top + 8,
-            frame.bottom - 8,
-          )
           return (
             <>
               <GridLines frame={frame} scale={x} along="x" />
-              <GridLines frame={frame} scale={y} along="y" />
+              {known ? <GridLines frame={frame} scale={y} along="y" /> : null}
               <ZeroLine frame={frame} scale={y} along="y" />
               <path
                 d={`M${cursor},${frame.top}V${frame.bottom}`}
@@ -86,26 +98,24 @@ export function CutFigure({ map, unit, at, caption }: CutFigureProps) {
                         fill="none"
                       />
                     )}
-                    <Line xs={Float64Array.from(cutoffsHz)} ys={Float64Array.from(values)} x={x} y={y} tone={tone} />
+                    <Line xs={drawnHz} ys={Float64Array.from(values.filter(isDrawn))} x={x} y={y} tone={tone} />
                   </g>
                 ))}
               </Clipped>
-              <g>
-                {curves.map(({ name, tone, values }, i) =>
-                  Number.isFinite(values[column]) ? (
-                    <DirectLabel
-                      key={name}
-                      x={cursor + side * 8}
-                      y={labels[i]}
-                      tone={tone}
-                      anchor={side < 0 ? 'end' : 'start'}
-                    >
-                      <tspan className="plot-strong">{name}</tspan> {measured(values[column], 3)}
-                    </DirectLabel>
-                  ) : null,
-                )}
-              </g>
-              <Axis side="left" scale={y} at={frame.left} />
+              <LabelTexts labels={cutLabels(curves, column, cutoffsHz, { frame, x, y })} />
+              {known ? null : (
+                <text
+                  className="plot-text"
+                  x={(frame.left + frame.right) / 2}
+                  y={(frame.top + frame.bottom) / 2}
+                  textAnchor="middle"
+                  fill="var(--quiet)"
+                >
+                  {cells.every((cell) => cell === null) ? 'not computed yet' : 'nothing to draw: no filter of this row'}
+                  {cells.every((cell) => cell === null) ? '' : ' has a bias or a noise'}
+                </text>
+              )}
+              {known ? <Axis side="left" scale={y} at={frame.left} /> : null}
               <Axis side="bottom" scale={x} at={frame.bottom} title="Cutoff, Hz" />
             </>
           )
@@ -115,19 +125,30 @@ export function CutFigure({ map, unit, at, caption }: CutFigureProps) {
   )
 }
 
-/** Heights moved apart until labels of 16 px fit between the limits, in their order. */
-export function spread(heights: readonly number[], top: number, bottom: number): number[] {
-  const order = heights.map((_, i) => i).sort((a, b) => heights[a] - heights[b] || a - b)
-  const placed = heights.slice()
-  let least = top
-  for (const i of order) {
-    placed[i] = Math.max(least, Number.isFinite(heights[i]) ? heights[i] : least)
-    least = placed[i] + 16
-  }
-  let most = bottom
-  for (const i of order.reverse()) {
-    placed[i] = Math.min(placed[i], most)
-    most = placed[i] - 16
-  }
-  return placed
+/** The numbers at the cursor, beside it and off the curves and levels as far as there is room. */
+export function cutLabels(
+  curves: readonly CutCurve[],
+  column: number,
+  cutoffsHz: readonly number[],
+  { frame, x, y }: { frame: Frame; x: Scale; y: Scale },
+): DrawnLabel[] {
+  const atHz = x.toPixel(cutoffsHz[column])
+  const courses = curves.flatMap(({ values, limit }): CurveCourse[] => {
+    const heights = courseOf(cutoffsHz, values, x, y, frame.left, Math.floor(frame.plotWidth))
+    const level = limit === undefined ? [] : [{ heights: heights.slice().fill(y.toPixel(limit)), weight: 14 }]
+    return [{ heights, weight: 30 }, ...level]
+  })
+  const wanted = curves.flatMap(({ name, tone, values }) =>
+    Number.isFinite(values[column])
+      ? [
+          {
+            ...{ id: name, tone, rows: [{ strong: name, plain: sizeText(values[column]) }] },
+            places: placesBeside(atHz, y.toPixel(values[column]), 0),
+          },
+        ]
+      : [],
+  )
+  // the one whose curve lies highest first, so that labels keep the order of the curves
+  wanted.sort((a, b) => a.places[0].y - b.places[0].y)
+  return drawnLabels(wanted, frame, courses, [])
 }

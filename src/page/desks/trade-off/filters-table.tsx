@@ -3,10 +3,10 @@ import type { TradeOffLimits } from '../../../evidence/trade-off-answer.ts'
 import type { CellFigures } from '../../../evidence/trade-off-figures.ts'
 import type { Candidate } from '../../../evidence/trade-off-candidate.ts'
 import { verdictOnLimits } from '../../../state/map-figures.ts'
-import { brief, exact, measured, rollOffWords } from '../../../words/index.ts'
+import { brief, exact, rollOffWords } from '../../../words/index.ts'
 import { WordButton } from '../../fields.tsx'
 import { TableHead } from '../table-head.tsx'
-import { changeText, factorText, type MapUnit } from './map-words.ts'
+import { changeText, factorText, type MapUnit, sizeText } from './map-words.ts'
 
 export interface NamedFilter {
   name: string
@@ -62,8 +62,8 @@ export function FiltersTable({ filters, limits, unit, maps, csv }: FiltersTableP
                 <td>{cell ? `${exact(cell.cutoffHz)} Hz` : '–'}</td>
                 <td>{cell ? rollOffWords(candidate, cell.rollOff) : '–'}</td>
                 <Size value={cell?.bias} unit={unit} words={changeText} />
-                <Size value={cell?.noise} unit={unit} words={(value) => measured(value, 3)} />
-                <Size value={cell?.totalError} unit={unit} words={(value) => measured(value, 3)} />
+                <Size value={cell?.noise} unit={unit} words={sizeText} />
+                <Size value={cell?.totalError} unit={unit} words={sizeText} />
                 <td>{factor(cell?.precisionFactor)}</td>
                 <td>{factor(cell?.equalTrialsFactor)}</td>
                 <td>

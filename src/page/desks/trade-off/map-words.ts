@@ -73,8 +73,8 @@ export function cellWords(
   const parts: string[] = []
   if (cell.bias !== null) parts.push(`bias ${changeText(cell.bias)} ${unit}`)
   if (cell.noise !== null)
-    parts.push(`noise ${measured(cell.noise, 3)}${noiseError === null ? '' : ` ± ${brief(noiseError, 1)}`} ${unit}`)
-  if (cell.totalError !== null) parts.push(`total error ${measured(cell.totalError, 3)} ${unit}`)
+    parts.push(`noise ${sizeText(cell.noise)}${noiseError === null ? '' : ` ± ${brief(noiseError, 1)}`} ${unit}`)
+  if (cell.totalError !== null) parts.push(`total error ${sizeText(cell.totalError)} ${unit}`)
   if (cell.precisionFactor !== null) parts.push(`precision factor ${factorText(cell.precisionFactor)}`)
   if (cell.equalTrialsFactor !== null) parts.push(`equal-trials factor ${factorText(cell.equalTrialsFactor)}`)
   if (cell.latencyShiftMs !== null) parts.push(`latency shift ${changeText(cell.latencyShiftMs)} ms`)
@@ -90,6 +90,9 @@ export function changeText(value: number): string {
   const decimals = size === 0 ? 2 : Math.max(0, Math.min(4, 2 - Math.floor(Math.log10(size))))
   return signed(value, decimals)
 }
+
+/** Three significant digits of a size; what rounding left of nothing needs no zeros. */
+export const sizeText = (size: number) => (size === 0 ? '0' : size < 0.0001 ? 'below 0.0001' : measured(size, 3))
 
 /** A factor that says "as good as nothing" needs no zeros. */
 export const factorText = (value: number) => (value < 0.001 ? 'below 0.001' : measured(value, 3))

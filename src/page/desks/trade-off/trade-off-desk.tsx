@@ -1,5 +1,6 @@
 /** Trade-off: which cutoff and roll-off keep the limits, and what each costs in bias and noise; one kind of filter, or several side by side. */
 import { useMemo, useState } from 'react'
+import type { CellFigures } from '../../../evidence/trade-off-figures.ts'
 import type { Evaluation } from '../../../state/evaluation.ts'
 import {
   answerOfRow,
@@ -169,8 +170,9 @@ function Answered({ workspace, evaluation, drawn, caption: pageCaption, editor }
       <TrialsSlider workspace={workspace} />
       <p className="small quiet desk-hint">
         Unveiled and broadly edged: filters that keep every limit; a line at each limit. Ringed: no other filter beats
-        them in both bias and noise. Filled: the filter in the chain. Hatched: cannot be realised. A click or Enter puts
-        a filter into the chain; undo takes it back.
+        them in both bias and noise. Filled: the filter in the chain. Hatched: cannot be realised.
+        {shown.map.figures.cells.some(leavesNoScore) ? ' Blank: leaves no such score.' : ''} A click or Enter puts a
+        filter into the chain; undo takes it back.
       </p>
     </div>
   )
@@ -268,6 +270,8 @@ function viewOf(workspace: Workspace, map: DrawnMap, moved: number | undefined) 
 }
 
 type MapView = ReturnType<typeof viewOf>
+
+const leavesNoScore = (cell: CellFigures | null) => cell !== null && cell.error === null && cell.bias === null
 
 /** A coarse map leaves out every second row. */
 function notYet({ map, candidate, rollOff }: MapView, running: boolean): string {
