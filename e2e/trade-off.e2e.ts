@@ -193,6 +193,7 @@ test('the map of a latency, whose noise is drawn, is stopped with what it has an
   await openDesk(workbench)
   await workbench.edit('score')
   await workbench.choose('kind of score', 'peak latency')
+  await workbench.choose('side', 'positive')
   await workbench.closeEditor()
   const progress = page.locator('.map-progress')
   const done = async () => Number(/(\d+) of 480 filters/.exec((await progress.textContent()) ?? '')?.[1] ?? 0)
@@ -214,6 +215,61 @@ test('the map of a latency, whose noise is drawn, is stopped with what it has an
   await expect.poll(done).toBeGreaterThan(stopped)
   await page.getByRole('button', { name: 'cancel', exact: true }).click()
   await expect(progress).toContainText('Stopped at')
+})
+
+test('a number that it cannot take is refused beside its field, and what holds stays on the desk', async ({
+  workbench,
+}) => {
+  const { page } = workbench
+  await openDesk(workbench)
+  const said = (await summary(workbench).textContent()) ?? ''
+  const trials = page.getByRole('textbox', { name: 'number of trials of the map' })
+  for (const bad of ['0', '2.5', '-3']) {
+    await trials.fill(bad)
+    await expect(page.getByRole('alert').filter({ hasText: 'whole number from 1' })).toContainText('40 still holds')
+    await expect(summary(workbench)).toHaveText(said)
+  }
+  await trials.fill('40')
+  await workbench.edit('range of the map')
+  await workbench.field('cutoffs from').fill('5')
+  await expect(workbench.editor().getByRole('alert')).toContainText('not from 5 to 3 Hz: 0.01 to 3 Hz still holds')
+  // whichever limit is written first: the two together are a range
+  await workbench.field('to').fill('20')
+  await expect(workbench.editor().getByRole('alert')).toHaveCount(0)
+  await expect(workbench.token('range of the map')).toContainText('5 to 20 Hz')
+})
+
+test('a limit in µV is no limit of a latency, and both the readout and the desk say so', async ({ workbench }) => {
+  const { page } = workbench
+  await openDesk(workbench)
+  await workbench.edit('limits of the map')
+  await workbench.editor().getByRole('checkbox', { name: 'noise of the score' }).check()
+  await workbench.closeEditor()
+  await expect(workbench.token('limits of the map')).toHaveText('bias within 0.2 µV and noise within 1 µV')
+  await workbench.edit('score')
+  await workbench.choose('kind of score', 'peak latency')
+  await workbench.choose('side', 'positive')
+  await workbench.closeEditor()
+  await expect(workbench.readoutRow(/^peak latency 300 to 500 ms/)).toContainText('the limit, in µV, does not apply')
+  await expect(workbench.token('limits of the map')).toHaveText('no limit')
+  await page.keyboard.press('Control+Z')
+  await page.keyboard.press('Control+Z')
+  await expect(workbench.token('limits of the map')).toHaveText('bias within 0.2 µV and noise within 1 µV')
+})
+
+test('interference locked to the event is told where it is not drawn: under the readout and at the map', async ({
+  workbench,
+}) => {
+  const { page } = workbench
+  await openDesk(workbench)
+  await workbench.edit('noise of single trials')
+  await workbench.button('add display refresh').click()
+  await workbench.field('line 1, frequency').fill('11')
+  await workbench.closeEditor()
+  const note = page.getByText(/^Interference locked to the event \(11 Hz, 1 µV\)/)
+  await expect(note).toContainText(/It adds [+−][\d.]+ µV to the score before the chain and [+−][\d.]+ µV after it/)
+  await expect(page.getByText('Interference locked to the event is in the bias')).toBeVisible()
+  await expectAccessible(workbench)
 })
 
 test('axe finds nothing on the desk and in the noise editor', async ({ workbench }) => {
