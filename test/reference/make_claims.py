@@ -383,10 +383,10 @@ def effect(setting, form, filtered):
     before, after = mean(setting.effect_before, setting.t, form["window"]), mean(filtered.effect_after, setting.t, form["window"])
     least = form["leastUv"]
     there = abs(before) - least
-    d = {"exists without the filter": there, "is absent without the filter": min(-there, abs(after) - least),
-         "changes sign": min(there, -math.copysign(1, before) * after - least)}[form["says"]]
+    ds = {"exists without the filter": (there,), "is absent without the filter": (-there, abs(after) - least),
+          "changes sign": (there, -math.copysign(1, before) * after - least)}[form["says"]]
     on_after = {"exists without the filter": False, "is absent without the filter": there < 0, "changes sign": there >= 0}[form["says"]]
-    return {"number": after if on_after else before, "d": d, "values": {"before": before, "after": after}}
+    return {"number": after if on_after else before, "d": min(ds), "ds": ds, "values": {"before": before, "after": after}}
 
 
 def onset_shift(setting, form, filtered):

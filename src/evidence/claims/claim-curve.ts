@@ -34,7 +34,8 @@ interface Seen extends ClaimPoint {
  * touches its bound between two grid points changes the verdict twice and leaves no trace on the grid: where any quantity that decides comes
  * nearest to 0 at a grid point, and its neighbours are not so far off that it could not reach it, its least distance is looked for as well. So does a
  * number that goes from beyond one bound to beyond the other: where several deciding quantities change sign and the verdict does not, it is looked at
- * on the way.
+ * on the way. A peak, and what hangs on one, may jump to another peak and back within a step of the grid (13 % of a cutoff at 500 Hz): that leaves no
+ * trace at all, and such pairs of changes can be missed.
  *
  * @param varied what is varied, or null for the first applied offline stage's first cutoff.
  * @returns null where there is nothing to vary. A filter that cannot be realised has a point without number and verdict.
