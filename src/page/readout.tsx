@@ -9,6 +9,7 @@ import { EXTRAPOLATED_MARK } from '../state/chosen-noise.ts'
 import type { Evaluation, Problem } from '../state/evaluation.ts'
 import type { SimulatedNoise } from '../state/simulated-noise.ts'
 import { readoutCsv } from '../state/readout-csv.ts'
+import { trialsProblem } from '../state/trade-off.ts'
 import { type Verdict, verdictOf } from '../state/verdict.ts'
 import type { Workspace } from '../state/workspace.ts'
 import { brief, changeWords, exact, fixed, list, rowWords, signed, valueWords, windowWords } from '../words/index.ts'
@@ -132,7 +133,7 @@ export function Readout({ evaluation, workspace, problems }: ReadoutProps) {
                 </td>
               </>
             ) : (
-              <SimulatedCells {...{ evaluation, pins }} state={simulated} />
+              <SimulatedCells {...{ evaluation, pins }} state={simulated} problem={trialsProblem(workspace)} />
             )}
           </tr>
         </tbody>
@@ -154,8 +155,10 @@ function SimulatedCells(props: {
   evaluation: Evaluation
   pins: readonly DrawnPin[]
   state: ReturnType<typeof useSimulatedNoise>
+  /** Why no average of that many trials can be simulated. */
+  problem: string | null
 }) {
-  const { evaluation, pins, state } = props
+  const { evaluation, pins, state, problem } = props
   const noise = state?.noise
   const { before, after } = evaluation.rows[0]
   if (!noise)
@@ -163,7 +166,7 @@ function SimulatedCells(props: {
       <td colSpan={7 + pins.length} className="verdict quiet">
         {state?.reason ??
           (typeof before === 'number' && typeof after === 'number'
-            ? 'being simulated …'
+            ? (problem ?? 'being simulated …')
             : 'no score of both waveforms, so that it has no noise')}
       </td>
     )

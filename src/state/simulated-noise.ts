@@ -68,12 +68,15 @@ export function noiseQuestion(
   const { rows, curves, chosen, timesMs, samplingRateHz } = evaluation
   if (scoreLinearity(score.kind) === 'linear') return null
   if (typeof rows[0].before !== 'number' || typeof rows[0].after !== 'number') return null
+  // two single trials have a difference, but it is no average whose noise could be drawn
+  const drawn = shown.chosen === DIFFERENCE ? trials / 2 : trials
+  if (drawn < 1) return null
   const { noise, passed } = chosenNoise(workspace, data)
   const { before, after } = curves[chosen]
   return {
     ...{ chain, samplingRateHz, noise, passed, timesMs, baseline, score, before, after },
     extent: source.kind === 'recorded' ? 'epochs' : extent,
-    trials: Math.max(1, shown.chosen === DIFFERENCE ? trials / 2 : trials),
+    trials: drawn,
   }
 }
 

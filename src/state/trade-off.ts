@@ -128,7 +128,11 @@ export function mapLimits({ tradeOff, limits, score }: Workspace, scoreBefore: n
 
 export const TRIALS_RULE = 'The number of trials must be a whole number from 1 to 1000000.'
 
-export const isTrials = (trials: number) => Number.isInteger(trials) && trials >= 1 && trials <= MAX_TRIALS
+/** Why a map has no noise at this number of trials; null where it has. */
+export function trialsProblem({ trials, shown }: Pick<Workspace, 'trials' | 'shown'>): string | null {
+  if (!(Number.isInteger(trials) && trials >= 1 && trials <= MAX_TRIALS)) return TRIALS_RULE
+  return shown.chosen === DIFFERENCE && trials < 2 ? 'A difference needs at least 2 trials of each condition.' : null
+}
 
 export interface MapRequest {
   readonly question: MapQuestion
@@ -151,9 +155,9 @@ export type MapRequestOutcome = { ok: true; request: MapRequest } | { ok: false;
 /** What the map computes for this workspace, or why it cannot be asked. */
 export function mapRequest(workspace: Workspace, data: RecordedData | null): MapRequestOutcome {
   const { trials, shown, source, chain, extent, baseline, score, measure, tradeOff } = workspace
-  if (!isTrials(trials)) return { ok: false, reason: TRIALS_RULE }
+  const problem = trialsProblem(workspace)
+  if (problem !== null) return { ok: false, reason: problem }
   const effective = shown.chosen === DIFFERENCE ? trials / 2 : trials
-  if (effective < 1) return { ok: false, reason: 'A difference needs at least 2 trials of each condition.' }
   const linear = scoreLinearity(score.kind) === 'linear'
   try {
     const noise = chosenNoise(workspace, data)

@@ -4,7 +4,7 @@ import { scoreWeights } from '../../src/erp/score.ts'
 import { evaluate } from '../../src/state/evaluate.ts'
 import { noiseStore, simulateNoise } from '../../src/state/noise-run.ts'
 import { NOISE_DRAWS, type NoiseQuestion, noiseQuestion, noiseSlice } from '../../src/state/simulated-noise.ts'
-import { startWorkspace, type Workspace } from '../../src/state/workspace.ts'
+import { DIFFERENCE, startWorkspace, type Workspace } from '../../src/state/workspace.ts'
 
 const latency = (change: Partial<Workspace> = {}): Workspace => ({
   ...startWorkspace(),
@@ -30,6 +30,11 @@ describe('the simulated noise of a latency', () => {
     expect(asked(latency())).toMatchObject({ trials: 40, extent: 'continuous' })
     const nothing = latency({ score: { kind: 'onset-latency', fromMs: -390, toMs: -380, polarity: 'negative' } })
     expect(asked(nothing)).toBeNull()
+    // of a difference the variance is twice that of one condition: half the trials; of single ones there is no average to draw
+    const difference = { first: 'rare targets', second: 'frequent standards' }
+    const shown = { ...startWorkspace().shown, difference, chosen: DIFFERENCE }
+    expect(asked(latency({ shown, trials: 3 }))).toMatchObject({ trials: 1.5 })
+    expect(asked(latency({ shown, trials: 1 }))).toBeNull()
   })
 
   test('comes to the same numbers in small slices and in one, and its own error falls with the root of the draws', () => {

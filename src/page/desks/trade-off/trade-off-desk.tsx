@@ -12,7 +12,7 @@ import {
   overWaveforms,
 } from '../../../state/map-figures.ts'
 import { endGesture, say } from '../../../state/store.ts'
-import { aboutKind, isTrials, scoreUnitOf, TRIALS_RULE, withFilter } from '../../../state/trade-off.ts'
+import { aboutKind, scoreUnitOf, trialsProblem, withFilter } from '../../../state/trade-off.ts'
 import type { Workspace } from '../../../state/workspace.ts'
 import {
   candidateWords,
@@ -309,12 +309,12 @@ function namedFilters(
 }
 
 function TrialsSlider({ workspace }: { workspace: Workspace }) {
-  const [refused, setRefused] = useState(false)
+  const [refused, setRefused] = useState<string | null>(null)
   // a number that is none would take the page's figures away, and with them the field that it was written in
   const change = (trials: number) => {
-    const taken = isTrials(trials)
-    setRefused(!taken)
-    if (taken) say((w) => ({ ...w, trials }), 'trials')
+    const problem = Number.isNaN(trials) ? null : trialsProblem({ ...workspace, trials })
+    setRefused(problem)
+    if (problem === null && !Number.isNaN(trials)) say((w) => ({ ...w, trials }), 'trials')
   }
   return (
     <div className="editor-row map-trials">
@@ -334,7 +334,7 @@ function TrialsSlider({ workspace }: { workspace: Workspace }) {
         label="number of trials of the map"
         hideLabel
         value={workspace.trials}
-        error={refused ? `${TRIALS_RULE} ${exact(workspace.trials)} still holds.` : undefined}
+        error={refused ? `${refused} ${exact(workspace.trials)} still holds.` : undefined}
         onChange={change}
       />
     </div>
