@@ -199,7 +199,7 @@ export interface ClaimCurve {
   /** Where the chain stands. */
   readonly present: number
   readonly points: readonly ClaimPoint[]
-  /** Every change of the verdict, ascending; where there is none, the answer is the same over the whole range. */
+  /** Every change of the verdict that the search found, ascending; where there is none, the answer is the same over the whole range. */
   readonly flips: readonly ClaimFlip[]
 }
 
