@@ -161,7 +161,7 @@ test('each kind of thing that can be said outlives a reload at once', async ({ w
     await workbench.edit('limits of the map')
     await workbench.choose('limit of the bias', 'another')
     await workbench.field('bias within').fill('0.35')
-    await kept({ tradeOff: { ...expected.tradeOff, limits: { bias: 0.35 } } })
+    await kept({ tradeOff: { ...expected.tradeOff, limits: { bias: 0.35, unit: 'µV' } } })
   })
   await test.step('a statement for the write-up', async () => {
     await workbench.button(/^Write-up: /).click()
