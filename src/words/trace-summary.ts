@@ -167,7 +167,9 @@ function sentences(facts: TraceSummaryFacts, tell: Teller): string[] {
     return most === undefined ? [begin] : [begin, `Most against it gives ${nameOf(most)}: ${tell.share(most.rows)}.`]
   }
   if (own.length > 0 && ownPart >= MOST) {
-    const begin = `Most of the value, ${tell.percent(own)}, comes from ${itself} itself: ${tell.share(own)}.`
+    // as it is printed: what rounds to 100 % is no more than all
+    const part = ownPart >= 1.005 ? 'More than the whole value' : 'Most of the value'
+    const begin = `${part}, ${tell.percent(own)}, comes from ${itself} itself: ${tell.share(own)}.`
     const next = others[0]
     const second =
       next === undefined || Math.abs(next.share) < ONLY * Math.abs(value)

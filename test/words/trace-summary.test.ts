@@ -187,6 +187,7 @@ describe('whatever the numbers are', () => {
           expect(own / value).toBeLessThanOrEqual(1.25)
         })
         claim('Most of the value', () => expect(own / value).toBeGreaterThanOrEqual(0.5))
+        claim('More than the whole value', () => expect(own / value).toBeGreaterThan(1))
         claim('gives only', () => expect(Math.abs(own)).toBeLessThanOrEqual(0.2 * Math.abs(value)))
         claim('no stretch gives half of it', () => {
           const halves = rowsWhere(facts, ({ kind }) => kind === 'component')
@@ -216,6 +217,7 @@ describe('whatever the numbers are', () => {
     for (const words of [
       'not made by the filter',
       'Most of the value',
+      'More than the whole value',
       'gives only',
       'no stretch gives half of it',
       'nearly cancel',
