@@ -42,6 +42,8 @@ export class Workbench {
 
   async ready(): Promise<void> {
     await expect(this.heading()).toBeVisible()
+    // what was kept has taken the place of what a first visit shows
+    await expect(this.page.getByRole('main')).toHaveAttribute('aria-busy', 'false', { timeout: 15_000 })
     await expect(this.readoutTable()).toBeVisible()
   }
 
@@ -179,6 +181,8 @@ export class Workbench {
     const offer = part.getByRole('button', { name: form, exact: true })
     if (!(await offer.isVisible())) await part.getByRole('button', { name: '+ add a claim' }).click()
     await offer.click()
+    // the list closes behind the claim
+    await expect(offer).toHaveCount(0)
   }
 
   /** The card of a claim, from 1. */

@@ -66,7 +66,7 @@ export function Page() {
         onCopyLink={files.copyLink}
       />
       {help ? <Help /> : null}
-      <main>
+      <main aria-busy={files.lookingForWork}>
         <section className="top grid" aria-label="Protocol line">
           <div>
             <ProtocolLine protocol={protocol} problems={shown.problems} />

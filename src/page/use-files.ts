@@ -71,6 +71,7 @@ export function useFiles() {
   const [message, setMessage] = useState<Message | null>(null)
   const [question, setQuestion] = useState<Message | null>(null)
   const [unread, setUnread] = useState<Message | null>(null)
+  const [looking, setLooking] = useState(true)
   const storageSaid = useRef(false)
   const [dragging, setDragging] = useState(false)
   const inputRef = useRef<HTMLInputElement>(null)
@@ -89,6 +90,7 @@ export function useFiles() {
     }
     void takeUpWork(location.hash, tell).then((work) => {
       taken = work
+      setLooking(false)
       if (work.said) report(work.said)
       if (work.unread) setUnread(unreadWork(work.unread, () => setUnread(null)))
       if (location.hash) history.replaceState(null, '', location.pathname + location.search)
@@ -163,6 +165,8 @@ export function useFiles() {
     /** What is to be read above the figures; what waits for an answer comes first, and stays. */
     messages: [question, unread, message].filter((entry) => entry !== null),
     report,
+    /** Whether the browser is still asked for the work that it kept: what stands there may give way to it. */
+    lookingForWork: looking,
     dismiss: () => setMessage(null),
     dragging,
     chooseFile: () => inputRef.current?.click(),
