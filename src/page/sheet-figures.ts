@@ -1,7 +1,8 @@
 /** The figures that can go on a sheet: those that stand on the page now, and those that were put there from a desk which may be closed since. */
 import { createContext } from 'react'
 import { createStore } from 'zustand/vanilla'
-import { type DrawnFigure, drawnFigure, type SheetFigure } from '../plot/index.ts'
+import { drawnFigure, type SheetFigure } from '../plot/index.ts'
+import { inLightTheme } from './light-theme.ts'
 
 /** A figure that stands on the page; svg and caption are read when it is drawn. */
 export interface LiveFigure {
@@ -47,22 +48,12 @@ export function inPageOrder(live: readonly LiveFigure[]): LiveFigure[] {
 }
 
 /**
- * A figure as it goes on the sheet, or null where nothing is drawn. Sheets are paper: they are drawn in the colours of the light theme, which
- * is put on for the moment and never seen.
+ * A figure as it goes on the sheet, or null where nothing is drawn. Sheets are paper: they are drawn in the colours of the light theme.
  */
 export function onPaper({ svg, caption, title }: LiveFigure): SheetFigure | null {
   const drawing = svg()
   if (!drawing) return null
-  const root = document.documentElement
-  const { theme } = root.dataset
-  let drawn: DrawnFigure
-  try {
-    root.dataset.theme = 'light'
-    drawn = drawnFigure(drawing)
-  } finally {
-    if (theme === undefined) delete root.dataset.theme
-    else root.dataset.theme = theme
-  }
+  const drawn = inLightTheme(() => drawnFigure(drawing))
   // the figure's own name says more than the head above it: "Kernel: step response"
   const name = drawing.querySelector('title')?.textContent || title
   return { title: name, caption: caption(), drawn }

@@ -1,6 +1,7 @@
 import { useEffect, useMemo } from 'react'
 import { useStore } from 'zustand'
 import type { Evaluation } from '../state/evaluation.ts'
+import { questionKey } from '../state/kept-entries.ts'
 import { type NoiseState, noiseStore, simulateNoise } from '../state/noise-run.ts'
 import { dataStore, recordedData } from '../state/recorded-data.ts'
 import { noiseQuestion } from '../state/simulated-noise.ts'
@@ -13,12 +14,7 @@ const REST_MS = 200
 export function useSimulatedNoise(workspace: Workspace, evaluation: Evaluation): NoiseState | undefined {
   const data = useStore(dataStore, (state) => recordedData(workspace.source, state.files))
   const question = useMemo(() => noiseQuestion(workspace, evaluation, data), [workspace, evaluation, data])
-  const key = useMemo(
-    () =>
-      question &&
-      JSON.stringify(question, (_, value) => (ArrayBuffer.isView(value) ? Array.from(value as never) : value)),
-    [question],
-  )
+  const key = useMemo(() => question && questionKey(question), [question])
   // biome-ignore lint/correctness/useExhaustiveDependencies: the question is said in full by its key
   useEffect(() => {
     if (!question || key === null) return

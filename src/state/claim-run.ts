@@ -6,6 +6,7 @@ import { createStore } from 'zustand/vanilla'
 import type { ClaimForm, ClaimSetting, Varied } from '../evidence/claims/claim.ts'
 import { inWords } from '../words/index.ts'
 import type { ClaimResult, ClaimSlice } from './claim-worker.ts'
+import { withEntry } from './kept-entries.ts'
 
 export interface ClaimState {
   readonly key: string
@@ -33,10 +34,7 @@ const SLICE_MS = 60
 export const claimStore = createStore<{ answers: Readonly<Record<string, ClaimState>> }>(() => ({ answers: {} }))
 
 function keep(state: ClaimState): void {
-  claimStore.setState(({ answers }) => {
-    const others = Object.entries(answers).filter(([key]) => key !== state.key)
-    return { answers: Object.fromEntries([...others.slice(1 - KEPT_ANSWERS), [state.key, state]]) }
-  })
+  claimStore.setState(({ answers }) => ({ answers: withEntry(answers, state, KEPT_ANSWERS) }))
 }
 
 /**

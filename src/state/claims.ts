@@ -3,6 +3,7 @@ import { onsetOfBuilt } from '../evidence/onset-of-built.ts'
 import { claimBounds } from '../evidence/claims/answer-claim.ts'
 import type { ClaimForm, ClaimSetting, ShownClaim, Varied } from '../evidence/claims/claim.ts'
 import { variedByDefaultOfFit } from '../evidence/claims/late-only-claim.ts'
+import { statementOf } from '../evidence/claims/statement-of.ts'
 import { variedByDefault, variedRange } from '../evidence/claims/varied-chain.ts'
 import { type Score, scoreUnit } from '../erp/score.ts'
 import type { StageSpec } from '../filter/stage.ts'
@@ -81,7 +82,7 @@ const noCondition = (name: string) =>
 
 /** A table may hold hundreds of conditions; a claim needs one or two of them, or four. */
 function namesNeeded(form: ClaimForm, chosen: ClaimSetting['chosen']): string[] {
-  const shown = form.form === 'twin' ? form.shows : form.form === 'meaning' ? form.conclusion : form
+  const shown = statementOf(form)
   const own = chosen.kind === 'difference' ? [chosen.first, chosen.second] : [chosen.name]
   const named = shown.form === 'effect' ? [shown.first, shown.second] : []
   return [...new Set([...own, ...named])]

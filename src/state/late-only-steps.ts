@@ -85,7 +85,7 @@ export function* lateOnlySteps(
     // late activity from the epoch's start on leaves no room for anything before it
     if (!(error instanceof RangeError)) throw error
   }
-  const curve = lateOnlyCurve(form, setting, varied)
+  const curve = lateOnlyCurve(form, setting, varied, answer)
   for (;;) {
     const next = curve.next()
     if (next.done) return { answer, lateOnly, curve: next.value }

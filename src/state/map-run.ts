@@ -5,6 +5,7 @@
 import { createStore } from 'zustand/vanilla'
 import { BATCH_DRAWS } from '../evidence/simulated-score.ts'
 import { type MapCell, mergeCells, planMap, type PreparedMap } from '../evidence/trade-off-map.ts'
+import { withEntry } from './kept-entries.ts'
 import type { MapSlice } from './map-worker.ts'
 import type { MapRequest } from './trade-off.ts'
 
@@ -41,10 +42,7 @@ const ROUNDS: readonly number[] = [4, 16, 40]
 export const mapStore = createStore<{ maps: Readonly<Record<string, MapState>> }>(() => ({ maps: {} }))
 
 function keep(state: MapState): void {
-  mapStore.setState(({ maps }) => {
-    const others = Object.entries(maps).filter(([key]) => key !== state.key)
-    return { maps: Object.fromEntries([...others.slice(1 - KEPT_MAPS), [state.key, state]]) }
-  })
+  mapStore.setState(({ maps }) => ({ maps: withEntry(maps, state, KEPT_MAPS) }))
 }
 
 const emptyMap = ({ key, question }: MapRequest): MapState => {

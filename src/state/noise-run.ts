@@ -3,6 +3,7 @@ import { createStore } from 'zustand/vanilla'
 import { courier } from '../jobs/index.ts'
 import { inWords } from '../words/index.ts'
 import type { BenchApi } from './bench.worker.ts'
+import { withEntry } from './kept-entries.ts'
 import { NOISE_DRAWS, type NoiseQuestion, type SimulatedNoise } from './simulated-noise.ts'
 
 export interface NoiseState {
@@ -16,11 +17,7 @@ const SLICE_MS = 60
 
 export const noiseStore = createStore<{ known: Readonly<Record<string, NoiseState>> }>(() => ({ known: {} }))
 
-const keep = (state: NoiseState) =>
-  noiseStore.setState(({ known }) => {
-    const others = Object.entries(known).filter(([key]) => key !== state.key)
-    return { known: Object.fromEntries([...others.slice(1 - KEPT), [state.key, state]]) }
-  })
+const keep = (state: NoiseState) => noiseStore.setState(({ known }) => ({ known: withEntry(known, state, KEPT) }))
 
 const bench = courier<BenchApi>(
   () => new Worker(new URL('./bench.worker.ts', import.meta.url), { type: 'module', name: 'sidelobe noise' }),

@@ -15,6 +15,7 @@ import { type ChosenNoise, chosenNoise } from './chosen-noise.ts'
 import { designedChain } from './evaluate-chain.ts'
 import { componentsOf, recordedValues, timeAxis } from './evaluate-curves.ts'
 import { memoised } from './memo.ts'
+import { questionKey } from './kept-entries.ts'
 import type { RecordedData } from './recorded-data.ts'
 import { DIFFERENCE, MAX_TRIALS, RANGE, type TradeOff, type Workspace } from './workspace.ts'
 
@@ -244,7 +245,7 @@ const questionOf = memoised((...args: [...PartValues, RecordedData | null, Chose
     const values = waveform.kind === 'built' ? waveformAt(waveform.components, timesMs) : waveform.values
     return scoreReference(score, largestAbsolute(correctBaseline(values, timesMs, baseline)))
   })
-  const key = JSON.stringify(question, (_, value) => (ArrayBuffer.isView(value) ? Array.from(value as never) : value))
+  const key = questionKey(question)
   return {
     question,
     key,

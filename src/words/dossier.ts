@@ -2,6 +2,7 @@ import type { Component } from '../erp/component.ts'
 import type { NoisePassed } from '../evidence/filtered-noise.ts'
 import type { TraceSource } from '../evidence/traced-waveform.ts'
 import type { ClaimAnswer, ClaimCurve, ClaimForm, ClaimSetting, Unit } from '../evidence/claims/claim.ts'
+import { statementOf } from '../evidence/claims/statement-of.ts'
 import { type ClaimAnswerContext, claimReason, claimVerdictWords } from './claim-answer-words.ts'
 import { changeWithUnit, intervalWithUnit, toneWithUnit, valueWithUnit } from './claim-number.ts'
 import { curveSentence } from './claim-curve-words.ts'
@@ -285,7 +286,7 @@ function numberText(form: ClaimForm, answer: ClaimAnswer): string {
     return `as it is ${numberOf(form.shows, grounds.present)}; ${form.twin} version ${numberOf(form.shows, grounds.compared)}`
   if (grounds.kind === 'compared' && form.form === 'meaning')
     return `as stated ${numberOf(form.conclusion, grounds.present)}; with the other meaning ${numberOf(form.conclusion, grounds.compared)}`
-  return numberOf(form.form === 'twin' ? form.shows : form.form === 'meaning' ? form.conclusion : form, answer)
+  return numberOf(statementOf(form), answer)
 }
 
 function numberOf(form: ClaimForm, { number, unit, interval }: ClaimAnswer): string {

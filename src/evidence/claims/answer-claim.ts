@@ -9,6 +9,7 @@ import { effectClaim } from './effect-claim.ts'
 import { meaningClaim } from './meaning-claim.ts'
 import { onsetClaim } from './onset-claim.ts'
 import { outsideClaim } from './outside-claim.ts'
+import { statementOf } from './statement-of.ts'
 import { twinClaim } from './twin-claim.ts'
 
 /** Every form but the late-only fit, which has a file of its own. */
@@ -29,7 +30,7 @@ export function answerClaim(form: AnsweredForm, setting: ClaimSetting): ClaimAns
 /** The answer with some chain in the place of the setting's own. Throws as `answerClaim`. */
 export function weighClaim(prepared: PreparedClaim, form: AnsweredForm, specs: readonly StageSpec[]): Weighed {
   const { setting } = prepared
-  const shown = form.form === 'twin' ? form.shows : form.form === 'meaning' ? form.conclusion : form
+  const shown = statementOf(form)
   if (speaksOfUnfiltered(shown) && isFilteredBefore(setting)) return untold({ kind: 'filtered before' }, unitOf(shown))
   switch (form.form) {
     case 'attenuation':

@@ -3,6 +3,7 @@ import { scoreLinearity, scoreOf, scoreWeights } from '../../erp/score.ts'
 import type { Chain } from '../../filter/chain.ts'
 import { type FidelityRow, fidelityRows, largestAbsolute, scoreReference } from '../fidelity.ts'
 import { isTraced, tracedWeights } from '../traced-weights.ts'
+import { NORMAL_95 } from '../late-only-verdict.ts'
 import type { ChangeClaim, ClaimRow, ClaimSetting, Unit } from './claim.ts'
 import {
   covarianceOf,
@@ -17,7 +18,6 @@ import {
   intervalOf,
   isAtLeast,
   isAtMost,
-  NORMAL_95,
   type Part,
   part,
   type PartNoise,

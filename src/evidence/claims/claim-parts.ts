@@ -1,3 +1,4 @@
+import { NORMAL_95 } from '../late-only-verdict.ts'
 import type { ClaimGrounds, ClaimVerdict, ShownAnswer } from './claim.ts'
 
 /**
@@ -13,9 +14,6 @@ export interface Part {
   /** Quantities that go through zero where the verdict may change, for the search over a cutoff. */
   readonly decisions: readonly number[]
 }
-
-/** 97.5 % point of the standard normal distribution. */
-export const NORMAL_95 = 1.959963984540054
 
 /** 0.1 + 0.2 against 0.3 is a matter of rounding, not of the filter. */
 const ROUNDING = 1e-9

@@ -158,7 +158,8 @@ export function variedByDefaultOfFit(chain: readonly StageSpec[]): Varied | null
  * At most 15 points, since each is one to three fits: a cutoff or transition width from an eighth to eight times itself, or the orders about the present one, and steps towards
  * each change of the verdict as long as points are left. A flip stands in the middle (of the logarithm) of the two points that it lies between.
  *
- * @param varied what is varied, or null for the first enabled offline stage's first cutoff.
+ * @param varied   what is varied, or null for the first enabled offline stage's first cutoff.
+ * @param answered the claim's answer as the chain stands, where it is there already: those fits are not made again.
  * @returns null where there is nothing to vary.
  * @throws RangeError as `lateOnlyClaim` for what is wrong with the claim as it stands.
  */
@@ -166,6 +167,7 @@ export function* lateOnlyCurve(
   form: LateOnlyClaim,
   setting: ClaimSetting,
   varied: Varied | null,
+  answered?: Pick<ClaimAnswer, 'number' | 'verdict'>,
 ): Generator<CurveProgress, ClaimCurve | null> {
   const of = varied ?? variedByDefaultOfFit(setting.chain)
   const range = of && variedRange(setting.chain, of, setting.samplingRateHz, true)
@@ -186,7 +188,8 @@ export function* lateOnlyCurve(
     }
     points.sort((a, b) => a.at - b.at)
   }
-  look(present)
+  if (answered) points.push({ at: present, number: answered.number, verdict: answered.verdict })
+  else look(present)
   yield { done: points.length, total: MOST_POINTS }
   for (const at of range.kind === 'orders' ? range.orders : around(range.fromHz, range.toHz, present)) {
     look(at)

@@ -119,6 +119,14 @@ describe('noiseBefore', () => {
 })
 
 describe('lateOnlyCurve', () => {
+  test('is the same where the answer as the chain stands is there already', () => {
+    const varied = { stage: 0, what: 'order', cutoff: 0 } as const
+    const answer = lateOnlyClaim(form, onlyLate)
+    expect(wholeCurve(lateOnlyCurve(form, onlyLate, varied, answer))).toEqual(
+      wholeCurve(lateOnlyCurve(form, onlyLate, varied)),
+    )
+  })
+
   test('takes at most 15 fits about the chain as it stands, with a flip between each change of the verdict', () => {
     const setting = asRecorded(onlyLate)
     const progress: number[] = []

@@ -9,6 +9,7 @@ import type { RecordedData } from '../../../state/recorded-data.ts'
 import type { Workspace } from '../../../state/workspace.ts'
 import { dossierHtml, dossierMarkdown } from '../../../words/index.ts'
 import { WordButton } from '../../fields.tsx'
+import { inLightTheme } from '../../light-theme.ts'
 
 /** The figure of a claim as it stands on its card. */
 export interface FigureSource {
@@ -80,19 +81,6 @@ export function DossierPart({ workspace, evaluation, data, figures }: DossierPar
       </p>
     </section>
   )
-}
-
-/** The dossier is a light page whatever the theme, and its figures are read off the page: nothing is painted in between. */
-function inLightTheme<T>(read: () => T): T {
-  const { dataset } = document.documentElement
-  const theme = dataset.theme
-  dataset.theme = 'light'
-  try {
-    return read()
-  } finally {
-    if (theme === undefined) delete dataset.theme
-    else dataset.theme = theme
-  }
 }
 
 function drawn(title: string, svg: SVGSVGElement | null | undefined): string | null {
